@@ -12,7 +12,6 @@ const common = { environment: 'node' as const, testTimeout: 30_000, hookTimeout:
 export default defineConfig({
   root: at('..'),
   cacheDir: '.vite/vitest',
-  oxc: { jsx: { runtime: 'automatic' } },
   test: {
     pool: 'forks',
     projects: [
