@@ -17,7 +17,7 @@ export default defineConfig({
     ssr: {
       build: {
         rollupOptions: {
-          input: { index: at('./app/server/app.server.ts') },
+          input: { index: at('./app/server/start.server.ts') },
           output: { entryFileNames: '[name].js' }
         }
       }

@@ -17,15 +17,34 @@ export default defineConfig({
     projects: [
       {
         resolve: { alias },
-        test: { ...common, name: 'unit', root: at('..'), include: ['app/**/*.test.{ts,tsx}', 'db/**/*.test.ts', 'storage-fake/**/*.test.ts', 'tests/unit/**/*.test.ts'] }
+        test: {
+          ...common,
+          name: 'unit',
+          root: at('..'),
+          include: ['app/**/*.test.{ts,tsx}', 'db/**/*.test.ts', 'storage-fake/**/*.test.ts', 'tests/unit/**/*.test.ts']
+        }
       },
       {
         resolve: { alias },
-        test: { ...common, name: 'http', root: at('..'), include: ['tests/http/**/*.test.ts'], fileParallelism: false, testTimeout: 60_000 }
+        test: {
+          ...common,
+          name: 'http',
+          root: at('..'),
+          include: ['tests/http/**/*.test.ts'],
+          fileParallelism: false,
+          testTimeout: 60_000
+        }
       },
       {
         resolve: { alias },
-        test: { ...common, name: 'e2e', root: at('..'), include: ['tests/e2e/**/*.test.ts'], fileParallelism: false, testTimeout: 240_000 }
+        test: {
+          ...common,
+          name: 'e2e',
+          root: at('..'),
+          include: ['tests/e2e/**/*.test.ts'],
+          fileParallelism: false,
+          testTimeout: 240_000
+        }
       }
     ]
   }

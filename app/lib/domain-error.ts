@@ -1,5 +1,14 @@
 /** What can go wrong in a use case. Pages and API turn each kind into HTTP in one place (`server/problem.server.ts`). */
-export type ErrorKind = 'invalid' | 'unauthenticated' | 'forbidden' | 'not-found' | 'conflict' | 'too-large' | 'wrong-type' | 'impossible' | 'rate-limited'
+export type ErrorKind =
+  | 'invalid'
+  | 'unauthenticated'
+  | 'forbidden'
+  | 'not-found'
+  | 'conflict'
+  | 'too-large'
+  | 'wrong-type'
+  | 'impossible'
+  | 'rate-limited'
 
 /** A message for one field of the input; `path` is dotted (`observations.3.time`), empty for the whole. */
 export type FieldError = { path: string; message: string }

@@ -1,0 +1,50 @@
+import { PassThrough } from 'node:stream'
+import { createReadableStreamFromReadable } from '@react-router/node'
+import { renderToPipeableStream } from 'react-dom/server'
+import { ServerRouter, type EntryContext, type RouterContextProvider } from 'react-router'
+import { requestInfoContext } from '~/server/context'
+import { logError } from '~/server/log.server'
+import { DomainError } from '~/lib/domain-error'
+
+const renderTimeoutMs = 10_000
+
+/** Renders a page whole before the first byte leaves: no page streams parts, and a failure still gets its status. */
+export default function handleRequest(
+  request: Request,
+  status: number,
+  headers: Headers,
+  routerContext: EntryContext,
+  loadContext: RouterContextProvider
+): Promise<Response> {
+  const { nonce } = loadContext.get(requestInfoContext)
+  return new Promise((resolve, reject) => {
+    let failed = false
+    const { pipe, abort } = renderToPipeableStream(<ServerRouter context={routerContext} url={request.url} nonce={nonce} />, {
+      nonce,
+      onAllReady() {
+        clearTimeout(timer)
+        headers.set('Content-Type', 'text/html; charset=utf-8')
+        if (!headers.has('Cache-Control')) headers.set('Cache-Control', 'private, no-store')
+        const body = new PassThrough()
+        const answer = new Response(request.method === 'HEAD' ? null : createReadableStreamFromReadable(body), {
+          headers,
+          status: failed ? 500 : status
+        })
+        resolve(answer)
+        pipe(body)
+      },
+      onShellError: reject,
+      onError(error) {
+        failed = true
+        logError('render-failed', error)
+      }
+    })
+    const timer = setTimeout(() => abort(new Error('rendering took too long')), renderTimeoutMs)
+  })
+}
+
+/** Defects only: an expected failure has its own answer, and a reader who left is none. */
+export function handleError(error: unknown, { request }: { request: Request }): void {
+  if (request.signal.aborted || error instanceof DomainError) return
+  logError('handler-failed', error, { method: request.method, path: new URL(request.url).pathname })
+}
