@@ -2,6 +2,7 @@ import type { ReactNode } from 'react'
 import { Links, Meta, Outlet, Scripts, ScrollRestoration } from 'react-router'
 import type { Route } from './+types/root'
 import { actorContext } from '~/server/context'
+import './app.css'
 
 export function loader({ context }: Route.LoaderArgs) {
   const actor = context.get(actorContext)
