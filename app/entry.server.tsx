@@ -16,7 +16,7 @@ export default function handleRequest(
   routerContext: EntryContext,
   loadContext: RouterContextProvider
 ): Promise<Response> {
-  const { nonce } = loadContext.get(requestInfoContext)
+  const nonce = loadContext.get(requestInfoContext).nonce || undefined
   return new Promise((resolve, reject) => {
     let failed = false
     const { pipe, abort } = renderToPipeableStream(<ServerRouter context={routerContext} url={request.url} nonce={nonce} />, {

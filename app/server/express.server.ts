@@ -30,13 +30,11 @@ export function createApp(
   app.set('trust proxy', config.trustProxyHops)
 
   app.use((req, res, next) => {
-    const info: RequestInfo = {
-      id: randomBytes(9).toString('base64url'),
-      nonce: randomBytes(16).toString('base64url'),
-      ip: req.ip ?? ''
-    }
+    // Without a policy that asks for it a nonce only makes the development build complain of a difference when it hydrates.
+    const nonce = config.mode === 'development' ? '' : randomBytes(16).toString('base64url')
+    const info: RequestInfo = { id: randomBytes(9).toString('base64url'), nonce, ip: req.ip ?? '' }
     res.locals.info = info
-    for (const [name, value] of Object.entries(securityHeaders(config, info.nonce))) res.setHeader(name, value)
+    for (const [name, value] of Object.entries(securityHeaders(config, nonce))) res.setHeader(name, value)
     res.setHeader('X-Request-Id', info.id)
     next()
   })
