@@ -1,0 +1,54 @@
+import { Fragment, type ReactNode } from 'react'
+import { Button } from './button'
+import { SelectOptions, type SelectOption } from './field'
+
+export type SentencePart =
+  | string
+  | { name: string; label: string; options: SelectOption[]; value?: string; empty?: string }
+  | { name: string; label: string; type: 'text' | 'search' | 'date'; value?: string; size?: number; list?: string }
+
+export type SentenceFormProps = {
+  action: string
+  /** What the form is for, read out: "What fits my console". */
+  label: string
+  /** "I have a", a select, "revision", a select … */
+  parts: SentencePart[]
+  submit: string
+  isOutlined?: boolean
+  span?: 'wide' | 'full'
+  /** Hidden fields, or further words before the button. */
+  children?: ReactNode
+}
+
+/** A question put as a sentence; on a phone its words become the label column. Its answer is an address. */
+export function SentenceForm({ action, label, parts, submit, isOutlined, span, children }: SentenceFormProps) {
+  return (
+    <form className={span ? `say ${span}` : 'say'} action={action} method="get" aria-label={label}>
+      {parts.map((part, i) => (
+        <Fragment key={i}>{typeof part === 'string' ? <span>{part}</span> : <Gap part={part} />}</Fragment>
+      ))}
+      {children}
+      <Button kind={isOutlined ? 'outline' : 'solid'}>{submit}</Button>
+    </form>
+  )
+}
+
+function Gap({ part }: { part: Exclude<SentencePart, string> }) {
+  if ('options' in part)
+    return (
+      <select name={part.name} aria-label={part.label} defaultValue={part.value ?? ''}>
+        {part.empty !== undefined && <option value="">{part.empty}</option>}
+        <SelectOptions options={part.options} />
+      </select>
+    )
+  return (
+    <input
+      type={part.type}
+      name={part.name}
+      aria-label={part.label}
+      defaultValue={part.value}
+      size={part.size}
+      list={part.list}
+    />
+  )
+}
