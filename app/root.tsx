@@ -5,12 +5,15 @@ import stylesheet from './app.css?url'
 import { SiteSheet, type SiteFrame } from '~/components/site-sheet'
 import { Title } from '~/components/title'
 import { actorContext } from '~/server/context'
+import { loadActor } from '~/server/session.server'
 import { services } from '~/server/services.server'
 
 export const links: Route.LinksFunction = () => [
   { rel: 'stylesheet', href: stylesheet },
   { rel: 'icon', href: '/icon.svg', type: 'image/svg+xml' }
 ]
+
+export const middleware: Route.MiddlewareFunction[] = [loadActor]
 
 export function loader({ context }: Route.LoaderArgs): SiteFrame {
   const { config } = services()
