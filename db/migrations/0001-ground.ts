@@ -134,6 +134,8 @@ const statements = [
     check ((state = 'withdrawn') = (withdrawn_at is not null))
   ) strict`,
   `create index releases_by_bundle on releases (bundle_sha256)`,
+  `create index releases_by_picture_top on releases (picture_top_sha256)`,
+  `create index releases_by_picture_bottom on releases (picture_bottom_sha256)`,
   `create trigger releases_never_change before update of version, precedence_key, board_id, board_revision, notes_md, declared_layers,
       declared_thickness_mm, declared_copper_um, declared_finish, declared_mask, declared_legend, declared_stencil, order_note,
       bundle_sha256, bundle_bytes, bundle_name, facts_json, is_check_ok, published_at on releases
@@ -170,6 +172,18 @@ const statements = [
     answered_by text references users (id) on delete set null,
     unique (release_id, position)
   ) strict`,
+  `create trigger release_files_never_change before update of file, function, side, layer_index, evidence on release_files
+    when (select state from releases where id = old.release_id) <> 'draft'
+    begin select raise(abort, 'a published release never changes'); end`,
+  `create trigger release_files_never_go before delete on release_files
+    when (select state from releases where id = old.release_id) <> 'draft'
+    begin select raise(abort, 'a published release never changes'); end`,
+  `create trigger findings_never_change before update of code, severity, file, message, expected, found, answer, answered_at on findings
+    when (select state from releases where id = old.release_id) <> 'draft'
+    begin select raise(abort, 'a published release never changes'); end`,
+  `create trigger findings_never_go before delete on findings
+    when (select state from releases where id = old.release_id) <> 'draft'
+    begin select raise(abort, 'a published release never changes'); end`,
   `create table downloads (
     release_id text not null references releases (id),
     day text not null,
