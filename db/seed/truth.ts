@@ -49,7 +49,7 @@ export const reporting = {
   lateShare: 0.12,
   lateMostDays: 320,
   /** Probability of never being heard of again, after the report and after each check-in. */
-  dropOut: 0.075,
+  dropOut: 0.055,
   /** Units that change hands or are scrapped, per year. */
   partedPerYear: 0.02,
   /** Share of units without a tag in the report. */
@@ -64,7 +64,7 @@ export const badLot = { board: 'buttress', release: '1.1.1', batch: '2024-09', u
 export const truth: Record<string, BoardTruth> = {
   buttress: {
     hazards: {
-      board: { shape: 0.85, scaleDays: 22_000 },
+      board: { shape: 0.85, scaleDays: 33_000 },
       fitting: { shape: 0.6, scaleDays: 900_000 },
       'other-fault': { shape: 1, scaleDays: 60_000 },
       accident: { shape: 1, scaleDays: 200_000 }
@@ -91,7 +91,7 @@ export const truth: Record<string, BoardTruth> = {
   },
   sundial: {
     hazards: {
-      board: { shape: 1.1, scaleDays: 16_000 },
+      board: { shape: 1.1, scaleDays: 18_000 },
       fitting: { shape: 0.6, scaleDays: 1_500_000 },
       'other-fault': { shape: 1, scaleDays: 90_000 },
       accident: { shape: 1, scaleDays: 80_000 }
