@@ -16,6 +16,9 @@ export function openDb(file: string): Db {
   return new SqliteKysely<Schema>(file)
 }
 
+/** The database file for a thread that only reads; writing through it is an error. */
+export const openDbReadOnly = (file: string): Db => new SqliteKysely<Schema>(file, { isReadOnly: true })
+
 /**
  * Holds the data folder for this process: two writing processes starve each other. The lock is an open exclusive transaction on a
  * file beside the database, so the operating system drops it whatever becomes of the process.

@@ -1,10 +1,12 @@
 import { Migrator, type Migration } from 'kysely'
 import type { Db } from './client.server'
 import * as m0001 from './migrations/0001-ground'
+import * as m0002 from './migrations/0002-report-versions'
 
 /** Every migration, in order, listed by hand; they only go forward. */
 const migrations: Record<string, Migration> = {
-  '0001-ground': m0001
+  '0001-ground': m0001,
+  '0002-report-versions': m0002
 }
 
 /**

@@ -249,6 +249,12 @@ export type AuditLogTable = {
   detail_json: Generated<string>
 }
 
+/** Bumped by triggers whenever a board's reports or the state of its releases change. */
+export type ReportVersionsTable = {
+  board_id: string
+  version: number
+}
+
 export type Schema = {
   users: UsersTable
   sign_in_tokens: SignInTokensTable
@@ -272,4 +278,5 @@ export type Schema = {
   mail_outbox: MailOutboxTable
   rate_counts: RateCountsTable
   audit_log: AuditLogTable
+  report_versions: ReportVersionsTable
 }

@@ -135,4 +135,26 @@ describe('the SQLite dialect', () => {
     }
     expect(seen).toEqual([1, 2, 3])
   })
+
+  it('opened read-only it reads, holds a snapshot through a transaction, and refuses to write', async () => {
+    await insert(1).execute()
+    const reader = new SqliteKysely<Tables>(join(folder, 'a.sqlite'), { isReadOnly: true })
+    let begin!: () => void
+    let goOn!: () => void
+    const begun = new Promise<void>((resolve) => (begin = resolve))
+    const written = new Promise<void>((resolve) => (goOn = resolve))
+    const counts = reader.transaction().execute(async (tx) => {
+      const before = await tx.selectFrom('note').selectAll().execute()
+      begin()
+      await written
+      return [before.length, (await tx.selectFrom('note').selectAll().execute()).length]
+    })
+    await begun
+    await insert(2).execute()
+    goOn()
+    expect(await counts).toEqual([1, 1])
+    expect(await reader.selectFrom('note').selectAll().execute()).toHaveLength(2)
+    await expect(reader.insertInto('note').values({ id: 3, text: 'x' }).execute()).rejects.toThrow('readonly')
+    await reader.destroy()
+  })
 })

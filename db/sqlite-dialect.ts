@@ -48,7 +48,7 @@ class Queue {
   }
 }
 
-type Parts = { reader: Prepared; writer: Prepared; queue: Queue; openReader: () => BetterSqlite.Database }
+type Parts = { reader: Prepared; writer: Prepared; queue: Queue; openReader: () => BetterSqlite.Database; begin: string }
 
 class Connection implements DatabaseConnection {
   #release: (() => void) | null = null
@@ -57,7 +57,7 @@ class Connection implements DatabaseConnection {
   async begin() {
     this.#release = await this.parts.queue.lock()
     try {
-      this.parts.writer.sqlite.exec('begin immediate')
+      this.parts.writer.sqlite.exec(this.parts.begin)
     } catch (error) {
       this.#end()
       throw error
@@ -106,12 +106,16 @@ class Connection implements DatabaseConnection {
 
 class SqliteDriver implements Driver {
   #parts: Parts | null = null
-  constructor(readonly file: string) {}
+  constructor(
+    readonly file: string,
+    readonly isReadOnly: boolean
+  ) {}
 
   async init() {
-    const writer = openWriter(this.file)
     const openReader = () => openReadOnly(this.file)
-    this.#parts = { writer: new Prepared(writer), reader: new Prepared(openReader()), queue: new Queue(), openReader }
+    const writer = this.isReadOnly ? openReader() : openWriter(this.file)
+    const begin = this.isReadOnly ? 'begin' : 'begin immediate'
+    this.#parts = { writer: new Prepared(writer), reader: new Prepared(openReader()), queue: new Queue(), openReader, begin }
   }
   async acquireConnection() {
     return new Connection(this.#parts!)
@@ -164,9 +168,12 @@ class TransactionalAdapter extends SqliteAdapter {
 }
 
 class SqliteFileDialect implements Dialect {
-  constructor(readonly file: string) {}
+  constructor(
+    readonly file: string,
+    readonly isReadOnly: boolean
+  ) {}
   createDriver(): Driver {
-    return new SqliteDriver(this.file)
+    return new SqliteDriver(this.file, this.isReadOnly)
   }
   createQueryCompiler() {
     return new SqliteQueryCompiler()
@@ -181,8 +188,9 @@ class SqliteFileDialect implements Dialect {
 
 /** Kysely over one SQLite file; marks the time inside a transaction so that the dialect can refuse `db` there. */
 export class SqliteKysely<T> extends Kysely<T> {
-  constructor(file: string) {
-    super({ dialect: new SqliteFileDialect(file) })
+  /** @param isReadOnly for a reader in another thread; a transaction is then a snapshot for several reads */
+  constructor(file: string, { isReadOnly = false } = {}) {
+    super({ dialect: new SqliteFileDialect(file, isReadOnly) })
   }
 
   override transaction() {
