@@ -1,0 +1,20 @@
+import { goneUnder, pointAt, type SurvivalPoint } from './chart-geometry'
+
+/**
+ * A share as whole percent, never as "100": where nothing failed it is the lower bound, "≥ 59"; what rounds to 100 is "over 99",
+ * and what rounds to 0 "under 1".
+ */
+export function percentText(share: number, lower: number | null): string {
+  if (share >= 1) return lower === null ? 'none failed' : `≥ ${Math.floor(lower * 100 + 1e-9)}`
+  if (share > 0.995) return 'over 99'
+  if (share > 0 && share < 0.005) return 'under 1'
+  return String(Math.round(share * 100))
+}
+
+/** "95 % at 1 year", or why there is no such figure. */
+export function readingText(points: readonly SurvivalPoint[], days: number, when: string): string {
+  const at = pointAt(points, days)
+  if (!at || at.atRisk < goneUnder) return `too few at ${when}`
+  const text = percentText(at.survival, at.lower)
+  return text === 'none failed' ? `none failed by ${when}` : `${text} % at ${when}`
+}

@@ -1,0 +1,115 @@
+import { useId } from 'react'
+import { ChartFrame } from './chart-frame'
+import { axisFloor, linear, percentTicks, timeAxis, visibleRuns, type SurvivalPoint, type TimeUnit } from './chart-geometry'
+import { curveInks } from './curve-ink'
+import { TwoDrawings } from './figure'
+import { readingText } from './percent-text'
+import { AtRiskRows, CurveLabels, type DrawnSeries } from './survival-labels'
+import { SurvivalCurve } from './survival-curve'
+
+export type SurvivalSeries = { name: string; points: SurvivalPoint[]; marked: boolean }
+
+export type SurvivalChartProps = {
+  /** One marked, at most three beside it; further ones are left out. */
+  series: SurvivalSeries[]
+  /** In what the time axis is read; see `unitFor`. */
+  unit: TimeUnit
+  /** The day up to which reports are counted. */
+  asOf: string
+  /** Where the figure at a line's end is read. */
+  reading?: { days: number; words: string }
+  /** One curve in a small figure: no label, no rows below. */
+  isSmall?: boolean
+}
+
+const oneYear = { days: 365, words: '1 year' }
+const unitWords: Record<TimeUnit, string> = { year: 'years', month: 'months', day: 'days' }
+
+/** What is drawn, in drawing order: the marked series last, over the others; at most four. */
+export function drawnSeries(series: readonly SurvivalSeries[]): DrawnSeries[] {
+  const marked = series.find((s) => s.marked) ?? series[0]
+  if (!marked) return []
+  const beside = series.filter((s) => s !== marked).slice(0, 3)
+  return [
+    ...beside.map((s, i) => ({ ...s, isMarked: false, ink: curveInks[i + 1]! })),
+    { ...marked, isMarked: true, ink: curveInks[0]! }
+  ]
+}
+
+const inWords = (drawn: DrawnSeries[], props: SurvivalChartProps) => {
+  const { days, words } = props.reading ?? oneYear
+  const parts = [...drawn]
+    .reverse()
+    .map((s) => `${s.name}${s.isMarked && drawn.length > 1 ? ' (marked)' : ''} ${readingText(s.points, days, words)}`)
+  return `Share still working by ${unitWords[props.unit]} after fitting, as of ${props.asOf}: ${parts.join('; ')}.`
+}
+
+/** The survival figure, drawn twice: wide and narrow. A table with the same figures belongs beside it. */
+export function SurvivalChart(props: SurvivalChartProps) {
+  const drawn = drawnSeries(props.series)
+  return <TwoDrawings wide={<Drawing {...props} drawn={drawn} />} narrow={<Drawing {...props} drawn={drawn} isNarrow />} />
+}
+
+const sizes = {
+  wide: { width: 804, plot: { left: 64, right: 664, top: 26, bottom: 348 } },
+  narrow: { width: 328, plot: { left: 58, right: 262, top: 26, bottom: 300 } },
+  smallWide: { width: 500, plot: { left: 44, right: 482, top: 26, bottom: 206 } },
+  smallNarrow: { width: 328, plot: { left: 44, right: 310, top: 26, bottom: 176 } }
+}
+
+type DrawingProps = SurvivalChartProps & { drawn: DrawnSeries[]; isNarrow?: boolean }
+
+function Drawing({ drawn, isNarrow, ...props }: DrawingProps) {
+  const { isSmall, unit, reading = oneYear } = props
+  const clip = useId()
+  const { width, plot } = isSmall ? (isNarrow ? sizes.smallNarrow : sizes.smallWide) : isNarrow ? sizes.narrow : sizes.wide
+  const steps = drawn.flatMap((s) =>
+    visibleRuns(s.points).flatMap((run) =>
+      run.steps.map((step) => (s.isMarked && run.weight === 'full' ? (step.lower ?? step.survival) : step.survival))
+    )
+  )
+  const floor = axisFloor(Math.min(1, ...steps))
+  const axis = timeAxis(Math.max(1, ...drawn.flatMap((s) => s.points.map((p) => p.time))), unit)
+  const x = linear(0, axis.days, plot.left, plot.right)
+  const percent = linear(floor, 100, plot.bottom, plot.top)
+  const y = (share: number) => percent(share * 100)
+  const rowsTop = plot.bottom + 50
+  const height = isSmall ? plot.bottom + 44 : rowsTop + 22 * drawn.length + 14
+  return (
+    <svg viewBox={`0 0 ${width} ${height}`} width={width} height={height} role="img" aria-label={inWords(drawn, props)}>
+      <clipPath id={clip}>
+        <rect x={plot.left - 3} y={plot.top - 8} width={plot.right - plot.left + 6} height={plot.bottom - plot.top + 8} />
+      </clipPath>
+      <ChartFrame
+        plot={plot}
+        x={x}
+        y={percent}
+        yTicks={percentTicks(floor, isNarrow || isSmall)}
+        xTicks={axis.ticks}
+        yTitle="% still working"
+        xTitle={isNarrow && !isSmall ? unitWords[unit] : `${unitWords[unit]} after fitting`}
+        isCut={floor > 0}
+        isTight={isSmall}
+      />
+      <g clipPath={`url(#${clip})`}>
+        {drawn.map((s) => (
+          <SurvivalCurve
+            key={s.name}
+            points={s.points}
+            x={x}
+            y={y}
+            ink={s.ink}
+            isMarked={s.isMarked}
+            width={isSmall ? 2.75 : undefined}
+          />
+        ))}
+      </g>
+      {!isSmall && (
+        <>
+          <CurveLabels drawn={drawn} x={x} y={y} plot={plot} isNarrow={isNarrow} reading={reading} />
+          <AtRiskRows drawn={drawn} x={x} ticks={axis.ticks} top={rowsTop} />
+        </>
+      )}
+    </svg>
+  )
+}

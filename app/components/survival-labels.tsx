@@ -1,0 +1,88 @@
+import type { Plot } from './chart-frame'
+import { atRiskAt, faintUnder, spreadLabels, visibleRuns, type Scale, type SurvivalPoint } from './chart-geometry'
+import type { CurveInk } from './curve-ink'
+import { readingText } from './percent-text'
+
+export type DrawnSeries = { name: string; points: SurvivalPoint[]; isMarked: boolean; ink: CurveInk }
+
+type LabelProps = {
+  drawn: DrawnSeries[]
+  x: Scale
+  y: Scale
+  plot: Plot
+  isNarrow?: boolean
+  reading: { days: number; words: string }
+}
+
+/** Names at the lines' ends, moved apart where they would meet, each with a thin leader to its line. */
+export function CurveLabels({ drawn, x, y, plot, isNarrow, reading }: LabelProps) {
+  const ended = drawn.flatMap((series) => {
+    const end = visibleRuns(series.points).at(-1)?.steps.at(-1)
+    return end ? [{ series, endX: x(end.time), endY: Math.min(y(end.survival), plot.bottom) }] : []
+  })
+  const gap = isNarrow ? 22 : 40
+  const places = spreadLabels(
+    ended.map((e) => e.endY),
+    gap,
+    plot.top + 4,
+    plot.bottom - (isNarrow ? 4 : 24)
+  )
+  const textX = plot.right + (isNarrow ? 16 : 18)
+  return ended.map(({ series: { name, points, isMarked, ink }, endX, endY }, i) => {
+    const at = places[i]!
+    const turn = plot.right + (isNarrow ? 4 : 6)
+    const leader = `M${endX + 4} ${endY}H${Math.max(endX + 4, plot.right - (isNarrow ? 4 : 10))}L${turn} ${at}H${textX - 4}`
+    return (
+      <g key={name}>
+        <path d={leader} stroke="var(--color-edge)" fill="none" />
+        <text x={textX} y={at + 5} className={`${isMarked ? 't-mark' : 't-b'} ${ink.textClass}`}>
+          {name}
+        </text>
+        {isMarked && <path d={`M${textX} ${at + 10}h${Math.max(24, name.length * 9)}`} stroke={ink.stroke} strokeWidth="3" />}
+        {!isNarrow && (
+          <text x={textX} y={at + (isMarked ? 27 : 21)} className="t-soft">
+            {readingText(points, reading.days, reading.words)}
+          </text>
+        )}
+      </g>
+    )
+  })
+}
+
+type RowsProps = { drawn: DrawnSeries[]; x: Scale; ticks: { label: string; days: number }[]; top: number }
+
+/** How many were still followed at each tick; the marked row is bold. The rows keep the order of the names. */
+export function AtRiskRows({ drawn, x, ticks, top }: RowsProps) {
+  const rows = [...drawn].sort((a, b) => a.name.localeCompare(b.name, 'en', { numeric: true }))
+  return (
+    <g>
+      <text x="0" y={top} className="t-soft">
+        still followed (at risk)
+      </text>
+      {rows.map(({ name, points, isMarked, ink }, i) => {
+        const y = top + 20 + 22 * i
+        return (
+          <g key={name}>
+            <text x="0" y={y} className={`${isMarked ? 'font-bold' : 'font-semibold'} ${ink.textClass}`}>
+              {name}
+            </text>
+            {ticks.map(({ label, days }) => {
+              const n = atRiskAt(points, days)
+              return (
+                <text
+                  key={label}
+                  x={x(days)}
+                  y={y}
+                  textAnchor="middle"
+                  className={`${isMarked ? 'font-bold' : ''} ${n < faintUnder ? 't-soft' : ''}`}
+                >
+                  {n}
+                </text>
+              )
+            })}
+          </g>
+        )
+      })}
+    </g>
+  )
+}

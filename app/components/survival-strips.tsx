@@ -1,0 +1,128 @@
+import { useId } from 'react'
+import {
+  axisFloor,
+  faintUnder,
+  linear,
+  stepPath,
+  timeAxis,
+  visibleRuns,
+  type Run,
+  type SurvivalPoint,
+  type TimeUnit
+} from './chart-geometry'
+import { curveInks } from './curve-ink'
+import { TwoDrawings } from './figure'
+import { readingText } from './percent-text'
+import { SurvivalCurve } from './survival-curve'
+
+export type Strip = {
+  name: string
+  points: SurvivalPoint[]
+  /** Beside the name: "23 fitted, 7 failed". */
+  counts: string
+}
+
+export type SurvivalStripsProps = {
+  strips: Strip[]
+  unit: TimeUnit
+  /** Percent at the foot of all strips; without it the tens under the lowest curve, at most 60. */
+  floor?: number
+  reading?: { days: number; words: string }
+}
+
+const oneYear = { days: 365, words: '1 year' }
+const shortUnit: Record<TimeUnit, string> = { year: 'y', month: 'm', day: 'd' }
+
+/** Small multiples: one revision each with band and ticks, the others as hairlines, one scale for all. */
+export function SurvivalStrips({ strips, unit, floor, reading = oneYear }: SurvivalStripsProps) {
+  const lowest = Math.min(
+    1,
+    ...strips.flatMap((s) => visibleRuns(s.points).flatMap((run) => run.steps.map((step) => step.survival)))
+  )
+  const shared = {
+    strips,
+    unit,
+    reading,
+    floor: floor ?? Math.min(60, axisFloor(lowest)),
+    lastDay: Math.max(1, ...strips.flatMap((s) => s.points.map((p) => p.time)))
+  }
+  return (
+    <div className="strips">
+      {strips.map((strip) => (
+        <div key={strip.name}>
+          <p className="sh">
+            <b>{strip.name}</b> <span className="soft nw">{strip.counts}</span>
+          </p>
+          <TwoDrawings
+            wide={<StripDrawing {...shared} strip={strip} />}
+            narrow={<StripDrawing {...shared} strip={strip} isNarrow />}
+          />
+        </div>
+      ))}
+    </div>
+  )
+}
+
+type StripProps = Required<SurvivalStripsProps> & { strip: Strip; lastDay: number; isNarrow?: boolean }
+
+function StripDrawing({ strips, strip, unit, floor, reading, lastDay, isNarrow }: StripProps) {
+  const clip = useId()
+  const [width, bottom, right] = isNarrow ? [156, 100, 152] : [252, 132, 248]
+  const axis = timeAxis(lastDay, unit)
+  const x = linear(0, axis.days, 28, right)
+  const y = linear(floor / 100, 1, bottom, 10)
+  const path = (run: Run) => stepPath(run.steps.map((s) => [x(s.time), y(s.survival)]))
+  const isSparse = !strip.points.some((p) => p.atRisk >= faintUnder)
+  return (
+    <svg
+      viewBox={`0 0 ${width} ${bottom + 24}`}
+      width={width}
+      height={bottom + 24}
+      role="img"
+      aria-label={`${strip.name}: ${isSparse ? 'too few for a band, ' : ''}${readingText(strip.points, reading.days, reading.words)}`}
+    >
+      <clipPath id={clip}>
+        <rect x="26" y="4" width={right - 26} height={bottom - 4} />
+      </clipPath>
+      {[0, 1, 2, 3, 4].map((i) => {
+        const level = floor + ((100 - floor) / 4) * i
+        return (
+          <g key={i}>
+            <path d={`M28 ${y(level / 100)}H${right}`} stroke="var(--color-hair)" />
+            {i % 2 === 0 && (
+              <text x="23" y={y(level / 100) + 5} textAnchor="end" className="t-soft">
+                {level}
+              </text>
+            )}
+          </g>
+        )
+      })}
+      {floor > 0 && <path className="ln" strokeWidth="1.25" d={`M24 ${bottom - 6}l8 -4M24 ${bottom - 10}l8 -4`} />}
+      {axis.ticks.map(({ label, days }, i) => (
+        <g key={label}>
+          <path className="ln" strokeWidth="1" d={`M${x(days)} ${bottom}v5`} />
+          <text x={x(days)} y={bottom + 20} textAnchor={i === axis.ticks.length - 1 ? 'end' : 'middle'} className="t-soft">
+            {i === axis.ticks.length - 1 ? `${label} ${shortUnit[unit]}` : label}
+          </text>
+        </g>
+      ))}
+      <g clipPath={`url(#${clip})`}>
+        {strips
+          .filter((other) => other !== strip)
+          .flatMap((other) =>
+            visibleRuns(other.points).map((run, i) => (
+              <path
+                key={`${other.name} ${i}`}
+                d={path(run)}
+                fill="none"
+                stroke="var(--color-edge)"
+                strokeWidth=".75"
+                opacity=".75"
+              />
+            ))
+          )}
+        <SurvivalCurve points={strip.points} x={x} y={y} ink={curveInks[0]!} isMarked width={2.25} tick={7} />
+      </g>
+    </svg>
+  )
+}
