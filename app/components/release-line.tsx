@@ -1,12 +1,5 @@
-import {
-  line,
-  namePlaces,
-  revisionStretches,
-  timeScale,
-  yearMarks,
-  type LineRelease,
-  type NamePlace
-} from './release-line-layout'
+import { line, namePlaces, timeScale, type LineRelease, type NamePlace } from './release-line-layout'
+import { ReleaseTimeRule } from './release-time-rule'
 import { TextLink } from './text-link'
 
 export type ReleaseLineProps = {
