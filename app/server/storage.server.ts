@@ -94,6 +94,7 @@ export type Storage = {
 
 const defaults = { connectMs: 3_000, answerMs: 30_000, idleMs: 60_000, attempts: 3 }
 const connections = 256
+const ignore = () => undefined
 
 /** Kinds of content and the folder each lives in. */
 const folders = { bundle: 'bundles', picture: 'pictures' } as const
@@ -121,6 +122,8 @@ export function createStorage(config: StorageConfig): Storage {
     // The SDK's defaults frame uploads in chunks, which some servers store as content, and sign presigned uploads over the checksum of nothing.
     requestChecksumCalculation: 'WHEN_REQUIRED',
     responseChecksumValidation: 'WHEN_REQUIRED',
+    // What goes wrong is thrown; the SDK would also print a warning for each upload that is answered "already there".
+    logger: { debug: ignore, info: ignore, warn: ignore, error: ignore },
     maxAttempts: attempts,
     retryMode: 'standard',
     requestHandler: {
@@ -129,7 +132,8 @@ export function createStorage(config: StorageConfig): Storage {
       throwOnRequestTimeout: true,
       socketTimeout: times.idleMs,
       httpAgent: agent,
-      httpsAgent: agent
+      httpsAgent: agent,
+      logger: console
     }
   })
   const target: Target = { client, bucket, attempts, answerMs: times.answerMs }
