@@ -127,11 +127,12 @@ describe('refusals and trouble', () => {
     const data = randomBytes(200_000)
     await writeFile(path, data)
     const seen: string[] = []
-    const handler =
-      (failures: number) => async (request: Readable & { url?: string }, response: import('node:http').ServerResponse) => {
+    const failing = (times: number): RequestListener => {
+      return async (request, response) => {
         seen.push(sha256(await buffer(request)))
-        response.writeHead(seen.length <= failures ? 503 : 200).end()
+        response.writeHead(seen.length <= times ? 503 : 200).end()
       }
+    }
     const input = { key: 'k', path, bytes: data.length, contentType: 'text/plain' }
     await withServer(failing(1), async (url) => {
       await expect(open({ endpoint: url }).putFile(input)).resolves.toBe('stored')
