@@ -1,7 +1,7 @@
 import { mkdirSync } from 'node:fs'
 import { dirname } from 'node:path'
 import BetterSqlite from 'better-sqlite3'
-import type { Kysely, Transaction } from 'kysely'
+import { sql, type Kysely, type Transaction } from 'kysely'
 import type { Schema } from './schema'
 import { SqliteKysely } from './sqlite-dialect'
 
@@ -18,6 +18,12 @@ export function openDb(file: string): Db {
 
 /** The database file for a thread that only reads; writing through it is an error. */
 export const openDbReadOnly = (file: string): Db => new SqliteKysely<Schema>(file, { isReadOnly: true })
+
+/** Whether the database answers a read. */
+export async function answers(db: Db): Promise<boolean> {
+  const { rows } = await sql<{ ok: number }>`select 1 as ok`.execute(db)
+  return rows[0]?.ok === 1
+}
 
 /**
  * Holds the data folder for this process: two writing processes starve each other. The lock is an open exclusive transaction on a

@@ -58,6 +58,16 @@ export const listByMaintainer = (db: DbOrTx, userId: string) =>
     .limit(200)
     .execute()
 
+/** Whether a release of the board was ever published. */
+export const hasPublished = async (db: DbOrTx, boardId: string) =>
+  (await db
+    .selectFrom('releases')
+    .select('id')
+    .where('board_id', '=', boardId)
+    .where('state', '<>', 'draft')
+    .limit(1)
+    .executeTakeFirst()) !== undefined
+
 export const countAll = async (db: DbOrTx) =>
   Number(
     (

@@ -3,7 +3,6 @@ import type { BundleFacts } from '~/domain/bundle/bundle-check.types'
 import { writeAudit } from '~/domain/accounts/audit.repo.server'
 import type { Actor } from '~/domain/accounts/can'
 import { must } from '~/domain/accounts/must'
-import * as releasesRepo from '~/domain/releases/releases.repo.server'
 import { DomainError } from '~/lib/domain-error'
 import { newId } from '~/lib/new-id'
 import type { BoardEdit, BoardOpening } from './board.schema'
@@ -76,7 +75,7 @@ export async function editBoard({ db, now }: Deps, actor: Actor, slug: string, i
   await db.transaction().execute(async (tx) => {
     if (input.console !== board.console_id) {
       if (!(await repo.listConsoles(tx)).some((c) => c.id === input.console)) throw noConsole()
-      if (await releasesRepo.hasPublished(tx, board.id))
+      if (await repo.hasPublished(tx, board.id))
         throw new DomainError('conflict', 'The console is fixed.', [
           {
             path: 'console',

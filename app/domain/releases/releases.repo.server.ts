@@ -69,15 +69,6 @@ export const listDraftsOfMaintainer = (db: DbOrTx, userId: string) =>
     .limit(100)
     .execute()
 
-export const hasPublished = async (db: DbOrTx, boardId: string) =>
-  (await db
-    .selectFrom('releases')
-    .select('id')
-    .where('board_id', '=', boardId)
-    .where('state', '<>', 'draft')
-    .limit(1)
-    .executeTakeFirst()) !== undefined
-
 export const insert = (db: DbOrTx, release: Insertable<ReleasesTable>) => db.insertInto('releases').values(release).execute()
 
 /** @returns whether the release was there in the state `draft` and is changed now */
