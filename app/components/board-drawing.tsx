@@ -103,8 +103,10 @@ export type BoardAtScaleProps = BoardPicture & {
 export function BoardAtScale({ columns, scales, ...picture }: BoardAtScaleProps) {
   const drawing = (column: number, scale: number) => {
     const { src, alt, width, height } = picture
-    const [x0, y0] = [r2(0.5 + scale), r2(1 + scale + height * scale)]
-    const full = r2(y0 + scale + 1)
+    // compared boards keep 2 mm about them, a lone one 1 mm
+    const margin = scales ? 2 * scale : scale
+    const [x0, y0] = [r2(0.5 + margin), r2(1 + margin + height * scale)]
+    const full = r2(y0 + margin + 1)
     return (
       <svg
         viewBox={`0 0 ${column} ${full}`}
@@ -117,7 +119,7 @@ export function BoardAtScale({ columns, scales, ...picture }: BoardAtScaleProps)
         <image
           href={src}
           x={x0}
-          y={r2(1 + scale)}
+          y={r2(1 + margin)}
           width={r2(width * scale)}
           height={r2(height * scale)}
           preserveAspectRatio="none"

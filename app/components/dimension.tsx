@@ -2,7 +2,7 @@
 type Common = { text: string; isSoft?: boolean }
 
 /** About how wide a text of 14 px is, for the gap behind it. */
-export const gapFor = (text: string) => Math.round(text.length * 7.2 + 12)
+export const gapFor = (text: string) => Math.round(text.length * 6.5 + 12)
 
 export function DimensionAcross({
   from,

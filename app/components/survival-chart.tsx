@@ -44,6 +44,18 @@ const inWords = (drawn: DrawnSeries[], props: SurvivalChartProps) => {
   return `Share still working by ${unitWords[props.unit]} after fitting, as of ${props.asOf}: ${parts.join('; ')}.`
 }
 
+/** How far down (the marked band included) and how far to the right the drawn runs go. */
+function drawnExtent(drawn: DrawnSeries[]) {
+  let [lowest, lastDay] = [1, 1]
+  for (const { points, isMarked } of drawn)
+    for (const { weight, steps } of visibleRuns(points))
+      for (const step of steps) {
+        lowest = Math.min(lowest, isMarked && weight === 'full' ? (step.lower ?? step.survival) : step.survival)
+        lastDay = Math.max(lastDay, step.time)
+      }
+  return { lowest, lastDay }
+}
+
 /** The survival figure, drawn twice: wide and narrow. A table with the same figures belongs beside it. */
 export function SurvivalChart(props: SurvivalChartProps) {
   const drawn = drawnSeries(props.series)
@@ -63,13 +75,9 @@ function Drawing({ drawn, isNarrow, ...props }: DrawingProps) {
   const { isSmall, unit, reading = oneYear } = props
   const clip = useId()
   const { width, plot } = isSmall ? (isNarrow ? sizes.smallNarrow : sizes.smallWide) : isNarrow ? sizes.narrow : sizes.wide
-  const steps = drawn.flatMap((s) =>
-    visibleRuns(s.points).flatMap((run) =>
-      run.steps.map((step) => (s.isMarked && run.weight === 'full' ? (step.lower ?? step.survival) : step.survival))
-    )
-  )
-  const floor = axisFloor(Math.min(1, ...steps))
-  const axis = timeAxis(Math.max(1, ...drawn.flatMap((s) => s.points.map((p) => p.time))), unit)
+  const extent = drawnExtent(drawn)
+  const floor = axisFloor(extent.lowest)
+  const axis = timeAxis(extent.lastDay, unit)
   const x = linear(0, axis.days, plot.left, plot.right)
   const percent = linear(floor, 100, plot.bottom, plot.top)
   const y = (share: number) => percent(share * 100)

@@ -44,7 +44,7 @@ export function SurvivalStrips({ strips, unit, floor, reading = oneYear }: Survi
     unit,
     reading,
     floor: floor ?? Math.min(60, axisFloor(lowest)),
-    lastDay: Math.max(1, ...strips.flatMap((s) => s.points.map((p) => p.time)))
+    lastDay: Math.max(1, ...strips.flatMap((s) => visibleRuns(s.points).flatMap((run) => run.steps.map((step) => step.time))))
   }
   return (
     <div className="strips">
