@@ -11,6 +11,8 @@ import * as fitRepo from './fit-claims.repo.server'
 
 type Deps = { db: Db; now: () => Date }
 
+export type { BoardRow } from './boards.repo.server'
+
 /** @throws DomainError `not-found` */
 export async function boardBySlug(db: Db, slug: string): Promise<repo.BoardRow> {
   const board = await repo.findBySlug(db, slug)

@@ -1,6 +1,8 @@
 import type { Insertable } from 'kysely'
 import type { DbOrTx, Tx } from '~db/client.server'
 import type { FindingsTable, ReleaseFilesTable } from '~db/schema'
+import type { BundleCheck } from '~/domain/bundle/bundle-check.types'
+import { newId } from '~/lib/new-id'
 
 /** Rows of one insert, well below SQLite's limit of bound values. */
 const chunk = 200
@@ -38,13 +40,39 @@ export const listFiles = (db: DbOrTx, releaseId: string) =>
     .orderBy('position')
     .execute()
 
-/** Puts the answer of a check in place of the one before. */
-export async function replaceAll(
-  tx: Tx,
-  releaseId: string,
-  files: Insertable<ReleaseFilesTable>[],
-  findings: Insertable<FindingsTable>[]
-) {
+/** A finding's place does not carry an answer over to another bundle; what it says does. */
+const sameFinding = (f: { code: string; file: string | null; message: string; expected: string | null; found: string | null }) =>
+  JSON.stringify([f.code, f.file, f.message, f.expected, f.found])
+
+/** Puts the answer of a check in place of the one before. An answer stays where the very same finding was answered already. */
+export async function replaceAll(tx: Tx, releaseId: string, check: Pick<BundleCheck, 'layers' | 'findings'>) {
+  const answered = new Map((await listFindings(tx, releaseId)).filter((f) => f.answer !== null).map((f) => [sameFinding(f), f]))
+  const files: Insertable<ReleaseFilesTable>[] = check.layers.map((layer, position) => ({
+    release_id: releaseId,
+    position,
+    file: layer.file,
+    function: layer.function,
+    side: layer.side,
+    layer_index: layer.index,
+    evidence: layer.evidence
+  }))
+  const findings: Insertable<FindingsTable>[] = check.findings.map((f, position) => {
+    const before = answered.get(sameFinding(f))
+    return {
+      id: newId(),
+      release_id: releaseId,
+      position,
+      code: f.code,
+      severity: f.severity,
+      file: f.file,
+      message: f.message,
+      expected: f.expected,
+      found: f.found,
+      answer: before?.answer ?? null,
+      answered_at: before?.answered_at ?? null,
+      answered_by: before?.answered_by ?? null
+    }
+  })
   await tx.deleteFrom('release_files').where('release_id', '=', releaseId).execute()
   await tx.deleteFrom('findings').where('release_id', '=', releaseId).execute()
   for (let i = 0; i < files.length; i += chunk)
