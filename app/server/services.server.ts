@@ -1,9 +1,11 @@
 import type { Db } from '~db/client.server'
 import type { Config } from './config.server'
+import type { Storage } from './storage.server'
 
 /** What a use case is given: the outside of the process, as values that a test can replace. */
 export type Services = {
   db: Db
+  storage: Storage
   config: Config
   now: () => Date
 }

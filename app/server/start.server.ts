@@ -8,6 +8,7 @@ import { ConfigError, readConfig } from './config.server'
 import { createApp } from './express.server'
 import { log, logError } from './log.server'
 import { setServices, type Services } from './services.server'
+import { createStorage } from './storage.server'
 
 export type Running = { url: string; services: Services; close(): Promise<void> }
 
@@ -21,7 +22,9 @@ export async function start(env: Record<string, string | undefined>, before: Han
   const db = openDb(config.databaseFile)
   for (const name of await migrate(db)) log('info', 'migrated', { name })
   mkdirSync(config.uploadDir, { recursive: true })
-  const services: Services = { db, config, now: () => new Date() }
+  const storage = createStorage(config.storage)
+  await storage.ensureBucket()
+  const services: Services = { db, storage, config, now: () => new Date() }
   setServices(services)
 
   const clientDir = fileURLToPath(new URL('../client', import.meta.url))
