@@ -9,6 +9,7 @@ export type ErrorKind =
   | 'wrong-type'
   | 'impossible'
   | 'rate-limited'
+  | 'unavailable'
 
 /** A message for one field of the input; `path` is dotted (`observations.3.time`), empty for the whole. */
 export type FieldError = { path: string; message: string }
@@ -23,7 +24,8 @@ export const statusOf: Record<ErrorKind, number> = {
   'too-large': 413,
   'wrong-type': 415,
   impossible: 422,
-  'rate-limited': 429
+  'rate-limited': 429,
+  unavailable: 503
 }
 
 /** An expected failure whose message is meant for the person who asked. Anything else that is thrown is a defect. */

@@ -12,7 +12,8 @@ const titles: Record<ErrorKind, string> = {
   'too-large': 'Too large',
   'wrong-type': 'Wrong media type',
   impossible: 'Well-formed, but impossible',
-  'rate-limited': 'Too many requests'
+  'rate-limited': 'Too many requests',
+  unavailable: 'Not possible just now'
 }
 
 /** Turns an expected failure into the object that carries it. `type` is a relative reference, resolved against the site. */

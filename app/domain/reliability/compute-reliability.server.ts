@@ -1,0 +1,36 @@
+import { DomainError } from '~/lib/domain-error'
+import type { Db } from '~db/client.server'
+import { reliabilityFigures, type ReliabilityFigures } from './reliability-figures'
+import { unknownNames, type ReliabilityFilters } from './reliability-filters'
+import * as repo from './reliability.repo.server'
+import type { LifeHistory } from '../reports/observations'
+
+/**
+ * Reads what a board's figures need in one snapshot and computes them. Runs in the worker.
+ * @throws DomainError `not-found` for the board, `invalid` for a release or revision it does not have
+ */
+export function computeReliability(db: Db, boardSlug: string, filters: ReliabilityFilters): Promise<ReliabilityFigures> {
+  return db.transaction().execute(async (tx) => {
+    const board = await repo.findBoard(tx, boardSlug)
+    if (!board) throw new DomainError('not-found', 'There is no such board.')
+    const releases = await repo.listReleases(tx, board.id)
+    const revisions = await repo.listRevisions(tx, board.console_id)
+    const errors = unknownNames(
+      filters,
+      releases.map((r) => r.version),
+      revisions.map((r) => r.code)
+    )
+    if (errors.length > 0) throw new DomainError('invalid', 'These figures cannot be computed.', errors)
+    const revision = filters.revision === null ? null : revisions.find((r) => r.code === filters.revision)!
+    const lives: LifeHistory[] = []
+    for (const release of releases)
+      if (filters.release === null || release.version === filters.release)
+        for (const life of await repo.listLives(tx, release.id, revision?.id ?? null, filters.asOf)) lives.push(life)
+    return reliabilityFigures(
+      lives,
+      revisions.map(({ id, code }) => ({ id, name: code })),
+      releases.map(({ id, version }) => ({ id, name: version })),
+      filters
+    )
+  })
+}

@@ -1,0 +1,15 @@
+import type { ErrorKind, FieldError } from '~/lib/domain-error'
+import type { ReliabilityFigures } from './reliability-figures'
+import type { ReliabilityFilters } from './reliability-filters'
+
+/** What the worker is asked: the figures of a board. */
+export type WorkerTask = { kind: 'reliability'; databaseFile: string; board: string; filters: ReliabilityFilters }
+
+export type WorkerResults = { reliability: ReliabilityFigures }
+
+export type WorkerRequest = { id: number; task: WorkerTask }
+export type WorkerAnswer =
+  | { id: number; ok: true; value: WorkerResults[WorkerTask['kind']] }
+  /** An expected failure, meant for the person who asked. */
+  | { id: number; ok: false; kind: ErrorKind; message: string; errors: FieldError[] }
+  | { id: number; ok: false; kind: null; message: string }
