@@ -1,0 +1,174 @@
+import { boxOf, emptyBox, growBox, type Box, type Path } from './geometry'
+import { place, type Aperture, type Placing, type Recorded } from './gerber-apertures'
+import { TooComplex } from './gerber-macro'
+import type { CheckLimits } from './limits'
+
+/** Flashes as parallel lists: where, half their width and height, and the round diameter (NaN where not round), in mm. */
+export type Flashes = { x: number[]; y: number[]; halfX: number[]; halfY: number[]; aperture: Aperture[] }
+
+export type Stroke = { points: Path; aperture: Aperture }
+
+/**
+ * What a Gerber file draws, as far as a check needs it: extents, strokes, flashes, the thinnest lines; within a budget of objects.
+ * Blocks and steps are recorded once and drawn again at each of their places.
+ */
+export class GerberCanvas {
+  readonly box: Box = emptyBox()
+  readonly flashes: Flashes = { x: [], y: [], halfX: [], halfY: [], aperture: [] }
+  readonly strokes: Stroke[] = []
+  readonly regions: Path[] = []
+  /** Objects drawn dark, copies counted out. */
+  objects = 0
+  smallestConductor: number | null = null
+  smallestStroke: number | null = null
+  private operations = 0
+  private shapes = 0
+  private readonly recorders: { prims: Recorded[]; objects: number }[] = []
+
+  constructor(
+    private readonly limits: CheckLimits,
+    private readonly keep: { strokes: boolean; flashes: boolean }
+  ) {}
+
+  /** Counts work; throws TooComplex past the budget. */
+  spend(count: number): void {
+    this.operations += count
+    if (this.operations > this.limits.gerberObjects) throw new TooComplex(`more than ${this.limits.gerberObjects} drawn objects`)
+  }
+
+  path(points: Path, aperture: Aperture, isDark: boolean): void {
+    this.spend(1)
+    const recorder = this.recorders.at(-1)
+    if (recorder) {
+      recorder.objects++
+      recorder.prims.push({ kind: 'path', points, aperture, isDark })
+    } else this.drawPath(points, aperture, isDark)
+  }
+
+  region(points: Path, isDark: boolean): void {
+    this.spend(1)
+    const recorder = this.recorders.at(-1)
+    if (recorder) {
+      recorder.objects++
+      recorder.prims.push({ kind: 'region', points, isDark })
+    } else this.drawRegion(points, isDark)
+  }
+
+  flash(x: number, y: number, aperture: Aperture, placing: Placing, isDark: boolean): void {
+    const recorder = this.recorders.at(-1)
+    if (recorder) {
+      this.spend(1)
+      recorder.objects += aperture.objects
+      recorder.prims.push({ kind: 'flash', x, y, aperture, placing, isDark })
+    } else this.drawFlash(x, y, aperture, placing, isDark)
+  }
+
+  /** From here on drawing is recorded, until `takeRecorded`. */
+  record(): void {
+    if (this.recorders.length >= this.limits.blockDepth)
+      throw new TooComplex(`blocks nested deeper than ${this.limits.blockDepth}`)
+    this.recorders.push({ prims: [], objects: 0 })
+  }
+
+  takeRecorded(): { prims: Recorded[]; objects: number } {
+    return this.recorders.pop() ?? { prims: [], objects: 0 }
+  }
+
+  get recording(): number {
+    return this.recorders.length
+  }
+
+  /** Draws what was recorded, moved by (dx, dy) after being placed. */
+  replay(recorded: { prims: Recorded[]; objects: number }, dx: number, dy: number, placing: Placing, isDark: boolean): void {
+    for (const prim of recorded.prims) {
+      // Clear copies of a block turn its polarity round (specification, 4.11).
+      const dark = isDark ? prim.isDark : !prim.isDark
+      if (prim.kind === 'flash') {
+        const [x, y] = place(placing, prim.x, prim.y)
+        this.flash(x + dx, y + dy, prim.aperture, combined(placing, prim.placing), dark)
+      } else {
+        const points: Path = []
+        for (let i = 0; i < prim.points.length; i += 2) {
+          const [x, y] = place(placing, prim.points[i]!, prim.points[i + 1]!)
+          points.push(x + dx, y + dy)
+        }
+        if (prim.kind === 'path') this.path(points, prim.aperture, dark)
+        else this.region(points, dark)
+      }
+    }
+  }
+
+  private drawPath(points: Path, aperture: Aperture, isDark: boolean): void {
+    if (!isDark) return
+    this.objects++
+    const halfX = (aperture.box.maxX - aperture.box.minX) / 2
+    const halfY = (aperture.box.maxY - aperture.box.minY) / 2
+    for (let i = 0; i < points.length; i += 2) growBox(this.box, points[i]!, points[i + 1]!, halfX, halfY)
+    if (aperture.diameter !== null) {
+      if (this.smallestStroke === null || aperture.diameter < this.smallestStroke) this.smallestStroke = aperture.diameter
+      if (
+        aperture.aperFunction === 'Conductor' &&
+        (this.smallestConductor === null || aperture.diameter < this.smallestConductor)
+      ) {
+        this.smallestConductor = aperture.diameter
+      }
+    }
+    if (this.keep.strokes) this.strokes.push({ points, aperture })
+  }
+
+  private drawRegion(points: Path, isDark: boolean): void {
+    if (!isDark || points.length < 6) return
+    this.objects++
+    const box = boxOf(points)
+    growBox(this.box, box.minX, box.minY)
+    growBox(this.box, box.maxX, box.maxY)
+    if (this.keep.strokes) this.regions.push(points)
+  }
+
+  private drawFlash(x: number, y: number, aperture: Aperture, placing: Placing, isDark: boolean): void {
+    this.spend(1)
+    if (aperture.block) {
+      if (this.operations + aperture.objects > this.limits.gerberObjects) {
+        throw new TooComplex(`a block of ${aperture.objects} objects, in all more than ${this.limits.gerberObjects}`)
+      }
+      this.replay({ prims: aperture.block, objects: aperture.objects }, x, y, placing, isDark)
+      return
+    }
+    this.shapes += aperture.primitives
+    if (this.shapes > this.limits.macroShapes)
+      throw new TooComplex(`more than ${this.limits.macroShapes} shapes in aperture macros`)
+    if (!isDark) return
+    this.objects++
+    const { minX, minY, maxX, maxY } = aperture.box
+    const corners = [
+      place(placing, minX, minY),
+      place(placing, maxX, minY),
+      place(placing, maxX, maxY),
+      place(placing, minX, maxY)
+    ]
+    let halfX = 0
+    let halfY = 0
+    for (const [cx, cy] of corners) {
+      growBox(this.box, x + cx, y + cy)
+      halfX = Math.max(halfX, Math.abs(cx))
+      halfY = Math.max(halfY, Math.abs(cy))
+    }
+    if (!this.keep.flashes) return
+    this.flashes.x.push(x)
+    this.flashes.y.push(y)
+    this.flashes.halfX.push(halfX)
+    this.flashes.halfY.push(halfY)
+    this.flashes.aperture.push(aperture)
+  }
+}
+
+/** One placing after another, near enough for extents: exact for quarter turns and unmirrored turns. */
+function combined(outer: Placing, inner: Placing): Placing {
+  const turned = outer.mirrorX !== outer.mirrorY ? -inner.rotation : inner.rotation
+  return {
+    mirrorX: outer.mirrorX !== inner.mirrorX,
+    mirrorY: outer.mirrorY !== inner.mirrorY,
+    rotation: outer.rotation + turned,
+    scale: outer.scale * inner.scale
+  }
+}
