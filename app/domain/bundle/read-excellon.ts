@@ -19,10 +19,9 @@ export type DrillFile = {
   format: DrillFormat
   /** What the file says itself; null where it is silent. */
   declared: { unit: DrillFormat['unit'] | null; digits: boolean; keeps: DrillFormat['keeps'] | null }
-  /** Whether some coordinate's meaning hangs on an undeclared part of the format. */
-  isAmbiguous: boolean
+  /** The undeclared parts of the format on which some coordinate's meaning hangs. */
+  doubts: Set<'unit' | 'digits' | 'zeros'>
   smallestTool: number | null
-  markup: string | null
 }
 
 type Tool = { diameter: number; plating: Plating }
@@ -54,9 +53,8 @@ export function readExcellon(bytes: Uint8Array, limits: CheckLimits, assume: Par
     problem,
     format: reader.format(),
     declared: reader.declared,
-    isAmbiguous: reader.isAmbiguous,
-    smallestTool,
-    markup: null
+    doubts: reader.doubts,
+    smallestTool
   }
 }
 
@@ -64,7 +62,7 @@ class ExcellonReader {
   readonly attributes = new Map<string, string[]>()
   readonly holes: Hole[] = []
   readonly declared: DrillFile['declared'] = { unit: null, digits: false, keeps: null }
-  isAmbiguous = false
+  readonly doubts: DrillFile['doubts'] = new Set()
 
   private digits: { integer: number; decimals: number } | null = null
   private readonly tools = new Map<number, Tool>()
@@ -304,15 +302,15 @@ class ExcellonReader {
   private number(text: string): number {
     const format = this.format()
     const unit = format.unit === 'inch' ? 25.4 : 1
-    if (this.declared.unit === null) this.isAmbiguous = true
+    if (this.declared.unit === null) this.doubts.add('unit')
     const digits = text.replace(/[+-]/g, '')
     let value: number
     if (digits.includes('.')) value = Number(digits)
     else if (format.keeps === 'leading') value = Number(digits) / 10 ** (digits.length - format.integer)
     else value = Number(digits) / 10 ** format.decimals
     if (!digits.includes('.')) {
-      if (!this.declared.digits) this.isAmbiguous = true
-      else if (this.declared.keeps === null && digits.length !== format.integer + format.decimals) this.isAmbiguous = true
+      if (!this.declared.digits) this.doubts.add('digits')
+      if (this.declared.keeps === null && digits.length !== format.integer + format.decimals) this.doubts.add('zeros')
     }
     if (!Number.isFinite(value) || Math.abs(value) > 1e5)
       throw new GerberNonsense(`a coordinate beyond all reason: ${text.slice(0, 30)}`)

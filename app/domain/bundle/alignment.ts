@@ -1,0 +1,64 @@
+import type { Flashes } from './gerber-canvas'
+import type { Hole } from './read-excellon'
+
+/** Slack in mm when asking whether a hole falls on a pad: rounding of the drill file's coordinates. */
+const slack = 0.05
+const cellSize = 2
+
+/** Flashes sorted into cells of a grid, to ask quickly which cover a place. Flashes larger than `cellSize` * 5 are kept apart. */
+export type FlashIndex = { cells: Map<number, number[]>; large: number[]; flashes: Flashes; count: number }
+
+const key = (cx: number, cy: number) => (cx + 32_768) * 65_536 + (cy + 32_768)
+
+export function indexFlashes(flashes: Flashes): FlashIndex {
+  const cells = new Map<number, number[]>()
+  const large: number[] = []
+  for (let i = 0; i < flashes.x.length; i++) {
+    const { x, y, halfX, halfY } = { x: flashes.x[i]!, y: flashes.y[i]!, halfX: flashes.halfX[i]!, halfY: flashes.halfY[i]! }
+    if (Math.max(halfX, halfY) > cellSize * 5) {
+      large.push(i)
+      continue
+    }
+    for (let cx = Math.floor((x - halfX - slack) / cellSize); cx <= Math.floor((x + halfX + slack) / cellSize); cx++) {
+      for (let cy = Math.floor((y - halfY - slack) / cellSize); cy <= Math.floor((y + halfY + slack) / cellSize); cy++) {
+        const cell = cells.get(key(cx, cy))
+        if (cell) cell.push(i)
+        else cells.set(key(cx, cy), [i])
+      }
+    }
+  }
+  return { cells, large, flashes, count: flashes.x.length }
+}
+
+/** Whether a place falls on a flash. */
+export function isOnFlash(index: FlashIndex, x: number, y: number): boolean {
+  const { flashes } = index
+  const covers = (i: number) =>
+    Math.abs(x - flashes.x[i]!) <= flashes.halfX[i]! + slack && Math.abs(y - flashes.y[i]!) <= flashes.halfY[i]! + slack
+  return (index.cells.get(key(Math.floor(x / cellSize), Math.floor(y / cellSize))) ?? []).some(covers) || index.large.some(covers)
+}
+
+/** The middle of a hole or slot. */
+export const holeCentre = (hole: Hole): [number, number] => [
+  hole.toX === null ? hole.x : (hole.x + hole.toX) / 2,
+  hole.toY === null ? hole.y : (hole.y + hole.toY) / 2
+]
+
+/** The share (0 to 1) of holes whose middle, scaled about the origin, falls on a flash. 1 where there are no holes. */
+export function shareOnFlashes(index: FlashIndex, holes: readonly Hole[], scale = 1): number {
+  if (holes.length === 0) return 1
+  let hits = 0
+  for (const hole of holes) {
+    const [x, y] = holeCentre(hole)
+    if (isOnFlash(index, x * scale, y * scale)) hits++
+  }
+  return hits / holes.length
+}
+
+/** The share of one layer's flashes that fall on another's. */
+export function shareOfFlashes(index: FlashIndex, flashes: Flashes): number {
+  if (flashes.x.length === 0) return 1
+  let hits = 0
+  for (let i = 0; i < flashes.x.length; i++) if (isOnFlash(index, flashes.x[i]!, flashes.y[i]!)) hits++
+  return hits / flashes.x.length
+}

@@ -1,0 +1,43 @@
+import type { BundleFinding, BundleLayer, DeclaredDetails } from './bundle-check.types'
+import type { FileKind } from './file-kind'
+import type { Role } from './name-layer'
+import type { Outline } from './outline-contours'
+import type { Bom } from './read-bom'
+import type { DrillFormat, Hole } from './read-excellon'
+import type { GerberImage } from './read-gerber'
+import type { JobFile } from './read-job'
+import type { Placement } from './read-placement'
+
+/** One file of the bundle as it was read. */
+export type FileReading = {
+  layer: BundleLayer
+  /** The path in the zip, exactly; `layer.file` is the one to show. */
+  path: string
+  kind: FileKind
+  size: number
+  /** What the name says where it contradicts the file's own attribute. */
+  conflict: Role | null
+  isUndecided: boolean
+  image: GerberImage | null
+  /** Holes of a drill file of either format, in mm. */
+  holes: Hole[] | null
+  drillFormat: DrillFormat | null
+  /** Set once something was found wrong with the file itself, so that checks resting on it are left out. */
+  isBroken: boolean
+}
+
+/** Everything that was read, for the checks that compare. */
+export type BundleReading = {
+  files: FileReading[]
+  job: JobFile | null
+  bom: Bom | null
+  bomFile: string | null
+  placement: Placement | null
+  placementFile: string | null
+  outline: Outline | null
+  outlineFile: FileReading | null
+  declared: DeclaredDetails
+}
+
+/** A check over what was read: its findings, to be added in order. */
+export type ReadingCheck = (reading: BundleReading) => BundleFinding[]

@@ -1,0 +1,114 @@
+import { createHash } from 'node:crypto'
+import { unknownFacts, type BundleCheck, type BundleFinding, type CheckStep, type DeclaredDetails } from './bundle-check.types'
+import type { BundleReading } from './bundle-reading.types'
+import { checkAlignment } from './check-alignment'
+import { checkFiles } from './check-files'
+import { checkLists } from './check-lists'
+import { checkPresence } from './check-presence'
+import { checkRelease } from './check-release'
+import { finding, mm } from './finding'
+import { defaultLimits, type CheckLimits } from './limits'
+import { measureFacts } from './measure-facts'
+import { readBundle, tellLayers, type BundleSource } from './read-bundle.server'
+import { unpackZip } from './unpack-zip.server'
+
+export type CheckedBundle = { check: BundleCheck; reading: BundleReading | null; source: BundleSource | null }
+
+/**
+ * The bundle check on bytes in memory, without limits of time: METHODS section 3. Runs in a child process; see `run-bundle-check`.
+ *
+ * Nothing is thrown for what the zip holds. `reading` and `source` are for drawing the pictures afterwards.
+ */
+export async function checkBundle(
+  bytes: Uint8Array,
+  declared: DeclaredDetails = {},
+  limits: CheckLimits = defaultLimits,
+  onStep: (step: CheckStep) => void = () => {}
+): Promise<CheckedBundle> {
+  onStep('read-zip')
+  const facts = { ...unknownFacts(), bytes: bytes.length, sha256: createHash('sha256').update(bytes).digest('hex') }
+  const zip = await unpackZip(bytes, limits)
+  if (zip.entries.length === 0) return { check: answer([], facts, zip.findings, limits), reading: null, source: null }
+
+  onStep('tell-layers')
+  const files = await tellLayers(zip, limits)
+  const findings: BundleFinding[] = [...zip.findings]
+  for (const file of files) {
+    if (file.kind !== 'archive' || ['bom', 'placement', 'document', 'source'].includes(file.layer.function)) continue
+    const message = 'There is an archive inside the zip; it is not read.'
+    findings.push(finding('zip-nested', message, { file: file.layer.file }))
+  }
+  const { reading, findings: fromReading } = await readBundle(zip, files, declared, limits, onStep)
+  findings.push(...checkFiles(files))
+  const presence = checkPresence(reading)
+  findings.push(...presence, ...checkOutline(reading), ...fromReading)
+  const isHopeless = presence.some((f) => f.code === 'copper-missing' && f.found === 'none')
+  if (isHopeless) {
+    // Without any layer the zip is no bundle: that is one defect, not six.
+    const rest = findings.filter((f) => !['bom-missing', 'placement-missing'].includes(f.code))
+    return {
+      check: answer(
+        files.map((f) => f.layer),
+        { ...measureFacts(reading), ...sums(facts, files.length) },
+        rest,
+        limits
+      ),
+      reading: null,
+      source: null
+    }
+  }
+  findings.push(...checkAlignment(reading), ...checkLists(reading), ...checkRelease(reading))
+  const all = { ...measureFacts(reading), ...sums(facts, files.length) }
+  return {
+    check: answer(
+      files.map((f) => f.layer),
+      all,
+      findings,
+      limits
+    ),
+    reading,
+    source: zip
+  }
+}
+
+const sums = (facts: { bytes: number; sha256: string }, files: number) => ({ files, bytes: facts.bytes, sha256: facts.sha256 })
+
+function checkOutline({ outline, outlineFile }: BundleReading): BundleFinding[] {
+  if (!outline?.open || !outlineFile || outlineFile.isBroken) return []
+  outlineFile.isBroken = true
+  const { gap, x, y } = outline.open
+  const message = `The board's outline does not close; an end lies at ${mm(x)}, ${mm(y)}.`
+  return [
+    finding('outline-open', message, {
+      file: outlineFile.layer.file,
+      expected: 'a closed contour',
+      found: gap === null ? null : `a gap of ${mm(gap)}`
+    })
+  ]
+}
+
+const rank = { stop: 0, caution: 1, note: 2 }
+
+/** The answer: findings by severity, at most so many of one code. */
+function answer(
+  layers: BundleCheck['layers'],
+  facts: BundleCheck['facts'],
+  findings: BundleFinding[],
+  limits: CheckLimits
+): BundleCheck {
+  const counts = new Map<string, number>()
+  for (const { code } of findings) counts.set(code, (counts.get(code) ?? 0) + 1)
+  const shown = new Map<string, number>()
+  const kept = findings
+    .filter(({ code }) => {
+      shown.set(code, (shown.get(code) ?? 0) + 1)
+      return shown.get(code)! <= limits.findingsPerCode
+    })
+    .map((f, i, all) => {
+      const more = counts.get(f.code)! - limits.findingsPerCode
+      const isLast = all.findLastIndex((other) => other.code === f.code) === i
+      return more > 0 && isLast ? { ...f, message: `${f.message} There are ${more} more of this kind.` } : f
+    })
+  kept.sort((a, b) => rank[a.severity] - rank[b.severity])
+  return { layers, facts, findings: kept, ok: !kept.some((f) => f.severity === 'stop') }
+}

@@ -1,0 +1,241 @@
+import { indexFlashes } from './alignment'
+import type { BundleFinding, CheckStep, DeclaredDetails } from './bundle-check.types'
+import type { BundleReading, FileReading } from './bundle-reading.types'
+import { kindOf, roleOfOtherFile, roleOfSupposedLayer } from './file-kind'
+import { finding } from './finding'
+import { readFileAttributes, textOf } from './gerber-attributes'
+import { holesOfGerber } from './gerber-drill'
+import type { CheckLimits } from './limits'
+import { decideRoles, roleFromAttribute, roleFromName, roleFromWords, type NamedFile, type Role } from './name-layer'
+import { findOutline } from './outline-contours'
+import { settleDrillFormat } from './drill-format'
+import { readBom } from './read-bom'
+import { readExcellon } from './read-excellon'
+import { noImage, readGerber } from './read-gerber'
+import { readJob } from './read-job'
+import { readPlacement, type Placement } from './read-placement'
+import type { ZipEntry } from './scan-zip'
+import { shownName } from './zip-names'
+
+export type BundleSource = { entries: ZipEntry[]; read(entry: ZipEntry): Promise<Uint8Array> }
+
+const isLayerRole = (fn: string) =>
+  ['copper', 'soldermask', 'paste', 'legend', 'outline', 'fabrication', 'assembly', 'other'].includes(fn) ||
+  fn.startsWith('drill')
+
+/** Tells what each file is for: by its attributes, its name, its content. */
+export async function tellLayers(source: BundleSource, limits: CheckLimits): Promise<FileReading[]> {
+  const named: (NamedFile & Pick<FileReading, 'kind' | 'size' | 'path'>)[] = []
+  for (const entry of source.entries) {
+    const bytes = await source.read(entry)
+    const kind = kindOf(bytes)
+    const base = { path: entry.path, file: shownName(entry.path), kind, size: bytes.length }
+    const none = { attribute: null, name: null, content: null }
+    if (kind === 'gerber' || kind === 'drill') {
+      const attribute = roleFromAttribute(readFileAttributes(bytes).get('.FileFunction'))
+      const name = roleFromName(entry.path)
+      if (kind === 'gerber') named.push({ ...base, attribute, name, content: titleRole(bytes) })
+      else {
+        // The content says that it drills, whatever the name; the name may still say whether the holes are plated.
+        const drill: Role = { function: 'drill', side: null, index: null }
+        named.push({ ...base, attribute, name: name?.function.startsWith('drill') ? name : null, content: drill })
+      }
+      continue
+    }
+    const supposed = roleOfSupposedLayer(entry.path)
+    if (supposed) named.push({ ...base, ...none, name: supposed })
+    else
+      named.push({
+        ...base,
+        ...none,
+        name: roleOfOtherFile(entry.path),
+        content: kind === 'text' ? listRole(bytes, limits) : null
+      })
+  }
+  const roles = decideRoles(named)
+  return named.map(({ path, kind, size }, i) => {
+    const { isUndecided, conflict, ...layer } = roles[i]!
+    return { layer, path, kind, size, conflict, isUndecided, image: null, holes: null, drillFormat: null, isBroken: false }
+  })
+}
+
+/** What older tools write into comments and layer names at the start of a Gerber file. */
+function titleRole(bytes: Uint8Array): Role | null {
+  const head = textOf(bytes.subarray(0, 4096))
+  const title = /G0?4\s*Title:[^*]*?,\s*([^*,]+)\*/i.exec(head)?.[1] ?? /%LN([^*%]+)\*/.exec(head)?.[1]
+  return title ? roleFromWords(title.trim().toLowerCase()) : null
+}
+
+/** Whether a text file is a list by its headings. */
+function listRole(bytes: Uint8Array, limits: CheckLimits): Role | null {
+  if (bytes.length > 4 * 1024 * 1024) return null
+  if (readPlacement(bytes, limits)) return { function: 'placement', side: null, index: null }
+  return readBom(bytes, limits)?.lines.length ? { function: 'bom', side: null, index: null } : null
+}
+
+/** Reads layers, drill files and lists; what is wrong with a list as a whole becomes a finding here. */
+export async function readBundle(
+  source: BundleSource,
+  files: FileReading[],
+  declared: DeclaredDetails,
+  limits: CheckLimits,
+  onStep: (step: CheckStep) => void
+): Promise<{ reading: BundleReading; findings: BundleFinding[] }> {
+  const reading: BundleReading = {
+    files,
+    job: null,
+    bom: null,
+    bomFile: null,
+    placement: null,
+    placementFile: null,
+    outline: null,
+    outlineFile: null,
+    declared
+  }
+  const findings: BundleFinding[] = []
+  const byPath = new Map(source.entries.map((entry) => [entry.path, entry]))
+  const bytesOf = (file: FileReading) => source.read(byPath.get(file.path)!)
+
+  onStep('measure')
+  for (const file of files) {
+    if (file.kind === 'empty' || !isLayerRole(file.layer.function) || file.kind === 'drill') continue
+    if (file.layer.function === 'other' && file.kind !== 'gerber') continue
+    const bytes = await bytesOf(file)
+    const fn = file.layer.function
+    const isDrill = fn.startsWith('drill')
+    if (file.kind !== 'gerber') {
+      file.image = noImage({ kind: 'unreadable', message: `it is no ${isDrill ? 'drill' : 'Gerber'} file`, found: file.kind })
+      continue
+    }
+    file.image = safely(() =>
+      readGerber(bytes, limits, {
+        strokes: isDrill || fn === 'outline',
+        flashes: isDrill || fn === 'copper' || fn === 'soldermask'
+      })
+    )
+    if (isDrill && !file.image.problem) file.holes = holesOfGerber(file.image)
+  }
+  const pads = files
+    .filter((file) => file.layer.function === 'copper' && file.image && !file.image.problem && file.image.flashes.x.length > 0)
+    .map((file) => indexFlashes(file.image!.flashes))
+  for (const file of files) {
+    if (file.kind !== 'drill') continue
+    const bytes = await bytesOf(file)
+    const read = () => {
+      const settled = settleDrillFormat(bytes, readExcellon(bytes, limits), pads, limits)
+      file.holes = settled.file.holes
+      file.drillFormat = settled.file.format
+      file.image = {
+        ...noImage(settled.file.problem ?? { kind: 'unreadable', message: '', found: null }),
+        problem: settled.file.problem
+      }
+      if (settled.assumed && !settled.file.problem) findings.push(formatFinding(file))
+      return file.image
+    }
+    file.image = safely(read)
+  }
+  chooseOutline(reading)
+  for (const file of files) {
+    if (file.layer.function === 'job' && !reading.job) reading.job = readJob(await bytesOf(file))
+  }
+  onStep('compare-lists')
+  findings.push(...(await readLists(reading, bytesOf, limits)))
+  return { reading, findings }
+}
+
+/** A defect of ours in one file's reader must not take the whole check along: the file counts as unreadable. */
+function safely(read: () => FileReading['image'] & object): FileReading['image'] & object {
+  try {
+    return read()
+  } catch (error) {
+    const found = error instanceof Error ? error.message.slice(0, 100) : null
+    return noImage({ kind: 'unreadable', message: 'the check could not make sense of it', found })
+  }
+}
+
+function formatFinding(file: FileReading): BundleFinding {
+  const { unit, integer, decimals, keeps } = file.drillFormat!
+  const found = `${unit}, ${integer}.${decimals} digits, ${keeps} zeros kept`
+  const message =
+    'The drill file does not say how its coordinates are to be read; the format was taken from how the holes fall on the pads.'
+  return finding('drill-format-assumed', message, { file: file.layer.file, expected: 'unit and digits in the header', found })
+}
+
+/** Of several outline files the one with the largest closed contour; an attribute goes before a name. */
+function chooseOutline(reading: BundleReading): void {
+  const candidates = reading.files.filter(
+    (file) => file.layer.function === 'outline' && file.image && !file.image.problem && file.image.objects > 0
+  )
+  const told = candidates.filter((file) => file.layer.evidence === 'attribute')
+  let best = 0
+  for (const file of told.length > 0 ? told : candidates) {
+    const outline = findOutline(file.image!.strokes, file.image!.regions)
+    const area = outline.box ? (outline.box.maxX - outline.box.minX) * (outline.box.maxY - outline.box.minY) : 0
+    if (reading.outline && area <= best) continue
+    best = area
+    reading.outline = outline
+    reading.outlineFile = file
+  }
+}
+
+async function readLists(
+  reading: BundleReading,
+  bytesOf: (file: FileReading) => Promise<Uint8Array>,
+  limits: CheckLimits
+): Promise<BundleFinding[]> {
+  const findings: BundleFinding[] = []
+  const boms = reading.files.filter((file) => file.layer.function === 'bom')
+  for (const file of boms) {
+    const bom = file.kind === 'text' ? readBom(await bytesOf(file), limits) : null
+    if (bom && (!reading.bom || bom.lines.length > reading.bom.lines.length)) {
+      reading.bom = bom
+      reading.bomFile = file.layer.file
+    }
+  }
+  if (boms.length === 0) {
+    const message = 'There is no bill of materials.'
+    findings.push(finding('bom-missing', message, { expected: 'a list of parts as CSV' }))
+  } else if (!reading.bom || reading.bom.lines.length === 0) {
+    reading.bom = null
+    const message = 'The bill of materials cannot be read: no heading names the designators and the parts.'
+    findings.push(
+      finding('bom-unreadable', message, {
+        file: boms[0]!.layer.file,
+        expected: 'columns such as Reference, Value, Footprint, Quantity'
+      })
+    )
+  }
+  const lists = reading.files.filter((file) => file.layer.function === 'placement')
+  for (const file of lists) {
+    const base = file.path.toLowerCase()
+    const fallback = /bot(tom)?|back/.test(base) && !/top|front/.test(base) ? 'bottom' : 'top'
+    const placement = file.kind === 'text' ? readPlacement(await bytesOf(file), limits, fallback) : null
+    if (!placement) {
+      const message = 'The placement list cannot be read: no heading names designator, X and Y.'
+      findings.push(
+        finding('placement-unreadable', message, {
+          file: file.layer.file,
+          expected: 'columns such as Designator, Mid X, Mid Y, Rotation, Layer'
+        })
+      )
+      continue
+    }
+    reading.placement = merged(reading.placement, placement)
+    reading.placementFile ??= file.layer.file
+  }
+  if (lists.length === 0)
+    findings.push(finding('placement-missing', 'There is no placement list.', { expected: 'a list of places as CSV' }))
+  return findings
+}
+
+/** Lists by side are one list; a list that only repeats another (whole board beside one side) adds nothing. */
+function merged(first: Placement | null, second: Placement): Placement {
+  if (!first) return second
+  const known = new Set(first.parts.map((part) => `${part.designator} ${part.x} ${part.y} ${part.side}`))
+  const parts = second.parts.filter((part) => !known.has(`${part.designator} ${part.x} ${part.y} ${part.side}`))
+  return {
+    unit: first.unit ?? second.unit,
+    parts: [...first.parts, ...parts],
+    unreadable: [...first.unreadable, ...second.unreadable]
+  }
+}
