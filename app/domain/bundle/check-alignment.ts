@@ -50,7 +50,7 @@ function checkDrills(reading: BundleReading, indices: Indexed[]): BundleFinding[
     if (holes.length >= leastHoles && outer.length > 0) {
       if (best >= poor) continue
       const scale = [25.4, 1 / 25.4, 10, 0.1, 1000, 0.001].find((s) =>
-        outer.some(({ index }) => shareOnFlashes(index, holes, s) >= 0.8)
+        outer.some(({ index }) => shareOnFlashes(index, holes, s) >= 0.6)
       )
       file.isBroken = true
       if (scale !== undefined) {

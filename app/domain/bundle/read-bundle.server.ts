@@ -42,15 +42,8 @@ export async function tellLayers(source: BundleSource, limits: CheckLimits): Pro
       }
       continue
     }
-    const supposed = roleOfSupposedLayer(entry.path)
-    if (supposed) named.push({ ...base, ...none, name: supposed })
-    else
-      named.push({
-        ...base,
-        ...none,
-        name: roleOfOtherFile(entry.path),
-        content: kind === 'text' ? listRole(bytes, limits) : null
-      })
+    const name = roleOfSupposedLayer(entry.path) ?? roleOfOtherFile(entry.path)
+    named.push({ ...base, ...none, name, content: name === null && kind === 'text' ? listRole(bytes, limits) : null })
   }
   const roles = decideRoles(named)
   return named.map(({ path, kind, size }, i) => {

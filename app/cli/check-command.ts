@@ -1,0 +1,56 @@
+import { parseArgs } from 'node:util'
+import { runBundleCheck } from '../domain/bundle/run-bundle-check.server'
+import { DomainError } from '../lib/domain-error'
+import type { Command } from './command'
+
+const usage = 'check FILE.zip [--layers N] [--thickness MM]'
+
+/** A number given with an option, or undefined; the message names the option. */
+function numberOption(
+  name: string,
+  text: string | undefined,
+  isValid: (n: number) => boolean,
+  expected: string
+): number | undefined {
+  if (text === undefined) return undefined
+  const value = Number(text)
+  if (text.trim() === '' || !isValid(value))
+    throw new DomainError('invalid', `--${name} takes ${expected}.`, [{ path: name, message: `Expected ${expected}` }])
+  return value
+}
+
+function parse(args: string[]) {
+  try {
+    return parseArgs({ args, allowPositionals: true, options: { layers: { type: 'string' }, thickness: { type: 'string' } } })
+  } catch (error) {
+    throw new DomainError('invalid', `${(error as Error).message.split('. ')[0]}. Usage: fettle ${usage}`)
+  }
+}
+
+/** Checks a bundle as a release would, for a maintainer's own machine. The answer goes to standard output, whatever it finds. */
+export const checkCommand: Command = {
+  name: 'check',
+  usage,
+  async run(args, io) {
+    const { values, positionals } = parse(args)
+    if (positionals.length !== 1) {
+      const errors = [{ path: 'file', message: positionals.length === 0 ? 'Name a file' : 'Name one file' }]
+      throw new DomainError('invalid', `One zip file is checked at a time. Usage: fettle ${usage}`, errors)
+    }
+    const declaredLayers = numberOption(
+      'layers',
+      values.layers,
+      (n) => Number.isInteger(n) && n >= 1 && n <= 64,
+      'a whole number from 1 to 64'
+    )
+    const thicknessMm = numberOption(
+      'thickness',
+      values.thickness,
+      (n) => n > 0 && n <= 10,
+      'a thickness in mm, above 0 and up to 10'
+    )
+    const check = await runBundleCheck({ path: positionals[0]!, declaredLayers, thicknessMm })
+    io.out(`${JSON.stringify(check, null, 2)}\n`)
+    return 0
+  }
+}

@@ -1,0 +1,139 @@
+import { fork, type ChildProcess } from 'node:child_process'
+import { existsSync } from 'node:fs'
+import { stat } from 'node:fs/promises'
+import { createRequire } from 'node:module'
+import { setPriority } from 'node:os'
+import { fileURLToPath, pathToFileURL } from 'node:url'
+import { DomainError } from '../../lib/domain-error'
+import { unknownFacts, type BundleCheck, type CheckStep, type DeclaredDetails } from './bundle-check.types'
+import type { ChildMessage, ChildOrder } from './check-child.types'
+import { Queue } from './check-queue'
+import { finding } from './finding'
+import { defaultLimits, type CheckLimits } from './limits'
+
+export type CheckInput = DeclaredDetails & {
+  /** A file on disk that nobody writes to while it is checked. */
+  path: string
+  onProgress?: (step: CheckStep) => void
+  signal?: AbortSignal
+  /** Gets what a crashed child wrote last; for the log, not for people. */
+  onCrash?: (detail: string) => void
+}
+
+/** At most two checks at once; more than fifty waiting are turned away. */
+const queue = new Queue(2, 50)
+
+/**
+ * Checks a bundle in a child process of its own, which is killed when it exceeds its time; its memory is bounded and its environment
+ * empty. A child that is killed or dies gives a `check-cut-off` finding.
+ *
+ * @throws DomainError `not-found` where the file does not exist, `rate-limited` when too many checks wait
+ * @throws the signal's reason when aborted
+ */
+export async function runBundleCheck(input: CheckInput, limits: Partial<CheckLimits> = {}): Promise<BundleCheck> {
+  return queue.add(() => runChild(input, { ...defaultLimits, ...limits }), input.signal)
+}
+
+async function runChild(input: CheckInput, limits: CheckLimits): Promise<BundleCheck> {
+  const bytes = await sizeOf(input.path)
+  input.signal?.throwIfAborted()
+  if (bytes > limits.zipBytes) {
+    const details = { expected: `at most ${limits.zipBytes} bytes`, found: `${bytes} bytes` }
+    return failed(bytes, finding('zip-too-large', 'The zip is larger than a bundle may be.', details))
+  }
+  const { path, declaredLayers, thicknessMm } = input
+  return follow(startChild(limits), { path, declared: { declaredLayers, thicknessMm }, limits }, bytes, input)
+}
+
+/** Waits for the child's answer, its death, the end of its time or the caller's signal, whichever comes first. */
+function follow(child: ChildProcess, order: ChildOrder, bytes: number, input: CheckInput): Promise<BundleCheck> {
+  return new Promise((resolve, reject) => {
+    let check: BundleCheck | null = null
+    let isLate = false
+    let lastWords = ''
+    const kill = () => child.kill('SIGKILL')
+    const timer = setTimeout(() => {
+      isLate = true
+      kill()
+    }, order.limits.wallMs)
+    input.signal?.addEventListener('abort', kill, { once: true })
+    child.stderr?.on('data', (chunk: Buffer) => (lastWords = (lastWords + chunk.toString()).slice(-2000)))
+    child.on('message', (message: ChildMessage) => {
+      if (message.kind === 'step') input.onProgress?.(message.step)
+      else check = message.check
+    })
+    const end = (code: number | null, signal: string | null) => {
+      clearTimeout(timer)
+      input.signal?.removeEventListener('abort', kill)
+      if (input.signal?.aborted) return reject(input.signal.reason as Error)
+      if (!check || code !== 0) input.onCrash?.(`code ${code}, signal ${signal}: ${lastWords}`)
+      resolve(check ?? failed(bytes, cutOff(isLate, order.limits, signal ?? `exit ${code}`)))
+    }
+    child.once('error', (error) => {
+      lastWords = error.message
+      if (child.pid === undefined) end(null, 'not started')
+      else kill()
+    })
+    child.once('exit', end)
+    child.send(order, (error) => {
+      // The child died before it heard: `exit` tells.
+      if (error) lastWords += error.message
+    })
+  })
+}
+
+function cutOff(isLate: boolean, limits: CheckLimits, how: string) {
+  if (isLate) {
+    const message = 'The check took too long and was stopped. Something in the zip is far more complex than a board.'
+    return finding('check-cut-off', message, { expected: `at most ${limits.wallMs / 1000} s`, found: 'longer' })
+  }
+  const message = 'The check broke off. Something in the zip takes more memory than a check may use.'
+  return finding('check-cut-off', message, { expected: `at most ${limits.heapMib} MiB`, found: how })
+}
+
+const failed = (bytes: number, stop: BundleCheck['findings'][number]): BundleCheck => ({
+  layers: [],
+  facts: { ...unknownFacts(), bytes },
+  findings: [stop],
+  ok: false
+})
+
+async function sizeOf(path: string): Promise<number> {
+  const stats = await stat(path).catch(() => null)
+  if (!stats?.isFile())
+    throw new DomainError('not-found', 'The file does not exist or is no file.', [{ path: 'file', message: 'No such file' }])
+  return stats.size
+}
+
+function startChild(limits: CheckLimits): ChildProcess {
+  const { entry, loader } = childEntry()
+  const child = fork(entry, [], {
+    execArgv: [...loader, `--max-old-space-size=${limits.heapMib}`],
+    // Nothing of the server's configuration reaches the child.
+    env: { NODE_ENV: process.env.NODE_ENV ?? 'production' },
+    serialization: 'advanced',
+    stdio: ['ignore', 'ignore', 'pipe', 'ipc']
+  })
+  if (child.pid !== undefined) {
+    try {
+      setPriority(child.pid, 10)
+    } catch {
+      // Putting requests before checks is a nicety: without the right to it the check runs all the same.
+    }
+  }
+  return child
+}
+
+/** In the built server the child lies beside its bundle; from the sources it runs through tsx. */
+function childEntry(): { entry: string; loader: string[] } {
+  const here = import.meta.url
+  if (!here.endsWith('.ts')) {
+    const built = ['./check-child.js', '../check-child.js']
+      .map((name) => fileURLToPath(new URL(name, here)))
+      .find((path) => existsSync(path))
+    if (!built) throw new Error('The build lacks check-child.js')
+    return { entry: built, loader: [] }
+  }
+  const tsx = pathToFileURL(createRequire(here).resolve('tsx')).href
+  return { entry: fileURLToPath(new URL('./check-child.ts', here)), loader: ['--import', tsx] }
+}
