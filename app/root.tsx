@@ -2,8 +2,8 @@ import type { ReactNode } from 'react'
 import { isRouteErrorResponse, Links, Meta, Outlet, Scripts, ScrollRestoration } from 'react-router'
 import type { Route } from './+types/root'
 import stylesheet from './app.css?url'
+import { PageError } from '~/components/page-error'
 import { SiteSheet, type SiteFrame } from '~/components/site-sheet'
-import { Title } from '~/components/title'
 import { actorContext } from '~/server/context'
 import { loadActor } from '~/server/session.server'
 import { services } from '~/server/services.server'
@@ -43,26 +43,13 @@ export default function Root() {
   return <Outlet />
 }
 
-const headings: Record<number, string> = {
-  400: 'This address does not add up',
-  403: 'Not for this account',
-  404: 'There is no such sheet',
-  429: 'Too many requests'
-}
-
 export function ErrorBoundary({ error }: Route.ErrorBoundaryProps) {
   const status = isRouteErrorResponse(error) ? error.status : 500
   const message = isRouteErrorResponse(error) ? (error.data as { message?: string } | null)?.message : undefined
-  const heading = headings[status] ?? (status >= 500 ? 'Something went wrong here' : 'That did not work')
-  const lead =
-    message ??
-    (status >= 500
-      ? 'It is noted in our log. Nothing you entered was changed; try again in a minute.'
-      : 'Look at the address, or start from the boards.')
   return (
-    <SiteSheet trail={[{ label: 'Boards', href: '/' }, { label: `Error ${status}` }]}>
-      <title>{`${heading} · Fettle`}</title>
-      <Title heading={heading} lead={lead} />
+    <SiteSheet trail={[{ label: 'Boards', href: '/' }, { label: `Answer ${status}` }]}>
+      <title>{`${status} · Fettle`}</title>
+      <PageError status={status} message={message} />
     </SiteSheet>
   )
 }

@@ -84,7 +84,7 @@ export function Sheet({ current, account, trail, foot, isDemo, isForm, children 
         {foot && <span>{foot}</span>}
         <TextLink href="/guides/figures">How the figures are made</TextLink>
         <TextLink href="/guides/safety">Safety</TextLink>
-        <TextLink href="/guides/data">Data and API</TextLink>
+        <TextLink href="/guides/api">Data and API</TextLink>
         {isDemo && <span>Everything shown is invented for the demo.</span>}
       </footer>
     </div>
