@@ -17,7 +17,10 @@ export default defineConfig({
     ssr: {
       build: {
         rollupOptions: {
-          input: { index: at('./app/server/start.server.ts') },
+          input: {
+            index: at('./app/server/start.server.ts'),
+            'reliability-worker': at('./app/domain/reliability/reliability-worker.server.ts')
+          },
           output: { entryFileNames: '[name].js' }
         }
       }

@@ -117,7 +117,7 @@ function startReliabilityWorker(): Worker {
     const url = new URL(place, import.meta.url)
     if (existsSync(fileURLToPath(url))) return new Worker(url)
   }
-  const source = JSON.stringify(new URL('./reliability-worker.ts', import.meta.url).href)
+  const source = JSON.stringify(new URL('./reliability-worker.server.ts', import.meta.url).href)
   return new Worker(`import('tsx/esm/api').then(({ register }) => { register(); return import(${source}) })`, { eval: true })
 }
 
