@@ -56,24 +56,39 @@ export function causesOf(observations: readonly { event?: number | string }[]): 
   return [...names].sort()
 }
 
-/**
- * Makes times one that differ by rounding only: of the sorted distinct times and entries, neighbours nearer than 1.49e-8, absolutely
- * or relative to the mean distinct value, take the smallest value of their run. Whole numbers pass through untouched.
- * Source: the "timefix" rule of R's survival package (vignette "Tied times").
- */
+/** Makes times and entries one that differ by rounding only, see `nearTimes`. */
 export function mergeNearTimes(columns: Columns): Columns {
   const { time, entry } = columns
-  if (areWhole(time) && (entry === null || areWhole(entry))) return columns
-  const all = entry === null ? time.slice() : joined(time, entry)
-  all.sort()
-  const distinct = all.filter((value, i) => i === 0 || value !== all[i - 1])
+  const snap = nearTimes(entry === null ? [time] : [time, entry])
+  if (snap === null) return columns
+  return { ...columns, time: time.map(snap), entry: entry === null ? null : entry.map(snap) }
+}
+
+/**
+ * How to make times one that differ by rounding only: of the sorted distinct finite values, neighbours nearer than 1.49e-8, absolutely or
+ * relative to the mean distinct value, take the smallest value of their run. Null when nothing has to be merged (whole numbers never do).
+ * Source: the "timefix" rule of R's survival package (vignette "Tied times").
+ */
+export function nearTimes(columns: readonly Float64Array[]): ((value: number) => number) | null {
+  if (columns.every(areWhole)) return null
+  const all = new Float64Array(columns.reduce((sum, { length }) => sum + length, 0))
+  let n = 0
+  for (const column of columns) for (let i = 0; i < column.length; i++) if (Number.isFinite(column[i]!)) all[n++] = column[i]!
+  const distinct = distinctSorted(all.subarray(0, n))
   let mean = 0
-  for (const value of distinct) mean += Math.abs(value) / distinct.length
+  for (let i = 0; i < distinct.length; i++) mean += Math.abs(distinct[i]!) / distinct.length
   const near = timeTolerance * Math.max(1, mean)
   const starts = distinct.filter((value, i) => i === 0 || value - distinct[i - 1]! > near)
-  if (starts.length === distinct.length) return columns
-  const snap = (value: number) => starts[lastAtOrBefore(starts, value)]!
-  return { ...columns, time: time.map(snap), entry: entry === null ? null : entry.map(snap) }
+  if (starts.length === distinct.length) return null
+  return (value) => (Number.isFinite(value) ? starts[lastAtOrBefore(starts, value)]! : value)
+}
+
+/** The distinct values of an array in ascending order; sorts the array itself. */
+export function distinctSorted(values: Float64Array): Float64Array {
+  values.sort()
+  let size = 0
+  for (let i = 0; i < values.length; i++) if (i === 0 || values[i] !== values[size - 1]) values[size++] = values[i]!
+  return values.subarray(0, size)
 }
 
 /** The rows of each group, in their order. `group[i]` is the index of row i's group, below `count`. */
@@ -112,14 +127,10 @@ export function lastAtOrBefore(sorted: ArrayLike<number>, value: number): number
 }
 
 // Above this bound whole numbers could fall within the relative tolerance of each other.
-const areWhole = (values: Float64Array) => {
-  for (let i = 0; i < values.length; i++) if (!(values[i]! < 5e7) || Math.floor(values[i]!) !== values[i]) return false
+function areWhole(values: Float64Array): boolean {
+  for (let i = 0; i < values.length; i++) {
+    const value = values[i]!
+    if (value !== Infinity && (!(value < 5e7) || Math.floor(value) !== value)) return false
+  }
   return true
-}
-
-function joined(a: Float64Array, b: Float64Array): Float64Array {
-  const both = new Float64Array(a.length + b.length)
-  both.set(a)
-  both.set(b, a.length)
-  return both
 }

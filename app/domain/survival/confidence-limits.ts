@@ -64,10 +64,14 @@ function limitsWith(s: number, greenwood: number, atRisk: number, z: number, { c
     if (atRisk <= 0) return { lower: null, upper: null, bound: null }
     return { lower: Math.pow(1 - confidence, 1 / atRisk), upper: 1, bound: 'exact-one-sided' }
   }
-  const se = Math.sqrt(greenwood)
-  if (interval === 'plain') return { lower: Math.max(0, s - z * s * se), upper: Math.min(1, s + z * s * se), bound: null }
-  const ln = Math.log(s)
-  if (interval === 'log') return { lower: Math.exp(ln - z * se), upper: Math.min(1, Math.exp(ln + z * se)), bound: null }
+  return { ...limitsOfProbability(s, Math.sqrt(greenwood), z, interval), bound: null }
+}
+
+/** Transformed normal limits of a probability strictly between 0 and 1 from the standard error of its logarithm. */
+export function limitsOfProbability(p: number, se: number, z: number, interval: IntervalKind): { lower: number; upper: number } {
+  if (interval === 'plain') return { lower: Math.max(0, p - z * p * se), upper: Math.min(1, p + z * p * se) }
+  const ln = Math.log(p)
+  if (interval === 'log') return { lower: Math.exp(ln - z * se), upper: Math.min(1, Math.exp(ln + z * se)) }
   const width = (z * se) / ln
-  return { lower: Math.exp(ln * Math.exp(-width)), upper: Math.exp(ln * Math.exp(width)), bound: null }
+  return { lower: Math.exp(ln * Math.exp(-width)), upper: Math.exp(ln * Math.exp(width)) }
 }

@@ -1,4 +1,4 @@
-import { lastAtOrBefore, type Columns } from './columns'
+import { distinctSorted, lastAtOrBefore, type Columns } from './columns'
 
 /**
  * Counts on an ascending grid of distinct times, all a risk set needs: at `time[j]`, `failed[j]` units failed, `censored[j]` were last seen
@@ -99,7 +99,6 @@ function sortedGrid(time: Float64Array, entry: Float64Array | null): Grid {
   const all = new Float64Array(time.length + (entry === null ? 1 : entry.length))
   all.set(time)
   if (entry !== null) all.set(entry, time.length)
-  all.sort()
-  const grid = all.filter((value, i) => i === 0 || value !== all[i - 1])
+  const grid = distinctSorted(all)
   return { grid, indexOf: (value) => lastAtOrBefore(grid, value) }
 }
