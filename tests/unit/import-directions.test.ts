@@ -31,7 +31,8 @@ function layerOf(file: string): Layer {
   if (file.startsWith('app/routes/')) return 'routes'
   if (file.startsWith('app/domain/')) {
     if (/\.repo\.server\.ts$/.test(file)) return 'repo'
-    return /\.server\.tsx?$/.test(file) ? 'use-case' : 'pure'
+    // A child process or a worker begins in a file of its own, named by what it is.
+    return /(\.server|-child|-worker)\.tsx?$/.test(file) ? 'use-case' : 'pure'
   }
   for (const folder of ['server', 'components', 'lib', 'cli'] as const) if (file.startsWith(`app/${folder}/`)) return folder
   if (file.startsWith('db/')) return 'db'
