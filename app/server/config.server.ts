@@ -70,6 +70,8 @@ const schema = z
       }
       if (env.MAIL_FAKE_URL !== undefined) say('MAIL_FAKE_URL', 'names a fake, which production does not use')
     } else {
+      if (env.PUBLIC_ORIGIN !== undefined && !env.PUBLIC_ORIGIN.startsWith('https:') && !isLoopback(env.PUBLIC_ORIGIN))
+        say('PUBLIC_ORIGIN', 'must be https, except on this machine: sign-in cookies do not travel in the clear')
       for (const name of ['STORAGE_ENDPOINT', 'MAIL_API_URL'] as const)
         if (env[name] === undefined)
           say(name, `is not set (in ${mode} mode it is the address of the fake; \`npm run demo\` starts one)`)

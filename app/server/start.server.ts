@@ -7,8 +7,10 @@ import { migrate } from '~db/migrate'
 import { ConfigError, readConfig } from './config.server'
 import { createApp } from './express.server'
 import { log, logError } from './log.server'
+import { startMailWorker } from './mail-worker.server'
 import { setServices, type Services } from './services.server'
 import { createStorage } from './storage.server'
+import { startSweeping } from './sweep.server'
 
 export type Running = { url: string; services: Services; close(): Promise<void> }
 
@@ -33,6 +35,7 @@ export async function start(env: Record<string, string | undefined>, before: Han
   server.headersTimeout = 20_000
   server.requestTimeout = 15 * 60_000
   await listen(server, config.port, config.host)
+  const workers = [startMailWorker(services), startSweeping(services)]
   log('info', 'listening', { url: config.publicOrigin, mode: config.mode })
 
   const close = async () => {
@@ -44,6 +47,7 @@ export async function start(env: Record<string, string | undefined>, before: Han
         resolve()
       })
     })
+    await Promise.all(workers.map((worker) => worker.close()))
     setServices(null)
     await db.destroy()
     releaseFolder()
