@@ -6,6 +6,12 @@ export default [
 
   route('guides', 'routes/guides/index/page.tsx'),
   route('guides/:page', 'routes/guides/guide/page.tsx'),
+  route('sign-in', 'routes/sign-in/page.tsx'),
+  route('sign-in/github', 'routes/sign-in/github.endpoint.ts'),
+  route('sign-in/github/callback', 'routes/sign-in/callback.page.tsx'),
+  route('sign-in/link/:token', 'routes/sign-in/link.page.tsx'),
+  route('sign-out', 'routes/sign-in/sign-out.endpoint.ts'),
+  route('account', 'routes/account/page.tsx'),
 
   route('health', 'routes/health/endpoint.ts'),
   route('*', 'routes/not-found/page.tsx')
