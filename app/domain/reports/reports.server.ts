@@ -18,7 +18,7 @@ const latestDay = (now: Date): Day => addDays(dayOf(now), 1)
 const entry = (actor: Actor, action: string, subjectId: string, detail: Record<string, string>) => ({
   actorId: actor.userId,
   action,
-  subjectKind: 'report',
+  subjectKind: 'report' as const,
   subjectId,
   detail
 })
