@@ -7,6 +7,7 @@ import { fileURLToPath } from 'node:url'
 import { openDb, type Db } from '~db/client.server'
 import { startGithubFake, type GithubPerson } from '~/server/fakes/github-fake'
 import { startMailFake, type MailFake, type SentMail } from '~/server/fakes/mail-fake'
+import { startStorageFake } from '../../storage-fake/server'
 import { Browser, textOf } from './browser'
 
 /*
@@ -64,6 +65,7 @@ export type Site = {
 const clientId = 'test-client'
 const clientSecret = 'test-client-secret'
 const mailKey = 'test-mail-key'
+const storageAccount = { accessKeyId: 'test', secretAccessKey: 'test-secret', region: 'us-east-1', bucket: 'fettle' }
 
 /** A port that was free a moment ago. */
 const freePort = () =>
@@ -89,6 +91,7 @@ export async function startSite(options: SiteOptions = {}): Promise<Site> {
     callbackUrl: `${url}/sign-in/github/callback`
   })
   const mail = await startMailFake({ apiKey: mailKey })
+  const storage = await startStorageFake({ ...storageAccount, dir: join(dataDir, 'storage') })
   const server = startServer({
     FETTLE_MODE: 'test',
     PORT: String(port),
@@ -96,10 +99,11 @@ export async function startSite(options: SiteOptions = {}): Promise<Site> {
     TRUST_PROXY_HOPS: '1',
     DATA_DIR: dataDir,
     APP_SECRET: 'a secret for tests that is long enough',
-    STORAGE_ENDPOINT: 'http://127.0.0.1:9',
-    STORAGE_BUCKET: 'fettle',
-    STORAGE_ACCESS_KEY_ID: 'test',
-    STORAGE_SECRET_ACCESS_KEY: 'test-secret',
+    STORAGE_ENDPOINT: storage.url,
+    STORAGE_REGION: storageAccount.region,
+    STORAGE_BUCKET: storageAccount.bucket,
+    STORAGE_ACCESS_KEY_ID: storageAccount.accessKeyId,
+    STORAGE_SECRET_ACCESS_KEY: storageAccount.secretAccessKey,
     MAIL_API_URL: mail.url,
     MAIL_API_KEY: mailKey,
     MAIL_FROM: 'Fettle <fettle@test.example>',
@@ -109,11 +113,14 @@ export async function startSite(options: SiteOptions = {}): Promise<Site> {
     GITHUB_API_URL: `${github.url}/api`,
     ...options.env
   })
-  const closeFakes = () => Promise.all([github.close(), mail.close()])
+  const cleanUp = async () => {
+    await Promise.all([github.close(), mail.close(), storage.close()])
+    rmSync(dataDir, { recursive: true, force: true })
+  }
   try {
     await server.ready
   } catch (error) {
-    await closeFakes()
+    await cleanUp()
     throw error
   }
   const site: Site = {
@@ -137,8 +144,7 @@ export async function startSite(options: SiteOptions = {}): Promise<Site> {
     },
     close: async () => {
       await server.stop()
-      await closeFakes()
-      rmSync(dataDir, { recursive: true, force: true })
+      await cleanUp()
     }
   }
   return site
