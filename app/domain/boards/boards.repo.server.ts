@@ -13,7 +13,8 @@ const columns = [
   'boards.created_at',
   'boards.console_id',
   'consoles.slug as console_slug',
-  'consoles.name as console_name'
+  'consoles.name as console_name',
+  'consoles.kind as console_kind'
 ] as const
 
 const selectBoard = (db: DbOrTx) =>

@@ -148,42 +148,43 @@ export async function listBoards(
 ): Promise<BoardPage> {
   const rows = await repo.list(db, { q: q?.trim(), after: readCursor(after ?? null), limit: limit + 1 })
   const page = rows.slice(0, limit)
-  const newest = new Map(
-    (
-      await repo.listNewestReleases(
-        db,
-        page.map((b) => b.id)
-      )
-    ).map((r) => [r.board_id, r])
-  )
   const last = page.at(-1)
   return {
-    boards: page.map((b) => {
-      const r = newest.get(b.id)
-      const facts = r?.facts_json ? (JSON.parse(r.facts_json) as BundleFacts) : null
-      return {
-        id: b.id,
-        slug: b.slug,
-        name: b.name,
-        summary: b.summary,
-        replaces: b.replaces,
-        licence: b.licence,
-        consoleSlug: b.console_slug,
-        consoleName: b.console_name,
-        openedAt: b.created_at,
-        newest: r
-          ? {
-              version: r.version,
-              state: r.state as 'trial' | 'released',
-              boardRevision: r.board_revision,
-              publishedAt: r.published_at!,
-              widthMm: facts?.width ?? null,
-              heightMm: facts?.height ?? null,
-              hasPicture: r.picture_top_sha256 !== null
-            }
-          : null
-      }
-    }),
+    boards: await withNewest(db, page),
     next: rows.length > limit && last ? `${last.name}~${last.id}` : null
   }
+}
+
+/** The boards that somebody maintains, by name. */
+export const boardsOfMaintainer = async (db: Db, userId: string) => withNewest(db, await repo.listByMaintainer(db, userId))
+
+async function withNewest(db: Db, boards: repo.BoardRow[]): Promise<ListedBoard[]> {
+  const ids = boards.map((b) => b.id)
+  const newest = new Map((await repo.listNewestReleases(db, ids)).map((r) => [r.board_id, r]))
+  return boards.map((b) => {
+    const r = newest.get(b.id)
+    const facts = r?.facts_json ? (JSON.parse(r.facts_json) as BundleFacts) : null
+    return {
+      id: b.id,
+      slug: b.slug,
+      name: b.name,
+      summary: b.summary,
+      replaces: b.replaces,
+      licence: b.licence,
+      consoleSlug: b.console_slug,
+      consoleName: b.console_name,
+      openedAt: b.created_at,
+      newest: r
+        ? {
+            version: r.version,
+            state: r.state as 'trial' | 'released',
+            boardRevision: r.board_revision,
+            publishedAt: r.published_at!,
+            widthMm: facts?.width ?? null,
+            heightMm: facts?.height ?? null,
+            hasPicture: r.picture_top_sha256 !== null
+          }
+        : null
+    }
+  })
 }

@@ -1,0 +1,133 @@
+import type { Db } from '~db/client.server'
+import { can, type Actor } from '~/domain/accounts/can'
+import { claimsOf } from '~/domain/boards/board-page.server'
+import type { BundleFacts } from '~/domain/bundle/bundle-check.types'
+import { dayOf } from '~/lib/dates'
+import { renderMarkdown } from '~/server/markdown.server'
+import { runOf } from './check-runs.server'
+import { declaredBesideMeasured } from './declared-beside-measured'
+import * as downloads from './downloads.repo.server'
+import * as findingsRepo from './findings.repo.server'
+import { obstacles } from './publish-rules'
+import * as repo from './releases.repo.server'
+import { findRelease } from './releases.server'
+import { mustReadVersion, newestOf, stateWhenPublished } from './version'
+
+export type ReleasePage = Awaited<ReturnType<typeof releasePage>>
+
+const day = (at: string | null) => (at === null ? null : dayOf(at))
+
+function checkStateOf(release: repo.ReleaseRow): 'none' | 'running' | 'interrupted' | 'done' {
+  if (runOf(release.id)) return 'running'
+  if (release.check_state === 'running') return 'interrupted'
+  return release.check_state
+}
+
+/**
+ * Everything that the page of a release prints, for this reader; a draft for its maintainers only.
+ * @throws DomainError `not-found`
+ */
+export async function releasePage(db: Db, actor: Actor, slug: string, version: string) {
+  const { board, release } = await findRelease(db, actor, slug, version)
+  const [files, findings, siblings, fit, downloaded] = await Promise.all([
+    findingsRepo.listFiles(db, release.id),
+    findingsRepo.listFindings(db, release.id),
+    repo.listByBoard(db, board.id),
+    claimsOf(db, board),
+    downloads.total(db, release.id)
+  ])
+  const subject = { boardId: board.id, state: release.state }
+  const published = siblings.filter((r) => r.state !== 'draft')
+  const newest = newestOf(siblings.map((r) => ({ ...r, precedenceKey: r.precedence_key })))
+  const facts = release.facts_json === null ? null : (JSON.parse(release.facts_json) as BundleFacts)
+  const checkState = checkStateOf(release)
+  return {
+    board: {
+      slug: board.slug,
+      name: board.name,
+      summary: board.summary,
+      replaces: board.replaces,
+      licence: board.licence,
+      consoleName: board.console_name,
+      consoleSlug: board.console_slug,
+      consoleKind: board.console_kind
+    },
+    release: {
+      version: release.version,
+      state: release.state,
+      boardRevision: release.board_revision,
+      publishedOn: day(release.published_at),
+      withdrawnOn: day(release.withdrawn_at),
+      withdrawnReason: release.withdrawn_reason,
+      updatedAt: release.updated_at,
+      willBe: stateWhenPublished(mustReadVersion(release.version)),
+      orderNote: release.order_note,
+      notes: release.notes_md === '' ? null : renderMarkdown(release.notes_md)
+    },
+    bundle:
+      release.bundle_sha256 === null
+        ? null
+        : {
+            sha256: release.bundle_sha256,
+            bytes: release.bundle_bytes!,
+            sentAs: release.bundle_name,
+            fileName: bundleFileName(board.slug, release.version)
+          },
+    checkState,
+    facts,
+    factRows: declaredBesideMeasured(
+      {
+        layers: release.declared_layers,
+        thicknessMm: release.declared_thickness_mm,
+        copperUm: release.declared_copper_um,
+        finish: release.declared_finish,
+        mask: release.declared_mask,
+        legend: release.declared_legend,
+        stencil: release.declared_stencil
+      },
+      facts,
+      new Set(findings.map((f) => f.code))
+    ),
+    pictures: {
+      top: pictureOf(release.picture_top_sha256, slug, version, 'top'),
+      bottom: pictureOf(release.picture_bottom_sha256, slug, version, 'bottom')
+    },
+    files,
+    findings: findings.map((f) => ({ ...f, answeredOn: day(f.answered_at) })),
+    obstacles: obstacles(
+      {
+        hasBundle: release.bundle_sha256 !== null,
+        checkState: checkState === 'interrupted' ? 'none' : checkState,
+        isCheckOk: release.is_check_ok === null ? null : release.is_check_ok === 1
+      },
+      findings
+    ),
+    fit,
+    line: published.map((r) => ({
+      version: r.version,
+      state: r.state as 'trial' | 'released' | 'withdrawn',
+      on: dayOf(r.published_at!),
+      boardRevision: r.board_revision,
+      href: releasePath(slug, r.version)
+    })),
+    newer:
+      newest && newest.version !== release.version && newest.precedence_key > release.precedence_key
+        ? { version: newest.version, isSameRevision: newest.board_revision === release.board_revision }
+        : null,
+    downloaded,
+    rights: {
+      canEdit: can(actor, 'release.edit', subject),
+      canPublish: can(actor, 'release.publish', subject),
+      canWithdraw: can(actor, 'release.withdraw', subject)
+    }
+  }
+}
+
+export const releasePath = (slug: string, version: string) => `/boards/${slug}/releases/${encodeURIComponent(version)}`
+
+/** What a bundle is called when it is saved. */
+export const bundleFileName = (slug: string, version: string) => `${slug}-${version}.zip`
+
+/** The sum in the address keeps an older picture out of the browser's cache. */
+const pictureOf = (sha256: string | null, slug: string, version: string, side: 'top' | 'bottom') =>
+  sha256 === null ? null : `${releasePath(slug, version)}/picture/${side}.svg?v=${sha256.slice(0, 12)}`
