@@ -72,7 +72,14 @@ export function describedHeaders({ header, metadata }: Call): Record<string, str
       Size: String(size)
     })
   }
-  return { ...headers, ...metadata }
+  for (const [name, value] of Object.entries(metadata)) headers[name] = headerValue(name, value)
+  return headers
+}
+
+/** A value from a query that is to become a header of an answer. */
+function headerValue(name: string, value: string): string {
+  if (/^[\t\x20-\x7e\x80-\xff]*$/.test(value)) return value
+  throw new S3Error('InvalidArgument', 'Header value cannot be represented using ISO-8859-1.', { ArgumentName: name })
 }
 
 export function checksumHeaders(checksums: Checksums): Record<string, string> {
@@ -99,7 +106,7 @@ export async function getObject(call: Call): Promise<Reply> {
     Object.assign(headers, description.headers)
     for (const name of overrides) {
       const value = call.query.get(`response-${name}`)
-      if (value !== undefined) headers[name] = value
+      if (value !== undefined) headers[name] = headerValue(`response-${name}`, value)
     }
     const total = description.bytes
     const range = parseRange(call.header('range'), total)

@@ -59,6 +59,7 @@ export async function startStorageFake(options: StorageFakeOptions): Promise<Sto
   const answer = (request: IncomingMessage, response: ServerResponse, isWaiting: boolean): Promise<Reply> => {
     const now = (options.now ?? (() => new Date()))()
     const target = splitTarget(request.url ?? '')
+    const { bucket: bucketName, key } = splitPath(target.path)
     const headers = headerMap(request.rawHeaders)
     const pairs = parseQuery(target.query)
     const auth = authenticate({ method: request.method ?? '', path: target.path, query: pairs, headers }, options, now)
@@ -66,7 +67,6 @@ export async function startStorageFake(options: StorageFakeOptions): Promise<Sto
     for (const [name, value] of pairs) if (!query.has(name)) query.set(name, value)
     const signedQuery = auth.isPresigned ? pairs.map(([name, value]) => [name.toLowerCase(), value] as const) : []
     const metadata = Object.fromEntries([...signedQuery, ...headers].filter(([name]) => name.startsWith('x-amz-meta-')))
-    const { bucket: bucketName, key } = splitPath(target.path)
     const header = (name: string) => headers.get(name)
     const amz = (name: string) => headers.get(name) ?? signedQuery.find(([other]) => other === name)?.[1]
     const invite = () => (isWaiting ? response.writeContinue() : undefined)

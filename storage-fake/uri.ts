@@ -32,10 +32,10 @@ export function parseQuery(raw: string): QueryPair[] {
 
 /**
  * Splits a request target into the raw path and the raw query. Nothing is normalised: `..` and `%2e%2e` are
- * ordinary text of a key.
+ * ordinary text of a key. Throws InvalidURI for what is no path, and for bytes that should have been percent-encoded.
  */
 export function splitTarget(target: string): { path: string; query: string } {
-  if (!target.startsWith('/')) throw new S3Error('InvalidURI', "Couldn't parse the specified URI.")
+  if (!/^\/[\x21-\x7e]*$/.test(target)) throw new S3Error('InvalidURI', "Couldn't parse the specified URI.")
   const at = target.indexOf('?')
   return at < 0 ? { path: target, query: '' } : { path: target.slice(0, at), query: target.slice(at + 1) }
 }
