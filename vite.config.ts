@@ -1,9 +1,18 @@
 import { fileURLToPath } from 'node:url'
 import { reactRouter } from '@react-router/dev/vite'
 import tailwindcss from '@tailwindcss/vite'
-import { defineConfig } from 'vite'
+import { defineConfig, type Plugin } from 'vite'
 
 const at = (path: string) => fileURLToPath(new URL(path, import.meta.url))
+
+/** The router's plugin calls every entry of the server build `index.js`; each needs its own name. */
+const namedEntries: Plugin = {
+  name: 'named-entries',
+  enforce: 'post',
+  config: () => ({
+    environments: { ssr: { build: { rollupOptions: { output: { entryFileNames: '[name].js' } } } } }
+  })
+}
 
 /**
  * The server is one bundle (one copy of every module, so that the database client is one), and each
@@ -11,7 +20,7 @@ const at = (path: string) => fileURLToPath(new URL(path, import.meta.url))
  */
 export default defineConfig({
   cacheDir: '.vite',
-  plugins: [tailwindcss(), reactRouter()],
+  plugins: [tailwindcss(), reactRouter(), namedEntries],
   resolve: { alias: { '~': at('./app'), '~db': at('./db') } },
   environments: {
     ssr: {
@@ -20,8 +29,7 @@ export default defineConfig({
           input: {
             index: at('./app/server/start.server.ts'),
             'reliability-worker': at('./app/domain/reliability/reliability-worker.server.ts')
-          },
-          output: { entryFileNames: '[name].js' }
+          }
         }
       }
     }
