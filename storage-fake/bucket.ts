@@ -74,7 +74,7 @@ export class Bucket {
   async commit(temporary: string, description: Description, condition: WriteCondition): Promise<void> {
     const { key, bytes, etag, modifiedAt } = description
     const path = this.#path(key)
-    await mkdir(dirname(path), { recursive: true })
+    const newFolder = await mkdir(dirname(path), { recursive: true })
     await this.#inTurn(async () => {
       await this.check(key, condition)
       if (condition.ifAbsent) {
@@ -91,7 +91,7 @@ export class Bucket {
       this.#sorted = null
     })
     await syncFolder(dirname(path))
-    await syncFolder(dirname(dirname(path)))
+    if (newFolder !== undefined) await syncFolder(dirname(newFolder))
   }
 
   /** Removes an object; nothing happens when there is none. */
