@@ -12,6 +12,9 @@ export default [
   route('sign-in/link/:token', 'routes/sign-in/link.page.tsx'),
   route('sign-out', 'routes/sign-in/sign-out.endpoint.ts'),
   route('account', 'routes/account/page.tsx'),
+  route('report', 'routes/reports/file/page.tsx'),
+  route('reports', 'routes/reports/mine/page.tsx'),
+  route('reports/:id', 'routes/reports/one/page.tsx'),
 
   route('health', 'routes/health/endpoint.ts'),
   route('*', 'routes/not-found/page.tsx')

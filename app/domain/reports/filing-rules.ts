@@ -31,3 +31,67 @@ export function filingErrors({ release, revision, unit }: FilingFacts, dates: Fi
 
 /** A unit tag as printed: upper case, without spaces around or inside. */
 export const normalTag = (text: string): string => text.toUpperCase().replace(/\s+/g, '')
+
+/** What an answer calls for: said where it was given, and no reason to turn the report away. */
+export type FilingWarning = { severity: 'caution' | 'note'; heading: string; text: string; because: string }
+export type WarnedOf = {
+  version: string
+  state: 'draft' | 'trial' | 'released' | 'withdrawn'
+  withdrawnReason: string | null
+  revisionCode: string
+  claim: 'fits' | 'fits-with-care' | 'does-not-fit' | 'untested'
+  claimReason: string
+  boardName: string
+  unit: { tag: string; reports: number } | null
+}
+
+/** The warnings that the release, the revision and the unit call for, the weightiest first. */
+export function filingWarnings(of: WarnedOf): FilingWarning[] {
+  const warnings: FilingWarning[] = []
+  const { version, revisionCode, boardName, unit } = of
+  const choseRevision = `Shown because you chose ${revisionCode}.`
+  const choseRelease = `Shown because you chose ${version}.`
+  if (of.claim === 'does-not-fit')
+    warnings.push({
+      severity: 'caution',
+      heading: `${boardName} does not fit ${revisionCode}`,
+      text: `${of.claimReason} If you have fitted it all the same, file it: what went wrong, or right, is worth knowing.`.trim(),
+      because: choseRevision
+    })
+  if (of.state === 'withdrawn')
+    warnings.push({
+      severity: 'caution',
+      heading: `Release ${version} is withdrawn`,
+      text: `${of.withdrawnReason ?? ''} Reports on it count, and matter most: how those that are fitted are doing.`.trim(),
+      because: choseRelease
+    })
+  if (of.claim === 'fits-with-care')
+    warnings.push({
+      severity: 'caution',
+      heading: `Fits ${revisionCode} with care`,
+      text: of.claimReason,
+      because: choseRevision
+    })
+  if (unit !== null && unit.reports > 0)
+    warnings.push({
+      severity: 'caution',
+      heading: `${unit.tag} has been reported before`,
+      text: 'File another report only when it was taken out and fitted anew. To say how it is doing, add a check-in to the first report.',
+      because: 'Shown because of the unit tag.'
+    })
+  if (of.claim === 'untested')
+    warnings.push({
+      severity: 'note',
+      heading: `Untested on ${revisionCode}`,
+      text: 'Nobody has claimed that it fits there. Yours may be the report that settles it.',
+      because: choseRevision
+    })
+  if (of.state === 'trial')
+    warnings.push({
+      severity: 'note',
+      heading: `${version} is a trial`,
+      text: 'It was published to be tried. Its reports are counted under its own version.',
+      because: choseRelease
+    })
+  return warnings
+}
