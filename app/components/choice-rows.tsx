@@ -119,7 +119,7 @@ export function CheckLine({
   value?: string
 }) {
   return (
-    <label className="opt border-y border-hair">
+    <label className="opt max-w-[560px] border-y border-hair">
       <input type="checkbox" name={name} id={name} value={value} defaultChecked={isChecked} />
       <span>
         {label} {note && <small>{note}</small>}

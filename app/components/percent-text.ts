@@ -5,10 +5,11 @@ import { goneUnder, pointAt, type SurvivalPoint } from './chart-geometry'
  * and what rounds to 0 "under 1".
  */
 export function percentText(share: number, lower: number | null): string {
-  if (share >= 1) return lower === null ? 'none failed' : `≥ ${Math.floor(lower * 100 + 1e-9)}`
-  if (share > 0.995) return 'over 99'
-  if (share > 0 && share < 0.005) return 'under 1'
-  return String(Math.round(share * 100))
+  if (share >= 1) return lower === null ? 'none failed' : `≥ ${Math.min(99, Math.floor(lower * 100 + 1e-9))}`
+  const percent = Math.round(share * 100)
+  if (percent === 100) return 'over 99'
+  if (percent === 0 && share > 0) return 'under 1'
+  return String(percent)
 }
 
 /** "95 % at 1 year", or why there is no such figure. */

@@ -43,21 +43,21 @@ export function yearMarks(firstOn: string, today: string): YearMark[] {
 
 export type NamePlace = { anchor: 'start' | 'end'; row: 0 | 1 } | null
 
-/** Room that a name with its day needs. */
-const room = 108
+/** About the room that a release's name (16 px, bold) and the line below it (14 px) need. */
+export const nameRoom = (version: string, below: string): number => Math.max(version.length * 8.8, below.length * 6.9) + 10
 
 /**
  * Where each name stands: right of its dot, or left of it when its right neighbour is near, or one row down; null where there is no
  * room left, then only the dot is drawn.
  */
-export function namePlaces(xs: readonly number[]): NamePlace[] {
+export function namePlaces(names: readonly { x: number; room: number }[]): NamePlace[] {
   const taken: [number, number][][] = [[], []]
-  return xs.map((x, i) => {
-    const next = xs[i + 1] ?? Infinity
+  return names.map(({ x, room }, i) => {
+    const next = names[i + 1]?.x ?? Infinity
     const sides = next - x >= room ? (['start', 'end'] as const) : (['end', 'start'] as const)
     for (const row of [0, 1] as const)
       for (const anchor of sides) {
-        const [from, to] = anchor === 'start' ? [x - 5, x + room - 8] : [x - room + 8, x + 5]
+        const [from, to] = anchor === 'start' ? [x - 5, x - 5 + room] : [x + 5 - room, x + 5]
         const isFree = from >= 0 && to <= line.width && taken[row]!.every(([a, b]) => to <= a || from >= b)
         if (!isFree) continue
         taken[row]!.push([from, to])

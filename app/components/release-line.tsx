@@ -1,4 +1,4 @@
-import { line, namePlaces, timeScale, type LineRelease, type NamePlace } from './release-line-layout'
+import { line, namePlaces, nameRoom, timeScale, type LineRelease, type NamePlace } from './release-line-layout'
 import { ReleaseTimeRule } from './release-time-rule'
 import { TextLink } from './text-link'
 
@@ -48,11 +48,14 @@ const stateBefore = (state: LineRelease['state']) => (state === 'released' ? '' 
 
 function Lying({ releases, shown, today }: Omit<ReleaseLineProps, 'board'>) {
   const at = timeScale(releases[0]!.on, today)
-  const places = namePlaces(releases.map((r) => at(r.on)))
+  const places = namePlaces(releases.map((r) => ({ x: at(r.on), room: nameRoom(r.version, stateBefore(r.state) + r.on) })))
   const height = places.some((p) => p?.row === 1) ? 164 : 116
   return (
     <svg viewBox={`0 0 ${line.width} ${height}`} width={line.width} height={height}>
       <ReleaseTimeRule releases={releases} today={today} />
+      {releases.map(({ version, on }, i) =>
+        places[i]?.row === 1 ? <path key={version} stroke="var(--color-edge)" d={`M${at(on)} ${line.y + 10}V122`} /> : null
+      )}
       {releases.map((release, i) => (
         <Entry
           key={release.version}
@@ -72,11 +75,10 @@ function Entry({ release, x, place, isShown }: { release: LineRelease; x: number
   const textX = place?.anchor === 'end' ? x + 5 : x - 5
   const words = place && (
     <>
-      {place.row === 1 && <path className="ln" strokeWidth="1" d={`M${x} ${line.y + 12}V${y - 16}`} />}
-      <text x={textX} y={y} textAnchor={place.anchor} className={isShown ? 'nm here' : 'nm'}>
+      <text x={textX} y={y} textAnchor={place.anchor} className={isShown ? 'lb nm here' : 'lb nm'}>
         {version}
       </text>
-      <text x={textX} y={y + 20} textAnchor={place.anchor} className="t-soft">
+      <text x={textX} y={y + 20} textAnchor={place.anchor} className="lb t-soft">
         {stateBefore(state)}
         {on}
       </text>

@@ -12,7 +12,10 @@ function bandPlaces(run: Run, { x, y }: Places) {
     if (lower !== null && upper !== null) stretches.at(-1)!.push([x(time), y(upper), y(lower)])
     else if (stretches.at(-1)!.length > 0) stretches.push([])
   }
-  return stretches.filter((s) => s.length > 1)
+  // the limits after the last point belong to no stretch that is drawn
+  return stretches
+    .filter((s) => s.length > 1)
+    .map((s) => [...s.slice(0, -1), [s.at(-1)![0], s.at(-2)![1], s.at(-2)![2]] as [number, number, number]])
 }
 
 export type CurveProps = Places & {

@@ -1,0 +1,126 @@
+import { renderToStaticMarkup as render } from 'react-dom/server'
+import { describe, expect, it } from 'vitest'
+import type { SurvivalPoint } from './chart-geometry'
+import { IncidenceChart } from './incidence-chart'
+import { IntervalBar, IntervalCell } from './interval-bar'
+import { percentText, readingText } from './percent-text'
+import { RangeFigure } from './range-bar'
+import { SurvivalChart, drawnSeries } from './survival-chart'
+import { SurvivalStrips } from './survival-strips'
+
+const curve = (n: number, falls: number, lastDay = 800): SurvivalPoint[] =>
+  Array.from({ length: n }, (_, i) => ({
+    time: Math.round(((i + 1) / n) * lastDay),
+    survival: 1 - (Math.min(i + 1, falls) / n) * 0.5,
+    lower: 0.6,
+    upper: 0.99,
+    atRisk: n - i,
+    censored: i >= falls ? 1 : 0
+  }))
+const chart = (series: { name: string; points: SurvivalPoint[]; marked: boolean }[]) =>
+  render(<SurvivalChart series={series} unit="month" asOf="2026-12-01" />)
+const count = (html: string, part: string) => html.split(part).length - 1
+
+describe('percentText', () => {
+  it.each([
+    [1, 0.592, '≥ 59'],
+    [1, null, 'none failed'],
+    [0.9999, 0.9, 'over 99'],
+    [0.994, 0.9, '99'],
+    [0.928, 0.88, '93'],
+    [0.001, 0, 'under 1'],
+    [0, null, '0']
+  ])('%d with lower %s reads %s', (share, lower, text) => expect(percentText(share, lower)).toBe(text))
+  it('never says 100', () => {
+    for (let n = 0; n <= 10_000; n++) expect(percentText(n / 10_000, 0.9)).not.toBe('100')
+  })
+  it('gives no figure where fewer than five are followed', () => {
+    expect(readingText(curve(8, 1), 700, '1 year')).toBe('too few at 1 year')
+    expect(readingText(curve(40, 0), 365, '1 year')).toBe('≥ 60 % at 1 year')
+  })
+})
+
+describe('SurvivalChart', () => {
+  const many = ['TM-1', 'TM-2', 'TM-3', 'TM-4', 'TM-5', 'TM-6'].map((name) => ({
+    name,
+    points: curve(40, 5),
+    marked: name === 'TM-3'
+  }))
+  it('is drawn twice, each with a description that names the marked one and the day', () => {
+    const html = chart(many)
+    expect(count(html, 'role="img"')).toBe(2)
+    expect(html).toMatch(
+      /aria-label="Share still working by months after fitting, as of 2026-12-01: TM-3 \(marked\) \d+ % at 1 year/
+    )
+  })
+  it('gives band and ticks to the marked one alone, and draws at most three beside it', () => {
+    const html = chart(many)
+    expect(count(html, 'data-part="band"')).toBe(2)
+    expect(count(html, 'data-part="ticks"')).toBe(2)
+    expect(count(html, 'data-curve="other"')).toBe(6)
+    expect(drawnSeries(many).map((s) => s.name)).toEqual(['TM-1', 'TM-2', 'TM-4', 'TM-3'])
+  })
+  it('tells curves by dash before hue', () => {
+    const dashes = drawnSeries(many).map((s) => s.ink.dash)
+    expect(new Set(dashes).size).toBe(4)
+  })
+  it('is faint under ten at risk and gone under five', () => {
+    const html = chart([{ name: 'TM-6', points: curve(12, 2), marked: true }])
+    expect(count(html, 'data-part="full"')).toBe(2)
+    expect(count(html, 'data-part="faint"')).toBe(2)
+    const few = chart([{ name: 'TM-6', points: curve(7, 2), marked: true }])
+    expect([count(few, 'data-part="full"'), count(few, 'data-part="faint"'), count(few, 'data-part="band"')]).toEqual([0, 2, 0])
+    const none = chart([{ name: 'TM-6', points: curve(4, 1), marked: true }])
+    expect(none).not.toContain('data-part="full"')
+    expect(none).not.toContain('data-part="faint"')
+    expect(none).toContain('too few at 1 year')
+  })
+  it('stands without any data', () => expect(chart([])).toContain('role="img"'))
+  it('has no style attribute, no script, no number that is none', () => {
+    for (const html of [chart(many), chart([])]) expect(html).not.toMatch(/ style=|<script|NaN|Infinity/)
+  })
+  it('marks a cut axis, and leaves a whole one alone', () => {
+    const stroke = 'l12 -5M'
+    expect(chart(many)).toContain(stroke)
+    expect(
+      chart([{ name: 'A', points: curve(40, 40).map((p) => ({ ...p, survival: p.survival * 0.3 })), marked: true }])
+    ).not.toContain(stroke)
+  })
+})
+
+describe('SurvivalStrips', () => {
+  it('says which strip is too small for a band, and shows none', () => {
+    const strips = [{ name: 'TM-6', points: curve(7, 1), counts: '7 fitted, 1 failed' }]
+    const html = render(<SurvivalStrips strips={strips} unit="year" />)
+    expect(html).toContain('aria-label="TM-6: too few for a band, ')
+    expect(html).not.toContain('data-part="band"')
+    expect(html).not.toMatch(/ style=|NaN/)
+  })
+})
+
+describe('IntervalBar', () => {
+  it('has a point only where something failed', () => {
+    expect(render(<IntervalBar estimate={0.93} lower={0.88} upper={0.96} />)).toContain('<circle')
+    expect(render(<IntervalBar estimate={1} lower={0.59} upper={1} />)).not.toContain('<circle')
+  })
+  it('runs to the edge without failures and says the bound, never 100', () => {
+    const html = render(<IntervalCell estimate={1} lower={0.59} upper={1} />)
+    expect(html).toContain('≥ 59')
+    expect(html).toContain('H166')
+    expect(html).not.toContain('>100<')
+  })
+  it('says the interval in the same breath', () =>
+    expect(render(<IntervalCell estimate={0.93} lower={0.884} upper={0.957} />)).toContain('95 % interval 88 to 96'))
+  it('has an arrowhead where the interval leaves the scale', () =>
+    expect(render(<IntervalBar estimate={0.71} lower={0.4} upper={0.9} />)).toContain('L4 10l7 5'))
+})
+
+it('RangeFigure and IncidenceChart say their figures in words', () => {
+  expect(render(<RangeFigure worst={0.78} reported={0.919} best={0.922} />)).toContain(
+    'Worst case 78.0, as reported 91.9, best case 92.2 percent'
+  )
+  expect(render(<RangeFigure worst={0.78} reported={1} best={1} />)).not.toContain('100.0')
+  const html = render(<IncidenceChart unit="year" causes={[{ name: 'Fitting', points: [{ time: 400, estimate: 0.016 }] }]} />)
+  expect(html).toContain('Share failed by cause: Fitting 1.6 percent')
+  expect(html).not.toMatch(/ style=|NaN/)
+})
