@@ -52,7 +52,7 @@ function start(name, args, env, onLine = () => {}) {
       appendFileSync(logFile, `${name}: ${line}\n`)
       tail.push(line)
       if (tail.length > 20) tail.shift()
-      onLine(line)
+      if (stream === child.stdout) onLine(line)
     })
   child.stdin.on('error', () => {})
   const ended = new Promise((done) => {
@@ -139,6 +139,7 @@ async function main() {
   writeFileSync(logFile, '')
   const origin = `http://localhost:${port}`
   const common = { NODE_ENV: 'production', FETTLE_MODE: 'demo', PUBLIC_ORIGIN: origin, DATA_DIR: dataDir }
+  const [region, bucket] = ['us-east-1', 'fettle']
   const credentials = { key: 'fettle-demo', secret: 'fettle-demo-secret' }
   const peopleFile = join(dataDir, 'people.json')
 
@@ -149,7 +150,11 @@ async function main() {
     {
       STORAGE_FAKE_DIR: join(dataDir, 'storage'),
       STORAGE_FAKE_HOST: host,
-      STORAGE_FAKE_PORT: String(fakePorts.STORAGE_FAKE_PORT)
+      STORAGE_FAKE_PORT: String(fakePorts.STORAGE_FAKE_PORT),
+      STORAGE_FAKE_REGION: region,
+      STORAGE_FAKE_BUCKET: bucket,
+      STORAGE_FAKE_ACCESS_KEY_ID: credentials.key,
+      STORAGE_FAKE_SECRET_ACCESS_KEY: credentials.secret
     },
     ask('listening')
   )
@@ -165,8 +170,8 @@ async function main() {
     HOST: host,
     APP_SECRET: appSecret(dataDir),
     STORAGE_ENDPOINT: storage.value,
-    STORAGE_REGION: 'local-1',
-    STORAGE_BUCKET: 'fettle',
+    STORAGE_REGION: region,
+    STORAGE_BUCKET: bucket,
     STORAGE_ACCESS_KEY_ID: credentials.key,
     STORAGE_SECRET_ACCESS_KEY: credentials.secret,
     MAIL_API_URL: mail.value,

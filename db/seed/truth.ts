@@ -59,7 +59,7 @@ export const reporting = {
 }
 
 /** The bad lot: one reel of C13 in one Buttress batch. It multiplies the board's own hazard. */
-export const badLot = { board: 'buttress', release: '1.1.1', batch: '2024-09', units: 48, part: 'C13', factor: 7 }
+export const badLot = { board: 'buttress', release: '1.1.1', batch: '2024-09', units: 48, part: 'C13', factor: 14 }
 
 export const truth: Record<string, BoardTruth> = {
   buttress: {
