@@ -22,6 +22,8 @@ export type FileReading = {
   /** Holes of a drill file of either format, in mm. */
   holes: Hole[] | null
   drillFormat: DrillFormat | null
+  /** The copper layers that a drill file's holes run between, as its attribute says; null for all. */
+  span: [number, number] | null
   /** Set once something was found wrong with the file itself, so that checks resting on it are left out. */
   isBroken: boolean
 }

@@ -125,19 +125,24 @@ function checkOutside(reading: BundleReading, copper: FileReading[]): BundleFind
 
 /** Copper layers that miss the holes which another copper layer meets. */
 function checkLayers(reading: BundleReading, indices: Indexed[]): BundleFinding[] {
-  const holes = drillFiles(reading)
-    .filter((file) => !file.isBroken)
-    .flatMap(platedHoles)
-  if (holes.length < leastHoles) return []
+  const drills = drillFiles(reading).filter((file) => !file.isBroken)
+  // Blind and buried holes only meet the layers between which they run.
+  const holesThrough = (layer: number | null) =>
+    drills.filter(({ span }) => span === null || layer === null || (span[0] <= layer && layer <= span[1])).flatMap(platedHoles)
   const judged = indices
     .filter(({ file }) => !file.isBroken)
-    .map(({ file, index }) => ({ file, index, share: shareOnFlashes(index, holes) }))
+    .map(({ file, index }) => ({ file, index, holes: holesThrough(file.layer.index) }))
+    .map(({ file, index, holes }) => ({ file, index, holes, share: shareOnFlashes(index, holes) }))
+    .filter(({ holes }) => holes.length >= leastHoles)
     // Without about as many pads as holes a layer cannot be judged: planes, and pads drawn as areas.
-    .filter(({ index, file }) => index.count >= Math.max(leastHoles, holes.length * (file.layer.side === 'inner' ? 0.3 : 0.5)))
+    .filter(
+      ({ index, file, holes }) => index.count >= Math.max(leastHoles, holes.length * (file.layer.side === 'inner' ? 0.3 : 0.5))
+    )
   const best = Math.max(0, ...judged.map(({ share }) => share))
   if (best < poor) return []
-  return judged.flatMap(({ file, share, index }) => {
-    const isPoor = file.layer.side === 'inner' ? share * holes.length < index.count * 0.2 : share < poor
+  return judged.flatMap(({ file, share, index, holes }) => {
+    // Where one outer layer meets nearly all holes the other must meet most of them: half-symmetric boards mirror onto themselves.
+    const isPoor = file.layer.side === 'inner' ? share * holes.length < index.count * 0.2 : share < (best >= 0.9 ? 0.7 : poor)
     if (!isPoor) return []
     file.isBroken = true
     const project = file.image?.attributes.get('.ProjectId')?.[0]

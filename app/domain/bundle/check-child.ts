@@ -3,7 +3,7 @@ import { checkBundle } from './check-bundle.server'
 import type { ChildMessage, ChildOrder } from './check-child.types'
 
 /**
- * The child process of a bundle check: gets one order over IPC, reports its steps, sends the answer, and ends.
+ * The child process of a bundle check: gets one order over IPC, reports its steps, sends the answer and then the pictures, and ends.
  * It is killed from outside when it takes too long; a crash takes only itself along.
  */
 function send(message: ChildMessage): Promise<void> {
@@ -15,8 +15,19 @@ function send(message: ChildMessage): Promise<void> {
 
 async function run(order: ChildOrder): Promise<void> {
   const bytes = await readFile(order.path)
-  const { check } = await checkBundle(bytes, order.declared, order.limits, (step) => void send({ kind: 'step', step }))
+  const { check, reading, source } = await checkBundle(
+    bytes,
+    order.declared,
+    order.limits,
+    (step) => void send({ kind: 'step', step })
+  )
   await send({ kind: 'checked', check })
+  if (!order.withPictures) return
+  await send({ kind: 'step', step: 'draw' })
+  // Loaded only now: a check without pictures starts faster.
+  const { drawPictures } = await import('./draw-pictures.server')
+  const pictures = reading && source ? await drawPictures(reading, source, order.limits) : null
+  await send({ kind: 'drawn', pictures })
 }
 
 process.once('message', (order: ChildOrder) => {

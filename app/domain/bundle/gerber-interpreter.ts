@@ -1,5 +1,6 @@
-import { arcPoints, type Path } from './geometry'
+import type { Path } from './geometry'
 import { defineAperture, upright, type Aperture, type Placing } from './gerber-apertures'
+import { gerberArc } from './gerber-arc'
 import { hasMarkup, parseAttribute, parseCommentAttribute, textOf, type Attribute } from './gerber-attributes'
 import { GerberCanvas } from './gerber-canvas'
 import { GerberNonsense, TooComplex, type Macro } from './gerber-macro'
@@ -157,25 +158,11 @@ export class GerberInterpreter {
   }
 
   private arc(toX: number, toY: number): Path {
-    const { word, x, y, image } = this
-    let i = (word.hasI ? word.i : 0) * image.scaleX
-    let j = (word.hasJ ? word.j : 0) * image.scaleY
+    const { word, image } = this
+    const i = (word.hasI ? word.i : 0) * image.scaleX
+    const j = (word.hasJ ? word.j : 0) * image.scaleY
     const isClockwise = (this.motion === 'cw') === image.scaleX * image.scaleY > 0
-    if (this.isSingleQuadrant) [i, j] = quadrantCentre(x, y, toX, toY, i, j, isClockwise)
-    const radius = Math.hypot(i, j)
-    if (radius === 0 || radius > 1e5) return [toX, toY]
-    const [cx, cy] = [x + i, y + j]
-    const from = Math.atan2(y - cy, x - cx)
-    let sweep = Math.atan2(toY - cy, toX - cx) - from
-    const isFull = !this.isSingleQuadrant && Math.abs(toX - x) < 1e-9 && Math.abs(toY - y) < 1e-9
-    if (isClockwise) {
-      if (sweep > 0) sweep -= 2 * Math.PI
-      if (isFull) sweep = -2 * Math.PI
-    } else {
-      if (sweep < 0) sweep += 2 * Math.PI
-      if (isFull) sweep = 2 * Math.PI
-    }
-    return arcPoints(cx, cy, radius, from, sweep, toX, toY)
+    return gerberArc({ x: this.x, y: this.y, toX, toY, i, j, isClockwise, isSingleQuadrant: this.isSingleQuadrant })
   }
 
   private beginRegion(): void {
@@ -343,32 +330,4 @@ function number(text: string): number {
   const value = Number(text)
   if (!Number.isFinite(value)) throw new GerberNonsense(`a value that is no number: ${text.slice(0, 20)}`)
   return value
-}
-
-/** The centre's offset of a single-quadrant arc, whose I and J carry no sign: the one of four that fits best. */
-function quadrantCentre(
-  x: number,
-  y: number,
-  toX: number,
-  toY: number,
-  i: number,
-  j: number,
-  isClockwise: boolean
-): [number, number] {
-  let best: [number, number] = [i, j]
-  let least = Infinity
-  for (const si of [1, -1]) {
-    for (const sj of [1, -1]) {
-      const [ci, cj] = [Math.abs(i) * si, Math.abs(j) * sj]
-      const difference = Math.abs(Math.hypot(ci, cj) - Math.hypot(toX - x - ci, toY - y - cj))
-      let sweep = Math.atan2(toY - y - cj, toX - x - ci) - Math.atan2(-cj, -ci)
-      if (isClockwise) sweep = -sweep
-      while (sweep < -1e-9) sweep += 2 * Math.PI
-      if (sweep <= Math.PI / 2 + 1e-6 && difference < least) {
-        least = difference
-        best = [ci, cj]
-      }
-    }
-  }
-  return best
 }

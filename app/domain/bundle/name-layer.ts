@@ -51,6 +51,13 @@ export function roleFromAttribute(values: readonly string[] | undefined): Role |
   return others.includes(name!) ? role('other', sideOf(second) ?? sideOf(third)) : null
 }
 
+/** The copper layers that a drill file's attribute (`Plated,1,2,Blind`) says its holes run between; null when it says nothing. */
+export function spanFromAttribute(values: readonly string[] | undefined): [number, number] | null {
+  const [name, from, to] = values ?? []
+  if (!['Plated', 'NonPlated', 'MixedPlating'].includes(name ?? '')) return null
+  return /^\d{1,3}$/.test(from ?? '') && /^\d{1,3}$/.test(to ?? '') ? [Number(from), Number(to)] : null
+}
+
 /** Customary extensions of Gerber layers (common practice, no source). */
 const byExtension: [RegExp, Role][] = [
   [/^(gtl|cmp)$/, role('copper', 'top')],

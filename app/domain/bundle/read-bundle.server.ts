@@ -6,7 +6,15 @@ import { finding } from './finding'
 import { readFileAttributes, textOf } from './gerber-attributes'
 import { holesOfGerber } from './gerber-drill'
 import type { CheckLimits } from './limits'
-import { decideRoles, roleFromAttribute, roleFromName, roleFromWords, type NamedFile, type Role } from './name-layer'
+import {
+  decideRoles,
+  roleFromAttribute,
+  roleFromName,
+  roleFromWords,
+  spanFromAttribute,
+  type NamedFile,
+  type Role
+} from './name-layer'
 import { findOutline } from './outline-contours'
 import { settleDrillFormat } from './drill-format'
 import { readBom } from './read-bom'
@@ -25,20 +33,22 @@ const isLayerRole = (fn: string) =>
 
 /** Tells what each file is for: by its attributes, its name, its content. */
 export async function tellLayers(source: BundleSource, limits: CheckLimits): Promise<FileReading[]> {
-  const named: (NamedFile & Pick<FileReading, 'kind' | 'size' | 'path'>)[] = []
+  const named: (NamedFile & Pick<FileReading, 'kind' | 'size' | 'path' | 'span'>)[] = []
   for (const entry of source.entries) {
     const bytes = await source.read(entry)
     const kind = kindOf(bytes)
-    const base = { path: entry.path, file: shownName(entry.path), kind, size: bytes.length }
+    const base = { path: entry.path, file: shownName(entry.path), kind, size: bytes.length, span: null }
     const none = { attribute: null, name: null, content: null }
     if (kind === 'gerber' || kind === 'drill') {
-      const attribute = roleFromAttribute(readFileAttributes(bytes).get('.FileFunction'))
+      const fileFunction = readFileAttributes(bytes).get('.FileFunction')
+      const attribute = roleFromAttribute(fileFunction)
+      const span = spanFromAttribute(fileFunction)
       const name = roleFromName(entry.path)
-      if (kind === 'gerber') named.push({ ...base, attribute, name, content: titleRole(bytes) })
+      if (kind === 'gerber') named.push({ ...base, attribute, span, name, content: titleRole(bytes) })
       else {
         // The content says that it drills, whatever the name; the name may still say whether the holes are plated.
         const drill: Role = { function: 'drill', side: null, index: null }
-        named.push({ ...base, attribute, name: name?.function.startsWith('drill') ? name : null, content: drill })
+        named.push({ ...base, attribute, span, name: name?.function.startsWith('drill') ? name : null, content: drill })
       }
       continue
     }
@@ -46,9 +56,9 @@ export async function tellLayers(source: BundleSource, limits: CheckLimits): Pro
     named.push({ ...base, ...none, name, content: name === null && kind === 'text' ? listRole(bytes, limits) : null })
   }
   const roles = decideRoles(named)
-  return named.map(({ path, kind, size }, i) => {
+  return named.map(({ path, kind, size, span }, i) => {
     const { isUndecided, conflict, ...layer } = roles[i]!
-    return { layer, path, kind, size, conflict, isUndecided, image: null, holes: null, drillFormat: null, isBroken: false }
+    return { layer, path, kind, size, conflict, isUndecided, image: null, holes: null, drillFormat: null, span, isBroken: false }
   })
 }
 

@@ -5,7 +5,7 @@ import { createRequire } from 'node:module'
 import { setPriority } from 'node:os'
 import { fileURLToPath, pathToFileURL } from 'node:url'
 import { DomainError } from '../../lib/domain-error'
-import { unknownFacts, type BundleCheck, type CheckStep, type DeclaredDetails } from './bundle-check.types'
+import { unknownFacts, type BundleCheck, type BundlePictures, type CheckStep, type DeclaredDetails } from './bundle-check.types'
 import type { ChildMessage, ChildOrder } from './check-child.types'
 import { Queue } from './check-queue'
 import { finding } from './finding'
@@ -16,9 +16,11 @@ export type CheckInput = DeclaredDetails & {
   path: string
   onProgress?: (step: CheckStep) => void
   signal?: AbortSignal
-  /** Gets what a crashed child wrote last; for the log, not for people. */
+  /** Gets what a crashed child wrote; for the log, not for people. */
   onCrash?: (detail: string) => void
 }
+
+export type CheckWithPictures = { check: BundleCheck; pictures: BundlePictures | null }
 
 /** At most two checks at once; more than fifty waiting are turned away. */
 const queue = new Queue(2, 50)
@@ -31,24 +33,30 @@ const queue = new Queue(2, 50)
  * @throws the signal's reason when aborted
  */
 export async function runBundleCheck(input: CheckInput, limits: Partial<CheckLimits> = {}): Promise<BundleCheck> {
-  return queue.add(() => runChild(input, { ...defaultLimits, ...limits }), input.signal)
+  return (await queue.add(() => runChild(input, { ...defaultLimits, ...limits }, false), input.signal)).check
 }
 
-async function runChild(input: CheckInput, limits: CheckLimits): Promise<BundleCheck> {
+/** The same check, and both sides drawn where that is possible. A failure to draw never fails the check. */
+export function runBundleCheckWithPictures(input: CheckInput, limits: Partial<CheckLimits> = {}): Promise<CheckWithPictures> {
+  return queue.add(() => runChild(input, { ...defaultLimits, ...limits }, true), input.signal)
+}
+
+async function runChild(input: CheckInput, limits: CheckLimits, withPictures: boolean): Promise<CheckWithPictures> {
   const bytes = await sizeOf(input.path)
   input.signal?.throwIfAborted()
   if (bytes > limits.zipBytes) {
     const details = { expected: `at most ${limits.zipBytes} bytes`, found: `${bytes} bytes` }
-    return failed(bytes, finding('zip-too-large', 'The zip is larger than a bundle may be.', details))
+    return { check: failed(bytes, finding('zip-too-large', 'The zip is larger than a bundle may be.', details)), pictures: null }
   }
   const { path, declaredLayers, thicknessMm } = input
-  return follow(startChild(limits), { path, declared: { declaredLayers, thicknessMm }, limits }, bytes, input)
+  return follow(startChild(limits), { path, declared: { declaredLayers, thicknessMm }, limits, withPictures }, bytes, input)
 }
 
 /** Waits for the child's answer, its death, the end of its time or the caller's signal, whichever comes first. */
-function follow(child: ChildProcess, order: ChildOrder, bytes: number, input: CheckInput): Promise<BundleCheck> {
+function follow(child: ChildProcess, order: ChildOrder, bytes: number, input: CheckInput): Promise<CheckWithPictures> {
   return new Promise((resolve, reject) => {
     let check: BundleCheck | null = null
+    let pictures: BundlePictures | null = null
     let isLate = false
     let lastWords = ''
     const kill = () => child.kill('SIGKILL')
@@ -57,17 +65,18 @@ function follow(child: ChildProcess, order: ChildOrder, bytes: number, input: Ch
       kill()
     }, order.limits.wallMs)
     input.signal?.addEventListener('abort', kill, { once: true })
-    child.stderr?.on('data', (chunk: Buffer) => (lastWords = (lastWords + chunk.toString()).slice(-2000)))
+    child.stderr?.on('data', (chunk: Buffer) => (lastWords += chunk.toString().slice(0, Math.max(0, 4000 - lastWords.length))))
     child.on('message', (message: ChildMessage) => {
       if (message.kind === 'step') input.onProgress?.(message.step)
-      else check = message.check
+      else if (message.kind === 'checked') check = message.check
+      else pictures = message.pictures
     })
     const end = (code: number | null, signal: string | null) => {
       clearTimeout(timer)
       input.signal?.removeEventListener('abort', kill)
       if (input.signal?.aborted) return reject(input.signal.reason as Error)
       if (!check || code !== 0) input.onCrash?.(`code ${code}, signal ${signal}: ${lastWords}`)
-      resolve(check ?? failed(bytes, cutOff(isLate, order.limits, signal ?? `exit ${code}`)))
+      resolve({ check: check ?? failed(bytes, cutOff(isLate, order.limits, signal ?? `exit ${code}`)), pictures })
     }
     child.once('error', (error) => {
       lastWords = error.message
