@@ -95,3 +95,21 @@ describe('many mistakes', () => {
     ])
   })
 })
+
+test('a wrong value is told from values that cannot be true together', () => {
+  const kinds = (rows: Observation[]) => checkObservations(rows).map(({ kind }) => kind)
+  expect(
+    kinds([
+      { time: -1, event: 0 },
+      { lower: 5, upper: 4 },
+      { time: 5, event: 0, entry: 5 }
+    ])
+  ).toEqual(['invalid', 'impossible', 'impossible'])
+  expect(
+    kinds([
+      { lower: 2, upper: 5, event: 0 },
+      { lower: 2, upper: 5, event: 'board' },
+      { lower: 2, upper: 5 }
+    ])
+  ).toEqual(['impossible'])
+})

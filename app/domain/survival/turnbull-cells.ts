@@ -27,7 +27,11 @@ const openLeft = 2
  */
 export function cellsOf({ entry, lower, upper }: Spans): Cells {
   const n = lower.length
-  const values = distinctSorted(Float64Array.from([...entry, ...lower, ...upper.filter((value) => value !== Infinity)]))
+  const all = new Float64Array(3 * n)
+  all.set(entry)
+  all.set(lower, n)
+  for (let i = 0; i < n; i++) all[2 * n + i] = upper[i] === Infinity ? lower[i]! : upper[i]!
+  const values = distinctSorted(all)
   const rank = (value: number) => (value === Infinity ? values.length : lastAtOrBefore(values, value))
   const leftAt = new Int32Array(n)
   const rightAt = new Int32Array(n)

@@ -1,0 +1,44 @@
+import { lastAtOrBefore } from './columns'
+import { garwood, type RatioLimits } from './garwood'
+import type { CumulativeHazard } from './nelson-aalen'
+
+/** One unit of the batch; `isFailed` when its board failed at `time`. */
+export type BatchUnit = { entry?: number; time: number; isFailed: boolean; weight?: number }
+
+export type BatchWatch = RatioLimits & {
+  /** The batch has more board failures than its release's others: the lower limit of the ratio is above 1. */
+  isFlagged: boolean
+  /** Up to this time the other batches were followed; nothing later is compared. */
+  comparedTo: number
+  /** Failures of the batch after that time, left out. */
+  laterFailures: number
+}
+
+/**
+ * Board failures of a batch over the number expected from the release's other batches: the other batches' Nelson-Aalen hazard H summed over this
+ * batch's units, H(time) - H(entry), with Garwood's limits. Both are counted only as far as the other batches were followed, since there is
+ * no hazard to expect from afterwards.
+ *
+ * Null when nothing can be expected: no other batch, or none of theirs has failed by then.
+ *
+ * Source: N. E. Breslow and N. E. Day, Statistical Methods in Cancer Research II (IARC 1987), section 2.2 (observed over expected).
+ *
+ * @param others hazard of the release's other batches, failures by the board only
+ */
+export function batchWatch(batch: readonly BatchUnit[], others: CumulativeHazard, confidence = 0.95): BatchWatch | null {
+  const comparedTo = others.time.at(-1)
+  if (comparedTo === undefined) return null
+  const hazard = (t: number) => others.cumulative[lastAtOrBefore(others.time, t)] ?? 0
+  let observed = 0
+  let expected = 0
+  let laterFailures = 0
+  for (const { entry = 0, time, isFailed, weight = 1 } of batch) {
+    // A unit watched from its origin is at risk on day 0 too.
+    expected += weight * (hazard(time) - (entry > 0 ? hazard(entry) : 0))
+    if (!isFailed) continue
+    if (time <= comparedTo) observed += weight
+    else laterFailures += weight
+  }
+  const ratio = garwood(observed, expected, confidence)
+  return ratio && { ...ratio, isFlagged: ratio.lower > 1, comparedTo, laterFailures }
+}
