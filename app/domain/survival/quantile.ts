@@ -24,7 +24,12 @@ export function quantile(curve: SurvivalCurve, limits: CurveLimits, p: number): 
 }
 
 /** First time a step curve is at or below `level`; NaN and skipped rows are no part of the curve. Null when it never is. */
-function firstCrossing(time: Float64Array, value: Float64Array, level: number, skip: Uint8Array | null): number | null {
+export function firstCrossing(
+  time: Float64Array,
+  value: Float64Array,
+  level: number,
+  skip: Uint8Array | null = null
+): number | null {
   for (let i = 0; i < time.length; i++) {
     if (skip?.[i] === 1 || !(value[i]! <= level + timeTolerance)) continue
     if (value[i]! < level - timeTolerance) return time[i]!
