@@ -1,5 +1,6 @@
 import { checkCommand } from './check-command'
 import type { Command } from './command'
+import { survivalCommand } from './survival-command'
 
 /** Every command of `fettle`, by name. */
-export const commands: Command[] = [checkCommand]
+export const commands: Command[] = [checkCommand, survivalCommand]

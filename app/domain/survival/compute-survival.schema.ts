@@ -1,11 +1,13 @@
 import { z } from 'zod'
 import { DomainError, type FieldError } from '~/lib/domain-error'
 import { fieldErrors } from '~/lib/parse-form'
+import { causesOf } from './columns'
 import { checkObservations, isInterval, type Observation } from './observation'
 
 export const maxRows = 200_000
 export const maxBytes = 16 * 1024 * 1024
 const maxGroups = 100
+const maxCauses = 50
 const maxUnits = 1e9
 const maxErrors = 100
 
@@ -93,6 +95,9 @@ export function parseSurvivalRequest(input: unknown): SurvivalRequest {
     )
   if (observations.reduce((sum, { weight = 1 }) => sum + weight, 0) > maxUnits)
     throw tooLarge(`The weights add up to more than ${maxUnits} units.`)
+  const causes = causesOf(observations).length
+  if (causes > maxCauses)
+    throw invalid([{ path: 'observations', message: `There are ${causes} causes; at most ${maxCauses} can be told apart.` }])
   return { observations, ...groupsOf(rows.map(({ group }) => group)), ...options, tau: tau ?? null }
 }
 
@@ -136,6 +141,23 @@ const invalid = (errors: FieldError[], isImpossible = false) =>
       : `${errors.length >= maxErrors ? 'Many' : errors.length} values cannot be used; see each message.`,
     errors.slice(0, maxErrors)
   )
+
+/**
+ * `parseSurvivalRequest` of JSON text.
+ *
+ * @throws DomainError as there; `too-large` past 16 MiB, `invalid` for text that is no JSON
+ */
+export function parseSurvivalText(text: string): SurvivalRequest {
+  if (new TextEncoder().encode(text).length > maxBytes)
+    throw tooLarge(`The request is larger than ${maxBytes / 1024 / 1024} MiB.`)
+  let input: unknown
+  try {
+    input = JSON.parse(text.replace(/^\uFEFF/, ''))
+  } catch (error) {
+    throw new DomainError('invalid', `This is not JSON: ${(error as Error).message}`)
+  }
+  return parseSurvivalRequest(input)
+}
 
 /** Whether any row is given as an interval. */
 export const hasIntervals = ({ observations }: SurvivalRequest): boolean => observations.some(isInterval)

@@ -3,60 +3,19 @@ import { aalenJohansen } from './aalen-johansen'
 import { causesOf, columnsOf, splitColumns, type Columns } from './columns'
 import { hasIntervals, type SurvivalRequest } from './compute-survival.schema'
 import { computeTurnbullGroup } from './compute-turnbull'
-import { curveLimits, type Bound } from './confidence-limits'
+import { curveLimits } from './confidence-limits'
 import { curveRows } from './curve-rows'
 import { kaplanMeier } from './kaplan-meier'
 import { logRank } from './log-rank'
 import { nelsonAalen } from './nelson-aalen'
 import type { Observation, TimedObservation } from './observation'
-import { quantile, type Quantile } from './quantile'
+import { quantile } from './quantile'
 import { restrictedMean } from './restricted-mean'
 import { spansOf, type Spans } from './spans'
+import type { GroupAnswer, SurvivalAnswer, WeibullAnswer } from './survival-answer'
 import { tallyOf, type Tally } from './tally'
-import { fitWeibull, type Estimate } from './weibull'
+import { fitWeibull } from './weibull'
 import { weibullQuantile } from './weibull-quantities'
-
-/** A row of an answered curve. `events` and `censored` are null for interval-censored data, where no unit's failure has a known time. */
-export type AnswerRow = {
-  time: number
-  atRisk: number
-  events: number | null
-  censored: number | null
-  survival: number
-  standardError: number | null
-  lower: number | null
-  upper: number | null
-  bound: Bound | null
-}
-
-export type WeibullAnswer = {
-  shape: number
-  scale: number
-  shapeStandardError: number
-  scaleStandardError: number
-  logLikelihood: number
-  b10: Estimate
-  median: Estimate
-}
-
-export type GroupAnswer = {
-  group: string | null
-  n: number
-  events: number
-  curve: AnswerRow[]
-  median: Quantile
-  rmst: { tau: number; estimate: number | null; standardError: number | null } | null
-  hazard: { time: number; cumulative: number }[]
-  weibull: WeibullAnswer | null
-  support?: { lower: number; upper: number | null; mass: number }[]
-  incidence?: { cause: string; curve: { time: number; estimate: number; standardError: number }[] }[]
-}
-
-export type SurvivalAnswer = {
-  method: 'kaplan-meier' | 'turnbull'
-  groups: GroupAnswer[]
-  logRank: { chiSquare: number; degreesOfFreedom: number; p: number } | null
-}
 
 /**
  * Computes the answer of `POST /api/v1/compute/survival` (METHODS.md section 1), the same for pages, endpoint and command line. Kaplan-Meier, with

@@ -1,9 +1,9 @@
 import { bootstrapTurnbull } from './bootstrap'
-import type { AnswerRow, GroupAnswer, WeibullAnswer } from './compute-survival'
 import type { SurvivalRequest } from './compute-survival.schema'
 import { firstCrossing } from './quantile'
 import { seededRandom } from './special/seeded-random'
 import type { Spans } from './spans'
+import type { AnswerRow, GroupAnswer, WeibullAnswer } from './survival-answer'
 import { turnbull } from './turnbull'
 
 const resamples = 200
