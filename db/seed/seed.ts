@@ -24,7 +24,10 @@ export type SeedOptions = {
   say?: (line: string) => void
 }
 
-const realCheck: NonNullable<SeedOptions['check']> = async (input) => ({ check: await runBundleCheck(input), pictures: null })
+export const realCheck: NonNullable<SeedOptions['check']> = async (input) => ({
+  check: await runBundleCheck(input),
+  pictures: null
+})
 
 type Rows<T extends keyof Schema> = Insertable<Schema[T]>[]
 type Checked = { manifest: Manifest; check: BundleCheck; pictureTop: string | null; pictureBottom: string | null }
