@@ -75,6 +75,18 @@ describe('SurvivalChart', () => {
     expect(none).not.toContain('data-part="faint"')
     expect(none).toContain('too few at 1 year')
   })
+  it('keeps long names whole: they end inside the drawing', () => {
+    const named = ['0.9.0-beta.2', '1.1.0'].map((name) => ({ name, points: curve(40, 5), marked: name !== '1.1.0' }))
+    const html = chart(named)
+    for (const [width, svg] of html
+      .split('<svg ')
+      .slice(1)
+      .map((svg): [number, string] => [svg.startsWith('viewBox="0 0 328') ? 328 : 804, svg])) {
+      const at = Number(/<text x="([\d.]+)"[^>]*t-mark[^>]*>0\.9\.0-beta\.2</.exec(svg)![1])
+      // 17 px bold is about 8.5 px a character (measured in Chromium with Source Sans 3)
+      expect(at + 12 * 8.5).toBeLessThanOrEqual(width)
+    }
+  })
   it('stands without any data', () => expect(chart([])).toContain('role="img"'))
   it('has no style attribute, no script, no number that is none', () => {
     for (const html of [chart(many), chart([])]) expect(html).not.toMatch(/ style=|<script|NaN|Infinity/)

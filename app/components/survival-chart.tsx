@@ -4,7 +4,7 @@ import { axisFloor, linear, percentTicks, timeAxis, visibleRuns, type SurvivalPo
 import { curveInks } from './curve-ink'
 import { TwoDrawings } from './figure'
 import { readingText } from './percent-text'
-import { AtRiskRows, CurveLabels, type DrawnSeries } from './survival-labels'
+import { AtRiskRows, CurveLabels, nameWidths, rowHeight, type DrawnSeries } from './survival-labels'
 import { SurvivalCurve } from './survival-curve'
 
 export type SurvivalSeries = { name: string; points: SurvivalPoint[]; marked: boolean }
@@ -62,11 +62,20 @@ export function SurvivalChart(props: SurvivalChartProps) {
   return <TwoDrawings wide={<Drawing {...props} drawn={drawn} />} narrow={<Drawing {...props} drawn={drawn} isNarrow />} />
 }
 
-const sizes = {
-  wide: { width: 804, plot: { left: 64, right: 664, top: 26, bottom: 348 } },
-  narrow: { width: 328, plot: { left: 58, right: 262, top: 26, bottom: 300 } },
-  smallWide: { width: 500, plot: { left: 44, right: 482, top: 26, bottom: 206 } },
-  smallNarrow: { width: 328, plot: { left: 44, right: 310, top: 26, bottom: 176 } }
+/** The drawing's width and where its axes lie: long names (releases) take room from the plot, never from themselves. */
+function layout(drawn: DrawnSeries[], isNarrow: boolean, isSmall: boolean) {
+  if (isSmall) {
+    const [width, right, bottom] = isNarrow ? [328, 310, 176] : [500, 482, 206]
+    return { width, plot: { left: 44, right, top: 26, bottom }, isStacked: false }
+  }
+  const { label, row } = nameWidths(drawn)
+  const isStacked = isNarrow && row > 42
+  if (isNarrow) return { width: 328, plot: { left: 58, right: Math.min(262, 312 - label), top: 26, bottom: 300 }, isStacked }
+  return {
+    width: 804,
+    plot: { left: Math.max(64, row + 22), right: Math.min(664, 786 - label), top: 26, bottom: 348 },
+    isStacked
+  }
 }
 
 type DrawingProps = SurvivalChartProps & { drawn: DrawnSeries[]; isNarrow?: boolean }
@@ -74,7 +83,7 @@ type DrawingProps = SurvivalChartProps & { drawn: DrawnSeries[]; isNarrow?: bool
 function Drawing({ drawn, isNarrow, ...props }: DrawingProps) {
   const { isSmall, unit, reading = oneYear } = props
   const clip = useId()
-  const { width, plot } = isSmall ? (isNarrow ? sizes.smallNarrow : sizes.smallWide) : isNarrow ? sizes.narrow : sizes.wide
+  const { width, plot, isStacked } = layout(drawn, isNarrow === true, isSmall === true)
   const extent = drawnExtent(drawn)
   const floor = axisFloor(extent.lowest)
   const axis = timeAxis(extent.lastDay, unit)
@@ -82,7 +91,7 @@ function Drawing({ drawn, isNarrow, ...props }: DrawingProps) {
   const percent = linear(floor, 100, plot.bottom, plot.top)
   const y = (share: number) => percent(share * 100)
   const rowsTop = plot.bottom + 50
-  const height = isSmall ? plot.bottom + 44 : rowsTop + 22 * drawn.length + 14
+  const height = isSmall ? plot.bottom + 44 : rowsTop + rowHeight(isStacked) * drawn.length + 14
   return (
     <svg viewBox={`0 0 ${width} ${height}`} width={width} height={height} role="img" aria-label={inWords(drawn, props)}>
       <clipPath id={clip}>
@@ -115,7 +124,7 @@ function Drawing({ drawn, isNarrow, ...props }: DrawingProps) {
       {!isSmall && (
         <>
           <CurveLabels drawn={drawn} x={x} y={y} plot={plot} isNarrow={isNarrow} reading={reading} />
-          <AtRiskRows drawn={drawn} x={x} ticks={axis.ticks} top={rowsTop} />
+          <AtRiskRows drawn={drawn} x={x} ticks={axis.ticks} top={rowsTop} isStacked={isStacked} />
         </>
       )}
     </svg>

@@ -49,10 +49,19 @@ export function CurveLabels({ drawn, x, y, plot, isNarrow, reading }: LabelProps
   })
 }
 
-type RowsProps = { drawn: DrawnSeries[]; x: Scale; ticks: { label: string; days: number }[]; top: number }
+/** About how wide the longest name is, at a line's end and in the rows below. */
+export const nameWidths = (drawn: readonly DrawnSeries[]) => ({
+  label: Math.max(0, ...drawn.map((s) => s.name.length * (s.isMarked ? 9.2 : 7.6))),
+  row: Math.max(0, ...drawn.map((s) => s.name.length * 7.6))
+})
+
+/** How high the rows are; `isStacked` sets a long name over its counts. */
+export const rowHeight = (isStacked: boolean) => (isStacked ? 40 : 22)
+
+type RowsProps = { drawn: DrawnSeries[]; x: Scale; ticks: { label: string; days: number }[]; top: number; isStacked: boolean }
 
 /** How many were still followed at each tick; the marked row is bold. The rows keep the order of the names. */
-export function AtRiskRows({ drawn, x, ticks, top }: RowsProps) {
+export function AtRiskRows({ drawn, x, ticks, top, isStacked }: RowsProps) {
   const rows = [...drawn].sort((a, b) => a.name.localeCompare(b.name, 'en', { numeric: true }))
   return (
     <g>
@@ -60,7 +69,7 @@ export function AtRiskRows({ drawn, x, ticks, top }: RowsProps) {
         still followed (at risk)
       </text>
       {rows.map(({ name, points, isMarked, ink }, i) => {
-        const y = top + 20 + 22 * i
+        const y = top + 20 + rowHeight(isStacked) * i
         return (
           <g key={name}>
             <text x="0" y={y} className={`${isMarked ? 'font-bold' : 'font-semibold'} ${ink.textClass}`}>
@@ -72,7 +81,7 @@ export function AtRiskRows({ drawn, x, ticks, top }: RowsProps) {
                 <text
                   key={label}
                   x={x(days)}
-                  y={y}
+                  y={isStacked ? y + 17 : y}
                   textAnchor="middle"
                   className={`${isMarked ? 'font-bold' : ''} ${n < faintUnder ? 't-soft' : ''}`}
                 >
