@@ -13,13 +13,19 @@ export async function loadAccount({ db, now }: Given, userId: string | null, cur
   const user = userId === null ? undefined : await users.findById(db, userId)
   if (user === undefined) throw new DomainError('unauthenticated', 'Sign in to see your account.')
   const live = await sessions.listByUser(db, user.id, now().toISOString(), maxSessionsShown)
+  const isCurrent = (row: { idHash: string }) => row.idHash === currentHash
   return {
     displayName: user.displayName,
     email: user.email,
     isEmailVerified: user.emailVerifiedAt !== null,
     githubLogin: user.githubId === null ? null : user.githubLogin,
     createdAt: user.createdAt,
-    sessions: live.map(({ idHash, ...times }) => ({ ...times, id: idHash, isCurrent: idHash === currentHash }))
+    sessions: [...live.filter(isCurrent), ...live.filter((row) => !isCurrent(row))].map((row) => ({
+      id: row.idHash,
+      createdAt: row.createdAt,
+      lastSeenAt: row.lastSeenAt,
+      isCurrent: isCurrent(row)
+    }))
   }
 }
 

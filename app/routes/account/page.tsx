@@ -74,9 +74,8 @@ export default function Account({ loaderData: account, actionData }: Route.Compo
         </form>
       </Title>
       <Section number={1} heading="Your name" margin={<p>Everybody can see it. A workshop’s name is as good as a person’s.</p>}>
-        <form method="post" action="/account" noValidate>
+        <form method="post" action="/account" noValidate className="space-y-6">
           <ErrorSummary errors={errors} before="the name can be changed" />
-          <input type="hidden" name="intent" value="rename" />
           <TextField
             name="displayName"
             label="Display name"
@@ -87,6 +86,7 @@ export default function Account({ loaderData: account, actionData }: Route.Compo
             error={errors.find((e) => e.path === 'displayName')?.message}
             required
           />
+          <input type="hidden" name="intent" value="rename" />
           <Actions>
             <Button>Change the name</Button>
           </Actions>
@@ -133,14 +133,19 @@ function Sessions({ sessions }: { sessions: AccountData['sessions'] }) {
       }
     >
       <Table
-        caption="Each browser you signed in with, the one used last first."
+        caption="This browser, then each other one that you signed in with, the one used last first."
         columns={[
           { key: 'since', head: 'Signed in', isRowHead: true, cell: (row) => minute(row.createdAt) },
           { key: 'seen', head: 'Last used', cell: (row) => (row.isCurrent ? 'now' : minute(row.lastSeenAt)) },
-          { key: 'end', head: '', label: '', cell: (row) => (row.isCurrent ? 'this browser' : <EndOne id={row.id} />) }
+          {
+            key: 'end',
+            head: <span className="vh">End it</span>,
+            cell: (row) => (row.isCurrent ? 'this browser' : <EndOne id={row.id} />)
+          }
         ]}
         rows={sessions}
         rowKey={(row) => row.id}
+        isFolded
       />
       {sessions.length > 1 && (
         <form method="post" action="/account">

@@ -85,7 +85,7 @@ export default function SignInByLink({ loaderData, actionData }: Route.Component
           </p>
         }
       >
-        <form method="post" noValidate>
+        <form method="post" noValidate className="space-y-6">
           <ErrorSummary errors={errors} before="the account can be opened" />
           <p>
             You will be signed in as <b>{email}</b>, which nobody else gets to see.

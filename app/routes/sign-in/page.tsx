@@ -69,13 +69,12 @@ export default function SignIn({ loaderData, actionData }: Route.ComponentProps)
           </Actions>
         </form>
       </Section>
-      <Section number={2} heading="By a link in a mail">
+      <Section number={2} heading="By a link in a mail" id="mail">
         {sent ? (
           <Sent address={sent.sentTo} mailFakeUrl={sent.mailFakeUrl} />
         ) : (
-          <form method="post" action="/sign-in" noValidate>
+          <form method="post" action="/sign-in#mail" noValidate className="space-y-6">
             <ErrorSummary errors={errors} before="the mail can go out" />
-            <input type="hidden" name="return" value={returnTo} />
             <TextField
               name="email"
               type="email"
@@ -88,8 +87,9 @@ export default function SignIn({ loaderData, actionData }: Route.ComponentProps)
               error={errors.find((e) => e.path === 'email')?.message}
               required
             />
+            <input type="hidden" name="return" value={returnTo} />
             <Actions>
-              <Button kind="outline">Mail me a link</Button>
+              <Button>Mail me a link</Button>
             </Actions>
           </form>
         )}

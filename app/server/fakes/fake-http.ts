@@ -69,14 +69,14 @@ export const escapeHtml = (text: string) =>
 const style = `
   body { font: 17px/1.5 'Source Sans 3', sans-serif; margin: 0 auto; padding: 24px 16px 72px; max-width: 44rem; color: #1a1c1b; background: #f5f0e4 }
   h1 { font-size: 1.9rem; line-height: 1.1; margin: 0 0 12px } h2 { font-size: 1.1rem; margin: 0 }
-  .say { color: #56534a; margin: 0 0 24px } article, li { border-top: 1px solid #1a1c1b; padding: 16px 0 }
+  .say { color: #56534a; margin: 0 0 24px } article { border-top: 1px solid #1a1c1b; padding: 16px 0 } li { margin: 12px 0 }
   ul { list-style: none; padding: 0; margin: 24px 0 } dl { margin: 4px 0 12px; color: #56534a } dt, dd { display: inline; margin: 0 }
   pre { white-space: pre-wrap; overflow-wrap: anywhere; font: inherit; margin: 0 } a { color: #0b5566 }
   button { font: inherit; min-height: 48px; padding: 8px 20px; border: 2px solid #1a1c1b; border-radius: 2px; background: none; color: inherit; cursor: pointer }
   button.who { display: block; width: 100%; text-align: left } button:hover { background: #e9e2d2 }
   button small, .say { display: block } :focus-visible { outline: 3px solid #0b5566; outline-offset: 2px }
   @media (prefers-color-scheme: dark) {
-    body { color: #ece5d6; background: #161a1a } .say, dl { color: #b3ad9e } article, li, button { border-color: #ece5d6 }
+    body { color: #ece5d6; background: #161a1a } .say, dl { color: #b3ad9e } article, button { border-color: #ece5d6 }
     a { color: #79c3cc } button:hover { background: #232a29 } :focus-visible { outline-color: #79c3cc }
   }`
 

@@ -139,7 +139,7 @@ function readMail(text: string): Omit<SentMail, 'id' | 'at' | 'idempotencyKey'> 
 /** Escapes a mail's text and makes its web addresses links. */
 const linked = (text: string) =>
   text
-    .split(/(https?:\/\/[^\s<>"']+)/)
+    .split(/(https?:\/\/[^\s<>"'()]*[^\s<>"'().,;:!?])/)
     .map((part, i) => (i % 2 === 1 ? `<a href="${escapeHtml(part)}">${escapeHtml(part)}</a>` : escapeHtml(part)))
     .join('')
 
