@@ -1,5 +1,5 @@
 import { Resend } from 'resend'
-import * as outbox from '~/domain/mail/outbox.repo.server'
+import { claimDueMails, settleMail, type DueMail } from '~/domain/mail/delivery.server'
 import { log, logError } from './log.server'
 import type { Services } from './services.server'
 
@@ -12,6 +12,7 @@ const leaseMs = 60_000
 export type MailWorkerOptions = {
   pollMs?: number
   concurrency?: number
+  /** With the waits between them, twenty bridge about half a day. */
   maxAttempts?: number
   /** Wait before the second attempt; it doubles with each further one, up to an hour. */
   firstWaitMs?: number
@@ -33,37 +34,35 @@ const isHopeless = (status: number | null, name: string) =>
  * put off, or given up for good (which is logged and stays in its row).
  */
 export function startMailWorker(services: Pick<Services, 'db' | 'config' | 'now'>, options: MailWorkerOptions = {}) {
-  const { pollMs = 500, concurrency = 4, maxAttempts = 8, firstWaitMs = 5_000, random = Math.random } = options
-  const { db, config, now } = services
+  const { pollMs = 500, concurrency = 4, maxAttempts = 20, firstWaitMs = 5_000, random = Math.random } = options
+  const { config } = services
   const resend = new Resend(config.mail.apiKey, config.mail.apiUrl === undefined ? {} : { baseUrl: config.mail.apiUrl })
   const cut = new AbortController()
   let isClosed = false
   let timer: NodeJS.Timeout | undefined
 
-  const deliver = async (mail: outbox.DueMail) => {
+  const deliver = async (mail: DueMail) => {
     const { data, error } = await resend.emails.send(
       { from: config.mail.from, to: mail.to, subject: mail.subject, text: mail.text },
       { idempotencyKey: mail.dedupeKey, signal: AbortSignal.any([cut.signal, AbortSignal.timeout(sendTimeoutMs)]) }
     )
-    const at = now()
-    if (error === null) return void (await outbox.markSent(db, mail.id, at.toISOString(), data.id))
+    if (error === null) return settleMail(services, mail.id, { kind: 'sent', providerId: data.id })
     const words = `${error.statusCode ?? 'no answer'} ${error.name}`
+    const fields = { mail: mail.id, attempts: mail.attempts, error: words }
     if (isHopeless(error.statusCode, error.name) || mail.attempts >= maxAttempts) {
-      await outbox.markGivenUp(db, mail.id, words, at.toISOString())
-      return log('error', 'mail-given-up', { mail: mail.id, attempts: mail.attempts, error: words })
+      await settleMail(services, mail.id, { kind: 'given-up', error: words })
+      return log('error', 'mail-given-up', fields)
     }
     const waitMs = backOffMs(mail.attempts, firstWaitMs, random)
-    await outbox.markFailed(db, mail.id, words, new Date(at.getTime() + waitMs).toISOString())
-    log('warn', 'mail-put-off', { mail: mail.id, attempts: mail.attempts, waitMs, error: words })
+    await settleMail(services, mail.id, { kind: 'put-off', error: words, waitMs })
+    log('warn', 'mail-put-off', { ...fields, waitMs })
   }
 
   /** Claims and sends until nothing is due. */
   const round = async () => {
     while (!isClosed) {
-      const at = now()
-      if (!(await outbox.hasDue(db, at.toISOString()))) return
-      const lease = new Date(at.getTime() + leaseMs).toISOString()
-      const due = await outbox.claimDue(db, at.toISOString(), lease, concurrency)
+      const due = await claimDueMails(services, concurrency, leaseMs)
+      if (due.length === 0) return
       const results = await Promise.allSettled(due.map(deliver))
       for (const result of results) if (result.status === 'rejected') logError('mail-attempt-failed', result.reason)
     }

@@ -10,7 +10,7 @@ import { log, logError } from './log.server'
 import { startMailWorker } from './mail-worker.server'
 import { setServices, type Services } from './services.server'
 import { createStorage } from './storage.server'
-import { startSweeping } from './sweep.server'
+import { startSweeping } from './sweep-timer.server'
 
 export type Running = { url: string; services: Services; close(): Promise<void> }
 

@@ -1,5 +1,5 @@
 import { redirect } from 'react-router'
-import type { Route } from './+types/sign-out.endpoint'
+import type { Route } from './+types/endpoint'
 import { endSession } from '~/domain/accounts/sessions.server'
 import { services } from '~/server/services.server'
 import { sessionCookie, sessionToken } from '~/server/session.server'

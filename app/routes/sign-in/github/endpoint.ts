@@ -1,5 +1,5 @@
 import { redirect } from 'react-router'
-import type { Route } from './+types/github.endpoint'
+import type { Route } from './+types/endpoint'
 import { callerOf, countUse } from '~/domain/accounts/rate-limit.server'
 import { answerPage } from '~/server/answer.server'
 import { requestInfoContext } from '~/server/context'

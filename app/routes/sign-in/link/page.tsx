@@ -1,5 +1,5 @@
 import { data, redirect } from 'react-router'
-import type { Route } from './+types/link.page'
+import type { Route } from './+types/page'
 import { Actions, Button, ButtonLink } from '~/components/button'
 import { ErrorSummary } from '~/components/error-summary'
 import { TextField } from '~/components/field'

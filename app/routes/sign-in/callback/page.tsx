@@ -1,5 +1,5 @@
 import { data, redirect } from 'react-router'
-import type { Route } from './+types/callback.page'
+import type { Route } from './+types/page'
 import { Actions, Button, ButtonLink } from '~/components/button'
 import { SiteSheet } from '~/components/site-sheet'
 import { Title } from '~/components/title'
