@@ -15,6 +15,9 @@ export default [
   route('report', 'routes/reports/file/page.tsx'),
   route('reports', 'routes/reports/mine/page.tsx'),
   route('reports/:id', 'routes/reports/one/page.tsx'),
+  route('boards/:board/reliability', 'routes/reliability/page.tsx'),
+  route('boards/:board/reliability.csv', 'routes/reliability/csv/endpoint.ts'),
+  route('api/v1/boards/:board/reliability', 'routes/api/reliability/endpoint.ts'),
 
   route('health', 'routes/health/endpoint.ts'),
   route('*', 'routes/not-found/page.tsx')

@@ -1,11 +1,19 @@
 import { Fragment, type ReactNode } from 'react'
 import { Button } from './button'
-import { SelectOptions, type SelectOption } from './field'
+import { FieldMessage, SelectOptions, type SelectOption } from './field'
 
 export type SentencePart =
   | string
-  | { name: string; label: string; options: SelectOption[]; value?: string; empty?: string }
-  | { name: string; label: string; type: 'text' | 'search' | 'date'; value?: string; size?: number; list?: string }
+  | { name: string; label: string; options: SelectOption[]; value?: string; empty?: string; error?: string }
+  | {
+      name: string
+      label: string
+      type: 'text' | 'search' | 'date'
+      value?: string
+      size?: number
+      list?: string
+      error?: string
+    }
 
 export type SentenceFormProps = {
   action: string
@@ -29,20 +37,33 @@ export function SentenceForm({ action, label, parts, submit, isOutlined, span, c
       ))}
       {children}
       <Button kind={isOutlined ? 'outline' : 'solid'}>{submit}</Button>
+      {parts.map((part) =>
+        typeof part !== 'string' && part.error ? (
+          <div key={part.name} className="col-span-full basis-full">
+            <FieldMessage id={`${part.name}-error`}>{`${part.label}: ${part.error}`}</FieldMessage>
+          </div>
+        ) : null
+      )}
     </form>
   )
 }
 
 function Gap({ part }: { part: Exclude<SentencePart, string> }) {
+  const wiring = {
+    id: part.name,
+    'aria-invalid': part.error ? (true as const) : undefined,
+    'aria-describedby': part.error ? `${part.name}-error` : undefined
+  }
   if ('options' in part)
     return (
-      <select name={part.name} aria-label={part.label} defaultValue={part.value ?? ''}>
+      <select {...wiring} name={part.name} aria-label={part.label} defaultValue={part.value ?? ''}>
         {part.empty !== undefined && <option value="">{part.empty}</option>}
         <SelectOptions options={part.options} />
       </select>
     )
   return (
     <input
+      {...wiring}
       type={part.type}
       name={part.name}
       aria-label={part.label}

@@ -51,3 +51,17 @@ export async function reliabilityQuestion({ db, now }: Services, boardSlug: stri
   )
   return { board, releases, revisions, filters, errors, today }
 }
+
+/**
+ * The figures that an address asks for.
+ * @throws DomainError `not-found`, `invalid` with messages at the filters, `unavailable`
+ */
+export async function reliabilityAsked(
+  services: Services,
+  boardSlug: string,
+  query: URLSearchParams
+): Promise<ReliabilityFigures> {
+  const { filters, errors } = await reliabilityQuestion(services, boardSlug, query)
+  if (errors.length > 0) throw new DomainError('invalid', 'The filters do not add up.', errors)
+  return reliabilityOf(services, boardSlug, filters)
+}

@@ -1,0 +1,70 @@
+import type { GroupFigures, ReliabilityFigures } from '~/domain/reliability/reliability-figures'
+import { filtersQuery } from '~/domain/reliability/reliability-filters'
+import { excludedSentence, plainSentence, tooFewSentence } from '~/domain/reliability/reliability-words'
+
+export const stepsPageSize = 50
+const besideMost = 3
+
+export type ShownGroup = Omit<GroupFigures, 'curve'> & {
+  points: { time: number; survival: number; lower: number | null; upper: number | null; atRisk: number; censored: number }[]
+}
+export type ShownFigures = ReturnType<typeof pageFigures>
+
+const shownGroup = ({ curve, ...rest }: GroupFigures): ShownGroup => ({
+  ...rest,
+  points: curve.map(({ time, survival, lower, upper, atRisk, censored }) => ({ time, survival, lower, upper, atRisk, censored }))
+})
+
+/** What the page prints of the figures, and which curves and steps its address asks to see. */
+export function pageFigures(figures: ReliabilityFigures, query: URLSearchParams) {
+  const { all, byRevision, byRelease, filters } = figures
+  const sentence = plainSentence({
+    n: all.n,
+    events: all.events,
+    atOneYear: all.atOneYear,
+    worksAtFirstPowerOnly: filters.firstPower === 'set-aside'
+  })
+  const groups = [
+    { key: 'all', label: 'all together', figures: all },
+    ...byRevision.map((g) => ({ key: `revision:${g.group}`, label: g.group, figures: g })),
+    ...byRelease.map((g) => ({ key: `release:${g.group}`, label: `release ${g.group}`, figures: g }))
+  ]
+  const steps = groups.find((g) => g.key === query.get('steps')) ?? groups[0]!
+  const pages = Math.max(1, Math.ceil(steps.figures.curve.length / stepsPageSize))
+  const page = Math.min(pages, Math.max(1, Math.trunc(Number(query.get('page'))) || 1))
+  return {
+    sentence: [sentence, tooFewSentence(byRevision)].filter(Boolean).join(' '),
+    reports: all.fitted,
+    all: shownGroup(all),
+    byRevision: byRevision.map(shownGroup),
+    byRelease: byRelease.map(shownGroup),
+    ...chosenCurves(byRevision, query),
+    markedRelease: most(byRelease),
+    revisionsDiffer: figures.revisionsDiffer,
+    excluded: excludedSentence(figures.excluded),
+    excludedByKind: figures.excluded,
+    followUp: figures.followUp,
+    query: filtersQuery(filters).toString(),
+    steps: {
+      key: steps.key,
+      label: steps.label,
+      choices: groups.map(({ key, label }) => ({ value: key, label })),
+      page,
+      total: steps.figures.curve.length,
+      rows: steps.figures.curve.slice((page - 1) * stepsPageSize, page * stepsPageSize)
+    }
+  }
+}
+
+const most = (groups: readonly GroupFigures[]): string | null =>
+  groups.reduce<GroupFigures | null>((best, g) => (best === null || g.n > best.n ? g : best), null)?.group ?? null
+
+/** The marked revision and those beside it, as asked; else the one with the most units, and the next three. */
+function chosenCurves(byRevision: readonly GroupFigures[], query: URLSearchParams) {
+  const names = byRevision.map((g) => g.group)
+  const asked = query.get('mark')
+  const marked = asked !== null && names.includes(asked) ? asked : most(byRevision)
+  const wanted = query.has('mark') ? query.getAll('beside') : [...byRevision].sort((a, b) => b.n - a.n).map((g) => g.group)
+  const beside = wanted.filter((name) => name !== marked && names.includes(name)).slice(0, besideMost)
+  return { marked, beside: names.filter((name) => beside.includes(name)) }
+}
