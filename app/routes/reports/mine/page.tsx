@@ -33,6 +33,7 @@ export function loader({ url, context }: Route.LoaderArgs) {
     const done = reports.find((r) => r.id === url.searchParams.get('running'))
     return {
       page,
+      pageSize: myReportsPageSize,
       total,
       done: done ? `${done.board_name} ${done.version} on ${done.revision_code}` : null,
       reports: reports.map((r) => ({
@@ -82,7 +83,7 @@ function lastWord(r: Told): string {
   return r.last_running_on === null ? 'nothing since' : `ran ${r.last_running_on}`
 }
 
-export default function MyReports({ loaderData: { reports, total, page, done }, actionData }: Route.ComponentProps) {
+export default function MyReports({ loaderData: { reports, total, page, pageSize, done }, actionData }: Route.ComponentProps) {
   return (
     <SiteSheet current="My bench" trail={[{ label: 'My bench', href: '/bench' }, { label: 'My reports' }]}>
       <Title
@@ -128,7 +129,7 @@ export default function MyReports({ loaderData: { reports, total, page, done }, 
                 }
               ]}
             />
-            <Pager page={page} pageSize={myReportsPageSize} total={total} of="reports" hrefOf={(n) => `/reports?page=${n}`} />
+            <Pager page={page} pageSize={pageSize} total={total} of="reports" hrefOf={(n) => `/reports?page=${n}`} />
           </>
         )}
       </Section>
