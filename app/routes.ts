@@ -4,6 +4,25 @@ import { index, route, type RouteConfig } from '@react-router/dev/routes'
 export default [
   index('routes/home/page.tsx'),
 
+  route('boards', 'routes/boards/list.page.tsx'),
+  route('boards/new', 'routes/boards/new.page.tsx'),
+  route('boards/:board', 'routes/boards/board.page.tsx'),
+  route('boards/:board/edit', 'routes/boards/edit.page.tsx'),
+  route('boards/:board/fit', 'routes/boards/fit.page.tsx'),
+  route('boards/:board/releases/new', 'routes/releases/new.page.tsx'),
+  route('boards/:board/releases/:version', 'routes/releases/release.page.tsx'),
+  route('boards/:board/releases/:version/edit', 'routes/releases/edit.page.tsx'),
+  route('boards/:board/releases/:version/withdraw', 'routes/releases/withdraw.page.tsx'),
+  route('boards/:board/releases/:version/bundle', 'routes/releases/bundle.endpoint.ts'),
+  route('boards/:board/releases/:version/check', 'routes/releases/check.endpoint.ts'),
+  route('boards/:board/releases/:version/picture/:file', 'routes/releases/picture.endpoint.ts'),
+  route('bench', 'routes/bench/page.tsx'),
+
+  route('api/v1/boards', 'routes/public-data/boards.endpoint.ts'),
+  route('api/v1/boards/:board', 'routes/public-data/board.endpoint.ts'),
+  route('api/v1/boards/:board/releases', 'routes/public-data/releases.endpoint.ts'),
+  route('api/v1/boards/:board/releases/:version', 'routes/public-data/release.endpoint.ts'),
+
   route('guides', 'routes/guides/index/page.tsx'),
   route('guides/:page', 'routes/guides/guide/page.tsx'),
   route('sign-in', 'routes/sign-in/page.tsx'),

@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import { fitClaims } from './fit-claim'
 import { slugOf, slugProblem } from './slug'
 import { spdxId } from './spdx'
 
@@ -39,8 +40,6 @@ export const boardOpenSchema = z.object({ ...details, slug: z.string().toLowerCa
   return { ...board, slug }
 })
 export type BoardOpening = z.output<typeof boardOpenSchema>
-
-export const fitClaims = ['fits', 'fits-with-care', 'does-not-fit', 'untested'] as const
 
 /** The claim for one console revision. Whoever says `with care` or `does not fit` says why. */
 export const fitClaimSchema = z

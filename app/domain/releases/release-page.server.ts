@@ -10,6 +10,7 @@ import * as downloads from './downloads.repo.server'
 import * as findingsRepo from './findings.repo.server'
 import { obstacles } from './publish-rules'
 import * as repo from './releases.repo.server'
+import { bundleFileName, picturePath, releasePath } from './release-path'
 import { findRelease } from './releases.server'
 import { mustReadVersion, newestOf, stateWhenPublished } from './version'
 
@@ -123,11 +124,5 @@ export async function releasePage(db: Db, actor: Actor, slug: string, version: s
   }
 }
 
-export const releasePath = (slug: string, version: string) => `/boards/${slug}/releases/${encodeURIComponent(version)}`
-
-/** What a bundle is called when it is saved. */
-export const bundleFileName = (slug: string, version: string) => `${slug}-${version}.zip`
-
-/** The sum in the address keeps an older picture out of the browser's cache. */
 const pictureOf = (sha256: string | null, slug: string, version: string, side: 'top' | 'bottom') =>
-  sha256 === null ? null : `${releasePath(slug, version)}/picture/${side}.svg?v=${sha256.slice(0, 12)}`
+  sha256 === null ? null : picturePath(slug, version, side, sha256)

@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import { stencils } from './stencils'
 import { readVersion } from './version'
 
 const decimal = (label: string, min: number, max: number, unit: string) =>
@@ -15,8 +16,6 @@ const decimal = (label: string, min: number, max: number, unit: string) =>
     .optional()
 
 const words = (label: string, max: number) => z.string().max(max, `${label} may have ${max} characters at most.`).optional()
-
-export const stencils = ['none', 'top', 'bottom', 'both'] as const
 
 /** The form of a draft: its version, the board revision, what to order, and the notes. Everything but the first two may wait. */
 export const draftSchema = z.object({

@@ -1,0 +1,182 @@
+import { useEffect, useRef, useState, type FormEvent } from 'react'
+import { aboutBytes, shareOfBytes } from '~/lib/byte-size'
+import { Actions, Button } from './button'
+import { FileField } from './file-field'
+import { CheckSteps, UploadScale } from './progress'
+
+export type CheckStepName = { step: string; name: string }
+
+type Going =
+  | { phase: 'idle'; error?: string }
+  | { phase: 'sending'; sent: number; total: number }
+  | { phase: 'checking'; step: string | null }
+  | { phase: 'broken'; sent: number; total: number; error: string }
+
+export type BundleUploadProps = {
+  /** Where the form posts to; the same address takes the plain form. */
+  action: string
+  /** Where the progress of the check is asked. */
+  progress: string
+  steps: CheckStepName[]
+  maxBytes: number
+  /** A bundle is there already and will be replaced. */
+  isReplacing: boolean
+  /** A check is going on already, begun elsewhere. */
+  isRunning: boolean
+  /** The draft has changed: load it again. */
+  onDone: () => void
+}
+
+const pollMs = 500
+
+/**
+ * Uploads a bundle: a plain form without scripts; with them a scale in bytes and percent, a way to stop, then the steps of the check as
+ * they are done.
+ */
+export function BundleUpload({ action, progress, steps, maxBytes, isReplacing, isRunning, onDone }: BundleUploadProps) {
+  const [going, setGoing] = useState<Going>(isRunning ? { phase: 'checking', step: null } : { phase: 'idle' })
+  const [file, setFile] = useState<File | null>(null)
+  const request = useRef<XMLHttpRequest | null>(null)
+  const isChecking = going.phase === 'checking'
+
+  useEffect(() => () => request.current?.abort(), [])
+  useEffect(() => {
+    if (!isChecking) return
+    const timer = setInterval(async () => {
+      const answer = await fetch(progress, { headers: { Accept: 'application/json' } }).catch(() => null)
+      if (!answer?.ok) return
+      const { phase, step } = (await answer.json()) as { phase: string; step: string | null }
+      if (phase !== 'none') setGoing((now) => (now.phase === 'checking' ? { phase: 'checking', step } : now))
+      else if (request.current === null) {
+        setGoing({ phase: 'idle' })
+        onDone()
+      }
+    }, pollMs)
+    return () => clearInterval(timer)
+  }, [isChecking, progress, onDone])
+
+  function send(event: FormEvent<HTMLFormElement>) {
+    event.preventDefault()
+    if (request.current) return
+    if (!file) return setGoing({ phase: 'idle', error: 'Choose the bundle first: one zip.' })
+    if (file.size > maxBytes)
+      return setGoing({
+        phase: 'idle',
+        error: `${file.name} has ${aboutBytes(file.size)}; at most ${Math.floor(maxBytes / 1024 / 1024)} MiB are taken. Leave out what is not needed to make the board.`
+      })
+    const xhr = new XMLHttpRequest()
+    request.current = xhr
+    let sent = 0
+    const end = (next: Going) => {
+      request.current = null
+      setGoing(next)
+    }
+    setGoing({ phase: 'sending', sent: 0, total: file.size })
+    xhr.upload.onprogress = ({ loaded }) => {
+      sent = Math.min(loaded, file.size)
+      setGoing({ phase: 'sending', sent, total: file.size })
+    }
+    xhr.upload.onload = () => setGoing({ phase: 'checking', step: null })
+    xhr.onload = () => {
+      if (xhr.status >= 200 && xhr.status < 300) {
+        end({ phase: 'idle' })
+        setFile(null)
+        onDone()
+      } else end({ phase: 'idle', error: messageOf(xhr) })
+    }
+    xhr.onerror = () =>
+      end({
+        phase: 'broken',
+        sent,
+        total: file.size,
+        error: 'The connection was lost. Send the file again; the draft is as it was.'
+      })
+    xhr.onabort = () => end({ phase: 'broken', sent, total: file.size, error: 'You stopped it. The draft is as it was.' })
+    xhr.open('POST', action)
+    xhr.setRequestHeader('Accept', 'application/json')
+    const form = new FormData()
+    form.set('bundle', file)
+    xhr.send(form)
+  }
+
+  if (going.phase === 'sending')
+    return (
+      <>
+        <UploadScale
+          label={`Uploading ${file?.name ?? 'the bundle'}`}
+          detail={shareOfBytes(going.sent, going.total)}
+          share={going.total === 0 ? 1 : going.sent / going.total}
+        />
+        <Actions>
+          <Button type="button" kind="outline" onClick={() => request.current?.abort()}>
+            Stop the upload
+          </Button>
+        </Actions>
+      </>
+    )
+  if (going.phase === 'checking') return <Checking step={going.step} steps={steps} />
+  return (
+    <form method="post" action={action} encType="multipart/form-data" onSubmit={send} noValidate>
+      {going.phase === 'broken' && (
+        <UploadScale
+          label={`Broken off at ${shareOfBytes(going.sent, going.total)}`}
+          detail="nothing was kept"
+          share={going.total === 0 ? 0 : going.sent / going.total}
+          error={going.error}
+        />
+      )}
+      <FileField
+        name="bundle"
+        label={file ? file.name : isReplacing ? 'Choose another bundle' : 'Choose the bundle'}
+        hint={
+          file
+            ? `${aboutBytes(file.size)}; choose again to take another`
+            : `one zip, at most ${Math.floor(maxBytes / 1024 / 1024)} MiB, or drop it here`
+        }
+        accept=".zip,application/zip"
+        error={going.phase === 'idle' ? going.error : undefined}
+        onChange={(event) => {
+          setFile(event.currentTarget.files?.[0] ?? null)
+          setGoing({ phase: 'idle' })
+        }}
+        required
+      />
+      <Actions>
+        <Button
+          kind={isReplacing ? 'outline' : 'solid'}
+          note={isReplacing ? 'Takes the place of the bundle below, and is checked anew.' : undefined}
+        >
+          Upload and check
+        </Button>
+      </Actions>
+    </form>
+  )
+}
+
+function messageOf(xhr: XMLHttpRequest): string {
+  try {
+    const { detail } = JSON.parse(xhr.responseText) as { detail?: string }
+    if (detail) return detail
+  } catch {
+    /* Not our own answer: something between here and the server spoke. */
+  }
+  return `The upload was not taken (answer ${xhr.status}). Try again in a minute; the draft is as it was.`
+}
+
+function Checking({ step, steps }: { step: string | null; steps: CheckStepName[] }) {
+  const at = steps.findIndex((s) => s.step === step)
+  return (
+    <div role="status">
+      <CheckSteps
+        steps={[
+          { label: 'Store the bundle', state: at >= 0 ? ('done' as const) : ('now' as const) },
+          ...steps.map(({ name }, i) => ({
+            label: name,
+            state: at < 0 || i > at ? ('waiting' as const) : i < at ? ('done' as const) : ('now' as const)
+          }))
+        ]}
+        hint="20 seconds at most. You can leave; the draft keeps the result."
+      />
+    </div>
+  )
+}

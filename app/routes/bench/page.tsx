@@ -1,0 +1,138 @@
+import type { Route } from './+types/page'
+import { Actions, ButtonLink } from '~/components/button'
+import { EmptyOutline } from '~/components/empty'
+import { Figure, TwoDrawings } from '~/components/figure'
+import { Section } from '~/components/section'
+import { SiteSheet } from '~/components/site-sheet'
+import { Table } from '~/components/table'
+import { TextLink } from '~/components/text-link'
+import { Title } from '~/components/title'
+import { benchOf } from '~/domain/releases/board-releases.server'
+import { releasePath } from '~/domain/releases/release-path'
+import { answerPage } from '~/server/answer.server'
+import { actorContext } from '~/server/context'
+import { services } from '~/server/services.server'
+
+export const meta: Route.MetaFunction = () => [{ title: 'My bench · Fettle' }]
+
+export const loader = ({ url, context }: Route.LoaderArgs) =>
+  answerPage(url, () => benchOf(services().db, context.get(actorContext)))
+
+export default function Bench({ loaderData: { boards, drafts } }: Route.ComponentProps) {
+  const hasBoards = boards.length > 0
+  return (
+    <SiteSheet current="My bench" trail={[{ label: 'Boards', href: '/' }, { label: 'My bench' }]}>
+      <Title
+        heading="My bench"
+        lead={
+          hasBoards
+            ? 'Your boards, and the drafts that wait for you.'
+            : 'This is where your drafts, incoming reports and silent units will lie.'
+        }
+        actions={
+          hasBoards && (
+            <ButtonLink kind="outline" href="/boards/new">
+              Name a board
+            </ButtonLink>
+          )
+        }
+      />
+      {!hasBoards && <FirstSteps />}
+      {hasBoards && (
+        <>
+          <Section number={1} heading="Drafts">
+            {drafts.length === 0 ? (
+              <p className="soft">No draft lies here. Draft a release from one of your boards below.</p>
+            ) : (
+              <Table
+                number={1}
+                caption="The one changed last first. Only maintainers see them."
+                rows={drafts}
+                rowKey={(d) => `${d.boardSlug} ${d.version}`}
+                isFolded
+                columns={[
+                  {
+                    key: 'draft',
+                    head: 'Draft',
+                    isRowHead: true,
+                    cell: (d) => <TextLink href={releasePath(d.boardSlug, d.version)}>{`${d.boardName} ${d.version}`}</TextLink>
+                  },
+                  { key: 'revision', head: 'Board revision', cell: (d) => d.boardRevision },
+                  { key: 'waits', head: 'Waits for', cell: (d) => d.waitsFor },
+                  { key: 'changed', head: 'Changed', cell: (d) => d.changedOn }
+                ]}
+              />
+            )}
+          </Section>
+          <Section number={2} heading="Boards">
+            <Table
+              number={2}
+              caption="The boards you maintain, by name."
+              rows={boards}
+              rowKey={(b) => b.id}
+              isFolded
+              columns={[
+                {
+                  key: 'name',
+                  head: 'Board',
+                  isRowHead: true,
+                  cell: (b) => <TextLink href={`/boards/${b.slug}`}>{b.name}</TextLink>
+                },
+                { key: 'console', head: 'For', cell: (b) => b.consoleName },
+                {
+                  key: 'newest',
+                  head: 'Newest release',
+                  cell: (b) =>
+                    b.newest ? (
+                      <>
+                        <TextLink href={releasePath(b.slug, b.newest.version)}>{b.newest.version}</TextLink>, {b.newest.state}
+                      </>
+                    ) : (
+                      <span className="soft">none yet</span>
+                    )
+                },
+                {
+                  key: 'next',
+                  head: 'Next',
+                  cell: (b) => <TextLink href={`/boards/${b.slug}/releases/new`}>Draft a release</TextLink>
+                }
+              ]}
+            />
+          </Section>
+        </>
+      )}
+    </SiteSheet>
+  )
+}
+
+function FirstSteps() {
+  return (
+    <Section number={1} heading="To begin">
+      <Figure number={1} caption="Nothing released yet.">
+        <TwoDrawings
+          wide={<EmptyOutline width={400} height={170} words="your first board goes here" />}
+          narrow={<EmptyOutline width={320} height={140} words="your first board goes here" />}
+        />
+      </Figure>
+      <ol className="mt-6 list-decimal pl-6">
+        <li>
+          <b>Name the board</b> and the part it replaces.
+        </li>
+        <li>
+          <b>Say which revisions it fits,</b> and how you know.
+        </li>
+        <li>
+          <b>Upload a bundle.</b> The check takes a few seconds and changes nothing; a draft is yours alone.
+        </li>
+      </ol>
+      <div className="mt-6">
+        <Actions>
+          <ButtonLink href="/boards/new">Name a board</ButtonLink>
+          <ButtonLink kind="outline" href="/boards">
+            Look at the boards of others
+          </ButtonLink>
+        </Actions>
+      </div>
+    </Section>
+  )
+}

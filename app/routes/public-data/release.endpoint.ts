@@ -1,0 +1,7 @@
+import type { Route } from './+types/release.endpoint'
+import { releaseJson } from '~/domain/public-data/releases-json.server'
+import { answerResource } from '~/server/answer-json.server'
+import { services } from '~/server/services.server'
+
+export const loader = ({ request, url, params }: Route.LoaderArgs) =>
+  answerResource(request, () => releaseJson(services().db, url, params.board, params.version))

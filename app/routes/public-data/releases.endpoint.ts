@@ -1,0 +1,7 @@
+import type { Route } from './+types/releases.endpoint'
+import { releasesJson } from '~/domain/public-data/releases-json.server'
+import { answerResource } from '~/server/answer-json.server'
+import { services } from '~/server/services.server'
+
+export const loader = ({ request, url, params }: Route.LoaderArgs) =>
+  answerResource(request, () => releasesJson(services().db, url, params.board))

@@ -1,0 +1,64 @@
+import { createReadableStreamFromReadable } from '@react-router/node'
+import { redirect } from 'react-router'
+import type { Route } from './+types/bundle.endpoint'
+import { downloadBundle } from '~/domain/releases/download-bundle.server'
+import { intakeDeps } from '~/domain/releases/intake-deps.server'
+import { releasePath } from '~/domain/releases/release-path'
+import { takeInBundle } from '~/domain/releases/take-in-bundle.server'
+import { DomainError, statusOf } from '~/lib/domain-error'
+import { problemOf } from '~/lib/problem'
+import { actorContext } from '~/server/context'
+import { discardBody, receiveFile } from '~/server/receive-file.server'
+import { services } from '~/server/services.server'
+import { plainPage } from './plain-page.server'
+
+export async function loader({ request, params, context }: Route.LoaderArgs) {
+  const { board, version } = params
+  const way = { label: 'To the release', href: releasePath(board, version) }
+  try {
+    const answer = await downloadBundle(services(), context.get(actorContext), board, version, request)
+    if (answer.kind === 'answer') {
+      const body = answer.body && createReadableStreamFromReadable(answer.body)
+      return new Response(body, { status: answer.status, headers: answer.headers })
+    }
+    return plainPage({
+      status: 502,
+      heading: 'The file store did not answer',
+      lead: 'The bundle is safe, but it cannot be fetched just now. The failure is noted in our log; try again in a few minutes.',
+      way
+    })
+  } catch (error) {
+    if (!(error instanceof DomainError)) throw error
+    return plainPage({
+      status: statusOf[error.kind],
+      heading: 'No bundle here',
+      lead: error.message,
+      way: { label: 'To the board', href: `/boards/${encodeURIComponent(board)}` }
+    })
+  }
+}
+
+export async function action({ request, params, context }: Route.ActionArgs) {
+  const { board, version } = params
+  const draft = releasePath(board, version)
+  const isScript = request.headers.get('Accept')?.includes('application/json') ?? false
+  const s = services()
+  try {
+    await takeInBundle(intakeDeps(s), context.get(actorContext), board, version, () =>
+      receiveFile(request, 'bundle', s.config.uploadDir, s.config.uploadMaxBytes)
+    )
+    return isScript ? Response.json({ location: `${draft}#found` }) : redirect(`${draft}#found`, 303)
+  } catch (error) {
+    discardBody(request)
+    if (!(error instanceof DomainError)) throw error
+    const status = statusOf[error.kind]
+    if (isScript) return Response.json(problemOf(error), { status, headers: { 'Content-Type': 'application/problem+json' } })
+    if (error.kind === 'unauthenticated') return redirect(`/sign-in?return=${encodeURIComponent(draft)}`, 303)
+    return plainPage({
+      status,
+      heading: 'The bundle was not taken',
+      lead: `${error.message} The draft is as it was.`,
+      way: { label: 'Back to the draft', href: draft }
+    })
+  }
+}

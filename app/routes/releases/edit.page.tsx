@@ -1,0 +1,85 @@
+import { redirect } from 'react-router'
+import type { Route } from './+types/edit.page'
+import { DraftForm } from './draft-form'
+import { SiteSheet } from '~/components/site-sheet'
+import { Title } from '~/components/title'
+import { draftToEdit } from '~/domain/releases/board-releases.server'
+import { editDraft } from '~/domain/releases/drafts.server'
+import { intakeDeps } from '~/domain/releases/intake-deps.server'
+import { draftSchema } from '~/domain/releases/release.schema'
+import { releasePath } from '~/domain/releases/release-path'
+import { recheckBundle } from '~/domain/releases/take-in-bundle.server'
+import { formValues, parseForm } from '~/lib/parse-form'
+import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
+import { actorContext } from '~/server/context'
+import { services } from '~/server/services.server'
+
+export const meta: Route.MetaFunction = () => [{ title: 'Edit a draft · Fettle' }]
+
+const text = (value: number | string | null) => (value === null ? '' : String(value))
+
+export function loader({ url, params, context }: Route.LoaderArgs) {
+  return answerPage(url, async () => {
+    const { board, release } = await draftToEdit(services().db, context.get(actorContext), params.board, params.version)
+    return {
+      slug: board.slug,
+      name: board.name,
+      version: release.version,
+      values: {
+        version: release.version,
+        boardRevision: release.board_revision,
+        layers: text(release.declared_layers),
+        thicknessMm: text(release.declared_thickness_mm),
+        copperUm: text(release.declared_copper_um),
+        finish: text(release.declared_finish),
+        mask: text(release.declared_mask),
+        legend: text(release.declared_legend),
+        stencil: text(release.declared_stencil),
+        orderNote: release.order_note,
+        notes: release.notes_md
+      }
+    }
+  })
+}
+
+export async function action({ request, url, params, context }: Route.ActionArgs) {
+  const form = await request.formData()
+  const values = formValues(form)
+  return answerForm(url, values, async () => {
+    const s = services()
+    const actor = context.get(actorContext)
+    await draftToEdit(s.db, actor, params.board, params.version)
+    const parsed = parseForm(draftSchema, form)
+    if (!parsed.ok) return formAnswer(parsed.errors, parsed.values)
+    const { version, needsCheck } = await editDraft(s, actor, params.board, params.version, parsed.value)
+    if (needsCheck) await recheckBundle(intakeDeps(s), actor, params.board, version)
+    throw redirect(`${releasePath(params.board, version)}?done=${needsCheck ? 'rechecked' : 'saved'}`, 303)
+  })
+}
+
+export default function EditRelease({ loaderData: data, actionData }: Route.ComponentProps) {
+  const path = releasePath(data.slug, data.version)
+  return (
+    <SiteSheet
+      current="My bench"
+      trail={[
+        { label: 'Boards', href: '/' },
+        { label: data.name, href: `/boards/${data.slug}` },
+        { label: `Draft ${data.version}`, href: path },
+        { label: 'Edit' }
+      ]}
+      isForm
+    >
+      <Title
+        heading={`Edit ${data.name} ${data.version}`}
+        lead="A draft can still change. When layers or thickness do, the bundle is checked again."
+      />
+      <DraftForm
+        values={actionData?.values ?? data.values}
+        errors={actionData?.errors ?? []}
+        action="Save the draft"
+        back={path}
+      />
+    </SiteSheet>
+  )
+}

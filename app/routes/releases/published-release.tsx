@@ -1,0 +1,206 @@
+import { BoardFigures, Facts, FindingEntry, foundInWords, Layers } from './release-parts'
+import { Actions, ButtonLink, GoLink } from '~/components/button'
+import { Checksum } from '~/components/checksum'
+import { Definitions } from '~/components/definition'
+import { DoneLine } from '~/components/done-line'
+import { FitStrip } from '~/components/fit-strip'
+import { IndexLine } from '~/components/index-line'
+import { Prose } from '~/components/prose'
+import { ReleaseLine } from '~/components/release-line'
+import { MarginNote, Section } from '~/components/section'
+import { NoteSign } from '~/components/signs'
+import { SiteSheet } from '~/components/site-sheet'
+import { ReleaseTag } from '~/components/tag'
+import { TextLink } from '~/components/text-link'
+import { Title } from '~/components/title'
+import { Warning } from '~/components/warning'
+import type { ReleasePage } from '~/domain/releases/release-page.server'
+import { releasePath } from '~/domain/releases/release-path'
+import { safetyCautions } from '~/domain/releases/safety-cautions'
+import { aboutBytes, exactBytes } from '~/lib/byte-size'
+
+/** A published release as everybody sees it. */
+export function PublishedRelease({ page, today, done }: { page: ReleasePage; today: string; done: string | null }) {
+  const { board, release, bundle, findings } = page
+  const cautions = findings.filter((f) => f.severity === 'caution').length
+  return (
+    <SiteSheet
+      current="Boards"
+      trail={[
+        { label: 'Boards', href: '/' },
+        { label: board.name, href: `/boards/${board.slug}` },
+        { label: `Release ${release.version}` }
+      ]}
+      foot={`Release ${release.version} · board revision ${release.boardRevision} · as of ${today}`}
+    >
+      <Title
+        tag={
+          <ReleaseTag
+            isHead
+            board={board.name}
+            version={release.version}
+            state={release.state}
+            on={(release.state === 'withdrawn' ? release.withdrawnOn : release.publishedOn) ?? undefined}
+            releasedOn={release.state === 'withdrawn' ? (release.publishedOn ?? undefined) : undefined}
+            boardRevision={release.boardRevision}
+          />
+        }
+        lead={
+          release.state === 'trial' ? `${board.summary} A trial: meant to be tried out, not to be made in number.` : board.summary
+        }
+        actions={
+          <>
+            <ButtonLink href="#s3" kind={release.state === 'withdrawn' ? 'outline' : 'solid'}>
+              {release.state === 'withdrawn' ? 'Take the files all the same' : 'Take the files'}
+            </ButtonLink>
+            <ButtonLink href={`/report?board=${board.slug}&release=${encodeURIComponent(release.version)}`} kind="outline">
+              File a report
+            </ButtonLink>
+            <p className="small soft">
+              zip, {aboutBytes(bundle?.bytes ?? 0)}, {page.files.length} files, {board.licence}. Cautions to read first:{' '}
+              <a href="#s3">section 3</a>.
+            </p>
+          </>
+        }
+      >
+        {done && <DoneLine what={done} />}
+        {release.state === 'withdrawn' && (
+          <Warning severity="caution" heading="Withdrawn by its maintainer">
+            <p className="whitespace-pre-line">{release.withdrawnReason}</p>
+            <p>The files stay here for those who have this release.</p>
+          </Warning>
+        )}
+        {page.newer && (
+          <p className="newer">
+            <NoteSign size={20} />
+            <span>
+              {page.newer.isSameRevision ? 'A later release of this board revision exists: ' : 'A later release exists: '}
+              <TextLink href={releasePath(board.slug, page.newer.version)}>{page.newer.version}</TextLink>.
+            </span>
+          </p>
+        )}
+        {page.rights.canWithdraw && (
+          <p className="small mt-4">
+            <TextLink href={`${releasePath(board.slug, release.version)}/withdraw`}>Withdraw {release.version}</TextLink>
+            <span className="soft"> if nobody should make it any more.</span>
+          </p>
+        )}
+      </Title>
+      <ReleaseLine board={board.name} releases={page.line} shown={release.version} today={today} />
+      <IndexLine
+        entries={['Board', 'Fit', 'Files', 'Facts', 'Findings', 'Layers', 'Notes', 'How long it lasts'].map((word, i) => ({
+          number: i + 1,
+          word
+        }))}
+      />
+      <Section number={1} heading="The board">
+        <BoardFigures page={page} />
+      </Section>
+      <Section
+        number={2}
+        heading="What it fits"
+        margin={
+          <p>
+            <b>The maintainer’s claim,</b> per mainboard revision of the {board.consoleName}.{' '}
+            <TextLink href={`/consoles/${board.consoleSlug}`}>Where the revision is printed</TextLink>
+          </p>
+        }
+      >
+        <FitStrip cells={page.fit.map((f) => ({ code: f.code, fit: f.claim, reason: f.reason || undefined }))} />
+      </Section>
+      <Section number={3} heading="Take the files">
+        <Files page={page} cautions={cautions} />
+      </Section>
+      <Section
+        number={4}
+        heading="Facts"
+        margin={
+          <>
+            <p>
+              <b>=</b> means that the files say what the maintainer says. A difference becomes a finding.
+            </p>
+            <p>
+              <b>Thickness, copper weight and finish</b> are ordered, not drawn: a file cannot show them. Ask the board house.
+            </p>
+          </>
+        }
+      >
+        <Facts page={page} number={1} />
+        {release.orderNote && (
+          <p className="mt-4 whitespace-pre-line">
+            <b>For whoever makes it:</b> {release.orderNote}
+          </p>
+        )}
+      </Section>
+      <Section number={5} heading="Findings" id="s5">
+        <p id="found">The bundle check raised {foundInWords(findings)}.</p>
+        {findings.map((f, i) => (
+          <FindingEntry key={f.id} finding={f} place={i + 1} />
+        ))}
+      </Section>
+      <Section number={6} heading="Layers">
+        <Layers page={page} number={2} />
+      </Section>
+      <Section number={7} heading="Notes">
+        {release.notes ? <Prose html={release.notes} /> : <p className="soft">The maintainer wrote none.</p>}
+      </Section>
+      <Section number={8} heading="How long it lasts">
+        <p>
+          Installers say how it went, on the day and later on. The curves are computed from their reports and carry their
+          intervals.
+        </p>
+        <p className="mt-2">
+          <GoLink href={`/boards/${board.slug}/reliability?release=${encodeURIComponent(release.version)}`}>
+            Reliability by console revision
+          </GoLink>
+        </p>
+      </Section>
+    </SiteSheet>
+  )
+}
+
+/** The cautions stand before the button. */
+function Files({ page, cautions }: { page: ReleasePage; cautions: number }) {
+  const { board, release, bundle, files } = page
+  if (!bundle) return null
+  const path = `${releasePath(board.slug, release.version)}/bundle`
+  return (
+    <>
+      {safetyCautions(board.consoleKind).map(({ heading, text }) => (
+        <Warning key={heading} severity="caution" heading={heading}>
+          {text}
+        </Warning>
+      ))}
+      {cautions > 0 && (
+        <Warning
+          severity="note"
+          heading={cautions === 1 ? 'One finding to know before ordering' : `${cautions} findings to know before ordering`}
+        >
+          <p>
+            The check raised {cautions === 1 ? 'a caution' : 'cautions'}, answered by the maintainer: <a href="#s5">section 5</a>.
+            Pass on to the board house what concerns it.
+          </p>
+        </Warning>
+      )}
+      <Actions isWide>
+        <ButtonLink href={path} download={bundle.fileName} kind={release.state === 'withdrawn' ? 'outline' : 'solid'}>
+          Download {bundle.fileName}
+        </ButtonLink>
+      </Actions>
+      <Definitions
+        items={[
+          { label: 'Size', value: `${exactBytes(bundle.bytes)}, ${files.length} files` },
+          { label: 'SHA-256', value: <Checksum sha256={bundle.sha256} /> },
+          { label: 'Licence', value: board.licence },
+          { label: 'Taken', value: page.downloaded === 1 ? 'once so far' : `${page.downloaded} times so far` }
+        ]}
+      />
+      <MarginNote>
+        <p>
+          <b>Check what you took.</b> The sum you compute over the zip must be this one, all 64 digits. Copying it leaves the gaps
+          out.
+        </p>
+      </MarginNote>
+    </>
+  )
+}

@@ -1,0 +1,109 @@
+import { redirect } from 'react-router'
+import type { Route } from './+types/release.page'
+import { DraftRelease } from './draft-release'
+import { PublishedRelease } from './published-release'
+import type { Actor } from '~/domain/accounts/can'
+import { answerCautions, deleteDraft } from '~/domain/releases/drafts.server'
+import { intakeDeps } from '~/domain/releases/intake-deps.server'
+import { publishRelease } from '~/domain/releases/publish.server'
+import { answerSchema, publishSchema } from '~/domain/releases/release.schema'
+import { releasePage } from '~/domain/releases/release-page.server'
+import { releasePath } from '~/domain/releases/release-path'
+import { findRelease } from '~/domain/releases/releases.server'
+import { recheckBundle } from '~/domain/releases/take-in-bundle.server'
+import { dayOf } from '~/lib/dates'
+import type { FieldError } from '~/lib/domain-error'
+import { formValues, parseForm, type FormValues } from '~/lib/parse-form'
+import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
+import { actorContext } from '~/server/context'
+import { services } from '~/server/services.server'
+
+const done = {
+  drafted: 'The draft is saved. Now upload its bundle.',
+  saved: 'The draft is saved.',
+  rechecked: 'The draft is saved and its bundle checked again.',
+  answered: 'Your answers are saved.',
+  published: 'It is published.',
+  withdrawn: 'It is withdrawn.'
+}
+
+export const meta: Route.MetaFunction = ({ loaderData }) => {
+  const page = (loaderData as { page?: { board: { name: string; summary: string }; release: { version: string } } } | undefined)
+    ?.page
+  if (!page) return [{ title: 'Fettle' }]
+  return [{ title: `${page.board.name} ${page.release.version} · Fettle` }, { name: 'description', content: page.board.summary }]
+}
+
+export function loader({ url, params, context }: Route.LoaderArgs) {
+  return answerPage(url, async () => {
+    const { db, config, now } = services()
+    const asked = url.searchParams.get('done')
+    return {
+      page: await releasePage(db, context.get(actorContext), params.board, params.version),
+      maxBytes: config.uploadMaxBytes,
+      today: dayOf(now()),
+      done: asked !== null && asked in done ? done[asked as keyof typeof done] : null
+    }
+  })
+}
+
+export async function action({ request, url, params, context }: Route.ActionArgs) {
+  const form = await request.formData()
+  const values = formValues(form)
+  return answerForm(url, values, async () => {
+    const actor = context.get(actorContext)
+    const path = releasePath(params.board, params.version)
+    switch (values.intent) {
+      case 'answers': {
+        const refused = await saveAnswers(actor, params, values)
+        if (refused.length > 0) return formAnswer(refused, values)
+        throw redirect(`${path}?done=answered#found`, 303)
+      }
+      case 'publish': {
+        await findRelease(services().db, actor, params.board, params.version)
+        const wish = parseForm(publishSchema, form)
+        if (!wish.ok)
+          return formAnswer([{ path: '', message: 'There is no checked bundle to publish. Load the page again.' }], values)
+        await publishRelease(services(), actor, params.board, params.version, wish.value)
+        throw redirect(`${path}?done=published`, 303)
+      }
+      case 'recheck':
+        await recheckBundle(intakeDeps(services()), actor, params.board, params.version)
+        throw redirect(`${path}#found`, 303)
+      case 'delete':
+        await deleteDraft(services(), actor, params.board, params.version)
+        throw redirect(`/boards/${params.board}?done=deleted`, 303)
+      default:
+        await findRelease(services().db, actor, params.board, params.version)
+        return formAnswer([{ path: '', message: 'This form is not complete. Load the page again.' }], values)
+    }
+  })
+}
+
+/** @returns what is wrong with the answers; they are saved when nothing is */
+async function saveAnswers(actor: Actor, { board, version }: { board: string; version: string }, values: FormValues) {
+  const errors: FieldError[] = []
+  const answers = new Map<string, string>()
+  for (const [name, text] of Object.entries(values)) {
+    if (!name.startsWith('answer.')) continue
+    const parsed = answerSchema.safeParse(text)
+    if (parsed.success) answers.set(name.slice('answer.'.length), parsed.data)
+    else errors.push({ path: name, message: parsed.error.issues[0]!.message })
+  }
+  if (errors.length === 0) await answerCautions(services(), actor, board, version, answers)
+  return errors
+}
+
+export default function Release({ loaderData, actionData }: Route.ComponentProps) {
+  const { page, maxBytes, today } = loaderData
+  if (page.release.state !== 'draft') return <PublishedRelease page={page} today={today} done={loaderData.done} />
+  return (
+    <DraftRelease
+      page={page}
+      maxBytes={maxBytes}
+      done={loaderData.done}
+      errors={actionData?.errors ?? []}
+      values={actionData?.values ?? {}}
+    />
+  )
+}
