@@ -1,6 +1,6 @@
 /* What `demo` and `verify` have in common: a look at the machine, the installation, the build. Plain Node: it runs before anything is installed. */
 import { spawn, spawnSync } from 'node:child_process'
-import { existsSync, mkdirSync, readdirSync, rmSync, statSync, writeFileSync } from 'node:fs'
+import { existsSync, lstatSync, mkdirSync, readdirSync, readFileSync, rmSync, statSync, writeFileSync } from 'node:fs'
 import { join } from 'node:path'
 import { fileURLToPath } from 'node:url'
 
@@ -40,10 +40,26 @@ export function run(command, args, env = {}) {
 
 const changedAt = (path) => (existsSync(path) ? statSync(path).mtimeMs : 0)
 
-/** npm ci, when there is no complete installation or the lockfile is newer than it. */
+const readJson = (path) => JSON.parse(readFileSync(path, 'utf8'))
+
+/** Whether what is installed is what the lockfile says; packages of other platforms may be absent. */
+function isInstalled() {
+  const done = at('node_modules', '.package-lock.json')
+  if (!existsSync(done)) return false
+  if (changedAt(done) >= changedAt(at('package-lock.json'))) return true
+  const installed = readJson(done).packages
+  return Object.entries(readJson(at('package-lock.json')).packages).every(([path, { version, integrity, optional }]) => {
+    if (path === '') return true
+    const found = installed[path]
+    return found ? found.version === version && found.integrity === integrity : optional === true
+  })
+}
+
+/** npm ci, when there is no complete installation or it is not the lockfile's. */
 export async function ensureInstalled() {
-  const done = changedAt(at('node_modules', '.package-lock.json'))
-  if (done >= changedAt(at('package-lock.json'))) return
+  if (isInstalled()) return
+  if (lstatSync(at('node_modules'), { throwIfNoEntry: false })?.isSymbolicLink())
+    throw new Plain('node_modules is a link to another checkout, and is not what the lockfile says: run npm ci there.')
   console.log('Installing packages from the lockfile (npm ci; compiling the database driver takes about two minutes) ...')
   const code = await run('npm', ['ci', '--include=dev', '--no-audit', '--no-fund'])
   if (code !== 0) throw new Plain(`npm ci failed (exit code ${code}); what it said stands above.`)
