@@ -5,7 +5,7 @@ import type { Load, Problem } from './turnbull-problem'
 export const certain = 40
 
 /** More cells than this in play at once are solved by conjugate gradients instead of a dense matrix. */
-const denseLimit = 400
+const denseLimit = 1200
 
 export type Maximum = { falls: Float64Array; logLikelihood: number; iterations: number; isConverged: boolean }
 

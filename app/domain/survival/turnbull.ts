@@ -92,7 +92,14 @@ export function turnbullAt(fit: TurnbullFit, t: number): number | null {
 /** max over cells j of sum over rows of w (1[row may have failed in j]/P(row) - 1[j lies after its entry]/P(T > entry)). */
 function kuhnTuckerGap(cells: Cells, falls: Float64Array, { weight }: Spans): number {
   const before = new Float64Array(falls.length + 1)
-  for (let j = 0; j < falls.length; j++) before[j + 1] = falls[j]! >= certain ? Infinity : before[j]! + falls[j]!
+  const total = new Float64Array(falls.length + 1)
+  const certainBefore = new Int32Array(falls.length + 1)
+  for (let j = 0; j < falls.length; j++) {
+    const isCertain = falls[j]! >= certain
+    before[j + 1] = isCertain ? Infinity : before[j]! + falls[j]!
+    total[j + 1] = total[j]! + (isCertain ? 0 : falls[j]!)
+    certainBefore[j + 1] = certainBefore[j]! + (isCertain ? 1 : 0)
+  }
   const change = new Float64Array(falls.length + 1)
   for (let i = 0; i < weight.length; i++) {
     const first = cells.first[i]!
@@ -100,10 +107,12 @@ function kuhnTuckerGap(cells: Cells, falls: Float64Array, { weight }: Spans): nu
     const entered = cells.entered[i]!
     // Units that entered after S had reached 0 say nothing about the mass before.
     if (before[entered] === Infinity) continue
-    // P(row) / P(T > entry).
+    // P(row) / P(T > entry); a difference of running totals would lose the digits of a short row.
     let fall = 0
-    for (let j = first; j <= last && fall < certain; j++) fall += falls[j]!
-    const share = Math.exp(before[entered]! - before[first]!) * (fall >= certain ? 1 : -Math.expm1(-fall))
+    if (certainBefore[last + 1]! > certainBefore[first]!) fall = Infinity
+    else if (last - first < 16) for (let j = first; j <= last; j++) fall += falls[j]!
+    else fall = total[last + 1]! - total[first]!
+    const share = Math.exp(before[entered]! - before[first]!) * -Math.expm1(-fall)
     const atEntry = Math.exp(-before[entered]!)
     change[first]! += weight[i]! / (share * atEntry)
     change[last + 1]! -= weight[i]! / (share * atEntry)
