@@ -36,3 +36,12 @@ test('at risk: entered before (or at 0), neither failed nor left before', () => 
   expect([0, 1, 2, 3, 4, 5, 9, 10].map((t) => atRiskAt(tally, t))).toEqual([3, 2, 2, 3, 3, 1, 1, 0])
   expect([unitsIn(tally), failuresIn(tally)]).toEqual([5, 4])
 })
+
+test('many uneven times are counted as one by one', () => {
+  const rows = Array.from({ length: 500 }, (_, i) => ({ time: ((i * 37) % 211) ** 3 / 7, event: i % 2 }))
+  const tally = tallyOf(columnsOf(rows))
+  const distinct = [...new Set(rows.map(({ time }) => time))].sort((a, b) => a - b)
+  expect([...tally.time]).toEqual(distinct)
+  expect([...tally.failed]).toEqual(distinct.map((time) => rows.filter((row) => row.time === time && row.event === 1).length))
+  expect([...tally.censored]).toEqual(distinct.map((time) => rows.filter((row) => row.time === time && row.event === 0).length))
+})

@@ -100,5 +100,28 @@ function sortedGrid(time: Float64Array, entry: Float64Array | null): Grid {
   all.set(time)
   if (entry !== null) all.set(entry, time.length)
   const grid = distinctSorted(all)
-  return { grid, indexOf: (value) => lastAtOrBefore(grid, value) }
+  return { grid, indexOf: lookUp(grid) }
+}
+
+/** Position of a value of an ascending grid: a table over equal stretches of its range leaves few elements to search. */
+function lookUp(grid: Float64Array): (value: number) => number {
+  const size = grid.length
+  const low = grid[0] ?? 0
+  const perStretch = size / ((grid[size - 1] ?? 0) - low)
+  if (size < 64 || !Number.isFinite(perStretch)) return (value) => lastAtOrBefore(grid, value)
+  const stretchOf = (value: number) => Math.min(size - 1, Math.floor((value - low) * perStretch))
+  const first = new Int32Array(size + 1).fill(size)
+  for (let j = size - 1; j >= 0; j--) first[stretchOf(grid[j]!)] = j
+  for (let b = size - 1; b >= 0; b--) first[b] = Math.min(first[b]!, first[b + 1]!)
+  return (value) => {
+    const stretch = stretchOf(value)
+    let from = first[stretch]!
+    let to = first[stretch + 1]!
+    while (to - from > 1) {
+      const middle = (from + to) >>> 1
+      if (grid[middle]! <= value) from = middle
+      else to = middle
+    }
+    return from
+  }
 }
