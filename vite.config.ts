@@ -28,6 +28,7 @@ export default defineConfig({
         rollupOptions: {
           input: {
             index: at('./app/server/start.server.ts'),
+            'check-child': at('./app/domain/bundle/check-child.ts'),
             'reliability-worker': at('./app/domain/reliability/reliability-worker.server.ts')
           }
         }

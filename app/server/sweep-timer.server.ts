@@ -1,4 +1,5 @@
 import { sweepAccounts } from '~/domain/accounts/sweep.server'
+import { sweepStaged } from '~/domain/releases/stored-objects.server'
 import { logError } from './log.server'
 import type { Services } from './services.server'
 
@@ -8,7 +9,10 @@ const everyMs = 10 * 60_000
 export function startSweeping(services: Services): { close(): Promise<void> } {
   let running: Promise<void> = Promise.resolve()
   const sweep = () => {
-    running = sweepAccounts(services).catch((error: unknown) => logError('sweep-failed', error))
+    running = Promise.all([sweepAccounts(services), sweepStaged(services)]).then(
+      () => undefined,
+      (error: unknown) => logError('sweep-failed', error)
+    )
   }
   sweep()
   const timer = setInterval(sweep, everyMs)

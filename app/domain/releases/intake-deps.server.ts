@@ -1,4 +1,4 @@
-import { runBundleCheck } from '~/domain/bundle/run-bundle-check.server'
+import { runBundleCheckWithPictures } from '~/domain/bundle/run-bundle-check.server'
 import { log } from '~/server/log.server'
 import type { Services } from '~/server/services.server'
 import type { IntakeDeps } from './take-in-bundle.server'
@@ -9,8 +9,5 @@ export const intakeDeps = ({ db, storage, config, now }: Services): IntakeDeps =
   storage,
   now,
   uploadDir: config.uploadDir,
-  check: async (input) => ({
-    check: await runBundleCheck({ ...input, onCrash: (detail) => log('warn', 'bundle-check-crashed', { detail }) }),
-    pictures: null
-  })
+  check: (input) => runBundleCheckWithPictures({ ...input, onCrash: (detail) => log('warn', 'bundle-check-crashed', { detail }) })
 })

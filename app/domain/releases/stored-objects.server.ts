@@ -1,6 +1,6 @@
 import type { Db } from '~db/client.server'
 import { KeyedLock } from '~/lib/keyed-lock'
-import { log, logError } from '~/server/log.server'
+import { log } from '~/server/log.server'
 import type { Storage } from '~/server/storage.server'
 import * as releases from './releases.repo.server'
 import * as staged from './staged-objects.repo.server'
@@ -49,13 +49,4 @@ export async function sweepStaged({ db, storage, now }: Deps): Promise<number> {
     })
   if (removed > 0) log('info', 'swept-staged', { removed })
   return removed
-}
-
-/** Sweeps every hour until the returned function is called. */
-export function startSweep(deps: Deps, everyMs = 3_600_000): () => void {
-  const timer = setInterval(() => {
-    sweepStaged(deps).catch((error: unknown) => logError('sweep-failed', error))
-  }, everyMs)
-  timer.unref()
-  return () => clearInterval(timer)
 }
