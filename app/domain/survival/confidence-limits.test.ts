@@ -74,18 +74,3 @@ describe("R's survfit at 95 % on published data sets (tests/fixtures/survival, 1
     expectClose(variance, expected.rows.var_surv, 1e-12, 'variance of S')
   })
 })
-
-test('rows carry null, never NaN, where nothing exists', () => {
-  const curve = kaplanMeier(
-    tallyOf(
-      columnsOf([
-        { time: 3, event: 0 },
-        { time: 4, event: 1 }
-      ])
-    )
-  )
-  expect(curveRows(curve, curveLimits(curve, { confidence: 0.75, interval: 'log-log' }))).toEqual([
-    { time: 3, atRisk: 2, events: 0, censored: 1, survival: 1, standardError: 0, lower: 0.5, upper: 1, bound: 'exact-one-sided' },
-    { time: 4, atRisk: 1, events: 1, censored: 0, survival: 0, standardError: null, lower: null, upper: null, bound: null }
-  ])
-})
