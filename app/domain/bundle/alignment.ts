@@ -55,10 +55,17 @@ export function shareOnFlashes(index: FlashIndex, holes: readonly Hole[], scale 
   return hits / holes.length
 }
 
-/** The share of one layer's flashes that fall on another's. */
-export function shareOfFlashes(index: FlashIndex, flashes: Flashes): number {
+/** Whether a flash's middle lies at a place, to within `by` mm. */
+export function isCentred(index: FlashIndex, x: number, y: number, by = 0.15): boolean {
+  const { flashes } = index
+  const isAt = (i: number) => Math.abs(x - flashes.x[i]!) <= by && Math.abs(y - flashes.y[i]!) <= by
+  return (index.cells.get(key(Math.floor(x / cellSize), Math.floor(y / cellSize))) ?? []).some(isAt) || index.large.some(isAt)
+}
+
+/** The share (0 to 1) of one layer's flashes that lie over the middle of another's. */
+export function shareCentred(index: FlashIndex, flashes: Flashes): number {
   if (flashes.x.length === 0) return 1
   let hits = 0
-  for (let i = 0; i < flashes.x.length; i++) if (isOnFlash(index, flashes.x[i]!, flashes.y[i]!)) hits++
+  for (let i = 0; i < flashes.x.length; i++) if (isCentred(index, flashes.x[i]!, flashes.y[i]!)) hits++
   return hits / flashes.x.length
 }

@@ -1,4 +1,4 @@
-import { indexFlashes, shareOnFlashes, shareOfFlashes, holeCentre, type FlashIndex } from './alignment'
+import { indexFlashes, shareOnFlashes, shareCentred, holeCentre, type FlashIndex } from './alignment'
 import type { BundleFinding } from './bundle-check.types'
 import type { BundleReading, FileReading } from './bundle-reading.types'
 import { finding, mm } from './finding'
@@ -6,8 +6,11 @@ import { boxArea, boxesTouch, distanceToEdge, isInside, type Box, type Path } fr
 
 const percent = (share: number) => `${Math.round(share * 100)} %`
 
-/** Below this share of holes on pads a layer or drill file is not this board's. Real sets lie above 0.8, foreign ones below 0.2. */
-const poor = 0.45
+/**
+ * Below this share of holes on pads a layer or drill file is not this board's. Real sets lie above 0.84; a shift by nearly the pitch of a
+ * connector leaves half of the holes on pads.
+ */
+const poor = 0.65
 
 const leastHoles = 3
 
@@ -141,8 +144,7 @@ function checkLayers(reading: BundleReading, indices: Indexed[]): BundleFinding[
   const best = Math.max(0, ...judged.map(({ share }) => share))
   if (best < poor) return []
   return judged.flatMap(({ file, share, index, holes }) => {
-    // Where one outer layer meets nearly all holes the other must meet most of them: half-symmetric boards mirror onto themselves.
-    const isPoor = file.layer.side === 'inner' ? share * holes.length < index.count * 0.2 : share < (best >= 0.9 ? 0.7 : poor)
+    const isPoor = file.layer.side === 'inner' ? share * holes.length < index.count * 0.2 : share < poor
     if (!isPoor) return []
     file.isBroken = true
     const project = file.image?.attributes.get('.ProjectId')?.[0]
@@ -166,7 +168,7 @@ function checkMasks(reading: BundleReading, indices: Indexed[]): BundleFinding[]
     const copper = indices.find((other) => other.file.layer.side === file.layer.side && !other.file.isBroken)
     const { flashes } = file.image
     if (!copper || copper.index.count < 10 || flashes.x.length < 10) return []
-    const share = shareOfFlashes(copper.index, flashes)
+    const share = shareCentred(copper.index, flashes)
     if (share >= 0.25) return []
     file.isBroken = true
     const message = "The mask's openings do not lie over the pads of its side: it is shifted, mirrored or of another board."

@@ -3,8 +3,11 @@ import { place, type Aperture, type Placing, type Recorded } from './gerber-aper
 import { TooComplex } from './gerber-macro'
 import type { CheckLimits } from './limits'
 
-/** Flashes as parallel lists: where, half their width and height, and the round diameter (NaN where not round), in mm. */
-export type Flashes = { x: number[]; y: number[]; halfX: number[]; halfY: number[]; aperture: Aperture[] }
+/** Flashes as parallel lists: where, half their width and height in mm, and the aperture (null for a small area that may be a pad). */
+export type Flashes = { x: number[]; y: number[]; halfX: number[]; halfY: number[]; aperture: (Aperture | null)[] }
+
+/** Areas up to this size in mm may be pads. */
+const largestPad = 8
 
 export type Stroke = { points: Path; aperture: Aperture }
 
@@ -123,6 +126,16 @@ export class GerberCanvas {
     growBox(this.box, box.minX, box.minY)
     growBox(this.box, box.maxX, box.maxY)
     if (this.keep.strokes) this.regions.push(points)
+    // Some tools draw pads as small areas: for alignment these count as flashes.
+    if (this.keep.flashes && box.maxX - box.minX <= largestPad && box.maxY - box.minY <= largestPad) {
+      this.keepFlash(
+        (box.minX + box.maxX) / 2,
+        (box.minY + box.maxY) / 2,
+        (box.maxX - box.minX) / 2,
+        (box.maxY - box.minY) / 2,
+        null
+      )
+    }
   }
 
   private drawFlash(x: number, y: number, aperture: Aperture, placing: Placing, isDark: boolean): void {
@@ -153,7 +166,10 @@ export class GerberCanvas {
       halfX = Math.max(halfX, Math.abs(cx))
       halfY = Math.max(halfY, Math.abs(cy))
     }
-    if (!this.keep.flashes) return
+    if (this.keep.flashes) this.keepFlash(x, y, halfX, halfY, aperture)
+  }
+
+  private keepFlash(x: number, y: number, halfX: number, halfY: number, aperture: Aperture | null): void {
     this.flashes.x.push(x)
     this.flashes.y.push(y)
     this.flashes.halfX.push(halfX)

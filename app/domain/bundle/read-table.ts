@@ -27,7 +27,8 @@ export function decodeText(bytes: Uint8Array): string {
 
 /** The text as a table for each delimiter that could be meant; tables that exceed the limits or cannot be parsed are left out. */
 export function readTables(bytes: Uint8Array, limits: CheckLimits): Table[] {
-  const text = decodeText(bytes)
+  // Files put together by hand mix line ends.
+  const text = decodeText(bytes).replace(/\r\n?/g, '\n')
   const tables: Table[] = []
   for (const delimiter of [',', ';', '\t', '|']) {
     if (!text.includes(delimiter)) continue
