@@ -37,6 +37,7 @@ export default [
   route('boards/:board/reliability', 'routes/reliability/page.tsx'),
   route('boards/:board/reliability.csv', 'routes/reliability/csv/endpoint.ts'),
   route('api/v1/boards/:board/reliability', 'routes/api/reliability/endpoint.ts'),
+  route('api/v1/compute/survival', 'routes/api/compute-survival/endpoint.ts'),
 
   route('health', 'routes/health/endpoint.ts'),
   route('*', 'routes/not-found/page.tsx')

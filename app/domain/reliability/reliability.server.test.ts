@@ -6,7 +6,7 @@ import type { Db } from '~db/client.server'
 import { fillReportWorld, openTestDb } from '../../../tests/factories/report-world'
 import type { ReliabilityFilters } from './reliability-filters'
 import { reliabilityOf } from './reliability.server'
-import { closeSharedWorker } from './worker-client.server'
+import { closeWorkers } from './worker-client.server'
 
 let services: Services
 let db: Db
@@ -101,7 +101,7 @@ beforeAll(async () => {
   })
 })
 afterAll(async () => {
-  await closeSharedWorker()
+  await closeWorkers()
   await close()
 })
 

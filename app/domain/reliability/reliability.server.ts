@@ -5,7 +5,7 @@ import { LruCache } from '~/lib/lru-cache'
 import type { ReliabilityFigures } from './reliability-figures'
 import { filtersQuery, readFilters, unknownNames, type ReliabilityFilters } from './reliability-filters'
 import * as repo from './reliability.repo.server'
-import { sharedWorker } from './worker-client.server'
+import { pagesWorker } from './worker-client.server'
 
 /** Figures already computed, by file, board, how often its reports changed, and filters. */
 const computed = new LruCache<string, Promise<ReliabilityFigures>>(32)
@@ -25,7 +25,7 @@ export async function reliabilityOf(
   const key = JSON.stringify([databaseFile, board.id, board.report_version ?? 0, filtersQuery(filters).toString()])
   const known = computed.get(key)
   if (known !== undefined) return known
-  const figures = sharedWorker().run({ kind: 'reliability', databaseFile, board: boardSlug, filters })
+  const figures = pagesWorker().run({ kind: 'reliability', databaseFile, board: boardSlug, filters })
   computed.set(key, figures)
   figures.catch(() => computed.delete(key))
   return figures

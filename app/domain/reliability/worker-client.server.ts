@@ -54,7 +54,8 @@ export class WorkerClient {
     const waiting = this.#line.shift()
     if (waiting === undefined) return
     this.#current = { waiting, timer: setTimeout(() => this.#giveUp(), waiting.timeoutMs) }
-    this.#thread().postMessage(waiting.request)
+    const { task } = waiting.request
+    this.#thread().postMessage(waiting.request, task.kind === 'survival' ? [task.body] : [])
   }
 
   #thread(): Worker {
@@ -121,16 +122,22 @@ function startReliabilityWorker(): Worker {
   return new Worker(`import('tsx/esm/api').then(({ register }) => { register(); return import(${source}) })`, { eval: true })
 }
 
-let shared: WorkerClient | null = null
+const clients = new Map<'pages' | 'compute', WorkerClient>()
 
-/** The one worker of this process. */
-export function sharedWorker(): WorkerClient {
-  shared ??= new WorkerClient()
-  return shared
+function client(name: 'pages' | 'compute'): WorkerClient {
+  const known = clients.get(name) ?? new WorkerClient()
+  clients.set(name, known)
+  return known
 }
 
-/** Ends the worker; for the end of a test file. */
-export async function closeSharedWorker(): Promise<void> {
-  await shared?.close()
-  shared = null
+/** The thread of this process for the figures of pages. */
+export const pagesWorker = () => client('pages')
+
+/** The thread for computations on anybody's own data, which may take long: pages do not wait behind them. */
+export const computeWorker = () => client('compute')
+
+/** Ends the threads; for the end of a test file. */
+export async function closeWorkers(): Promise<void> {
+  await Promise.all([...clients.values()].map((one) => one.close()))
+  clients.clear()
 }

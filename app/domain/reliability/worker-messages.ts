@@ -2,10 +2,13 @@ import type { ErrorKind, FieldError } from '~/lib/domain-error'
 import type { ReliabilityFigures } from './reliability-figures'
 import type { ReliabilityFilters } from './reliability-filters'
 
-/** What the worker is asked: the figures of a board. */
-export type WorkerTask = { kind: 'reliability'; databaseFile: string; board: string; filters: ReliabilityFilters }
+/** What the worker is asked: the figures of a board, or a computation on somebody's own data (the body as it came, UTF-8 JSON). */
+export type WorkerTask =
+  | { kind: 'reliability'; databaseFile: string; board: string; filters: ReliabilityFilters }
+  | { kind: 'survival'; body: ArrayBuffer }
 
-export type WorkerResults = { reliability: ReliabilityFigures }
+/** What each task gives; `survival` gives JSON text, so that the server only passes it on. */
+export type WorkerResults = { reliability: ReliabilityFigures; survival: string }
 
 export type WorkerRequest = { id: number; task: WorkerTask }
 export type WorkerAnswer =
