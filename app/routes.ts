@@ -23,6 +23,10 @@ export default [
   route('api/v1/boards/:board/releases', 'routes/public-data/releases.endpoint.ts'),
   route('api/v1/boards/:board/releases/:version', 'routes/public-data/release.endpoint.ts'),
 
+  route('consoles', 'routes/consoles/list/page.tsx'),
+  route('consoles/:console', 'routes/consoles/console/page.tsx'),
+  route('consoles/:console/:revision', 'routes/consoles/revision/page.tsx'),
+  route('fit', 'routes/fit/page.tsx'),
   route('guides', 'routes/guides/index/page.tsx'),
   route('guides/:page', 'routes/guides/guide/page.tsx'),
   route('sign-in', 'routes/sign-in/page.tsx'),
@@ -39,6 +43,8 @@ export default [
   route('api/v1/boards/:board/reliability', 'routes/api/reliability/endpoint.ts'),
   route('api/v1/compute/survival', 'routes/api/compute-survival/endpoint.ts'),
 
+  route('api/v1/consoles', 'routes/api/consoles/endpoint.ts'),
+  route('api/v1/consoles/:console', 'routes/api/console/endpoint.ts'),
   route('health', 'routes/health/endpoint.ts'),
   route('*', 'routes/not-found/page.tsx')
 ] satisfies RouteConfig

@@ -133,6 +133,10 @@ describe('the seeded world', () => {
       const facts = JSON.parse(row.facts_json!)
       expect([facts.sha256, facts.copperLayers]).toEqual([manifest.bundle.sha256, manifest.declared.copperLayers])
       expect(row.is_check_ok).toBe(1)
+      for (const sha256 of [row.picture_top_sha256, row.picture_bottom_sha256]) {
+        expect(sha256).not.toBeNull()
+        expect(await storage.head(objectKey('picture', sha256!))).toMatchObject({ contentType: 'image/svg+xml' })
+      }
     }
     const open = await db.selectFrom('findings').select(['code', 'severity', 'answer']).where('severity', '<>', 'note').execute()
     expect(open.length).toBeGreaterThan(0)
