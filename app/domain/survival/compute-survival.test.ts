@@ -145,6 +145,19 @@ describe('worked by hand', () => {
     expect(lower(2)).not.toEqual(lower(1))
   })
 
+  test('limits of a Turnbull curve stop where they would take too long', () => {
+    const counts = (weight: number) => [
+      { lower: 0, upper: 5, weight },
+      { lower: 5, upper: null, weight }
+    ]
+    const [few] = answerOf({ observations: counts(10) }).groups
+    const [many] = answerOf({ observations: counts(150_000) }).groups
+    expect(few!.curve[0]!.lower).toBeLessThan(0.5)
+    expect(many!.curve).toMatchObject([
+      { time: 5, survival: expect.closeTo(0.5, 12), lower: null, upper: null, standardError: null }
+    ])
+  })
+
   test.each([
     [{ time: 1e9 + 1, entry: 1e9, event: 0 }, 'observations.1.time'],
     [{ lower: 1e9, upper: 1e9 + 1, entry: 1e9 }, 'observations.1.upper']

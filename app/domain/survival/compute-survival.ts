@@ -17,6 +17,11 @@ import { tallyOf, type Tally } from './tally'
 import { fitWeibull } from './weibull'
 import { weibullQuantile } from './weibull-quantities'
 
+const resamples = 200
+// Past this many rows or units 200 resamples would take more than some ten seconds; the limits are then null.
+const maxResampledRows = 10_000
+const maxResampledUnits = 200_000
+
 /**
  * Computes the answer of `POST /api/v1/compute/survival` (METHODS.md section 1), the same for pages, endpoint and command line. Kaplan-Meier, with
  * incidences when failures name their causes and a log-rank test of two groups or more; Turnbull for all when any row is an interval. Groups come
@@ -27,12 +32,13 @@ import { weibullQuantile } from './weibull-quantities'
 export function computeSurvival(request: SurvivalRequest): SurvivalAnswer {
   if (hasIntervals(request)) {
     const rows = rowsByGroup(request)
+    const options = { ...request, resamples: resamplesFor(request) }
     return {
       method: 'turnbull',
       groups: request.groups.map((group, g) => {
         const spans = spansOf(rows[g]!)
         refuseEmptySpans(spans, request, g)
-        return computeTurnbullGroup(group, spans, request, weibullAnswer(spans, request.confidence))
+        return computeTurnbullGroup(group, spans, options, weibullAnswer(spans, request.confidence))
       }),
       logRank: null
     }
@@ -92,6 +98,11 @@ function weibullAnswer(spans: Spans, confidence: number): WeibullAnswer | null {
     ...Object.values(median)
   ]
   return numbers.every(Number.isFinite) ? answer : null
+}
+
+function resamplesFor({ observations }: SurvivalRequest): number {
+  const units = observations.reduce((sum, { weight = 1 }) => sum + weight, 0)
+  return observations.length <= maxResampledRows && units <= maxResampledUnits ? resamples : 0
 }
 
 function rowsByGroup({ observations, groups, groupOf }: SurvivalRequest): Observation[][] {

@@ -1,11 +1,10 @@
 import { expect, test } from 'vitest'
-import { parseSurvivalRequest } from './compute-survival.schema'
 import { computeTurnbullGroup } from './compute-turnbull'
 import type { Observation } from './observation'
 import { spansOf } from './spans'
 
-const groupOf = (observations: Observation[]) =>
-  computeTurnbullGroup('A', spansOf(observations), parseSurvivalRequest({ observations }), null)
+const groupOf = (observations: Observation[], resamples = 40) =>
+  computeTurnbullGroup('A', spansOf(observations), { confidence: 0.95, seed: 1, tau: null, resamples }, null)
 
 test('units that may still be at risk: entered before, not known to have failed or left before', () => {
   const { curve } = groupOf([
@@ -31,10 +30,11 @@ test('nothing but right-censored units: no row, one endless cell', () => {
   })
 })
 
-test('limits need units by the thousand at most; beyond, they are null', () => {
-  const many = [
-    { lower: 0, upper: 5, weight: 150_000 },
-    { lower: 5, upper: null, weight: 150_000 }
+test('without resamples there are no limits', () => {
+  const rows = [
+    { lower: 0, upper: 5 },
+    { lower: 5, upper: null }
   ]
-  expect(groupOf(many).curve).toMatchObject([{ time: 5, lower: null, upper: null, standardError: null }])
+  expect(groupOf(rows, 0).curve).toMatchObject([{ time: 5, lower: null, upper: null, standardError: null }])
+  expect(groupOf(rows).curve[0]!.standardError).toBeGreaterThan(0)
 })

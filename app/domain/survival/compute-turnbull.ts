@@ -1,15 +1,13 @@
 import { bootstrapTurnbull } from './bootstrap'
-import type { SurvivalRequest } from './compute-survival.schema'
+import { possiblyAtRisk } from './possibly-at-risk'
 import { firstCrossing } from './quantile'
 import { seededRandom } from './special/seeded-random'
 import type { Spans } from './spans'
 import type { AnswerRow, GroupAnswer, WeibullAnswer } from './survival-answer'
 import { turnbull } from './turnbull'
 
-const resamples = 200
-/** Past this many units or rows the limits would take minutes; they are null. */
-const maxResampledUnits = 200_000
-const maxResampledRows = 20_000
+/** `resamples` of the bootstrap; with 0 there are no limits. */
+export type TurnbullOptions = { confidence: number; seed: number; tau: number | null; resamples: number }
 
 /**
  * The answer for one group of interval-censored data. The curve has a row at the right end of each cell with mass, where S is known again; the median
@@ -18,13 +16,15 @@ const maxResampledRows = 20_000
 export function computeTurnbullGroup(
   group: string | null,
   spans: Spans,
-  request: SurvivalRequest,
+  options: TurnbullOptions,
   weibull: WeibullAnswer | null
 ): GroupAnswer {
   const fit = turnbull(spans)
   const rows = [...fit.mass.keys()].filter((k) => fit.mass[k]! > 0 && fit.right[k] !== Infinity)
-  const canResample = fit.units <= maxResampledUnits && spans.weight.length <= maxResampledRows && rows.length > 0
-  const limits = canResample ? bootstrapTurnbull(fit, seededRandom(request.seed), request.confidence, resamples) : null
+  const limits =
+    options.resamples > 0 && rows.length > 0
+      ? bootstrapTurnbull(fit, seededRandom(options.seed), options.confidence, options.resamples)
+      : null
   const time = Float64Array.from(rows, (k) => fit.right[k]!)
   const survival = Float64Array.from(rows, (k) => fit.survivalAfter[k]!)
   const atRisk = possiblyAtRisk(spans, time)
@@ -46,7 +46,7 @@ export function computeTurnbullGroup(
       bound: null
     })),
     median: { estimate: crossing(survival), lower: crossing(limits?.lower), upper: crossing(limits?.upper) },
-    rmst: request.tau === null ? null : { tau: request.tau, estimate: null, standardError: null },
+    rmst: options.tau === null ? null : { tau: options.tau, estimate: null, standardError: null },
     hazard: rows.map((k, r) => ({
       time: time[r]!,
       cumulative: (cumulative += fit.mass[k]! / (fit.mass[k]! + fit.survivalAfter[k]!))
@@ -59,21 +59,3 @@ export function computeTurnbullGroup(
     }))
   }
 }
-
-/** Units that entered before t and may still have been at risk at t: neither last seen working before it nor known to have failed before it. */
-function possiblyAtRisk({ entry, lower, upper, weight }: Spans, times: Float64Array): number[] {
-  const order = [...entry.keys()]
-  const exit = (i: number) => (upper[i] === Infinity ? lower[i]! : upper[i]!)
-  const byEntry = [...order].sort((a, b) => entry[a]! - entry[b]!)
-  const byExit = order.sort((a, b) => exit(a) - exit(b))
-  let n = 0
-  let nextEntry = 0
-  let nextExit = 0
-  return Array.from(times, (t) => {
-    for (; nextEntry < byEntry.length && isIn(entry[byEntry[nextEntry]!]!, t); nextEntry++) n += weight[byEntry[nextEntry]!]!
-    for (; nextExit < byExit.length && exit(byExit[nextExit]!) < t; nextExit++) n -= weight[byExit[nextExit]!]!
-    return n
-  })
-}
-
-const isIn = (entry: number, t: number) => entry < t || entry === 0
