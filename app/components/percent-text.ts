@@ -1,4 +1,4 @@
-import { goneUnder, pointAt, type SurvivalPoint } from './chart-geometry'
+import { atRiskAt, goneUnder, pointAt, type SurvivalPoint } from './chart-geometry'
 
 /**
  * A share as whole percent, never as "100": where nothing failed it is the lower bound, "≥ 59"; what rounds to 100 is "over 99",
@@ -15,7 +15,7 @@ export function percentText(share: number, lower: number | null): string {
 /** "95 % at 1 year", or why there is no such figure. */
 export function readingText(points: readonly SurvivalPoint[], days: number, when: string): string {
   const at = pointAt(points, days)
-  if (!at || at.atRisk < goneUnder) return `too few at ${when}`
+  if (!at || atRiskAt(points, days) < goneUnder) return `too few at ${when}`
   const text = percentText(at.survival, at.lower)
   return text === 'none failed' ? `none failed by ${when}` : `${text} % at ${when}`
 }

@@ -1,7 +1,30 @@
 import { DomainError } from '~/lib/domain-error'
+import { log, logError } from './log.server'
+
+const lingerBytes = 64 * 1024 * 1024
+const lingerMs = 5_000
+
+/** Reads and forgets what a refused sender still sends, for a while: cut off at once, it would see a broken connection and no answer. */
+async function forget(reader: ReadableStreamDefaultReader<Uint8Array>): Promise<void> {
+  const stop = () => reader.cancel().catch((error: unknown) => logError('body-cancel-failed', error))
+  const timer = setTimeout(stop, lingerMs)
+  try {
+    for (let seen = 0; seen <= lingerBytes;) {
+      const { done, value } = await reader.read()
+      if (done) return
+      seen += value.byteLength
+    }
+    await stop()
+  } catch (error) {
+    // The sender has gone, and with it the need for an answer.
+    log('info', 'body-broken-off', { message: error instanceof Error ? error.message : String(error) })
+  } finally {
+    clearTimeout(timer)
+  }
+}
 
 /**
- * Reads a request's body into memory, counting while it reads: the declared length is not trusted, and nothing is read past the limit.
+ * Reads a request's body into memory, counting while it reads: the declared length is not trusted, and nothing past the limit is kept.
  * @param type the media type that the body must have
  * @throws DomainError `wrong-type`, `too-large`
  */
@@ -23,7 +46,7 @@ export async function readBody(request: Request, type: string, maxBytes: number)
     if (done) break
     size += value.byteLength
     if (size > maxBytes) {
-      await reader.cancel()
+      void forget(reader)
       throw tooLarge()
     }
     chunks.push(value)

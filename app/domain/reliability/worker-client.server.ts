@@ -111,15 +111,19 @@ export class WorkerClient {
 
 /**
  * In the build the entry lies beside the server or, when this code ended up in a chunk, one folder up; else it is the source, for which
- * the thread has to register the TypeScript loader itself (`--import tsx` has no effect in threads of Node 20).
+ * the thread has to register the TypeScript loader itself (`--import tsx` has no effect in threads of Node 20). What the process was told
+ * to load first is not for the thread: hence no inherited arguments.
  */
 function startReliabilityWorker(): Worker {
   for (const place of ['./reliability-worker.js', '../reliability-worker.js']) {
     const url = new URL(place, import.meta.url)
-    if (existsSync(fileURLToPath(url))) return new Worker(url)
+    if (existsSync(fileURLToPath(url))) return new Worker(url, { execArgv: [] })
   }
   const source = JSON.stringify(new URL('./reliability-worker.server.ts', import.meta.url).href)
-  return new Worker(`import('tsx/esm/api').then(({ register }) => { register(); return import(${source}) })`, { eval: true })
+  return new Worker(`import('tsx/esm/api').then(({ register }) => { register(); return import(${source}) })`, {
+    eval: true,
+    execArgv: []
+  })
 }
 
 const clients = new Map<'pages' | 'compute', WorkerClient>()
