@@ -69,3 +69,33 @@ export function shareCentred(index: FlashIndex, flashes: Flashes): number {
   for (let i = 0; i < flashes.x.length; i++) if (isCentred(index, flashes.x[i]!, flashes.y[i]!)) hits++
   return hits / flashes.x.length
 }
+
+/**
+ * The shift that most holes share against the middles of their pads, in mm; null when they sit in the middle, or each is off its own way
+ * (as the half-holes of opposite edges are). Median of the offsets, shared by at least 70 % of five or more holes.
+ */
+export function commonShift(index: FlashIndex, holes: readonly Hole[]): [number, number] | null {
+  const offsets: [number, number][] = []
+  for (const hole of holes) {
+    const [x, y] = holeCentre(hole)
+    const offset = nearestMiddle(index, x, y)
+    if (offset) offsets.push(offset)
+  }
+  if (offsets.length < 5) return null
+  const median = (axis: 0 | 1) => offsets.map((offset) => offset[axis]).sort((a, b) => a - b)[Math.floor(offsets.length / 2)]!
+  const [dx, dy] = [median(0), median(1)]
+  if (Math.hypot(dx, dy) < 0.15) return null
+  const sharing = offsets.filter((offset) => Math.hypot(offset[0] - dx, offset[1] - dy) < 0.05)
+  return sharing.length >= 0.7 * holes.length ? [dx, dy] : null
+}
+
+/** How far a place is from the middle of the nearest flash that covers it. */
+function nearestMiddle({ cells, flashes }: FlashIndex, x: number, y: number): [number, number] | null {
+  let nearest: [number, number] | null = null
+  for (const i of cells.get(key(Math.floor(x / cellSize), Math.floor(y / cellSize))) ?? []) {
+    const [dx, dy] = [x - flashes.x[i]!, y - flashes.y[i]!]
+    const isCovering = Math.abs(dx) <= flashes.halfX[i]! + slack && Math.abs(dy) <= flashes.halfY[i]! + slack
+    if (isCovering && (!nearest || Math.hypot(dx, dy) < Math.hypot(...nearest))) nearest = [dx, dy]
+  }
+  return nearest
+}

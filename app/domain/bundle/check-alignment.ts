@@ -1,8 +1,10 @@
-import { indexFlashes, shareOnFlashes, shareCentred, holeCentre, type FlashIndex } from './alignment'
+import { commonShift, indexFlashes, shareOnFlashes, shareCentred, holeCentre, type FlashIndex } from './alignment'
 import type { BundleFinding } from './bundle-check.types'
 import type { BundleReading, FileReading } from './bundle-reading.types'
+import { checkEdge } from './check-edge'
 import { finding, mm } from './finding'
-import { boxArea, boxesTouch, distanceToEdge, isInside, type Box, type Path } from './geometry'
+import type { Hole } from './read-excellon'
+import { boxArea, boxesTouch, distanceToEdge, isFarOutside } from './geometry'
 
 const percent = (share: number) => `${Math.round(share * 100)} %`
 
@@ -28,7 +30,7 @@ export function checkAlignment(reading: BundleReading): BundleFinding[] {
   const findings = [...checkDrills(reading, indices), ...checkOutside(reading, copper)]
   findings.push(...checkLayers(reading, indices))
   findings.push(...checkMasks(reading, indices))
-  findings.push(...checkCopperEdge(reading, copper), ...checkHolesOnOutline(reading))
+  findings.push(...checkEdge(reading, copper))
   return findings
 }
 
@@ -39,7 +41,14 @@ const platedHoles = (file: FileReading) => {
   return (file.holes ?? []).filter((hole) => (hole.plating === null ? isPlatedFile : hole.plating === 'plated'))
 }
 
-const drillFiles = (reading: BundleReading) =>
+/** Half-holes on the edge sit off the middle of their pads on purpose. */
+function insideHoles(reading: BundleReading, holes: Hole[]): Hole[] {
+  const contour = reading.outline?.contour
+  if (!contour) return holes
+  return holes.filter((hole) => distanceToEdge(contour, ...holeCentre(hole)) > hole.diameter / 2)
+}
+
+export const drillFiles = (reading: BundleReading) =>
   reading.files.filter((file) => file.layer.function.startsWith('drill') && !file.isBroken && (file.holes?.length ?? 0) > 0)
 
 /** Drill files that miss the pads of every copper layer: wrong units when a scale brings them onto the pads, else misaligned. */
@@ -51,7 +60,15 @@ function checkDrills(reading: BundleReading, indices: Indexed[]): BundleFinding[
     const name = file.layer.file
     const best = Math.max(0, ...outer.map(({ index }) => shareOnFlashes(index, holes)))
     if (holes.length >= leastHoles && outer.length > 0) {
-      if (best >= poor) continue
+      if (best >= poor) {
+        const shifts = outer.map(({ index }) => commonShift(index, insideHoles(reading, holes)))
+        if (!shifts.every((shift) => shift !== null)) continue
+        file.isBroken = true
+        const found = shifts[0]!.map((by) => mm(by)).join(', ')
+        const message = 'All holes are off the middle of their pads by the same way: the drill file is shifted.'
+        findings.push(finding('drill-misaligned', message, { file: name, expected: 'holes in the middle of their pads', found }))
+        continue
+      }
       const scale = [25.4, 1 / 25.4, 10, 0.1, 1000, 0.001].find((s) =>
         outer.some(({ index }) => shareOnFlashes(index, holes, s) >= 0.6)
       )
@@ -89,11 +106,6 @@ function checkDrills(reading: BundleReading, indices: Indexed[]): BundleFinding[
     }
   }
   return findings
-}
-
-export function isFarOutside(contour: Path, box: Box, x: number, y: number, by: number): boolean {
-  if (x < box.minX - by || x > box.maxX + by || y < box.minY - by || y > box.maxY + by) return true
-  return !isInside(contour, x, y) && distanceToEdge(contour, x, y) > by
 }
 
 /** Layers that do not lie on the board at all. When every copper layer lies elsewhere it is the outline that is foreign. */
@@ -145,17 +157,20 @@ function checkLayers(reading: BundleReading, indices: Indexed[]): BundleFinding[
   if (best < poor) return []
   return judged.flatMap(({ file, share, index, holes }) => {
     const isPoor = file.layer.side === 'inner' ? share * holes.length < index.count * 0.2 : share < poor
-    if (!isPoor) return []
+    const shift = isPoor || file.layer.side === 'inner' ? null : commonShift(index, insideHoles(reading, holes))
+    if (!isPoor && shift === null) return []
     file.isBroken = true
     const project = file.image?.attributes.get('.ProjectId')?.[0]
     const others = new Set(reading.files.map((f) => f.image?.attributes.get('.ProjectId')?.[0]).filter(Boolean))
     const foreign = project && others.size > 1 ? ` It names the project "${project.slice(0, 60)}".` : ''
-    const message = `The drilled holes do not fall on this layer's pads: it is shifted, mirrored or of another board.${foreign}`
+    const message = shift
+      ? "The drilled holes are off the middle of this layer's pads, all by the same way: it is shifted."
+      : `The drilled holes do not fall on this layer's pads: it is shifted, mirrored or of another board.${foreign}`
     return [
       finding('layer-misaligned', message, {
         file: file.layer.file,
         expected: `${percent(best)} of holes on pads`,
-        found: percent(share)
+        found: shift ? `off by ${shift.map((by) => mm(-by)).join(', ')}` : percent(share)
       })
     ]
   })
@@ -179,43 +194,5 @@ function checkMasks(reading: BundleReading, indices: Indexed[]): BundleFinding[]
         found: `${percent(share)} over pads`
       })
     ]
-  })
-}
-
-const edgeNames = ['left', 'right', 'lower', 'upper'] as const
-
-/** Copper that reaches past the outline, as plated half-holes do on purpose. */
-function checkCopperEdge(reading: BundleReading, copper: FileReading[]): BundleFinding[] {
-  const board = reading.outline?.box
-  if (!board || reading.outlineFile?.isBroken) return []
-  const worst = new Map<string, number>()
-  const files: string[] = []
-  for (const file of copper) {
-    const box = file.image?.box
-    if (!box || file.isBroken) continue
-    const past = [board.minX - box.minX, box.maxX - board.maxX, board.minY - box.minY, box.maxY - board.maxY]
-    if (past.every((by) => by <= 0.05)) continue
-    files.push(file.layer.file)
-    past.forEach((by, i) => {
-      if (by > 0.05) worst.set(edgeNames[i]!, Math.max(by, worst.get(edgeNames[i]!) ?? 0))
-    })
-  }
-  if (files.length === 0) return []
-  const found = [...worst].map(([edge, by]) => `${mm(by)} past the ${edge} edge`).join(', ')
-  const message = `Copper reaches past the outline on ${files.length} ${files.length === 1 ? 'layer' : 'layers'}: plated half-holes on purpose, or a mistake.`
-  return [finding('copper-past-outline', message, { file: files[0]!, expected: 'copper inside the outline', found })]
-}
-
-/** Holes that the outline cuts through. */
-function checkHolesOnOutline(reading: BundleReading): BundleFinding[] {
-  const { contour, box } = reading.outline ?? {}
-  if (!contour || !box || reading.outlineFile?.isBroken) return []
-  return drillFiles(reading).flatMap((file) => {
-    if (file.isBroken) return []
-    const cut = file.holes!.filter((hole) => distanceToEdge(contour, ...holeCentre(hole)) < hole.diameter / 2 - 0.01)
-    if (cut.length === 0) return []
-    const [x, y] = holeCentre(cut[0]!)
-    const message = `${cut.length} ${cut.length === 1 ? 'hole is' : 'holes are'} cut by the outline, as plated half-holes are; the first at ${mm(x)}, ${mm(y)}.`
-    return [finding('hole-on-outline', message, { file: file.layer.file, found: cut.length })]
   })
 }

@@ -111,6 +111,23 @@ const cases: Case[] = [
     'gerber/sundial-B_Cu.gbr'
   ],
   [
+    'copper shifted by a fifth of a millimetre',
+    almanac,
+    (f) => edit(f, bottom, (c) => shifted(c, 200_000)),
+    'layer-misaligned',
+    'stop',
+    bottom
+  ],
+  [
+    'holes shifted by a fifth of a millimetre',
+    buttress,
+    (f) =>
+      edit(f, 'drill/buttress-PTH.drl', (c) => c.replace(/X([\d.]+)Y/g, (_, x: string) => `X${(Number(x) + 0.2).toFixed(3)}Y`)),
+    'drill-misaligned',
+    'stop',
+    'drill/buttress-PTH.drl'
+  ],
+  [
     'a mask shifted',
     almanac,
     (f) => edit(f, 'gerber/almanac-F_Mask.gbr', (c) => shifted(c, 1_500_000)),

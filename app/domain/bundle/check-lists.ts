@@ -1,7 +1,7 @@
 import type { BundleFinding } from './bundle-check.types'
 import type { BundleReading } from './bundle-reading.types'
-import { isFarOutside } from './check-alignment'
 import { finding, listed, mm } from './finding'
+import { isFarOutside } from './geometry'
 import type { Bom } from './read-bom'
 import type { Placed } from './read-placement'
 

@@ -82,3 +82,9 @@ export function distanceToEdge(polygon: Path, x: number, y: number): number {
   }
   return least
 }
+
+/** Whether a point lies outside a closed polygon, whose box is given, by more than `by` mm. */
+export function isFarOutside(contour: Path, box: Box, x: number, y: number, by: number): boolean {
+  if (x < box.minX - by || x > box.maxX + by || y < box.minY - by || y > box.maxY + by) return true
+  return !isInside(contour, x, y) && distanceToEdge(contour, x, y) > by
+}

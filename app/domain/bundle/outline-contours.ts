@@ -82,7 +82,8 @@ function joinChains(chains: Chain[], tolerance: number): void {
     let best: { chain: number; atEnd: boolean; distance: number } | null = null
     for (let dx = -1; dx <= 1; dx++) {
       for (let dy = -1; dy <= 1; dy++) {
-        for (const entry of grid.get(`${cell(x) + dx},${cell(y) + dy}`) ?? []) {
+        // Hundreds of ends on one spot are no outline; looking at all of them each time would take for ever.
+        for (const entry of (grid.get(`${cell(x) + dx},${cell(y) + dy}`) ?? []).slice(0, 100)) {
           const other = chains[entry.chain]!
           if (other.isUsed || other.isClosed || (entry.chain === index) !== own) continue
           const [x0, y0, x1, y1] = ends(other.points)

@@ -137,7 +137,7 @@ export async function readBundle(
     }
     file.image = safely(read)
   }
-  chooseOutline(reading)
+  chooseOutline(reading, limits)
   for (const file of files) {
     if (file.layer.function === 'job' && !reading.job) reading.job = readJob(await bytesOf(file))
   }
@@ -165,13 +165,18 @@ function formatFinding(file: FileReading): BundleFinding {
 }
 
 /** Of several outline files the one with the largest closed contour; an attribute goes before a name. */
-function chooseOutline(reading: BundleReading): void {
+function chooseOutline(reading: BundleReading, limits: CheckLimits): void {
   const candidates = reading.files.filter(
     (file) => file.layer.function === 'outline' && file.image && !file.image.problem && file.image.objects > 0
   )
   const told = candidates.filter((file) => file.layer.evidence === 'attribute')
   let best = 0
   for (const file of told.length > 0 ? told : candidates) {
+    if (file.image!.strokes.length > limits.outlinePaths) {
+      const message = `an outline of ${file.image!.strokes.length} strokes`
+      file.image = { ...file.image!, problem: { kind: 'too-complex', message, found: null } }
+      continue
+    }
     const outline = findOutline(file.image!.strokes, file.image!.regions)
     const area = outline.box ? (outline.box.maxX - outline.box.minX) * (outline.box.maxY - outline.box.minY) : 0
     if (reading.outline && area <= best) continue
