@@ -64,8 +64,7 @@ function start(name, args, env, onLine = () => {}) {
   return held
 }
 
-const because = ({ name, tail }, how) =>
-  new Plain(`The ${name} ended (${how}).\n${tail.join('\n')}\nMore in ${relative(root, logFile)}.`)
+const because = ({ name, tail }, how) => new Plain(`The ${name} ended (${how}).\n${tail.join('\n')}\nMore in ${shown(logFile)}.`)
 
 /** Starts a program and waits until it has said a line that `read` can make something of. */
 async function startAndAwait(name, args, env, read) {
@@ -209,6 +208,9 @@ async function main() {
   throw because(gone, first.how)
 }
 
+/** Inside the project from its root, elsewhere in full. */
+const shown = (path) => (relative(root, path).startsWith('..') ? path : relative(root, path))
+
 function say(origin, mailUrl, people, dataDir) {
   const rows = people.map(({ login, part }) => `    ${login.padEnd(20)} ${part}`)
   console.log(`
@@ -219,7 +221,7 @@ function say(origin, mailUrl, people, dataDir) {
   Sign in   "with GitHub" leads to a stand-in where you pick who you are; by mail works too:
 ${rows.join('\n')}
   Mail      ${mailUrl}  shows everything that was "sent"
-  Data      ${relative(root, dataDir) || dataDir}  (kept; remove the folder to begin anew)
+  Data      ${shown(dataDir)}  (kept; remove the folder to begin anew)
 
   Stop with Ctrl-C.
 `)

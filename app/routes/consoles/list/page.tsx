@@ -60,6 +60,7 @@ function ConsoleSection({ number, console }: { number: number; console: ListedCo
     <Section number={number} heading={<TextLink href={`/consoles/${console.slug}`}>{console.name}</TextLink>} id={console.slug}>
       <p>{console.summary}</p>
       <Definitions
+        layout="plate"
         items={[
           { label: 'Maker', value: console.maker },
           { label: 'Kind', value: kindWord[console.kind] },

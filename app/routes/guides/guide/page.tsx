@@ -21,7 +21,11 @@ export default function GuidePage({ loaderData: { guide } }: Route.ComponentProp
   return (
     <SiteSheet current="Guides" trail={trail}>
       <Title heading={guide.heading} lead={guide.lead}>
-        {guide.opening && <Prose html={guide.opening} />}
+        {guide.opening && (
+          <div className="mt-4">
+            <Prose html={guide.opening} />
+          </div>
+        )}
       </Title>
       {guide.sections.length > 3 && (
         <IndexLine entries={guide.sections.map(({ id, heading }, i) => ({ number: i + 1, word: heading, id }))} />

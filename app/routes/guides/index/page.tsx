@@ -30,9 +30,10 @@ export default function Guides({ loaderData: { guides } }: Route.ComponentProps)
               key: 'heading',
               head: 'Guide',
               isRowHead: true,
+              className: 'nw',
               cell: (guide) => <TextLink href={`/guides/${guide.page}`}>{guide.heading}</TextLink>
             },
-            { key: 'lead', head: 'What it says', cell: (guide) => guide.lead }
+            { key: 'lead', head: 'What it says', className: 'long', cell: (guide) => guide.lead }
           ]}
           rows={guides}
           rowKey={(guide) => guide.page}
