@@ -7,6 +7,8 @@ export type FactRow = {
   declared?: ReactNode
   /** What was measured in the files; absent when it cannot be. */
   measured?: ReactNode
+  /** Nobody declares it: the place stays empty instead of "not stated". */
+  isMeasuredOnly?: boolean
   /** Both are there and differ; then the finding that says so. */
   differs?: { href: string }
 }
@@ -34,10 +36,10 @@ export function FactsTable({ number, caption, rows }: { number?: number; caption
           </tr>
         </thead>
         <tbody>
-          {rows.map(({ fact, declared, measured, differs }) => (
+          {rows.map(({ fact, declared, measured, isMeasuredOnly, differs }) => (
             <tr key={fact}>
               <th scope="row">{fact}</th>
-              <td className={declared === undefined ? 'r soft' : 'r'}>{declared ?? 'not stated'}</td>
+              <td className={declared === undefined ? 'r soft' : 'r'}>{declared ?? (isMeasuredOnly ? null : 'not stated')}</td>
               <td className="eq">
                 {differs ? (
                   <a href={differs.href} aria-label="differs, see the finding">

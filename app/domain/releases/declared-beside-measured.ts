@@ -1,7 +1,7 @@
 import type { BundleFacts } from '~/domain/bundle/bundle-check.types'
 
 /** One fact; values as they are printed, absent when not stated or not measured. `differs` names the finding code that says so. */
-export type DeclaredFact = { fact: string; declared?: string; measured?: string; differs?: string }
+export type DeclaredFact = { fact: string; declared?: string; measured?: string; isMeasuredOnly?: true; differs?: string }
 
 export type Declared = {
   layers: number | null
@@ -31,7 +31,7 @@ export function declaredBesideMeasured(
     facts && facts.width !== null && facts.height !== null ? `${facts.width.toFixed(1)} × ${facts.height.toFixed(1)}` : undefined
   const layersDiffer = declared.layers !== null && facts?.copperLayers != null && declared.layers !== facts.copperLayers
   const rows: DeclaredFact[] = [
-    { fact: 'Size, mm', measured: size },
+    { fact: 'Size, mm', measured: size, isMeasuredOnly: true },
     {
       fact: 'Copper layers',
       declared: stated(declared.layers),
@@ -53,8 +53,7 @@ export function declaredBesideMeasured(
   const narrowest = facts.minTrack !== null ? { fact: 'Narrowest track, mm', measured: mm(facts.minTrack, 2) } : null
   const stroke =
     facts.smallestStroke !== null ? { fact: 'Smallest stroke on copper, mm', measured: mm(facts.smallestStroke, 2) } : null
-  return [
-    ...rows,
+  const measured: DeclaredFact[] = [
     narrowest ?? stroke ?? { fact: 'Narrowest track, mm' },
     { fact: 'Smallest hole, mm', measured: mm(facts.minHole, 2) },
     { fact: 'Holes, plated', measured: count(facts.holes.plated) },
@@ -66,4 +65,5 @@ export function declaredBesideMeasured(
     { fact: 'Parts listed', measured: count(facts.bom.parts) },
     { fact: 'Parts not fitted', measured: count(facts.bom.notFitted) }
   ]
+  return [...rows, ...measured.map((row) => ({ ...row, isMeasuredOnly: true as const }))]
 }

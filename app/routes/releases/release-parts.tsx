@@ -125,8 +125,12 @@ export function foundInWords(findings: readonly FindingRow[]): string {
 const told = { attribute: 'its own attribute', name: 'its name', content: 'its content' } as const
 const layerFunctions = ['copper', 'soldermask', 'paste', 'legend', 'outline', 'drill-plated', 'drill-nonplated', 'drill']
 
+/** Copper first, from the top down, then what lies on it, the outline and the drills; top before bottom. */
+const stackPlace = (f: ReleasePage['files'][number]) =>
+  layerFunctions.indexOf(f.function) * 1000 + (f.layer_index ?? (f.side === 'bottom' ? 500 : 0))
+
 export function Layers({ page, number }: { page: ReleasePage; number: number }) {
-  const layers = page.files.filter((f) => layerFunctions.includes(f.function))
+  const layers = page.files.filter((f) => layerFunctions.includes(f.function)).sort((a, b) => stackPlace(a) - stackPlace(b))
   const others = page.files.filter((f) => !layerFunctions.includes(f.function))
   if (page.files.length === 0) return <p className="soft">No file of the bundle could be read.</p>
   return (
