@@ -28,6 +28,6 @@ describe('a secret', () => {
 describe('codeChallenge', () => {
   /* RFC 7636, appendix B. */
   it('is that of the standard’s example', () => {
-    expect(codeChallenge('dBjftJeZ4CVP-mB92K27uhbUJU1p1r_wW1gFWFOEjXk')).toBe('E9Melhoa2OwvFrEMTJguCHaeK1t8URWbuJJcMJK_cM')
+    expect(codeChallenge('dBjftJeZ4CVP-mB92K27uhbUJU1p1r_wW1gFWFOEjXk')).toBe('E9Melhoa2OwvFrEMTJguCHaoeK1t8URWbuGJSstw-cM')
   })
 })

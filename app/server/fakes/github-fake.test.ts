@@ -4,7 +4,7 @@ import { startGithubFake } from './github-fake'
 
 /* Error codes as GitHub's documentation of OAuth app errors lists them; PKCE by RFC 7636, whose appendix B gives verifier and challenge. */
 const verifier = 'dBjftJeZ4CVP-mB92K27uhbUJU1p1r_wW1gFWFOEjXk'
-const challenge = 'E9Melhoa2OwvFrEMTJguCHaeK1t8URWbuJJcMJK_cM'
+const challenge = 'E9Melhoa2OwvFrEMTJguCHaoeK1t8URWbuGJSstw-cM'
 const callbackUrl = 'http://127.0.0.1:9/back'
 const client = { client_id: 'c', client_secret: 's' }
 
