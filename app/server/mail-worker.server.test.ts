@@ -13,8 +13,16 @@ const dir = mkdtempSync(join(tmpdir(), 'fettle-mail-'))
 let db: Db
 let fake: MailFake
 let written: string[] = []
+let workers: { close(): Promise<void> }[] = []
 const config = () => ({ mail: { apiUrl: fake.url, apiKey: 'key', from: 'Fettle <f@test.example>', fakeUrl: null } }) as Config
 const given = () => ({ db, config: config(), now: () => new Date() })
+/** Waits as long as a busy machine needs. */
+const soon = { timeout: 20_000 }
+const start = (...args: Parameters<typeof startMailWorker>) => {
+  const worker = startMailWorker(...args)
+  workers.push(worker)
+  return worker
+}
 const quick = { pollMs: 5, firstWaitMs: 5, maxAttempts: 3 }
 
 beforeAll(async () => {
@@ -32,6 +40,8 @@ beforeEach(async () => {
   vi.spyOn(process.stderr, 'write').mockImplementation((text) => written.push(String(text)) > 0)
 })
 afterEach(async () => {
+  await Promise.all(workers.map((worker) => worker.close()))
+  workers = []
   vi.restoreAllMocks()
   await fake.close()
   await db.deleteFrom('mail_outbox').execute()
@@ -65,8 +75,8 @@ describe('the outbox', () => {
 describe('the mail worker', () => {
   it('sends what is due, each mail once, and erases its text', async () => {
     for (let n = 1; n <= 25; n++) await put(n)
-    const worker = startMailWorker(given(), quick)
-    await expect.poll(() => fake.sent().length).toBe(25)
+    const worker = start(given(), quick)
+    await expect.poll(() => fake.sent().length, soon).toBe(25)
     await worker.close()
     expect(new Set(fake.sent().map((mail) => mail.to[0])).size).toBe(25)
     const rows = await db.selectFrom('mail_outbox').select(['sent_at', 'text_body', 'attempts', 'provider_id']).execute()
@@ -76,8 +86,8 @@ describe('the mail worker', () => {
   it.each([429, 500] as const)('puts a mail off when the service answers %d, and sends it later', async (status) => {
     fake.failNext(2, status)
     await put(1)
-    const worker = startMailWorker(given(), quick)
-    await expect.poll(async () => (await row(1)).sent_at, { timeout: 10_000 }).not.toBeNull()
+    const worker = start(given(), quick)
+    await expect.poll(async () => (await row(1)).sent_at, soon).not.toBeNull()
     await worker.close()
     expect(fake.sent()).toHaveLength(1)
     expect((await row(1)).attempts).toBe(3)
@@ -88,8 +98,8 @@ describe('the mail worker', () => {
   it('gives up after the last attempt, in its row and in the log', async () => {
     fake.failNext(99)
     await put(1)
-    const worker = startMailWorker(given(), quick)
-    await expect.poll(async () => (await row(1)).given_up_at, { timeout: 10_000 }).not.toBeNull()
+    const worker = start(given(), quick)
+    await expect.poll(async () => (await row(1)).given_up_at, soon).not.toBeNull()
     await worker.close()
     expect(await row(1)).toMatchObject({ attempts: 3, sent_at: null, next_attempt_at: null, last_error: '500 application_error' })
     expect(written.join('')).toContain('mail-given-up')
@@ -97,8 +107,8 @@ describe('the mail worker', () => {
 
   it('gives up at once on a mail that can never go out', async () => {
     await put(1, 'not-an-address')
-    const worker = startMailWorker(given(), quick)
-    await expect.poll(async () => (await row(1)).given_up_at, { timeout: 10_000 }).not.toBeNull()
+    const worker = start(given(), quick)
+    await expect.poll(async () => (await row(1)).given_up_at, soon).not.toBeNull()
     await worker.close()
     expect(await row(1)).toMatchObject({ attempts: 1, last_error: '422 validation_error' })
   })
@@ -107,32 +117,32 @@ describe('the mail worker', () => {
     const gone = await startMailFake({ apiKey: 'key' })
     await gone.close()
     await put(1)
-    const worker = startMailWorker(
+    const worker = start(
       { ...given(), config: { mail: { ...config().mail, apiUrl: gone.url } } as Config },
       { ...quick, maxAttempts: 99 }
     )
-    await expect.poll(async () => (await row(1)).last_error, { timeout: 10_000 }).toBe('no answer application_error')
+    await expect.poll(async () => (await row(1)).last_error, soon).toBe('no answer application_error')
     await worker.close()
-    const second = startMailWorker(given(), quick)
-    await expect.poll(() => fake.sent().length).toBe(1)
+    const second = start(given(), quick)
+    await expect.poll(() => fake.sent().length, soon).toBe(1)
     await second.close()
   })
 
   it('does not send a second mail when it died between sending and noting it', async () => {
     await put(1)
-    const first = startMailWorker(given(), quick)
-    await expect.poll(async () => (await row(1)).sent_at).not.toBeNull()
+    const first = start(given(), quick)
+    await expect.poll(async () => (await row(1)).sent_at, soon).not.toBeNull()
     await first.close()
     const asBefore = { sent_at: null, provider_id: null, text_body: 'secret 1', next_attempt_at: new Date().toISOString() }
     await db.updateTable('mail_outbox').set(asBefore).execute()
-    const second = startMailWorker(given(), quick)
-    await expect.poll(async () => (await row(1)).sent_at).not.toBeNull()
+    const second = start(given(), quick)
+    await expect.poll(async () => (await row(1)).sent_at, soon).not.toBeNull()
     await second.close()
     expect(fake.sent()).toHaveLength(1)
   })
 
   it('takes nothing more once it is closed', async () => {
-    const worker = startMailWorker(given(), quick)
+    const worker = start(given(), quick)
     await worker.close()
     await put(1)
     await new Promise((resolve) => setTimeout(resolve, 50))

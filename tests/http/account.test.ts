@@ -8,7 +8,7 @@ beforeAll(async () => {
 })
 afterAll(() => site?.close())
 
-const sessionIds = (html: string) => [...html.matchAll(/name="session" value="([0-9a-f]{64})"/g)].map((found) => found[1]!)
+const sessionIds = (html: string) => [...html.matchAll(/value="([0-9a-f]{64})"/g)].map((found) => found[1]!)
 
 describe('the account page', () => {
   it('changes the name, which every page then shows', async () => {
@@ -16,7 +16,7 @@ describe('the account page', () => {
     const answer = await member.fetch('/account', { form: { intent: 'rename', displayName: '  Tarn’s   Workshop ' } })
     expect([answer.status, answer.headers.get('Location')]).toEqual([302, '/account?done=renamed'])
     expect(textOf(await member.page('/account?done=renamed'))).toContain('Your name is changed.')
-    expect(textOf(await member.page('/'))).toContain('Tarn’s Workshop')
+    expect(textOf(await member.page('/guides'))).toContain('Tarn’s Workshop')
   })
 
   it('refuses a name at its field and keeps it there', async () => {
@@ -72,6 +72,7 @@ describe('the account page', () => {
     const theirs = await site.signInByGithub('mosse')
     await site.signInByGithub('mosse')
     const [id] = sessionIds(await theirs.page('/account'))
+    expect(id).toBeDefined()
     expect((await mine.fetch('/account', { form: { intent: 'end-session', session: id! } })).status).toBe(404)
     expect(sessionIds(await theirs.page('/account'))).toContain(id)
   })
@@ -130,7 +131,7 @@ describe('a session', () => {
     for (const browser of [member, github]) {
       expect((await browser.fetch('/account')).status).toBe(302)
       expect((await browser.fetch('/account.data')).status).toBe(202)
-      expect(textOf(await browser.page('/'))).toContain('Sign in')
+      expect(textOf(await browser.page('/guides'))).toContain('Sign in')
     }
     await expect(site.signInByGithub('mosse')).rejects.toThrow(/403.*has been disabled/)
     const browser = site.browser()

@@ -148,7 +148,7 @@ describe('mail', () => {
       site.query((db) =>
         db.selectFrom('mail_outbox').selectAll().where('to_address', '=', 'patient@test.example').executeTakeFirstOrThrow()
       )
-    await expect.poll(async () => (await row()).sent_at).not.toBeNull()
+    await expect.poll(async () => (await row()).sent_at, { timeout: 20_000 }).not.toBeNull()
     expect(await row()).toMatchObject({ attempts: 2, provider_id: mail.id, last_error: null, given_up_at: null, text_body: '' })
     expect(site.mail.sent().filter((one) => one.to.includes('patient@test.example'))).toHaveLength(1)
   })

@@ -187,8 +187,10 @@ describe('signing in by a mailed link', () => {
     const { path } = await ask('hashed@test.example')
     const token = path.split('/').at(-1)!
     await expect
-      .poll(() =>
-        site.query((db) => db.selectFrom('mail_outbox').select('sent_at').where('text_body', 'like', `%${token}%`).execute())
+      .poll(
+        () =>
+          site.query((db) => db.selectFrom('mail_outbox').select('sent_at').where('text_body', 'like', `%${token}%`).execute()),
+        { timeout: 20_000 }
       )
       .toEqual([])
     const rows = await site.query((db) => db.selectFrom('sign_in_tokens').selectAll().execute())

@@ -7,6 +7,8 @@ export type GithubPerson = {
   id: number
   login: string
   name: string | null
+  /** What they are here to show, on the page where somebody is picked. */
+  part?: string
   emails: { email: string; primary: boolean; verified: boolean }[]
 }
 
@@ -98,8 +100,8 @@ function showPeople(state: State, res: ServerResponse, url: URL): void {
   if (readAsked(state, res, url) === null) return
   const action = escapeHtml(url.pathname + url.search)
   const rows = [...state.people.values()].map(
-    ({ login, name }) =>
-      `<li><button class="who" name="person" value="${escapeHtml(login)}"><strong>${escapeHtml(name ?? login)}</strong><small>${escapeHtml(login)}</small></button></li>`
+    ({ login, name, part }) =>
+      `<li><button class="who" name="person" value="${escapeHtml(login)}"><strong>${escapeHtml(name ?? login)}</strong><small>${escapeHtml(part ?? login)}</small></button></li>`
   )
   sendPage(
     res,
