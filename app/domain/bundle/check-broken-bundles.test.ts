@@ -1,42 +1,20 @@
-import { describe, expect, it } from 'vitest'
-import { demoFiles, zipOf } from '../../../tests/factories/demo-bundle'
-import type { BundleFinding, DeclaredDetails } from './bundle-check.types'
-import { checkBundle } from './check-bundle.server'
+import { describe, it } from 'vitest'
+import { edit, expectDefect, type Defect } from '../../../tests/factories/defect'
 
-type Files = Map<string, Buffer>
 const almanac = 'almanac-1.0.1'
 const buttress = 'buttress-1.1.0'
-const text = (files: Files, path: string) => files.get(path)!.toString('utf8').replaceAll('\r\n', '\n')
-const edit = (files: Files, path: string, change: (content: string) => string) => {
-  const before = text(files, path)
-  const after = change(before)
-  if (after === before) throw new Error(`The change to ${path} changes nothing`)
-  files.set(path, Buffer.from(after))
-}
 const top = 'gerber/almanac-F_Cu.gbr'
 const bottom = 'gerber/almanac-B_Cu.gbr'
 const edge = 'gerber/almanac-Edge_Cuts.gbr'
 const pth = 'drill/almanac-PTH.drl'
-const bom = 'assembly/almanac-bom.csv'
-const places = 'assembly/almanac-placement.csv'
 
 /** All coordinates of a Gerber file moved, in its own 4.6 mm digits. */
 const shifted = (content: string, dx: number) => content.replace(/^X(-?\d+)(?=Y)/gm, (_, x: string) => `X${Number(x) + dx}`)
 const mirrored = (content: string, width: number) =>
   content.replace(/^X(-?\d+)(?=Y)/gm, (_, x: string) => `X${width - Number(x)}`)
 
-type Case = [
-  name: string,
-  release: string,
-  (files: Files) => void,
-  code: string,
-  severity: 'stop' | 'caution' | 'note',
-  file?: string,
-  declared?: DeclaredDetails
-]
-
 /** One defect each, made from a clean demo bundle: it must give its code and no other stop. */
-const cases: Case[] = [
+const cases: Defect[] = [
   ['top copper gone', almanac, (f) => f.delete(top), 'copper-missing', 'stop'],
   ['a mask gone', almanac, (f) => f.delete('gerber/almanac-B_Mask.gbr'), 'mask-missing', 'stop'],
   ['the outline gone', almanac, (f) => f.delete(edge), 'outline-missing', 'stop'],
@@ -220,114 +198,6 @@ const cases: Case[] = [
     'stop',
     pth
   ],
-  ['no bill of materials', almanac, (f) => f.delete(bom), 'bom-missing', 'stop'],
-  [
-    'headings that mean nothing',
-    almanac,
-    (f) => edit(f, bom, (c) => c.replace(/^.*\n/, 'A,B,C,D,E,F\n')),
-    'bom-unreadable',
-    'stop',
-    bom
-  ],
-  [
-    'a quantity that is off by one',
-    almanac,
-    (f) => edit(f, bom, (c) => c.replace(/^(C1,.*?),1,/m, '$1,2,')),
-    'bom-quantity',
-    'stop',
-    bom
-  ],
-  [
-    'a designator in two lines',
-    almanac,
-    (f) => edit(f, bom, (c) => `${c.trimEnd()}\nR1,1k,R_0603,1,again,\n`),
-    'bom-designator-repeated',
-    'stop',
-    bom
-  ],
-  [
-    'a part without a place',
-    almanac,
-    (f) => edit(f, places, (c) => c.replace(/^R1,.*\n/m, '')),
-    'bom-not-placed',
-    'caution',
-    bom
-  ],
-  [
-    'a formula in a cell',
-    almanac,
-    (f) => edit(f, bom, (c) => c.replace('"R1, R2",10k,', '"R1, R2","=HYPERLINK(""x"")",')),
-    'bom-cell-unsafe',
-    'caution',
-    bom
-  ],
-  ['no placement list', almanac, (f) => f.delete(places), 'placement-missing', 'stop'],
-  [
-    'places under headings that mean nothing',
-    almanac,
-    (f) => edit(f, places, (c) => c.replace(/^.*\n/, 'A,B,C,D,E\n')),
-    'placement-unreadable',
-    'stop',
-    places
-  ],
-  [
-    'a place that is no number',
-    almanac,
-    (f) => edit(f, places, (c) => c.replace(/^(R1,)[\d.]+/m, '$1here')),
-    'placement-unreadable',
-    'stop',
-    places
-  ],
-  [
-    'a part placed twice',
-    almanac,
-    (f) => edit(f, places, (c) => `${c.trimEnd()}\nR1,5.0,5.0,0,Bottom\n`),
-    'placement-designator-repeated',
-    'stop',
-    places
-  ],
-  [
-    'a placed part that is not listed',
-    almanac,
-    (f) => edit(f, places, (c) => `${c.trimEnd()}\nR77,5.0,5.0,0,Top\n`),
-    'placement-not-in-bom',
-    'stop',
-    places
-  ],
-  [
-    'a part beside the board',
-    almanac,
-    (f) => edit(f, places, (c) => c.replace(/^(R1,)[\d.]+/m, '$140.0')),
-    'placement-outside',
-    'stop',
-    places
-  ],
-  [
-    'mils without a unit',
-    almanac,
-    (f) =>
-      edit(f, places, (c) =>
-        c.replace(
-          /,([\d.]+),([\d.]+),/g,
-          (_, x: string, y: string) => `,${(Number(x) / 0.0254).toFixed(1)},${(Number(y) / 0.0254).toFixed(1)},`
-        )
-      ),
-    'placement-units',
-    'stop',
-    places
-  ],
-  [
-    'a bottom side with negated X',
-    almanac,
-    (f) => edit(f, places, (c) => c.replace(/^(\w+),([\d.]+)(,.*,Bottom)/gm, '$1,-$2$3')),
-    'placement-mirrored',
-    'caution',
-    places
-  ],
-  ['two thicknesses', almanac, () => {}, 'thickness-conflict', 'stop', 'gerber/almanac-job.gbrjob', { thicknessMm: 1.6 }],
-  ['no thickness', almanac, (f) => f.delete('gerber/almanac-job.gbrjob'), 'thickness-missing', 'caution'],
-  ['no design source', almanac, (f) => f.delete('source/almanac-board.json'), 'source-missing', 'caution'],
-  ['no licence', almanac, (f) => f.delete('LICENSE.txt'), 'licence-missing', 'caution'],
   [
     'an archive inside',
     almanac,
@@ -338,21 +208,6 @@ const cases: Case[] = [
   ]
 ]
 
-const brief = (f: BundleFinding) => `${f.severity} ${f.code} ${f.file ?? ''}`
-
-describe('a bundle with one defect', () => {
-  it.each(cases)('%s', async (_name, release, change, code, severity, file, declared) => {
-    const files = await demoFiles(release)
-    change(files)
-    const { check } = await checkBundle(await zipOf(files), declared)
-    const own = check.findings.filter((f) => f.code === code)
-    expect(
-      own.map((f) => f.severity),
-      check.findings.map(brief).join('\n')
-    ).toEqual([severity])
-    if (file) expect(own[0]!.file).toBe(file)
-    const otherStops = check.findings.filter((f) => f.severity === 'stop' && f.code !== code)
-    expect(otherStops.map(brief)).toEqual([])
-    expect(check.ok).toBe(severity !== 'stop')
-  })
+describe('a bundle with one defect in its layers or drill files', () => {
+  it.each(cases)('%s', (_name, ...defect) => expectDefect(...defect))
 })
