@@ -4,7 +4,7 @@
  */
 import { spawn } from 'node:child_process'
 import { randomBytes } from 'node:crypto'
-import { appendFileSync, existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs'
+import { appendFileSync, existsSync, mkdirSync, readFileSync, rmSync, statSync, writeFileSync } from 'node:fs'
 import { createServer } from 'node:net'
 import { join, relative, resolve } from 'node:path'
 import { createInterface } from 'node:readline'
@@ -135,7 +135,7 @@ async function main() {
   const dataDir = resolve(root, process.env.DATA_DIR || 'data/demo')
   mkdirSync(dataDir, { recursive: true })
   logFile = join(dataDir, 'demo.log')
-  writeFileSync(logFile, '')
+  if (existsSync(logFile) && statSync(logFile).size > 1024 ** 2) rmSync(logFile)
   const origin = `http://localhost:${port}`
   const common = { NODE_ENV: 'production', FETTLE_MODE: 'demo', PUBLIC_ORIGIN: origin, DATA_DIR: dataDir }
   const [region, bucket] = ['us-east-1', 'fettle']

@@ -13,7 +13,7 @@ import { seedDemo } from './seed'
 async function main(): Promise<void> {
   const config = readConfig(process.env)
   if (config.mode === 'production') throw new Error('The demo world does not belong in production (FETTLE_MODE).')
-  const release = holdDataFolder(config.databaseFile)
+  const release = hold(config.databaseFile)
   const db = openDb(config.databaseFile)
   const storage = createStorage(config.storage)
   try {
@@ -25,6 +25,16 @@ async function main(): Promise<void> {
     storage.close()
     await db.destroy()
     release()
+  }
+}
+
+/** Says in a sentence, without a trace, that somebody else writes there. */
+function hold(databaseFile: string): () => void {
+  try {
+    return holdDataFolder(databaseFile)
+  } catch (error) {
+    console.error(error instanceof Error ? error.message : error)
+    process.exit(1)
   }
 }
 
