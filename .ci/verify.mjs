@@ -2,7 +2,8 @@
 import { spawnSync } from 'node:child_process'
 import { existsSync, mkdtempSync, readFileSync, rmSync } from 'node:fs'
 import { tmpdir } from 'node:os'
-import { join, relative } from 'node:path'
+import { join } from 'node:path'
+import { countReport } from './count-report.mjs'
 import { at, build, checkMachine, ensureInstalled, Plain, root, run, runMain } from './set-up.mjs'
 
 const chromium = '/usr/bin/chromium'
@@ -62,21 +63,10 @@ async function tests(project, folder) {
     return note(project, 0, 1, 0, startedAt)
   }
   const report = JSON.parse(readFileSync(file, 'utf8'))
-  let [passed, failed, skipped] = [0, 0, 0]
-  for (const { name, status, message, assertionResults } of report.testResults) {
-    const where = relative(root, name)
-    for (const test of assertionResults) {
-      if (test.status === 'passed') passed++
-      else if (test.status === 'failed') {
-        failed++
-        failures.push(`${where}: ${test.fullName}\n    ${(test.failureMessages[0] ?? '').split('\n').slice(0, 6).join('\n    ')}`)
-      } else skipped++
-    }
-    if (status === 'failed' && !assertionResults.some((test) => test.status === 'failed')) {
-      failed++
-      failures.push(`${where}: ${message || 'the file could not be run'}`)
-    }
-  }
+  const counted = countReport(report, root)
+  const { passed, skipped } = counted
+  let { failed } = counted
+  failures.push(...counted.failures)
   if (code !== 0 && failed === 0) {
     failed++
     failures.push(`${project}: vitest ended with code ${code} although no test failed; see its output above`)
