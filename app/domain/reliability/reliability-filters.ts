@@ -39,7 +39,7 @@ export function readFilters(query: URLSearchParams, today: Day): { filters: Reli
     const given = text(name)
     if (given === '') return usual
     const known = values.find((value) => value === given)
-    if (known === undefined) errors.push({ path: name, message: `“${shown(given)}” is none of ${values.join(', ')}.` })
+    if (known === undefined) errors.push({ path: name, message: `“${shown(given)}” is not one of ${values.join(', ')}.` })
     return known ?? usual
   }
   const free = (name: string) => {

@@ -23,7 +23,7 @@ export function GroupTable({ number, what, groups, total }: Props) {
       isRowHead: true,
       cell: (g) => (
         <>
-          {g.group === total?.group ? `all, ${g.group}` : g.group}
+          {g.group === total?.group ? 'all' : <span className="nw">{g.group}</span>}
           <small className="on-n soft">
             {g.fitted} fitted, {g.events} failed
           </small>

@@ -2,7 +2,7 @@ import type { GroupFigures, ReliabilityFigures } from '~/domain/reliability/reli
 import { filtersQuery } from '~/domain/reliability/reliability-filters'
 import { excludedSentence, plainSentence, tooFewSentence } from '~/domain/reliability/reliability-words'
 
-export const stepsPageSize = 50
+export const stepsPageSize = 20
 const besideMost = 3
 
 export type ShownGroup = Omit<GroupFigures, 'curve'> & {

@@ -60,7 +60,7 @@ export default function Reliability({ loaderData }: Route.ComponentProps) {
         heading={`How long ${board.name} lasts`}
         lead={
           shown === null
-            ? 'One of the words below cannot be read as it stands. Mend it, and the figures come.'
+            ? 'Something below cannot be read as it stands. Mend it, and the figures come.'
             : shown.reports === 0
               ? 'Nothing is known yet, and nothing is claimed.'
               : shown.sentence

@@ -121,7 +121,7 @@ export default function MyReports({ loaderData: { reports, total, page, pageSize
                 },
                 { key: 'tag', head: 'Unit', only: 'wide', cell: (r) => r.unitTag ?? <span className="soft">no tag</span> },
                 { key: 'on', head: 'Fitted', only: 'wide', cell: (r) => r.installedOn },
-                { key: 'last', head: 'Last word', cell: (r) => r.last },
+                { key: 'last', head: 'Last word', cell: (r) => <Last text={r.last} /> },
                 {
                   key: 'say',
                   head: <span className="vh">Say how it is</span>,
@@ -134,6 +134,17 @@ export default function MyReports({ loaderData: { reports, total, page, pageSize
         )}
       </Section>
     </SiteSheet>
+  )
+}
+
+/** A day is never broken across lines. */
+function Last({ text }: { text: string }) {
+  const [, words, day] = /^(.*?)(\d{4}-\d{2}-\d{2})?$/.exec(text)!
+  return (
+    <>
+      {words}
+      {day && <span className="nw">{day}</span>}
+    </>
   )
 }
 

@@ -132,7 +132,7 @@ export default function OneReport({ loaderData, actionData }: Route.ComponentPro
         {done === 'added' && <DoneLine what="Added.">The figures hold it now.</DoneLine>}
         {exclusion && (
           <Warning
-            severity="caution"
+            severity="note"
             heading="Excluded from every figure"
             because={`Excluded ${exclusion.on}${exclusion.by ? ` by ${exclusion.by}, steward` : ''}. It stays readable and is counted among the excluded.`}
           >
@@ -142,7 +142,7 @@ export default function OneReport({ loaderData, actionData }: Route.ComponentPro
           </Warning>
         )}
       </Title>
-      <ReportFacts report={report} isExcluded={exclusion !== null} />
+      <ReportFacts report={report} />
       <ReportHistory report={report} history={history} failure={failure} />
       {mayCheckIn && <CheckInForm today={today} formKey={formKey} answer={answerTo('check-in')} />}
       {mayExclude && <ExclusionForm number={mayCheckIn ? 4 : 3} answer={answerTo('exclude')} />}

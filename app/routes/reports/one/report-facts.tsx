@@ -28,7 +28,7 @@ export type ReportOnPage = {
 }
 
 /** What was said when it was filed. */
-export function ReportFacts({ report, isExcluded }: { report: ReportOnPage; isExcluded: boolean }) {
+export function ReportFacts({ report }: { report: ReportOnPage }) {
   const firstPower = firstPowerWords[report.firstPower]
   const items = [
     {
@@ -52,9 +52,7 @@ export function ReportFacts({ report, isExcluded }: { report: ReportOnPage; isEx
   ]
   return (
     <Section number={1} heading="What was reported">
-      <div className={isExcluded ? 'line-through decoration-soft' : undefined}>
-        <Definitions items={items} />
-      </div>
+      <Definitions items={items} />
       {report.notes && <p className="mt-4 max-w-[66ch] whitespace-pre-line [overflow-wrap:anywhere]">{report.notes}</p>}
     </Section>
   )

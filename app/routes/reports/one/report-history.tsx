@@ -37,7 +37,7 @@ export function ReportHistory({ report, history, failure }: Props) {
         rows={rows}
         rowKey={(row) => row.id}
         columns={[
-          { key: 'on', head: 'Day', isRowHead: true, cell: (row) => row.on },
+          { key: 'on', head: 'Day', isRowHead: true, className: 'nw', cell: (row) => row.on },
           { key: 'said', head: 'Said', weight: 'bold', cell: (row) => row.said },
           { key: 'more', head: 'Also', cell: (row) => <span className="[overflow-wrap:anywhere]">{row.more}</span> }
         ]}
