@@ -123,11 +123,7 @@ function Boards({ boards }: { boards: Shown[] }) {
   const columns = { wide: 540, narrow: 328 }
   const scales = { wide: commonScale(columns.wide, widths), narrow: commonScale(columns.narrow, widths) }
   return (
-    <Figure
-      number={1}
-      span="wide"
-      caption={<span className="scale">{widths.length > 0 && <ScaleBar scales={scales} />} All boards at one scale.</span>}
-    >
+    <Figure number={1} span="wide" caption="All boards at one scale.">
       {boards.map((board) => {
         const size = sizeOf(board)
         return (
