@@ -5,7 +5,8 @@ const executablePath = '/usr/bin/chromium'
 
 /** Debian's Chromium. Root needs --no-sandbox; the pages it opens are our own. */
 export async function launchChromium(): Promise<Browser> {
-  if (!existsSync(executablePath)) throw new Error(`Debian's Chromium is not installed (${executablePath}): npm run verify installs it`)
+  if (!existsSync(executablePath))
+    throw new Error(`Debian's Chromium is not installed (${executablePath}): npm run verify installs it`)
   return chromium.launch({ executablePath, args: process.getuid?.() === 0 ? ['--no-sandbox'] : [] })
 }
 
@@ -15,7 +16,11 @@ export type WatchedPage = { page: Page; close(): Promise<void> }
  * A page in a context of its own. A script error, an error on the console or a request to anywhere but loopback fails the test when the
  * page is closed; `allowed` names console errors that a test brings about on purpose.
  */
-export async function openPage(browser: Browser, options: BrowserContextOptions = {}, allowed: RegExp[] = []): Promise<WatchedPage> {
+export async function openPage(
+  browser: Browser,
+  options: BrowserContextOptions = {},
+  allowed: RegExp[] = []
+): Promise<WatchedPage> {
   const context = await browser.newContext({ viewport: { width: 1280, height: 900 }, ...options })
   const page = await context.newPage()
   const seen: string[] = []

@@ -5,8 +5,10 @@ import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import { fileURLToPath } from 'node:url'
 import { openDb, type Db } from '~db/client.server'
+import { migrate } from '~db/migrate'
 import { startGithubFake, type GithubPerson } from '~/server/fakes/github-fake'
 import { startMailFake, type MailFake, type SentMail } from '~/server/fakes/mail-fake'
+import { createStorage, type Storage } from '~/server/storage.server'
 import { startStorageFake } from '../../storage-fake/server'
 import { Browser, textOf } from './browser'
 
@@ -40,6 +42,8 @@ export type SiteOptions = {
   people?: GithubPerson[]
   /** Further settings for the server, over the harness's own. */
   env?: Record<string, string>
+  /** Fills the migrated database and the storage before the server starts. */
+  prepare?: (world: { db: Db; storage: Storage }) => Promise<unknown>
 }
 
 export type Site = {
@@ -92,6 +96,7 @@ export async function startSite(options: SiteOptions = {}): Promise<Site> {
   })
   const mail = await startMailFake({ apiKey: mailKey })
   const storage = await startStorageFake({ ...storageAccount, dir: join(dataDir, 'storage') })
+  if (options.prepare) await prepareWorld(dataDir, storage.url, options.prepare)
   const server = startServer({
     FETTLE_MODE: 'test',
     PORT: String(port),
@@ -148,6 +153,18 @@ export async function startSite(options: SiteOptions = {}): Promise<Site> {
     }
   }
   return site
+}
+
+async function prepareWorld(dataDir: string, endpoint: string, prepare: NonNullable<SiteOptions['prepare']>): Promise<void> {
+  const db = openDb(join(dataDir, 'fettle.sqlite'))
+  const storage = createStorage({ ...storageAccount, endpoint })
+  try {
+    await migrate(db)
+    await prepare({ db, storage })
+  } finally {
+    storage.close()
+    await db.destroy()
+  }
 }
 
 type Server = { ready: Promise<void>; log(): string; stop(): Promise<void> }
