@@ -48,6 +48,25 @@ const cases: Defect[] = [
     'caution',
     bom
   ],
+  [
+    'a bill of materials of half a million lines',
+    almanac,
+    (f) => {
+      const rows = Array.from({ length: 500_000 }, (_, i) => `R${i},${(i * 7919) % 1_000_003}k,1`)
+      f.set(bom, Buffer.from(`Reference,Value,Quantity\n${rows.join('\n')}\n`))
+    },
+    'bom-unreadable',
+    'stop',
+    bom
+  ],
+  [
+    'a spreadsheet as bill of materials',
+    almanac,
+    (f) => f.delete(bom) && f.set('bom.xlsx', Buffer.from('PK\x03\x04rest')),
+    'bom-unreadable',
+    'stop',
+    'bom.xlsx'
+  ],
   ['no placement list', almanac, (f) => f.delete(places), 'placement-missing', 'stop'],
   [
     'places under headings that mean nothing',

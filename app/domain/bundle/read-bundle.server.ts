@@ -69,11 +69,23 @@ function titleRole(bytes: Uint8Array): Role | null {
   return title ? roleFromWords(title.trim().toLowerCase()) : null
 }
 
+/** Lists past this size are none that a person made. */
+const largestList = 8 * 1024 * 1024
+
+/** A list, or null where it cannot be read; a defect of ours in its reader counts as that, too, and must not end the check. */
+function listOrNull<T>(bytes: Uint8Array, read: () => T | null): T | null {
+  if (bytes.length > largestList) return null
+  try {
+    return read()
+  } catch {
+    return null
+  }
+}
+
 /** Whether a text file is a list by its headings. */
 function listRole(bytes: Uint8Array, limits: CheckLimits): Role | null {
-  if (bytes.length > 4 * 1024 * 1024) return null
-  if (readPlacement(bytes, limits)) return { function: 'placement', side: null, index: null }
-  return readBom(bytes, limits)?.lines.length ? { function: 'bom', side: null, index: null } : null
+  if (listOrNull(bytes, () => readPlacement(bytes, limits))) return { function: 'placement', side: null, index: null }
+  return listOrNull(bytes, () => readBom(bytes, limits))?.lines.length ? { function: 'bom', side: null, index: null } : null
 }
 
 /** Reads layers, drill files and lists; what is wrong with a list as a whole becomes a finding here. */
@@ -194,7 +206,8 @@ async function readLists(
   const findings: BundleFinding[] = []
   const boms = reading.files.filter((file) => file.layer.function === 'bom')
   for (const file of boms) {
-    const bom = file.kind === 'text' ? readBom(await bytesOf(file), limits) : null
+    const bytes = await bytesOf(file)
+    const bom = file.kind === 'text' ? listOrNull(bytes, () => readBom(bytes, limits)) : null
     if (bom && (!reading.bom || bom.lines.length > reading.bom.lines.length)) {
       reading.bom = bom
       reading.bomFile = file.layer.file
@@ -217,7 +230,8 @@ async function readLists(
   for (const file of lists) {
     const base = file.path.toLowerCase()
     const fallback = /bot(tom)?|back/.test(base) && !/top|front/.test(base) ? 'bottom' : 'top'
-    const placement = file.kind === 'text' ? readPlacement(await bytesOf(file), limits, fallback) : null
+    const bytes = await bytesOf(file)
+    const placement = file.kind === 'text' ? listOrNull(bytes, () => readPlacement(bytes, limits, fallback)) : null
     if (!placement) {
       const message = 'The placement list cannot be read: no heading names designator, X and Y.'
       findings.push(
