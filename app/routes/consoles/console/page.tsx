@@ -2,7 +2,9 @@ import type { Route } from './+types/page'
 import { ButtonLink } from '~/components/button'
 import { Definitions } from '~/components/definition'
 import { Empty } from '~/components/empty'
+import { Figure } from '~/components/figure'
 import { FitStrip } from '~/components/fit-strip'
+import { canBeRuled, RevisionRule } from '~/components/revision-rule'
 import { Section, SubHeading } from '~/components/section'
 import { SiteSheet } from '~/components/site-sheet'
 import { Table } from '~/components/table'
@@ -70,25 +72,38 @@ function Revisions({ console }: { console: ConsoleDetail }) {
       {console.revisions.length === 0 ? (
         <Empty>No revision of this console has been described yet.</Empty>
       ) : (
-        <Table
-          number={1}
-          caption="The mainboards in the order in which they were built."
-          columns={[
-            {
-              key: 'code',
-              head: 'Revision',
-              isRowHead: true,
-              className: 'nw',
-              cell: (r) => <TextLink href={`/consoles/${console.slug}/${r.code}`}>{r.code}</TextLink>
-            },
-            { key: 'from', head: 'From', isFigure: true, cell: (r) => r.builtFrom ?? '?' },
-            { key: 'recognise', head: 'How to recognise it', className: 'long', cell: (r) => r.recognise },
-            { key: 'reports', head: 'Reports', isFigure: true, cell: (r) => r.reports }
-          ]}
-          rows={console.revisions}
-          rowKey={(r) => r.code}
-          isFolded
-        />
+        <>
+          {canBeRuled(console.revisions, console.builtTo) && (
+            <Figure
+              number={1}
+              caption="When each revision was built. The years overlap at the edges: makers use up what they have."
+            >
+              <RevisionRule
+                revisions={console.revisions.map((r) => ({ code: r.code, from: r.builtFrom! }))}
+                until={console.builtTo}
+              />
+            </Figure>
+          )}
+          <Table
+            number={1}
+            caption="The mainboards in the order in which they were built."
+            columns={[
+              {
+                key: 'code',
+                head: 'Revision',
+                isRowHead: true,
+                className: 'nw',
+                cell: (r) => <TextLink href={`/consoles/${console.slug}/${r.code}`}>{r.code}</TextLink>
+              },
+              { key: 'from', head: 'From', isFigure: true, cell: (r) => r.builtFrom ?? '?' },
+              { key: 'recognise', head: 'How to recognise it', className: 'long', cell: (r) => r.recognise },
+              { key: 'reports', head: 'Reports', isFigure: true, cell: (r) => r.reports }
+            ]}
+            rows={console.revisions}
+            rowKey={(r) => r.code}
+            isFolded
+          />
+        </>
       )}
     </Section>
   )
