@@ -53,7 +53,7 @@ export function CheckInForm({ today, formKey, answer }: { today: string; formKey
           defaultValue={was.stated_on ?? today}
           error={at('stated_on')}
         />
-        <div className={shownForFailure}>
+        <div className={`mt-6 ${shownForFailure}`}>
           <TextField
             name="last_running_on"
             type="date"
@@ -74,9 +74,11 @@ export function CheckInForm({ today, formKey, answer }: { today: string; formKey
           </div>
         </div>
         <TextArea name="notes" label="Notes" isOptional rows={3} maxLength={4000} defaultValue={was.notes} error={at('notes')} />
-        <Actions>
-          <Button busy={navigation.state === 'submitting' ? 'Adding it' : undefined}>Add this</Button>
-        </Actions>
+        <div className="mt-6">
+          <Actions>
+            <Button busy={navigation.state === 'submitting' ? 'Adding it' : undefined}>Add this</Button>
+          </Actions>
+        </div>
       </Form>
     </Section>
   )

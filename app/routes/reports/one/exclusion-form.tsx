@@ -38,14 +38,16 @@ export function ExclusionForm({ number, answer }: { number: number; answer: Form
           defaultValue={was.reason}
           error={at('reason')}
         />
-        <Actions>
-          <Button
-            kind="destructive"
-            note="Every figure of this board changes at once. The report stays readable, struck out, with this reason and your name. It cannot be taken back in."
-          >
-            Exclude this report
-          </Button>
-        </Actions>
+        <div className="mt-6">
+          <Actions>
+            <Button
+              kind="destructive"
+              note="Every figure of this board changes at once. The report stays readable, struck out, with this reason and your name. It cannot be taken back in."
+            >
+              Exclude this report
+            </Button>
+          </Actions>
+        </div>
       </Form>
     </Section>
   )
