@@ -187,8 +187,8 @@ function BeforeYouStart() {
   return (
     <Section number={3} heading="Before you order or solder" id="before">
       <Warning severity="caution" heading="Measure before you replace">
-        A board cures the fault it is made for and no other. Establish the fault first; a wrong diagnosis is the commonest reason
-        why a sound board changes nothing.
+        A board cures the fault it is made for and no other. Establish the fault first; a wrong diagnosis is a common reason why a
+        sound board changes nothing.
       </Warning>
       <Warning severity="caution" heading="Stored charge, heat, lead and lithium">
         <p>
