@@ -9,7 +9,7 @@ export type CheckStepName = { step: string; name: string }
 type Going =
   | { phase: 'idle'; error?: string }
   | { phase: 'sending'; sent: number; total: number }
-  | { phase: 'checking'; step: string | null }
+  | { phase: 'checking'; isStored: boolean; step: string | null }
   | { phase: 'broken'; sent: number; total: number; error: string }
 
 export type BundleUploadProps = {
@@ -34,7 +34,7 @@ const pollMs = 500
  * they are done.
  */
 export function BundleUpload({ action, progress, steps, maxBytes, isReplacing, isRunning, onDone }: BundleUploadProps) {
-  const [going, setGoing] = useState<Going>(isRunning ? { phase: 'checking', step: null } : { phase: 'idle' })
+  const [going, setGoing] = useState<Going>(isRunning ? { phase: 'checking', isStored: false, step: null } : { phase: 'idle' })
   const [file, setFile] = useState<File | null>(null)
   const request = useRef<XMLHttpRequest | null>(null)
   const isChecking = going.phase === 'checking'
@@ -46,7 +46,8 @@ export function BundleUpload({ action, progress, steps, maxBytes, isReplacing, i
       const answer = await fetch(progress, { headers: { Accept: 'application/json' } }).catch(() => null)
       if (!answer?.ok) return
       const { phase, step } = (await answer.json()) as { phase: string; step: string | null }
-      if (phase !== 'none') setGoing((now) => (now.phase === 'checking' ? { phase: 'checking', step } : now))
+      if (phase !== 'none')
+        setGoing((now) => (now.phase === 'checking' ? { phase: 'checking', isStored: phase === 'checking', step } : now))
       else if (request.current === null) {
         setGoing({ phase: 'idle' })
         onDone()
@@ -76,7 +77,7 @@ export function BundleUpload({ action, progress, steps, maxBytes, isReplacing, i
       sent = Math.min(loaded, file.size)
       setGoing({ phase: 'sending', sent, total: file.size })
     }
-    xhr.upload.onload = () => setGoing({ phase: 'checking', step: null })
+    xhr.upload.onload = () => setGoing({ phase: 'checking', isStored: false, step: null })
     xhr.onload = () => {
       if (xhr.status >= 200 && xhr.status < 300) {
         end({ phase: 'idle' })
@@ -114,7 +115,7 @@ export function BundleUpload({ action, progress, steps, maxBytes, isReplacing, i
         </Actions>
       </>
     )
-  if (going.phase === 'checking') return <Checking step={going.step} steps={steps} />
+  if (going.phase === 'checking') return <Checking isStored={going.isStored} step={going.step} steps={steps} />
   return (
     <form method="post" action={action} encType="multipart/form-data" onSubmit={send} noValidate>
       {going.phase === 'broken' && (
@@ -163,17 +164,21 @@ function messageOf(xhr: XMLHttpRequest): string {
   return `The upload was not taken (answer ${xhr.status}). Try again in a minute; the draft is as it was.`
 }
 
-function Checking({ step, steps }: { step: string | null; steps: CheckStepName[] }) {
-  const at = steps.findIndex((s) => s.step === step)
+function Checking({ isStored, step, steps }: { isStored: boolean; step: string | null; steps: CheckStepName[] }) {
+  /* The child process takes a moment to begin with the first step. */
+  const at = isStored
+    ? Math.max(
+        0,
+        steps.findIndex((s) => s.step === step)
+      )
+    : -1
+  const state = (i: number) => (i < at ? 'done' : i === at ? 'now' : 'waiting')
   return (
     <div role="status">
       <CheckSteps
         steps={[
-          { label: 'Store the bundle', state: at >= 0 ? ('done' as const) : ('now' as const) },
-          ...steps.map(({ name }, i) => ({
-            label: name,
-            state: at < 0 || i > at ? ('waiting' as const) : i < at ? ('done' as const) : ('now' as const)
-          }))
+          { label: 'Store the bundle', state: isStored ? 'done' : 'now' },
+          ...steps.map(({ name }, i) => ({ label: name, state: state(i) as 'done' | 'now' | 'waiting' }))
         ]}
         hint="20 seconds at most. You can leave; the draft keeps the result."
       />

@@ -147,7 +147,7 @@ describe('uploading', () => {
 
   it('says of no zip that it is none, and does not publish it', async () => {
     const answer = await upload(owner, at('1.1.0'), Buffer.from('this is no zip'))
-    expect([answer.status, answer.headers.get('Location')]).toEqual([303, `${at('1.1.0')}#found`])
+    expect([answer.status, answer.headers.get('Location')]).toEqual([303, `${at('1.1.0')}?done=checked#found`])
     const text = textOf(await owner.page(at('1.1.0')))
     expect(text).toContain('zip-unreadable')
     const refused = await publish(owner, at('1.1.0'))
@@ -158,7 +158,7 @@ describe('uploading', () => {
   it('names a missing layer by its code, and refuses to publish', async () => {
     const answer = await upload(owner, at('1.1.0'), await bundleWithout('buttress-1.1.0', 'Edge_Cuts'), { isScript: true })
     expect(answer.status).toBe(200)
-    expect(await answer.json()).toEqual({ location: `${at('1.1.0')}#found` })
+    expect(await answer.json()).toEqual({ location: `${at('1.1.0')}?done=checked#found` })
     expect(textOf(await owner.page(at('1.1.0')))).toContain('outline-missing')
     expect((await publish(owner, at('1.1.0'))).status).toBe(422)
     expect((await row('1.1.0'))?.state).toBe('draft')

@@ -45,7 +45,6 @@ export default function Bench({ loaderData: { boards, drafts } }: Route.Componen
               <p className="soft">No draft lies here. Draft a release from one of your boards below.</p>
             ) : (
               <Table
-                number={1}
                 caption="The one changed last first. Only maintainers see them."
                 rows={drafts}
                 rowKey={(d) => `${d.boardSlug} ${d.version}`}
@@ -66,7 +65,6 @@ export default function Bench({ loaderData: { boards, drafts } }: Route.Componen
           </Section>
           <Section number={2} heading="Boards">
             <Table
-              number={2}
               caption="The boards you maintain, by name."
               rows={boards}
               rowKey={(b) => b.id}

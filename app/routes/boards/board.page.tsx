@@ -1,11 +1,12 @@
 import type { Route } from './+types/board.page'
 import { BoardAtScale } from '~/components/board-drawing'
-import { Actions, ButtonLink, GoLink } from '~/components/button'
+import { Actions, ButtonLink } from '~/components/button'
 import { Definitions } from '~/components/definition'
 import { DoneLine } from '~/components/done-line'
 import { Empty } from '~/components/empty'
 import { Figure } from '~/components/figure'
 import { FitStrip } from '~/components/fit-strip'
+import { LastingWords } from '~/components/lasting-words'
 import { Prose } from '~/components/prose'
 import { ReleaseLine } from '~/components/release-line'
 import { MarginNote, Section } from '~/components/section'
@@ -15,6 +16,7 @@ import { TextLink } from '~/components/text-link'
 import { Title } from '~/components/title'
 import { boardPage } from '~/domain/boards/board-page.server'
 import { releasesOfBoard } from '~/domain/releases/board-releases.server'
+import { lastingOf } from '~/domain/releases/lasting.server'
 import { picturePath, releasePath } from '~/domain/releases/release-path'
 import { dayOf } from '~/lib/dates'
 import { answerPage } from '~/server/answer.server'
@@ -30,12 +32,14 @@ export const meta: Route.MetaFunction = ({ loaderData }) => {
 
 export function loader({ url, params, context }: Route.LoaderArgs) {
   return answerPage(url, async () => {
-    const { db, now } = services()
+    const s = services()
+    const { db, now } = s
     const board = await boardPage(db, context.get(actorContext), params.board)
     const asked = url.searchParams.get('done')
     return {
       board,
       releases: await releasesOfBoard(db, board.id, board.canDraft),
+      lasting: await lastingOf(s, board.slug),
       today: dayOf(now()),
       done: asked !== null && asked in done ? done[asked as keyof typeof done] : null
     }
@@ -118,10 +122,11 @@ export default function Board({ loaderData }: Route.ComponentProps) {
         </MarginNote>
       </Section>
       <Section number={5} heading="How long it lasts">
-        <p>Installers say how it went on the day and later on. The figures come from their reports, with their intervals.</p>
-        <p className="mt-2">
-          <GoLink href={`/boards/${board.slug}/reliability`}>Reliability by release and console revision</GoLink>
-        </p>
+        <LastingWords
+          lasting={loaderData.lasting}
+          href={`/boards/${board.slug}/reliability`}
+          link="Reliability by release and console revision"
+        />
       </Section>
     </SiteSheet>
   )

@@ -98,7 +98,7 @@ export default function EditFit({ loaderData: data, actionData }: Route.Componen
         <Form method="post" noValidate>
           <ErrorSummary errors={errors} before="the claims can be saved" labels={labels} />
           {data.fit.map((f) => (
-            <div key={f.revisionId} role="group" aria-labelledby={`rev-${f.revisionId}`}>
+            <div key={f.revisionId} className="mt-8" role="group" aria-labelledby={`rev-${f.revisionId}`}>
               <SubHeading id={`rev-${f.revisionId}`}>{f.code}</SubHeading>
               <p className="small soft">{f.recognise}</p>
               <SelectField

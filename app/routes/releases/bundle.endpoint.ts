@@ -47,7 +47,7 @@ export async function action({ request, params, context }: Route.ActionArgs) {
     await takeInBundle(intakeDeps(s), context.get(actorContext), board, version, () =>
       receiveFile(request, 'bundle', s.config.uploadDir, s.config.uploadMaxBytes)
     )
-    return isScript ? Response.json({ location: `${draft}#found` }) : redirect(`${draft}#found`, 303)
+    return isScript ? Response.json({ location: `${draft}?done=checked#found` }) : redirect(`${draft}?done=checked#found`, 303)
   } catch (error) {
     discardBody(request)
     if (!(error instanceof DomainError)) throw error

@@ -1,4 +1,5 @@
-import { Form, useNavigation, useRevalidator } from 'react-router'
+import { useCallback } from 'react'
+import { Form, useNavigate, useNavigation, useRevalidator } from 'react-router'
 import { BoardFigures, Facts, FindingEntry, foundInWords, Layers } from './release-parts'
 import { BundleUpload } from '~/components/bundle-upload'
 import { Actions, Button, ButtonLink } from '~/components/button'
@@ -110,6 +111,11 @@ const steps = checkSteps.map((step) => ({ step, name: checkStepNames[step] }))
 function Upload({ page, path, maxBytes, errors }: { page: ReleasePage; path: string; maxBytes: number; errors: FieldError[] }) {
   const { bundle, checkState } = page
   const { revalidate } = useRevalidator()
+  const navigate = useNavigate()
+  const showFound = useCallback(async () => {
+    await navigate(`${path}?done=checked#found`, { replace: true })
+    await revalidate()
+  }, [navigate, path, revalidate])
   return (
     <>
       <BundleUpload
@@ -119,7 +125,7 @@ function Upload({ page, path, maxBytes, errors }: { page: ReleasePage; path: str
         maxBytes={maxBytes}
         isReplacing={bundle !== null}
         isRunning={checkState === 'running'}
-        onDone={revalidate}
+        onDone={showFound}
       />
       <ErrorSummary errors={errors} before="it can be checked" />
       {bundle && (
@@ -178,39 +184,38 @@ function Found({ page, errors, values }: { page: ReleasePage; errors: FieldError
       }
     >
       <p role="status">The bundle check raised {foundInWords(findings)}.</p>
-      <Form method="post" action="#found" noValidate>
-        <input type="hidden" name="intent" value="answers" />
-        <ErrorSummary errors={errors} before="the answers can be saved" />
-        {findings.map((f, i) => (
-          <FindingEntry key={f.id} finding={f} place={i + 1} isDraft>
-            {f.severity === 'caution' && (
-              <TextArea
-                name={`answer.${f.id}`}
-                label="Your answer"
-                hint={
-                  f.answer
-                    ? 'Answered. You can still change it.'
-                    : 'A caution must be answered before the release can be published.'
-                }
-                rows={2}
-                maxLength={2000}
-                defaultValue={values[`answer.${f.id}`] ?? f.answer ?? ''}
-                error={error(f.id)}
-                isLong
-              />
-            )}
-          </FindingEntry>
-        ))}
-        {hasCautions && (
-          <div className="mt-6">
-            <Actions>
-              <Button kind="outline" busy={isBusy ? 'Saving' : undefined}>
-                Save the answers
-              </Button>
-            </Actions>
-          </div>
-        )}
-      </Form>
+      <ErrorSummary errors={errors} before="the answers can be saved" />
+      {findings.map((f, i) => (
+        <FindingEntry key={f.id} finding={f} place={i + 1} isDraft>
+          {f.severity === 'caution' && (
+            <TextArea
+              form="answers"
+              name={`answer.${f.id}`}
+              label="Your answer"
+              hint={
+                f.answer
+                  ? 'Answered. You can still change it.'
+                  : 'A caution must be answered before the release can be published.'
+              }
+              rows={2}
+              maxLength={2000}
+              defaultValue={values[`answer.${f.id}`] ?? f.answer ?? ''}
+              error={error(f.id)}
+              isLong
+            />
+          )}
+        </FindingEntry>
+      ))}
+      {hasCautions && (
+        <Form method="post" action="#found" id="answers" className="mt-6" noValidate>
+          <input type="hidden" name="intent" value="answers" />
+          <Actions>
+            <Button kind="outline" busy={isBusy ? 'Saving' : undefined}>
+              Save the answers
+            </Button>
+          </Actions>
+        </Form>
+      )}
     </Section>
   )
 }

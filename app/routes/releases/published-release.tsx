@@ -1,5 +1,5 @@
 import { BoardFigures, Facts, FindingEntry, foundInWords, Layers } from './release-parts'
-import { Actions, ButtonLink, GoLink } from '~/components/button'
+import { Actions, ButtonLink } from '~/components/button'
 import { Checksum } from '~/components/checksum'
 import { Definitions } from '~/components/definition'
 import { DoneLine } from '~/components/done-line'
@@ -7,6 +7,7 @@ import { FitStrip } from '~/components/fit-strip'
 import { IndexLine } from '~/components/index-line'
 import { Prose } from '~/components/prose'
 import { ReleaseLine } from '~/components/release-line'
+import { LastingWords, type LastingWordsProps } from '~/components/lasting-words'
 import { MarginNote, Section } from '~/components/section'
 import { NoteSign } from '~/components/signs'
 import { SiteSheet } from '~/components/site-sheet'
@@ -19,8 +20,15 @@ import { releasePath } from '~/domain/releases/release-path'
 import { safetyCautions } from '~/domain/releases/safety-cautions'
 import { aboutBytes, exactBytes } from '~/lib/byte-size'
 
+export type PublishedReleaseProps = {
+  page: ReleasePage
+  lasting: LastingWordsProps['lasting']
+  today: string
+  done: string | null
+}
+
 /** A published release as everybody sees it. */
-export function PublishedRelease({ page, today, done }: { page: ReleasePage; today: string; done: string | null }) {
+export function PublishedRelease({ page, lasting, today, done }: PublishedReleaseProps) {
   const { board, release, bundle, findings } = page
   const cautions = findings.filter((f) => f.severity === 'caution').length
   return (
@@ -145,15 +153,11 @@ export function PublishedRelease({ page, today, done }: { page: ReleasePage; tod
         {release.notes ? <Prose html={release.notes} /> : <p className="soft">The maintainer wrote none.</p>}
       </Section>
       <Section number={8} heading="How long it lasts">
-        <p>
-          Installers say how it went, on the day and later on. The curves are computed from their reports and carry their
-          intervals.
-        </p>
-        <p className="mt-2">
-          <GoLink href={`/boards/${board.slug}/reliability?release=${encodeURIComponent(release.version)}`}>
-            Reliability by console revision
-          </GoLink>
-        </p>
+        <LastingWords
+          lasting={lasting}
+          href={`/boards/${board.slug}/reliability?release=${encodeURIComponent(release.version)}`}
+          link="Reliability by console revision"
+        />
       </Section>
     </SiteSheet>
   )

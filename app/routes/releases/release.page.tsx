@@ -5,6 +5,7 @@ import { PublishedRelease } from './published-release'
 import type { Actor } from '~/domain/accounts/can'
 import { answerCautions, deleteDraft } from '~/domain/releases/drafts.server'
 import { intakeDeps } from '~/domain/releases/intake-deps.server'
+import { lastingOf } from '~/domain/releases/lasting.server'
 import { publishRelease } from '~/domain/releases/publish.server'
 import { answerSchema, publishSchema } from '~/domain/releases/release.schema'
 import { releasePage } from '~/domain/releases/release-page.server'
@@ -22,6 +23,7 @@ const done = {
   drafted: 'The draft is saved. Now upload its bundle.',
   saved: 'The draft is saved.',
   rechecked: 'The draft is saved and its bundle checked again.',
+  checked: 'The bundle is stored and checked.',
   answered: 'Your answers are saved.',
   published: 'It is published.',
   withdrawn: 'It is withdrawn.'
@@ -36,10 +38,13 @@ export const meta: Route.MetaFunction = ({ loaderData }) => {
 
 export function loader({ url, params, context }: Route.LoaderArgs) {
   return answerPage(url, async () => {
-    const { db, config, now } = services()
+    const s = services()
+    const { db, config, now } = s
     const asked = url.searchParams.get('done')
+    const page = await releasePage(db, context.get(actorContext), params.board, params.version)
     return {
-      page: await releasePage(db, context.get(actorContext), params.board, params.version),
+      page,
+      lasting: page.release.state === 'draft' ? null : await lastingOf(s, params.board, params.version),
       maxBytes: config.uploadMaxBytes,
       today: dayOf(now()),
       done: asked !== null && asked in done ? done[asked as keyof typeof done] : null
@@ -69,7 +74,7 @@ export async function action({ request, url, params, context }: Route.ActionArgs
       }
       case 'recheck':
         await recheckBundle(intakeDeps(services()), actor, params.board, params.version)
-        throw redirect(`${path}#found`, 303)
+        throw redirect(`${path}?done=checked#found`, 303)
       case 'delete':
         await deleteDraft(services(), actor, params.board, params.version)
         throw redirect(`/boards/${params.board}?done=deleted`, 303)
@@ -96,7 +101,8 @@ async function saveAnswers(actor: Actor, { board, version }: { board: string; ve
 
 export default function Release({ loaderData, actionData }: Route.ComponentProps) {
   const { page, maxBytes, today } = loaderData
-  if (page.release.state !== 'draft') return <PublishedRelease page={page} today={today} done={loaderData.done} />
+  if (page.release.state !== 'draft')
+    return <PublishedRelease page={page} lasting={loaderData.lasting} today={today} done={loaderData.done} />
   return (
     <DraftRelease
       page={page}
