@@ -1,4 +1,5 @@
-import type { ReactNode } from 'react'
+import { useId, type ReactNode } from 'react'
+import { TableScroll } from './table'
 
 export type FactRow = {
   /** With its unit: "Thickness, mm". */
@@ -15,10 +16,11 @@ export type FactRow = {
 
 /** Declared beside measured, "=" between them; a difference is "≠" and links to its finding. */
 export function FactsTable({ number, caption, rows }: { number?: number; caption: ReactNode; rows: FactRow[] }) {
+  const captionId = useId()
   return (
-    <div className="tw">
+    <TableScroll labelledBy={captionId}>
       <table className="facts">
-        <caption>
+        <caption id={captionId}>
           {number !== undefined && <b>Table {number}</b>} {caption}
         </caption>
         <thead>
@@ -54,6 +56,6 @@ export function FactsTable({ number, caption, rows }: { number?: number; caption
           ))}
         </tbody>
       </table>
-    </div>
+    </TableScroll>
   )
 }

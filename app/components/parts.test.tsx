@@ -189,7 +189,7 @@ describe('parts that say what a thing is', () => {
       { key: 'v', head: 'Value', cell: () => '1 µF' }
     ]
     const html = render(<Table caption="Parts" isFolded columns={columns} rows={['C1']} rowKey={(r) => r} />)
-    expect(html).toContain('<th scope="row">C1</th><td data-l="Value">1 µF</td>')
+    expect(html).toContain('<th scope="row">C1</th><td data-l="Value"><span>1 µF</span></td>')
   })
   it.each([403, 404, 418, 500, 503])('give a way on for %d', (status) =>
     expect(render(<PageError status={status} />)).toMatch(/<a href="\/" class="btn[^>]*>To the boards<\/a>/)

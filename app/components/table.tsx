@@ -1,4 +1,4 @@
-import type { ReactNode } from 'react'
+import { useId, type ReactNode } from 'react'
 import { TextLink } from './text-link'
 
 export type Column<Row> = {
@@ -44,10 +44,11 @@ const columnClass = <Row,>(c: Column<Row>) =>
 export function Table<Row>(props: TableProps<Row>) {
   const { number, caption, columns, rows, rowKey, rowId, isDense, isFolded, className, after } = props
   const hasSort = columns.some((c) => c.sort)
+  const captionId = useId()
   return (
-    <div className="tw">
+    <TableScroll labelledBy={captionId}>
       <table className={classes(isDense && 'dense', isFolded && 'fold', hasSort && 'srt', className)}>
-        <caption>
+        <caption id={captionId}>
           {number !== undefined && <b>Table {number}</b>} {caption}
         </caption>
         <thead>
@@ -70,6 +71,15 @@ export function Table<Row>(props: TableProps<Row>) {
           {after}
         </tbody>
       </table>
+    </TableScroll>
+  )
+}
+
+/** What a wide table scrolls in on a phone; it takes the focus so that the arrow keys scroll it too. */
+export function TableScroll({ labelledBy, children }: { labelledBy: string; children: ReactNode }) {
+  return (
+    <div className="tw" role="group" aria-labelledby={labelledBy} tabIndex={0}>
+      {children}
     </div>
   )
 }
@@ -85,7 +95,7 @@ function Cell<Row>({ column: c, row, isFolded }: { column: Column<Row>; row: Row
   const label = c.label ?? (typeof c.head === 'string' ? c.head : undefined)
   return (
     <td className={className} data-l={isFolded ? label : undefined}>
-      {c.cell(row)}
+      {isFolded ? <span>{c.cell(row)}</span> : c.cell(row)}
     </td>
   )
 }
