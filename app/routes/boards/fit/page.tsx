@@ -1,5 +1,5 @@
 import { Form, redirect, useNavigation } from 'react-router'
-import type { Route } from './+types/fit.page'
+import type { Route } from './+types/page'
 import { Actions, Button, ButtonLink } from '~/components/button'
 import { DoneLine } from '~/components/done-line'
 import { ErrorSummary } from '~/components/error-summary'

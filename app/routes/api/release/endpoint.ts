@@ -1,4 +1,4 @@
-import type { Route } from './+types/release.endpoint'
+import type { Route } from './+types/endpoint'
 import { releaseJson } from '~/domain/public-data/releases-json.server'
 import { answerResource } from '~/server/answer-json.server'
 import { services } from '~/server/services.server'

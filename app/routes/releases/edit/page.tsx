@@ -1,6 +1,6 @@
 import { redirect } from 'react-router'
-import type { Route } from './+types/edit.page'
-import { DraftForm } from './draft-form'
+import type { Route } from './+types/page'
+import { DraftForm } from '../draft-form'
 import { SiteSheet } from '~/components/site-sheet'
 import { Title } from '~/components/title'
 import { draftToEdit } from '~/domain/releases/board-releases.server'

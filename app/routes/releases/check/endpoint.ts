@@ -1,4 +1,4 @@
-import type { Route } from './+types/check.endpoint'
+import type { Route } from './+types/endpoint'
 import { runOf } from '~/domain/releases/check-runs.server'
 import { draftToEdit } from '~/domain/releases/board-releases.server'
 import { answerApi } from '~/server/answer.server'

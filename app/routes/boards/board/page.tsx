@@ -1,4 +1,4 @@
-import type { Route } from './+types/board.page'
+import type { Route } from './+types/page'
 import { BoardAtScale } from '~/components/board-drawing'
 import { Actions, ButtonLink } from '~/components/button'
 import { Definitions } from '~/components/definition'

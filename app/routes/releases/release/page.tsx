@@ -1,5 +1,5 @@
 import { redirect } from 'react-router'
-import type { Route } from './+types/release.page'
+import type { Route } from './+types/page'
 import { DraftRelease } from './draft-release'
 import { PublishedRelease } from './published-release'
 import type { Actor } from '~/domain/accounts/can'

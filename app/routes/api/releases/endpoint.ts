@@ -1,4 +1,4 @@
-import type { Route } from './+types/releases.endpoint'
+import type { Route } from './+types/endpoint'
 import { releasesJson } from '~/domain/public-data/releases-json.server'
 import { answerResource } from '~/server/answer-json.server'
 import { services } from '~/server/services.server'

@@ -1,5 +1,5 @@
 import { createReadableStreamFromReadable } from '@react-router/node'
-import type { Route } from './+types/picture.endpoint'
+import type { Route } from './+types/endpoint'
 import { openPicture } from '~/domain/releases/release-picture.server'
 import { DomainError, statusOf } from '~/lib/domain-error'
 import { actorContext } from '~/server/context'

@@ -1,6 +1,6 @@
 import { redirect } from 'react-router'
-import type { Route } from './+types/new.page'
-import { BoardForm } from './board-form'
+import type { Route } from './+types/page'
+import { BoardForm } from '../board-form'
 import { SiteSheet } from '~/components/site-sheet'
 import { Section } from '~/components/section'
 import { Title } from '~/components/title'

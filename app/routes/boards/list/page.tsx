@@ -1,5 +1,5 @@
 import { Form } from 'react-router'
-import type { Route } from './+types/list.page'
+import type { Route } from './+types/page'
 import { Button, ButtonLink, GoLink } from '~/components/button'
 import { NothingFound } from '~/components/empty'
 import { SiteSheet } from '~/components/site-sheet'

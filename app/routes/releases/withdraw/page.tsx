@@ -1,5 +1,5 @@
 import { Form, redirect, useNavigation } from 'react-router'
-import type { Route } from './+types/withdraw.page'
+import type { Route } from './+types/page'
 import { Actions, Button, ButtonLink } from '~/components/button'
 import { ErrorSummary } from '~/components/error-summary'
 import { TextArea } from '~/components/field'

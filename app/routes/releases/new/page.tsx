@@ -1,6 +1,6 @@
 import { redirect } from 'react-router'
-import type { Route } from './+types/new.page'
-import { DraftForm } from './draft-form'
+import type { Route } from './+types/page'
+import { DraftForm } from '../draft-form'
 import { SiteSheet } from '~/components/site-sheet'
 import { Title } from '~/components/title'
 import { boardToEdit } from '~/domain/boards/board-page.server'

@@ -1,6 +1,6 @@
 import { createReadableStreamFromReadable } from '@react-router/node'
 import { redirect } from 'react-router'
-import type { Route } from './+types/bundle.endpoint'
+import type { Route } from './+types/endpoint'
 import { downloadBundle } from '~/domain/releases/download-bundle.server'
 import { intakeDeps } from '~/domain/releases/intake-deps.server'
 import { releasePath } from '~/domain/releases/release-path'
@@ -10,7 +10,7 @@ import { problemOf } from '~/lib/problem'
 import { actorContext } from '~/server/context'
 import { discardBody, receiveFile } from '~/server/receive-file.server'
 import { services } from '~/server/services.server'
-import { plainPage } from './plain-page.server'
+import { plainPage } from '../plain-page.server'
 
 export async function loader({ request, params, context }: Route.LoaderArgs) {
   const { board, version } = params
