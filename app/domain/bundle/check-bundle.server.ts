@@ -7,6 +7,7 @@ import { checkLists } from './check-lists'
 import { checkPresence } from './check-presence'
 import { checkRelease } from './check-release'
 import { finding, mm } from './finding'
+import { inStackOrder } from './layer-order'
 import { defaultLimits, type CheckLimits } from './limits'
 import { measureFacts } from './measure-facts'
 import { readBundle, tellLayers, type BundleSource } from './read-bundle.server'
@@ -110,5 +111,5 @@ function answer(
       return more > 0 && isLast ? { ...f, message: `${f.message} There are ${more} more of this kind.` } : f
     })
   kept.sort((a, b) => rank[a.severity] - rank[b.severity])
-  return { layers, facts, findings: kept, ok: !kept.some((f) => f.severity === 'stop') }
+  return { layers: inStackOrder(layers), facts, findings: kept, ok: !kept.some((f) => f.severity === 'stop') }
 }
