@@ -32,7 +32,11 @@ export async function loadAccount({ db, now }: Given, userId: string | null, cur
 export async function rename({ db, now }: Given, userId: string, displayName: string): Promise<void> {
   await db.transaction().execute(async (tx) => {
     await users.setDisplayName(tx, userId, displayName)
-    await recordAudit(tx, { actorId: userId, action: 'account.rename', subjectKind: 'user', subjectId: userId }, now())
+    await recordAudit(
+      tx,
+      { actorId: userId, action: 'account.rename', subjectKind: 'user', subjectId: userId },
+      now().toISOString()
+    )
   })
 }
 

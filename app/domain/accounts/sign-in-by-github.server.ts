@@ -96,7 +96,7 @@ async function userOfProfile(tx: Tx, profile: GithubProfile, now: Date): Promise
         subjectId: holder.id,
         detail: { githubId: profile.id }
       },
-      now
+      now.toISOString()
     )
     return { id: holder.id, isDisabled: false }
   }
@@ -106,7 +106,7 @@ async function userOfProfile(tx: Tx, profile: GithubProfile, now: Date): Promise
   await recordAudit(
     tx,
     { actorId: id, action: 'account.open', subjectKind: 'user', subjectId: id, detail: { by: 'github' } },
-    now
+    now.toISOString()
   )
   return { id, isDisabled: false }
 }

@@ -111,6 +111,10 @@ async function userOfAddress(tx: Tx, email: string, displayName: string | null, 
     github: null,
     at: now.toISOString()
   })
-  await recordAudit(tx, { actorId: id, action: 'account.open', subjectKind: 'user', subjectId: id, detail: { by: 'mail' } }, now)
+  await recordAudit(
+    tx,
+    { actorId: id, action: 'account.open', subjectKind: 'user', subjectId: id, detail: { by: 'mail' } },
+    now.toISOString()
+  )
   return id
 }

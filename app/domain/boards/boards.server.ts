@@ -1,6 +1,6 @@
 import type { Db } from '~db/client.server'
 import type { BundleFacts } from '~/domain/bundle/bundle-check.types'
-import { writeAudit } from '~/domain/accounts/audit.repo.server'
+import { recordAudit } from '~/domain/audit/record.server'
 import type { Actor } from '~/domain/accounts/can'
 import { must } from '~/domain/accounts/must'
 import { DomainError } from '~/lib/domain-error'
@@ -53,14 +53,11 @@ export async function openBoard({ db, now }: Deps, actor: Actor, input: BoardOpe
       created_by: actor.userId
     })
     await repo.insertMaintainer(tx, { board_id: id, user_id: actor.userId!, role: 'owner', added_at: at })
-    await writeAudit(tx, {
-      at,
-      actorId: actor.userId,
-      action: 'board.open',
-      subjectKind: 'board',
-      subjectId: id,
-      detail: { slug: input.slug }
-    })
+    await recordAudit(
+      tx,
+      { actorId: actor.userId, action: 'board.open', subjectKind: 'board', subjectId: id, detail: { slug: input.slug } },
+      at
+    )
   })
   return input.slug
 }
@@ -94,14 +91,17 @@ export async function editBoard({ db, now }: Deps, actor: Actor, slug: string, i
       licence: input.licence,
       description_md: input.description
     })
-    await writeAudit(tx, {
-      at,
-      actorId: actor.userId,
-      action: 'board.edit',
-      subjectKind: 'board',
-      subjectId: board.id,
-      detail: { from: { name: board.name, licence: board.licence }, to: { name: input.name, licence: input.licence } }
-    })
+    await recordAudit(
+      tx,
+      {
+        actorId: actor.userId,
+        action: 'board.edit',
+        subjectKind: 'board',
+        subjectId: board.id,
+        detail: { from: { name: board.name, licence: board.licence }, to: { name: input.name, licence: input.licence } }
+      },
+      at
+    )
   })
 }
 

@@ -1,5 +1,5 @@
 import type { Db } from '~db/client.server'
-import { writeAudit } from '~/domain/accounts/audit.repo.server'
+import { recordAudit } from '~/domain/audit/record.server'
 import type { Actor } from '~/domain/accounts/can'
 import { must } from '~/domain/accounts/must'
 import { DomainError } from '~/lib/domain-error'
@@ -39,13 +39,10 @@ export async function stateFitClaims(
       })
     }
     if (changed.length > 0)
-      await writeAudit(tx, {
-        at,
-        actorId: actor.userId,
-        action: 'board.fit',
-        subjectKind: 'board',
-        subjectId: board.id,
-        detail: { changed }
-      })
+      await recordAudit(
+        tx,
+        { actorId: actor.userId, action: 'board.fit', subjectKind: 'board', subjectId: board.id, detail: { changed } },
+        at
+      )
   })
 }

@@ -1,5 +1,5 @@
 import type { Db, Tx } from '~db/client.server'
-import { writeAudit } from '~/domain/accounts/audit.repo.server'
+import { recordAudit } from '~/domain/audit/record.server'
 import type { Actor } from '~/domain/accounts/can'
 import { must } from '~/domain/accounts/must'
 import { boardBySlug } from '~/domain/boards/boards.server'
@@ -60,14 +60,17 @@ export async function draftRelease({ db, now }: Deps, actor: Actor, slug: string
       created_by: actor.userId,
       updated_at: at
     })
-    await writeAudit(tx, {
-      at,
-      actorId: actor.userId,
-      action: 'release.draft',
-      subjectKind: 'release',
-      subjectId: id,
-      detail: { board: slug, version: draft.version.text }
-    })
+    await recordAudit(
+      tx,
+      {
+        actorId: actor.userId,
+        action: 'release.draft',
+        subjectKind: 'release',
+        subjectId: id,
+        detail: { board: slug, version: draft.version.text }
+      },
+      at
+    )
   })
   return draft.version.text
 }
@@ -97,14 +100,17 @@ export async function editDraft({ db, now }: Deps, actor: Actor, slug: string, v
       updated_at: at
     })
     if (!isChanged) throw draftGone()
-    await writeAudit(tx, {
-      at,
-      actorId: actor.userId,
-      action: 'release.edit',
-      subjectKind: 'release',
-      subjectId: release.id,
-      detail: { from: release.version, to: draft.version.text }
-    })
+    await recordAudit(
+      tx,
+      {
+        actorId: actor.userId,
+        action: 'release.edit',
+        subjectKind: 'release',
+        subjectId: release.id,
+        detail: { from: release.version, to: draft.version.text }
+      },
+      at
+    )
   })
   return { version: draft.version.text, releaseId: release.id, needsCheck }
 }
@@ -124,14 +130,17 @@ export async function deleteDraft({ db, now }: Deps, actor: Actor, slug: string,
     const row = await repo.findById(tx, release.id)
     if (!row || !(await repo.deleteDraft(tx, release.id))) throw draftGone()
     for (const key of objectsOf(row)) await staged.stage(tx, key, at)
-    await writeAudit(tx, {
-      at,
-      actorId: actor.userId,
-      action: 'release.delete-draft',
-      subjectKind: 'release',
-      subjectId: release.id,
-      detail: { board: slug, version }
-    })
+    await recordAudit(
+      tx,
+      {
+        actorId: actor.userId,
+        action: 'release.delete-draft',
+        subjectKind: 'release',
+        subjectId: release.id,
+        detail: { board: slug, version }
+      },
+      at
+    )
   })
 }
 
@@ -168,13 +177,10 @@ export async function answerCautions(
           : { answer, answered_at: at, answered_by: actor.userId }
       )
     }
-    await writeAudit(tx, {
-      at,
-      actorId: actor.userId,
-      action: 'release.answer',
-      subjectKind: 'release',
-      subjectId: release.id,
-      detail: { changed }
-    })
+    await recordAudit(
+      tx,
+      { actorId: actor.userId, action: 'release.answer', subjectKind: 'release', subjectId: release.id, detail: { changed } },
+      at
+    )
   })
 }

@@ -1,5 +1,5 @@
 import type { Db } from '~db/client.server'
-import { writeAudit } from '~/domain/accounts/audit.repo.server'
+import { recordAudit } from '~/domain/audit/record.server'
 import type { Actor } from '~/domain/accounts/can'
 import { must } from '~/domain/accounts/must'
 import { DomainError } from '~/lib/domain-error'
@@ -46,14 +46,17 @@ export async function publishRelease(
       )
     const state = stateWhenPublished(mustReadVersion(row.version))
     await repo.updateDraft(tx, row.id, { state, published_at: at, published_by: actor.userId, updated_at: at })
-    await writeAudit(tx, {
-      at,
-      actorId: actor.userId,
-      action: 'release.publish',
-      subjectKind: 'release',
-      subjectId: row.id,
-      detail: { board: slug, version: row.version, state, bundle: row.bundle_sha256 }
-    })
+    await recordAudit(
+      tx,
+      {
+        actorId: actor.userId,
+        action: 'release.publish',
+        subjectKind: 'release',
+        subjectId: row.id,
+        detail: { board: slug, version: row.version, state, bundle: row.bundle_sha256 }
+      },
+      at
+    )
   })
 }
 
@@ -81,13 +84,16 @@ export async function withdrawRelease(
       updated_at: at
     })
     if (!isDone) throw new DomainError('conflict', 'This release is withdrawn already.')
-    await writeAudit(tx, {
-      at,
-      actorId: actor.userId,
-      action: 'release.withdraw',
-      subjectKind: 'release',
-      subjectId: release.id,
-      detail: { board: slug, version, reason }
-    })
+    await recordAudit(
+      tx,
+      {
+        actorId: actor.userId,
+        action: 'release.withdraw',
+        subjectKind: 'release',
+        subjectId: release.id,
+        detail: { board: slug, version, reason }
+      },
+      at
+    )
   })
 }

@@ -4,7 +4,7 @@ import { rm } from 'node:fs/promises'
 import { join } from 'node:path'
 import { pipeline } from 'node:stream/promises'
 import type { Db } from '~db/client.server'
-import { writeAudit } from '~/domain/accounts/audit.repo.server'
+import { recordAudit } from '~/domain/audit/record.server'
 import type { Actor } from '~/domain/accounts/can'
 import { must } from '~/domain/accounts/must'
 import type { BundleCheck, BundlePictures, CheckStep, DeclaredDetails } from '~/domain/bundle/bundle-check.types'
@@ -148,13 +148,16 @@ async function keep(
     const kept = objectsOf(refers)
     for (const key of kept) await staged.unstage(tx, key)
     for (const key of objectsOf(row)) if (!kept.includes(key)) await staged.stage(tx, key, at)
-    await writeAudit(tx, {
-      at,
-      actorId,
-      action: 'release.bundle',
-      subjectKind: 'release',
-      subjectId: row.id,
-      detail: { sha256: file.sha256, bytes: file.bytes, ok: check.ok, findings: check.findings.length }
-    })
+    await recordAudit(
+      tx,
+      {
+        actorId,
+        action: 'release.bundle',
+        subjectKind: 'release',
+        subjectId: row.id,
+        detail: { sha256: file.sha256, bytes: file.bytes, ok: check.ok, findings: check.findings.length }
+      },
+      at
+    )
   })
 }

@@ -77,7 +77,11 @@ export async function fileReport({ db, now }: Services, actor: Actor, input: Ins
         cause: input.cause ?? 'unknown',
         created_at: at.toISOString()
       })
-    await recordAudit(tx, entry(actor, 'report.file', id, { release: input.release, firstPower: input.first_power }), at)
+    await recordAudit(
+      tx,
+      entry(actor, 'report.file', id, { release: input.release, firstPower: input.first_power }),
+      at.toISOString()
+    )
     return { id }
   })
 }
@@ -135,7 +139,7 @@ export async function addCheckIn({ db, now }: Services, actor: Actor, reportId: 
         notes,
         created_at: filedAt
       })
-    await recordAudit(tx, entry(actor, 'report.check-in', reportId, { statement: input.statement, on: input.stated_on }), at)
+    await recordAudit(tx, entry(actor, 'report.check-in', reportId, { statement: input.statement, on: input.stated_on }), filedAt)
   })
 }
 
@@ -151,7 +155,7 @@ export async function excludeReport({ db, now }: Services, actor: Actor, reportI
     must(actor, 'report.exclude', { reporterId: report.reporter_id, isExcluded: false })
     if (report.excluded_at !== null) throw new DomainError('conflict', 'This report is excluded already.')
     await repo.markExcluded(tx, reportId, actor.userId!, at.toISOString(), input)
-    await recordAudit(tx, entry(actor, 'report.exclude', reportId, { kind: input.kind }), at)
+    await recordAudit(tx, entry(actor, 'report.exclude', reportId, { kind: input.kind }), at.toISOString())
   })
 }
 
