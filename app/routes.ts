@@ -44,6 +44,7 @@ export default [
   route('api/v1/consoles', 'routes/api/consoles/endpoint.ts'),
   route('api/v1/consoles/:console', 'routes/api/console/endpoint.ts'),
   route('api/v1/compute/survival', 'routes/api/compute-survival/endpoint.ts'),
+  route('api/v1/compute/bundle-check', 'routes/api/compute-bundle-check/endpoint.ts'),
 
   route('health', 'routes/health/endpoint.ts'),
   route('*', 'routes/not-found/page.tsx')

@@ -1,4 +1,5 @@
 import { parseArgs } from 'node:util'
+import { layersReader, thicknessReader, type DetailReader } from '../domain/bundle/declared-details'
 import { runBundleCheck } from '../domain/bundle/run-bundle-check.server'
 import { DomainError } from '../lib/domain-error'
 import type { Command } from './command'
@@ -6,15 +7,10 @@ import type { Command } from './command'
 const usage = 'check FILE.zip [--layers N] [--thickness MM]'
 
 /** A number given with an option, or undefined; the message names the option. */
-function numberOption(
-  name: string,
-  text: string | undefined,
-  isValid: (n: number) => boolean,
-  expected: string
-): number | undefined {
+function numberOption(name: string, text: string | undefined, { expected, read }: DetailReader): number | undefined {
   if (text === undefined) return undefined
-  const value = Number(text)
-  if (text.trim() === '' || !isValid(value))
+  const value = read(text)
+  if (value === null)
     throw new DomainError('invalid', `--${name} takes ${expected}.`, [{ path: name, message: `Expected ${expected}` }])
   return value
 }
@@ -37,18 +33,8 @@ export const checkCommand: Command = {
       const errors = [{ path: 'file', message: positionals.length === 0 ? 'Name a file' : 'Name one file' }]
       throw new DomainError('invalid', `One zip file is checked at a time. Usage: fettle ${usage}`, errors)
     }
-    const declaredLayers = numberOption(
-      'layers',
-      values.layers,
-      (n) => Number.isInteger(n) && n >= 1 && n <= 64,
-      'a whole number from 1 to 64'
-    )
-    const thicknessMm = numberOption(
-      'thickness',
-      values.thickness,
-      (n) => n > 0 && n <= 10,
-      'a thickness in mm, above 0 and up to 10'
-    )
+    const declaredLayers = numberOption('layers', values.layers, layersReader)
+    const thicknessMm = numberOption('thickness', values.thickness, thicknessReader)
     const check = await runBundleCheck({ path: positionals[0]!, declaredLayers, thicknessMm })
     io.out(`${JSON.stringify(check, null, 2)}\n`)
     return 0
