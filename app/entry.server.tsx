@@ -1,5 +1,4 @@
-import { PassThrough } from 'node:stream'
-import { createReadableStreamFromReadable } from '@react-router/node'
+import { Writable } from 'node:stream'
 import { renderToPipeableStream } from 'react-dom/server'
 import { ServerRouter, type EntryContext, type RouterContextProvider } from 'react-router'
 import { requestInfoContext } from '~/server/context'
@@ -17,23 +16,32 @@ export default function handleRequest(
   loadContext: RouterContextProvider
 ): Promise<Response> {
   const nonce = loadContext.get(requestInfoContext).nonce || undefined
+  headers.set('Content-Type', 'text/html; charset=utf-8')
+  if (!headers.has('Cache-Control')) headers.set('Cache-Control', 'private, no-store')
   return new Promise((resolve, reject) => {
     let failed = false
+    const parts: Buffer[] = []
+    const page = new Writable({
+      write(part: Buffer, _encoding, done) {
+        parts.push(part)
+        done()
+      },
+      final(done) {
+        const body = request.method === 'HEAD' ? null : Buffer.concat(parts)
+        resolve(new Response(body, { headers, status: failed ? 500 : status }))
+        done()
+      }
+    })
     const { pipe, abort } = renderToPipeableStream(<ServerRouter context={routerContext} url={request.url} nonce={nonce} />, {
       nonce,
       onAllReady() {
         clearTimeout(timer)
-        headers.set('Content-Type', 'text/html; charset=utf-8')
-        if (!headers.has('Cache-Control')) headers.set('Cache-Control', 'private, no-store')
-        const body = new PassThrough()
-        const answer = new Response(request.method === 'HEAD' ? null : createReadableStreamFromReadable(body), {
-          headers,
-          status: failed ? 500 : status
-        })
-        resolve(answer)
-        pipe(body)
+        pipe(page)
       },
-      onShellError: reject,
+      onShellError(error) {
+        clearTimeout(timer)
+        reject(error)
+      },
       onError(error) {
         failed = true
         logError('render-failed', error)
