@@ -67,10 +67,12 @@ describe('paths', () => {
   it('steps level and then down', () => {
     expect(stepPath([[0, 10], [20, 30], [40.04, 50]])).toBe('M0 10H20V30H40V50') // prettier-ignore
     expect(stepPath([])).toBe('')
+    expect(stepPath([[0, 10], [20, 10], [30, 10.04], [40, 30], [50, 30]]), 'a level that stays is one stroke').toBe('M0 10H40V30H50V30') // prettier-ignore
   })
   it('closes a band between two step lines, back along the lower levels', () => {
     expect(stepArea([[0, 1, 5], [10, 2, 8], [20, 3, 9]])).toBe('M0 1H10V2H20V3V8H10V5H0Z') // prettier-ignore
     expect(stepArea([[0, 1, 5]])).toBe('')
+    expect(stepArea([[0, 1, 5], [10, 1, 5], [15, 1, 8], [20, 3, 8]])).toBe('M0 1H20V3V8H15V5H0Z') // prettier-ignore
   })
   it('sets one tick a place on a grid of four pixels, none where the curve is gone', () => {
     const scale = linear(0, 100, 0, 100)

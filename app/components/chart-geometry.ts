@@ -76,17 +76,26 @@ export const linear =
 
 const px = (n: number) => String(Math.round(n * 10) / 10)
 
+/** The places at which a step line turns: its ends, and wherever a level differs from the one before as drawn. */
+const turns = <Place extends readonly [number, ...number[]]>(places: readonly Place[]): Place[] =>
+  places.filter(
+    (place, i) => i === 0 || i === places.length - 1 || place.some((level, k) => k > 0 && px(level) !== px(places[i - 1]![k]!))
+  )
+
 /** A line that runs level and then falls (or rises): `M x y H x V y …`. */
 export function stepPath(places: readonly (readonly [x: number, y: number])[]): string {
-  return places.map(([x, y], i) => (i === 0 ? `M${px(x)} ${px(y)}` : `H${px(x)}V${px(y)}`)).join('')
+  return turns(places)
+    .map(([x, y], i) => (i === 0 ? `M${px(x)} ${px(y)}` : `H${px(x)}V${px(y)}`))
+    .join('')
 }
 
 /** The closed area between two step lines that share their x. */
 export function stepArea(places: readonly (readonly [x: number, high: number, low: number])[]): string {
   if (places.length < 2) return ''
+  const kept = turns(places)
   // walking back, the level left of a place is that of the place before it
-  const back = places.slice(0, -1).map(([x, , low]) => `V${px(low)}H${px(x)}`)
-  return `${stepPath(places.map(([x, high]) => [x, high]))}${back.reverse().join('')}Z`
+  const back = kept.slice(0, -1).map(([x, , low]) => `V${px(low)}H${px(x)}`)
+  return `${stepPath(kept.map(([x, high]) => [x, high]))}${back.reverse().join('')}Z`
 }
 
 /** Where the censor ticks stand: a grid of `gap` pixels, one tick a place, so that a crowd stays readable. */

@@ -104,6 +104,8 @@ export function TextArea(props: Common & Native<'textarea'>) {
 }
 
 export type SelectOption = { value: string; label: string; isDisabled?: boolean }
+/** Options under a heading of their own. */
+export type SelectGroup = { heading: string; options: SelectOption[] }
 
 export function SelectField({
   options,
@@ -121,10 +123,16 @@ export function SelectField({
   )
 }
 
-export function SelectOptions({ options }: { options: SelectOption[] }) {
-  return options.map(({ value, label, isDisabled }) => (
-    <option key={value} value={value} disabled={isDisabled}>
-      {label}
-    </option>
-  ))
+export function SelectOptions({ options }: { options: (SelectOption | SelectGroup)[] }) {
+  return options.map((entry) =>
+    'heading' in entry ? (
+      <optgroup key={entry.heading} label={entry.heading}>
+        <SelectOptions options={entry.options} />
+      </optgroup>
+    ) : (
+      <option key={entry.value} value={entry.value} disabled={entry.isDisabled}>
+        {entry.label}
+      </option>
+    )
+  )
 }

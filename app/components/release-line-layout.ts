@@ -44,7 +44,7 @@ export function yearMarks(firstOn: string, today: string): YearMark[] {
 export type NamePlace = { anchor: 'start' | 'end'; row: 0 | 1 } | null
 
 /** About the room that a release's name (16 px, bold) and the line below it (14 px) need. */
-export const nameRoom = (version: string, below: string): number => Math.max(version.length * 8.8, below.length * 6.9) + 10
+export const nameRoom = (version: string, below: string): number => Math.max(version.length * 8.8, below.length * 6.4) + 10
 
 /**
  * Where each name stands: right of its dot, or left of it when its right neighbour is near, or one row down; null where there is no

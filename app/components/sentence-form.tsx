@@ -1,10 +1,10 @@
-import { Fragment, type ReactNode } from 'react'
+import type { ReactNode } from 'react'
 import { Button } from './button'
-import { FieldMessage, SelectOptions, type SelectOption } from './field'
+import { FieldMessage, SelectOptions, type SelectGroup, type SelectOption } from './field'
 
 export type SentencePart =
   | string
-  | { name: string; label: string; options: SelectOption[]; value?: string; empty?: string; error?: string }
+  | { name: string; label: string; options: (SelectOption | SelectGroup)[]; value?: string; empty?: string; error?: string }
   | {
       name: string
       label: string
@@ -32,8 +32,11 @@ export type SentenceFormProps = {
 export function SentenceForm({ action, label, parts, submit, isOutlined, span, children }: SentenceFormProps) {
   return (
     <form className={span ? `say ${span}` : 'say'} action={action} method="get" aria-label={label}>
-      {parts.map((part, i) => (
-        <Fragment key={i}>{typeof part === 'string' ? <span>{part}</span> : <Gap part={part} />}</Fragment>
+      {pairsOf(parts).map(({ words, gap }, i) => (
+        <span className="pair" key={i}>
+          {words && <span>{words}</span>}
+          {gap && <Gap part={gap} />}
+        </span>
       ))}
       {children}
       <Button kind={isOutlined ? 'outline' : 'solid'}>{submit}</Button>
@@ -48,7 +51,21 @@ export function SentenceForm({ action, label, parts, submit, isOutlined, span, c
   )
 }
 
-function Gap({ part }: { part: Exclude<SentencePart, string> }) {
+type GapPart = Exclude<SentencePart, string>
+
+/** Each gap with the words before it: a line never ends between them. */
+function pairsOf(parts: SentencePart[]): { words?: string; gap?: GapPart }[] {
+  const pairs: { words?: string; gap?: GapPart }[] = []
+  for (const part of parts) {
+    const last = pairs.at(-1)
+    if (typeof part === 'string') pairs.push({ words: part })
+    else if (last && !last.gap) last.gap = part
+    else pairs.push({ gap: part })
+  }
+  return pairs
+}
+
+function Gap({ part }: { part: GapPart }) {
   const wiring = {
     id: part.name,
     'aria-invalid': part.error ? (true as const) : undefined,

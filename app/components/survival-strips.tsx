@@ -6,7 +6,7 @@ import {
   stepPath,
   timeAxis,
   visibleRuns,
-  type Run,
+  type Scale,
   type SurvivalPoint,
   type TimeUnit
 } from './chart-geometry'
@@ -35,6 +35,7 @@ const shortUnit: Record<TimeUnit, string> = { year: 'y', month: 'm', day: 'd' }
 
 /** Small multiples: one revision each with band and ticks, the others as hairlines, one scale for all. */
 export function SurvivalStrips({ strips, unit, floor, reading = oneYear }: SurvivalStripsProps) {
+  const id = useId()
   const lowest = Math.min(
     1,
     ...strips.flatMap((s) => visibleRuns(s.points).flatMap((run) => run.steps.map((step) => step.survival)))
@@ -48,14 +49,14 @@ export function SurvivalStrips({ strips, unit, floor, reading = oneYear }: Survi
   }
   return (
     <div className="strips">
-      {strips.map((strip) => (
+      {strips.map((strip, i) => (
         <div key={strip.name}>
           <p className="sh">
             <b>{strip.name}</b> <span className="soft nw">{strip.counts}</span>
           </p>
           <TwoDrawings
-            wide={<StripDrawing {...shared} strip={strip} />}
-            narrow={<StripDrawing {...shared} strip={strip} isNarrow />}
+            wide={<StripDrawing {...shared} strip={strip} hairs={{ id: `${id}wide`, isHere: i === 0 }} />}
+            narrow={<StripDrawing {...shared} strip={strip} hairs={{ id: `${id}narrow`, isHere: i === 0 }} isNarrow />}
           />
         </div>
       ))}
@@ -63,15 +64,24 @@ export function SurvivalStrips({ strips, unit, floor, reading = oneYear }: Survi
   )
 }
 
-type StripProps = Required<SurvivalStripsProps> & { strip: Strip; lastDay: number; isNarrow?: boolean }
+/** The hairlines are written once a size, in its first strip, and used again in the others. */
+type Hairs = { id: string; isHere: boolean }
 
-function StripDrawing({ strips, strip, unit, floor, reading, lastDay, isNarrow }: StripProps) {
+/** All curves as hairlines; the strip's own lies under its heavy line. */
+const hairlines = (strips: readonly Strip[], { x, y }: { x: Scale; y: Scale }) =>
+  strips
+    .flatMap((strip) => visibleRuns(strip.points))
+    .map((run) => stepPath(run.steps.map((step) => [x(step.time), y(step.survival)])))
+    .join('')
+
+type StripProps = Required<SurvivalStripsProps> & { strip: Strip; lastDay: number; isNarrow?: boolean; hairs: Hairs }
+
+function StripDrawing({ strips, strip, unit, floor, reading, lastDay, isNarrow, hairs }: StripProps) {
   const clip = useId()
   const [width, bottom, right] = isNarrow ? [156, 100, 152] : [252, 132, 248]
   const axis = timeAxis(lastDay, unit)
   const x = linear(0, axis.days, 28, right)
   const y = linear(floor / 100, 1, bottom, 10)
-  const path = (run: Run) => stepPath(run.steps.map((s) => [x(s.time), y(s.survival)]))
   const isSparse = !strip.points.some((p) => p.atRisk >= faintUnder)
   return (
     <svg
@@ -107,20 +117,9 @@ function StripDrawing({ strips, strip, unit, floor, reading, lastDay, isNarrow }
         </g>
       ))}
       <g clipPath={`url(#${clip})`}>
-        {strips
-          .filter((other) => other !== strip)
-          .flatMap((other) =>
-            visibleRuns(other.points).map((run, i) => (
-              <path
-                key={`${other.name} ${i}`}
-                d={path(run)}
-                fill="none"
-                stroke="var(--color-edge)"
-                strokeWidth=".75"
-                opacity=".75"
-              />
-            ))
-          )}
+        <g fill="none" stroke="var(--color-edge)" strokeWidth=".75" opacity=".75">
+          {hairs.isHere ? <path id={hairs.id} d={hairlines(strips, { x, y })} /> : <use href={`#${hairs.id}`} />}
+        </g>
         <SurvivalCurve points={strip.points} x={x} y={y} ink={curveInks[0]!} isMarked width={2.25} tick={7} />
       </g>
     </svg>

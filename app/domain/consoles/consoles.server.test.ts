@@ -1,5 +1,5 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
-import { fitQuestion } from '~/domain/fit/fit-question.server'
+import { chosenAddress, fitQuestion } from '~/domain/fit/fit-question.server'
 import { insertRows } from '~db/seed/insert-rows'
 import { worldRows } from '~db/seed/world-rows'
 import { fillReportWorld, openTestDb } from '../../../tests/factories/report-world'
@@ -91,8 +91,8 @@ describe('revisionByCode', () => {
 describe('fitQuestion', () => {
   const ask = (query: string) => fitQuestion(world.db, new URLSearchParams(query))
 
-  it('offers the first console and answers nothing before one is chosen', async () => {
-    expect(await ask('')).toMatchObject({ console: 'talvi-16', revision: null, errors: [], answer: null })
+  it('answers nothing before a console is chosen', async () => {
+    expect(await ask('')).toMatchObject({ console: null, revision: null, errors: [], answer: null })
   })
 
   it('answers by revision, what fits first', async () => {
@@ -117,10 +117,29 @@ describe('fitQuestion', () => {
   })
 
   it('says so when the revision is of another console, and still answers for the console', async () => {
-    const { errors, answer, revisions } = await ask('console=talvi-pocket&revision=TM-3')
+    const { errors, answer, revision } = await ask('console=talvi-pocket&revision=TM-3')
     expect(errors).toEqual([{ path: 'revision', message: 'The Talvi Pocket has no revision TM-3. Choose again.' }])
     expect(answer!.revision).toBeNull()
-    expect(revisions).toEqual(['TP-1', 'TP-2', 'TP-3', 'TP-4'])
+    expect(revision).toBeNull()
+  })
+
+  it('offers every console with its revisions', async () => {
+    const { consoles } = await ask('')
+    expect(consoles.map((c) => [c.slug, c.revisions.length])).toEqual([
+      ['talvi-16', 6],
+      ['talvi-pocket', 4]
+    ])
+  })
+
+  it.each([
+    ['machine=talvi-16/TM-3', '/fit?console=talvi-16&revision=TM-3'],
+    ['machine=talvi-16', '/fit?console=talvi-16'],
+    ['machine=', '/fit?console='],
+    ['machine=a/b/c', '/fit?console=a&revision=b'],
+    ['machine=%2F%2Felsewhere.example', '/fit?console='],
+    ['console=talvi-16', null]
+  ])('turns the choice %s into the address %s', (query, address) => {
+    expect(chosenAddress(new URLSearchParams(query))).toBe(address)
   })
 
   it('says so when there is no such console', async () => {

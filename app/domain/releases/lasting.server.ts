@@ -1,13 +1,25 @@
+import { curvePoints, type CurvePoint } from '~/domain/reliability/curve-points'
 import { oneYearWords, type OneYearWords } from '~/domain/reliability/one-year'
 import { readFilters } from '~/domain/reliability/reliability-filters'
+import { tooFew } from '~/domain/reliability/reliability-words'
 import { reliabilityOf } from '~/domain/reliability/reliability.server'
-import { dayOf } from '~/lib/dates'
+import { dayOf, type Day } from '~/lib/dates'
 import { DomainError } from '~/lib/domain-error'
 import { logError } from '~/server/log.server'
 import type { Services } from '~/server/services.server'
 
-/** What a page says of how long something lasts: the share after a year (null: too few followed), and what stands behind it. */
-export type Lasting = { oneYear: OneYearWords | null; fitted: number; failed: number }
+/**
+ * What a page says of how long something lasts: the share after a year (null: too few followed), what stands behind it, and the curve of all
+ * units together (null: nobody is followed). `asOf` is the day up to which reports are counted.
+ */
+export type Lasting = {
+  oneYear: OneYearWords | null
+  fitted: number
+  failed: number
+  followedAYear: number
+  curve: CurvePoint[] | null
+  asOf: Day
+}
 
 /**
  * How a board, or one release of it, lasts by all its reports; null when the figures cannot be had just now, which is noted and keeps nobody
@@ -18,8 +30,15 @@ export async function lastingOf(services: Services, slug: string, version?: stri
   try {
     const figures = await reliabilityOf(services, slug, filters)
     const group = version === undefined ? figures.all : figures.byRelease.find((g) => g.group === version)
-    if (!group) return { oneYear: null, fitted: 0, failed: 0 }
-    return { oneYear: oneYearWords(group.atOneYear), fitted: group.fitted, failed: group.events }
+    if (!group) return { oneYear: null, fitted: 0, failed: 0, followedAYear: 0, curve: null, asOf: filters.asOf }
+    return {
+      oneYear: oneYearWords(group.atOneYear),
+      fitted: group.fitted,
+      failed: group.events,
+      followedAYear: group.atOneYear.atRisk,
+      curve: group.curve.some((row) => row.time > 0 && row.atRisk >= tooFew) ? curvePoints(group.curve) : null,
+      asOf: filters.asOf
+    }
   } catch (error) {
     if (!(error instanceof DomainError) || error.kind !== 'unavailable') throw error
     logError('figures-unavailable', error, { board: slug })

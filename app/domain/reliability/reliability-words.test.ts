@@ -17,14 +17,14 @@ const said = (change: object, n = 212, events = 17) =>
 describe('plainSentence', () => {
   it('says the share with its interval, rounded outwards', () => {
     expect(said({})).toBe(
-      'Of 212 units followed, 17 have failed. About 92 of 100 still work after a year (95 % interval 89 to 95).'
+      'Of 212 units followed, 17 have failed. About 92 of 100 still work after a year (95\u00a0% interval 89 to 95).'
     )
   })
   it('says the exact lower bound when none failed, never 100', () => {
     const text = said({ survival: 1, lower: Math.pow(0.05, 1 / 30), upper: 1, bound: 'exact-one-sided', atRisk: 30 }, 40, 0)
     // 0.05^(1/30) = 0.9049…
     expect(text).toBe(
-      'Of 40 units followed, none is known to have failed. With 30 still followed, at least 90 of 100 work after a year (exact lower bound, 95 % confidence).'
+      'Of 40 units followed, none is known to have failed. With 30 still followed, at least 90 of 100 work after a year (exact lower bound, 95\u00a0% confidence).'
     )
   })
   it('says when too few were followed', () => {
@@ -40,7 +40,7 @@ describe('plainSentence', () => {
   it('never writes 100 for an estimate or a limit', () => {
     for (const survival of [0.9951, 0.9999])
       expect(said({ survival, lower: 0.98, upper: 0.99999 })).toContain(
-        'About over 99 of 100 still work after a year (95 % interval 98 to over 99)'
+        'Over 99 of 100 still work after a year (95\u00a0% interval 98 to over 99)'
       )
     expect(upperPercent(0.991)).toBe('over 99')
   })

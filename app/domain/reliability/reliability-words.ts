@@ -34,8 +34,9 @@ export function plainSentence({ n, events, atOneYear, worksAtFirstPowerOnly }: S
   if (survival === null || lower === null || atRisk < tooFew)
     return `${start} Too few have been followed for a year (${atRisk}) to say how many last that long.`
   if (bound !== null)
-    return `${start} With ${atRisk} still followed, at least ${lowerPercent(lower)} of 100 work after a year (exact lower bound, 95 % confidence).`
-  return `${start} About ${estimate(survival)} of 100 still work after a year (95 % interval ${lowerPercent(lower)} to ${upperPercent(upper ?? 1)}).`
+    return `${start} With ${atRisk} still followed, at least ${lowerPercent(lower)} of 100 work after a year (exact lower bound, 95\u00a0% confidence).`
+  const share = estimate(survival)
+  return `${start} ${/^\d/.test(share) ? `About ${share}` : share[0]!.toUpperCase() + share.slice(1)} of 100 still work after a year (95\u00a0% interval ${lowerPercent(lower)} to ${upperPercent(upper ?? 1)}).`
 }
 
 /** Which groups have too few followed for a year; null when all have enough. */

@@ -1,17 +1,17 @@
-import { data } from 'react-router'
+import { data, redirect } from 'react-router'
 import type { Route } from './+types/page'
 import { ButtonLink } from '~/components/button'
+import { ConsoleQuestion } from '~/components/console-question'
 import { Empty } from '~/components/empty'
 import { FieldMessage } from '~/components/field'
 import { FitMark, FitStrip } from '~/components/fit-strip'
 import { MarginNote, Section, SubHeading } from '~/components/section'
-import { SentenceForm } from '~/components/sentence-form'
 import { SiteSheet } from '~/components/site-sheet'
 import { Table } from '~/components/table'
 import { TextLink } from '~/components/text-link'
 import { Title } from '~/components/title'
 import { Warning } from '~/components/warning'
-import { fitQuestion } from '~/domain/fit/fit-question.server'
+import { chosenAddress, fitQuestion } from '~/domain/fit/fit-question.server'
 import { answerPage } from '~/server/answer.server'
 import { services } from '~/server/services.server'
 
@@ -22,6 +22,8 @@ export const meta: Route.MetaFunction = () => [
 
 export function loader({ url }: Route.LoaderArgs) {
   return answerPage(url, async () => {
+    const chosen = chosenAddress(url.searchParams)
+    if (chosen) return redirect(chosen)
     const question = await fitQuestion(services().db, url.searchParams)
     return data(question, { status: question.errors.length > 0 ? 400 : 200 })
   })
@@ -58,32 +60,13 @@ type Answer = NonNullable<Question['answer']>
 function Question({ question }: { question: Question }) {
   return (
     <>
-      <SentenceForm
-        action="/fit"
-        label="What fits my console"
-        span="wide"
-        submit="See what fits"
-        parts={[
-          'I have a',
-          {
-            name: 'console',
-            label: 'Console',
-            options: question.consoles.map((c) => ({ value: c.slug, label: c.name })),
-            value: question.console ?? ''
-          },
-          'revision',
-          {
-            name: 'revision',
-            label: 'Revision',
-            options: question.revisions.map((code) => ({ value: code, label: code })),
-            empty: 'I do not know yet',
-            value: question.revision ?? ''
-          }
-        ]}
-      />
+      <ConsoleQuestion {...question} />
       <p className="small soft">
-        The revisions offered are those of the console shown; after changing it, press the button once.{' '}
-        <TextLink href={`/consoles/${question.console}#revisions`}>Where to look for the revision</TextLink>
+        The revision is printed on the mainboard:{' '}
+        <TextLink href={question.console ? `/consoles/${question.console}#revisions` : '/consoles'}>
+          where to look for it
+        </TextLink>
+        .
       </p>
     </>
   )
@@ -113,7 +96,7 @@ function OneRevision({ answer, revision }: { answer: Answer; revision: NonNullab
             },
             { key: 'claim', head: 'Claim', cell: (board) => <FitMark fit={board.claim} />, className: 'nw' },
             { key: 'reason', head: 'Why', cell: (board) => board.reason },
-            { key: 'summary', head: 'What it does', cell: (board) => board.summary },
+            { key: 'summary', head: 'What it does', label: '', className: 'long', cell: (board) => board.summary },
             { key: 'reports', head: 'Reports', isFigure: true, cell: (board) => board.reports }
           ]}
           rows={revision.boards}

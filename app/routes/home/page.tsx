@@ -1,17 +1,18 @@
 import type { Route } from './+types/page'
 import { BoardAtScale, commonScale } from '~/components/board-drawing'
 import { Actions, Button, ButtonLink, GoLink } from '~/components/button'
+import { ConsoleQuestion } from '~/components/console-question'
 import { Definitions } from '~/components/definition'
 import { Empty, NothingFound } from '~/components/empty'
 import { Figure } from '~/components/figure'
 import { ScaleBar } from '~/components/scale-bar'
 import { Section } from '~/components/section'
-import { SentenceForm } from '~/components/sentence-form'
 import { SiteSheet } from '~/components/site-sheet'
 import { TextLink } from '~/components/text-link'
 import { Title } from '~/components/title'
 import { listBoards, type ListedBoard } from '~/domain/boards/boards.server'
-import { listConsoles } from '~/domain/consoles/consoles.server'
+import { consolesToAsk } from '~/domain/fit/fit-question.server'
+import { siteCounts } from '~/domain/public-data/site-counts.server'
 import type { OneYearWords } from '~/domain/reliability/one-year'
 import { oneYearOfBoards } from '~/domain/reliability/one-year.server'
 import { actorContext } from '~/server/context'
@@ -27,15 +28,14 @@ export const meta: Route.MetaFunction = () => [
 ]
 
 const boardsOnAPage = 12
-/** The sentence offers the revisions of all consoles at once; the page that answers sorts out what does not go together. */
-const consolesOffered = 50
 
 export function loader({ url, context }: Route.LoaderArgs) {
   const q = (url.searchParams.get('q') ?? '').trim().slice(0, 100)
   return answerPage(url, async () => {
-    const [{ boards, next }, { consoles }] = await Promise.all([
+    const [{ boards, next }, consoles, counts] = await Promise.all([
       listBoards(services().db, { q, after: url.searchParams.get('after'), limit: boardsOnAPage }),
-      listConsoles(services().db, { limit: consolesOffered })
+      consolesToAsk(services().db),
+      siteCounts(services())
     ])
     const oneYear = await oneYearOfBoards(
       services(),
@@ -45,15 +45,16 @@ export function loader({ url, context }: Route.LoaderArgs) {
       q,
       next,
       boards: boards.map((board) => ({ ...board, oneYear: oneYear.get(board.slug) ?? null })),
-      consoles: consoles.map(({ slug, name }) => ({ slug, name })),
+      consoles,
+      counts,
       isMember: context.get(actorContext).userId !== null
     }
   })
 }
 
-export default function Home({ loaderData: { q, boards, next, consoles, isMember } }: Route.ComponentProps) {
+export default function Home({ loaderData: { q, boards, next, consoles, counts, isMember } }: Route.ComponentProps) {
   return (
-    <SiteSheet current="Boards">
+    <SiteSheet current="Boards" foot={counts}>
       <Title
         isHome
         isTop
@@ -62,18 +63,9 @@ export default function Home({ loaderData: { q, boards, next, consoles, isMember
         aside={<Search q={q} />}
       />
       <Section number={1} heading="What fits my console?">
-        <SentenceForm
-          action="/fit"
-          label="What fits my console"
-          span="wide"
-          parts={[
-            'I have a',
-            { name: 'console', label: 'Console', options: consoles.map((c) => ({ value: c.slug, label: c.name })) }
-          ]}
-          submit="See what fits"
-        />
+        <ConsoleQuestion consoles={consoles} />
         <p className="small soft">
-          The revision comes next. It is printed on the mainboard: <TextLink href="/consoles">where to look</TextLink>.
+          Not sure of the revision? It is printed on the mainboard. <TextLink href="/consoles">Where to look</TextLink>
         </p>
       </Section>
       <Section number={2} heading={q ? `Boards with “${q}”` : 'The boards'}>

@@ -2,22 +2,22 @@ import { Section } from '~/components/section'
 import { Table } from '~/components/table'
 import { TextLink } from '~/components/text-link'
 import { causes, causeWords, type Cause } from '~/domain/reports/report-words'
-import type { ShownGroup } from './page-figures'
+import type { ShownTotal } from './page-figures'
 
 /** What the failures came from, as their authors say. */
-export function CausesSection({ all }: { all: ShownGroup }) {
+export function CausesSection({ number, all }: { number: number; all: ShownTotal }) {
   const by = all.failuresByCause
   const laid = by.board + by.unknown
   const rows = causes.map((cause) => ({ cause, failures: by[cause] })).filter((row) => row.failures > 0)
   if (rows.length === 0)
     return (
-      <Section number={5} heading="What failed">
+      <Section number={number} heading="What failed">
         <p>Nothing is known to have failed among the {all.n} units in the curve.</p>
       </Section>
     )
   return (
     <Section
-      number={5}
+      number={number}
       heading="What failed"
       margin={
         by['wrong-diagnosis'] > 0 && (

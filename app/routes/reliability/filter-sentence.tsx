@@ -10,7 +10,7 @@ const evidenceOptions: SelectOption[] = [
   { value: 'symptom-only', label: 'only from the symptom' },
   { value: 'none', label: 'not checked' }
 ]
-const firstPowerOptions: SelectOption[] = [{ value: 'set-aside', label: 'only what worked at first power' }]
+const firstPowerOptions: SelectOption[] = [{ value: 'set-aside', label: 'worked at first power' }]
 
 type Props = {
   here: string
@@ -68,7 +68,7 @@ export function FilterSentence({ here, board, choices, filters, asked, errors }:
         {
           name: filterNames.firstPower,
           label: 'First power',
-          empty: 'whatever it did at first power',
+          empty: 'any first-power result',
           options: withAsked(filterNames.firstPower, firstPowerOptions),
           value: value(filterNames.firstPower, filters.firstPower === 'counted' ? null : filters.firstPower),
           error: wrong(filterNames.firstPower)

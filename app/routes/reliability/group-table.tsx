@@ -1,22 +1,22 @@
 import { IntervalAxisCell, IntervalCell } from '~/components/interval-bar'
 import { Table, type Column } from '~/components/table'
 import { tooFew } from '~/domain/reliability/reliability-words'
-import type { ShownGroup } from './page-figures'
+import type { ShownTotal } from './page-figures'
 
 type Props = {
   number: number
   /** What a row is: a revision, a release. */
   what: string
-  groups: ShownGroup[]
+  groups: ShownTotal[]
   /** All together, as the last row. */
-  total: ShownGroup | null
+  total: ShownTotal | null
 }
 
 /** Fitted, failed, at risk, first power and one year with their intervals, on one scale. */
 export function GroupTable({ number, what, groups, total }: Props) {
   const rows = total === null ? groups : [...groups, total]
   const from = scaleFrom(rows)
-  const columns: Column<ShownGroup>[] = [
+  const columns: Column<ShownTotal>[] = [
     {
       key: 'group',
       head: what,
@@ -24,9 +24,8 @@ export function GroupTable({ number, what, groups, total }: Props) {
       cell: (g) => (
         <>
           {g.group === total?.group ? 'all' : <span className="nw">{g.group}</span>}
-          <small className="on-n soft">
-            {g.fitted} fitted, {g.events} failed
-          </small>
+          <small className="on-n soft">{g.fitted} fitted,</small>
+          <small className="on-n soft">{g.events} failed</small>
         </>
       )
     },
@@ -40,7 +39,7 @@ export function GroupTable({ number, what, groups, total }: Props) {
     <Table
       number={number}
       className="ivt"
-      caption={`Percent, with 95 % interval, on a scale from ${from} to 100. ≥ stands where nothing had failed by then: the lower limit alone is known.`}
+      caption={`Percent, with 95\u00a0% interval, on a scale from ${from} to 100. ≥ stands where nothing had failed by then: the lower limit alone is known.`}
       rows={rows}
       rowKey={(g) => g.group}
       columns={columns}
@@ -62,13 +61,13 @@ export function GroupTable({ number, what, groups, total }: Props) {
   )
 }
 
-function FirstPower({ group, from }: { group: ShownGroup; from: number }) {
+function FirstPower({ group, from }: { group: ShownTotal; from: number }) {
   if (group.firstPower === null || group.firstPower.n < tooFew) return <span className="soft">too few</span>
   const { estimate, lower, upper } = group.firstPower
   return <IntervalCell estimate={estimate} lower={lower} upper={upper} from={from} />
 }
 
-function OneYear({ group, from }: { group: ShownGroup; from: number }) {
+function OneYear({ group, from }: { group: ShownTotal; from: number }) {
   const { survival, lower, upper, atRisk } = group.atOneYear
   if (survival === 0) return <span>none</span>
   if (survival === null || atRisk < tooFew) return <span className="soft">too few followed</span>
@@ -76,7 +75,7 @@ function OneYear({ group, from }: { group: ShownGroup; from: number }) {
 }
 
 /** The scale begins at 50, or at 0 where a figure lies lower. */
-function scaleFrom(rows: readonly ShownGroup[]): number {
+function scaleFrom(rows: readonly ShownTotal[]): number {
   const shares = rows.flatMap((g) => [
     g.firstPower && g.firstPower.n >= tooFew ? g.firstPower.estimate : 1,
     g.atOneYear.survival !== null && g.atOneYear.atRisk >= tooFew ? g.atOneYear.survival : 1

@@ -4,7 +4,7 @@ import { exclusionWords } from '~/domain/reports/report-words'
 import type { ShownFigures } from './page-figures'
 
 /** What the curves leave out or hold in part, counted. */
-export function NotInCurveSection({ shown }: { shown: ShownFigures }) {
+export function NotInCurveSection({ number, shown }: { number: number; shown: ShownFigures }) {
   const { all, excludedByKind } = shown
   const excluded = excludedByKind.reduce((sum, e) => sum + e.count, 0)
   const items = [
@@ -26,7 +26,7 @@ export function NotInCurveSection({ shown }: { shown: ShownFigures }) {
   ]
   return (
     <Section
-      number={6}
+      number={number}
       id="apart"
       heading="What stands apart"
       margin={<p>Only a steward excludes a report, with a reason that everybody can read on it.</p>}

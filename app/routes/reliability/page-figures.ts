@@ -1,3 +1,5 @@
+import { visibleRuns } from '~/components/chart-geometry'
+import { curvePoints, type CurvePoint } from '~/domain/reliability/curve-points'
 import type { GroupFigures, ReliabilityFigures } from '~/domain/reliability/reliability-figures'
 import { filtersQuery } from '~/domain/reliability/reliability-filters'
 import { excludedSentence, plainSentence, tooFewSentence } from '~/domain/reliability/reliability-words'
@@ -5,15 +7,14 @@ import { excludedSentence, plainSentence, tooFewSentence } from '~/domain/reliab
 export const stepsPageSize = 20
 const besideMost = 3
 
-export type ShownGroup = Omit<GroupFigures, 'curve'> & {
-  points: { time: number; survival: number; lower: number | null; upper: number | null; atRisk: number; censored: number }[]
-}
+export type ShownTotal = Omit<GroupFigures, 'curve'>
+export type ShownGroup = ShownTotal & { points: CurvePoint[] }
 export type ShownFigures = ReturnType<typeof pageFigures>
 
-const shownGroup = ({ curve, ...rest }: GroupFigures): ShownGroup => ({
-  ...rest,
-  points: curve.map(({ time, survival, lower, upper, atRisk, censored }) => ({ time, survival, lower, upper, atRisk, censored }))
-})
+const shownGroup = ({ curve, ...rest }: GroupFigures): ShownGroup => ({ ...rest, points: curvePoints(curve) })
+
+/** All together are said in words and rows; their curve is not drawn, only listed a page at a time. */
+const shownTotal = ({ curve: _, ...rest }: GroupFigures): ShownTotal => rest
 
 /** What the page prints of the figures, and which curves and steps its address asks to see. */
 export function pageFigures(figures: ReliabilityFigures, query: URLSearchParams) {
@@ -35,7 +36,7 @@ export function pageFigures(figures: ReliabilityFigures, query: URLSearchParams)
   return {
     sentence: [sentence, tooFewSentence(byRevision)].filter(Boolean).join(' '),
     reports: all.fitted,
-    all: shownGroup(all),
+    all: shownTotal(all),
     byRevision: byRevision.map(shownGroup),
     byRelease: byRelease.map(shownGroup),
     ...chosenCurves(byRevision, query),
@@ -55,6 +56,30 @@ export function pageFigures(figures: ReliabilityFigures, query: URLSearchParams)
     }
   }
 }
+
+/**
+ * The numbers of what a page shows, counted without a gap: of its sections, and of its figures, null where too few are followed for anything
+ * to be drawn.
+ */
+export function numbering({ byRevision, byRelease }: Pick<ShownFigures, 'byRevision' | 'byRelease'>) {
+  const isDrawn = (groups: readonly ShownGroup[]) => groups.some((g) => visibleRuns(g.points).length > 0)
+  const hasStrips = byRevision.length > 1 && isDrawn(byRevision)
+  const [curves, strips] = [isDrawn(byRevision) ? 1 : null, hasStrips ? 2 : null]
+  const strip = hasStrips ? 1 : 0
+  return {
+    figures: { curves, strips, releases: isDrawn(byRelease) ? (curves ?? 0) + strip + 1 : null },
+    sections: {
+      curves: 1,
+      strips: hasStrips ? 2 : null,
+      revisions: 2 + strip,
+      releases: 3 + strip,
+      causes: 4 + strip,
+      apart: 5 + strip,
+      steps: 6 + strip
+    }
+  }
+}
+export type Numbering = ReturnType<typeof numbering>
 
 const most = (groups: readonly GroupFigures[]): string | null =>
   groups.reduce<GroupFigures | null>((best, g) => (best === null || g.n > best.n ? g : best), null)?.group ?? null

@@ -12,7 +12,7 @@ import { services } from '~/server/services.server'
 import { CausesSection } from './causes-section'
 import { FilterSentence } from './filter-sentence'
 import { NotInCurveSection } from './not-in-curve-section'
-import { pageFigures } from './page-figures'
+import { numbering, pageFigures, type ShownFigures } from './page-figures'
 import { ReleaseSection } from './release-section'
 import { RevisionSections } from './revision-sections'
 import { StepsSection } from './steps-section'
@@ -84,6 +84,11 @@ export default function Reliability({ loaderData }: Route.ComponentProps) {
       />
       <FilterStrip label="Which reports are counted">
         <FilterSentence here={here} board={board} choices={choices} filters={filters} asked={asked} errors={errors} />
+        {errors.length > 0 && (
+          <p className="small mt-3">
+            <TextLink href={here}>Count all reports instead</TextLink>
+          </p>
+        )}
       </FilterStrip>
       {shown !== null && shown.reports === 0 && (
         <Section number={1} heading="Time to failure">
@@ -101,16 +106,21 @@ export default function Reliability({ loaderData }: Route.ComponentProps) {
           )}
         </Section>
       )}
-      {shown !== null && shown.reports > 0 && (
-        <>
-          <RevisionSections here={here} shown={shown} consoleName={board.consoleName} />
-          <ReleaseSection shown={shown} boardName={board.name} />
-          <CausesSection all={shown.all} />
-          <NotInCurveSection shown={shown} />
-          <StepsSection here={here} shown={shown} />
-        </>
-      )}
+      {shown !== null && shown.reports > 0 && <Shown here={here} board={board} shown={shown} />}
     </SiteSheet>
+  )
+}
+
+function Shown({ here, board, shown }: { here: string; board: { name: string; consoleName: string }; shown: ShownFigures }) {
+  const { sections, figures } = numbering(shown)
+  return (
+    <>
+      <RevisionSections here={here} shown={shown} consoleName={board.consoleName} sections={sections} figures={figures} />
+      <ReleaseSection number={sections.releases} figure={figures.releases} shown={shown} boardName={board.name} />
+      <CausesSection number={sections.causes} all={shown.all} />
+      <NotInCurveSection number={sections.apart} shown={shown} />
+      <StepsSection number={sections.steps} here={here} shown={shown} />
+    </>
   )
 }
 

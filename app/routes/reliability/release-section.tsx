@@ -4,10 +4,12 @@ import { SurvivalChart } from '~/components/survival-chart'
 import { tooFew } from '~/domain/reliability/reliability-words'
 import { GroupTable } from './group-table'
 import type { ShownFigures } from './page-figures'
-import { unitOf } from './revision-sections'
+import { NothingDrawn, unitOf } from './revision-sections'
+
+type Props = { number: number; figure: number | null; shown: ShownFigures; boardName: string }
 
 /** The curves by release: the one with the most units marked, up to three beside it, all in the table. */
-export function ReleaseSection({ shown, boardName }: { shown: ShownFigures; boardName: string }) {
+export function ReleaseSection({ number, figure, shown, boardName }: Props) {
   const { byRelease, markedRelease } = shown
   const asOf = new URLSearchParams(shown.query).get('as-of')!
   const beside = [...byRelease]
@@ -20,7 +22,7 @@ export function ReleaseSection({ shown, boardName }: { shown: ShownFigures; boar
     .map((g) => ({ name: g.group, points: g.points, marked: g.group === markedRelease }))
   return (
     <Section
-      number={4}
+      number={number}
       heading="Release by release"
       margin={
         <p>
@@ -28,12 +30,16 @@ export function ReleaseSection({ shown, boardName }: { shown: ShownFigures; boar
         </p>
       }
     >
-      <Figure
-        number={3}
-        caption={`Share still working, by release of ${boardName}. The release with the most reports carries its 95 % band and ticks. Not drawn under ${tooFew} followed.`}
-      >
-        <SurvivalChart series={series} unit={unitOf(byRelease)} asOf={asOf} />
-      </Figure>
+      {figure === null ? (
+        <NothingDrawn of="release" />
+      ) : (
+        <Figure
+          number={figure}
+          caption={`Share still working, by release of ${boardName}. The release with the most reports carries its 95\u00a0% band and ticks. Not drawn under ${tooFew} followed.`}
+        >
+          <SurvivalChart series={series} unit={unitOf(byRelease)} asOf={asOf} />
+        </Figure>
+      )}
       <div className="mt-8">
         <GroupTable number={2} what="Release" groups={byRelease} total={null} />
       </div>

@@ -8,14 +8,14 @@ import { SurvivalStrips } from '~/components/survival-strips'
 import { TextLink } from '~/components/text-link'
 import { listOf, pText, tooFew } from '~/domain/reliability/reliability-words'
 import { GroupTable } from './group-table'
-import type { ShownFigures, ShownGroup } from './page-figures'
+import type { Numbering, ShownFigures, ShownGroup } from './page-figures'
 
-type Props = { here: string; shown: ShownFigures; consoleName: string }
+type Props = { here: string; shown: ShownFigures; consoleName: string } & Numbering
 
 export const unitOf = (groups: readonly ShownGroup[]) => unitFor(Math.max(1, ...groups.map((g) => g.points.at(-1)?.time ?? 1)))
 
 /** The curves by console revision: four in one figure, each on its own strip, and all as a table. */
-export function RevisionSections({ here, shown, consoleName }: Props) {
+export function RevisionSections({ here, shown, consoleName, sections, figures }: Props) {
   const { byRevision, marked, beside, all } = shown
   const unit = unitOf(byRevision)
   const asOf = new URLSearchParams(shown.query).get('as-of')!
@@ -25,24 +25,28 @@ export function RevisionSections({ here, shown, consoleName }: Props) {
   return (
     <>
       <Section number={1} heading="Time to failure, by console revision" margin={<CurveNotes here={here} shown={shown} />}>
-        <Figure
-          number={1}
-          caption={
-            <>
-              Share still working, by Kaplan and Meier. Only the marked revision carries its 95 % band and, as ticks, the last
-              word from its working units. Thin and faint under 10 units followed, not drawn under {tooFew}.
-            </>
-          }
-        >
-          {byRevision.length > 1 && <CurvePicker here={here} shown={shown} />}
-          <SurvivalChart series={series} unit={unit} asOf={asOf} />
-        </Figure>
-      </Section>
-      {byRevision.length > 1 && (
-        <Section number={2} heading="Each on its own strip">
+        {byRevision.length > 1 && <CurvePicker here={here} shown={shown} />}
+        {figures.curves === null ? (
+          <NothingDrawn of="revision" />
+        ) : (
           <Figure
-            number={2}
-            caption={`One revision each with its 95 % band and ticks, the others as hairlines, all at one scale. ${stripsNote(byRevision)}`}
+            number={figures.curves}
+            caption={
+              <>
+                Share still working, by Kaplan and Meier. Only the marked revision carries its 95&nbsp;% band and, as ticks, the
+                last word from its working units. Thin and faint under 10 units followed, not drawn under {tooFew}.
+              </>
+            }
+          >
+            <SurvivalChart series={series} unit={unit} asOf={asOf} />
+          </Figure>
+        )}
+      </Section>
+      {sections.strips !== null && (
+        <Section number={sections.strips} heading="Each on its own strip">
+          <Figure
+            number={figures.strips!}
+            caption={`One revision each with its 95\u00a0% band and ticks, the others as hairlines, all at one scale. ${stripsNote(byRevision)}`}
           >
             <SurvivalStrips
               unit={unit}
@@ -55,7 +59,7 @@ export function RevisionSections({ here, shown, consoleName }: Props) {
           </Figure>
         </Section>
       )}
-      <Section number={3} heading="Revision by revision">
+      <Section number={sections.revisions} heading="Revision by revision">
         <GroupTable
           number={1}
           what="Revision"
@@ -66,6 +70,13 @@ export function RevisionSections({ here, shown, consoleName }: Props) {
     </>
   )
 }
+
+/** In a chart's place when nobody is followed in numbers. */
+export const NothingDrawn = ({ of }: { of: 'revision' | 'release' }) => (
+  <p>
+    No {of} here has {tooFew} units followed, and under {tooFew} no curve is drawn. The table has what is known.
+  </p>
+)
 
 function stripsNote(groups: readonly ShownGroup[]): string {
   const small = groups.filter((g) => !g.points.some((p) => p.atRisk >= tooFew)).map((g) => g.group)

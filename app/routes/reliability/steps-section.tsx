@@ -9,12 +9,12 @@ import { stepsPageSize, type ShownFigures } from './page-figures'
 const share = (value: number | null) => (value === null ? '' : value.toFixed(4))
 
 /** Every step of one curve in figures. */
-export function StepsSection({ here, shown }: { here: string; shown: ShownFigures }) {
+export function StepsSection({ number, here, shown }: { number: number; here: string; shown: ShownFigures }) {
   const { steps, query } = shown
   const hrefOf = (page: number) => `${here}?${query}&steps=${encodeURIComponent(steps.key)}&page=${page}#steps`
   return (
     <Section
-      number={7}
+      number={number}
       id="steps"
       heading="Every step of the curve"
       margin={

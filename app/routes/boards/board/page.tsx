@@ -124,6 +124,8 @@ export default function Board({ loaderData }: Route.ComponentProps) {
       <Section number={5} heading="How long it lasts">
         <LastingWords
           lasting={loaderData.lasting}
+          name={board.name}
+          figure={isDrawn(board.newest) ? 2 : 1}
           href={`/boards/${board.slug}/reliability`}
           link="Reliability by release and console revision"
         />
@@ -155,6 +157,12 @@ function BoardActions({ board }: { board: Data['board'] }) {
   )
 }
 
+type NewestRelease = NonNullable<Data['board']['newest']>
+
+const sizeOf = ({ widthMm, heightMm }: NewestRelease) =>
+  widthMm !== null && heightMm !== null ? { width: widthMm, height: heightMm } : null
+const isDrawn = (newest: NewestRelease | null) => newest !== null && newest.pictureSha256 !== null && sizeOf(newest) !== null
+
 /** The newest release drawn to scale, or that there is none. */
 function Newest({ board }: { board: Data['board'] }) {
   const { newest } = board
@@ -172,7 +180,7 @@ function Newest({ board }: { board: Data['board'] }) {
       </Section>
     )
   const path = releasePath(board.slug, newest.version)
-  const size = newest.widthMm !== null && newest.heightMm !== null ? { width: newest.widthMm, height: newest.heightMm } : null
+  const size = sizeOf(newest)
   return (
     <Section number={1} heading={`The board, ${newest.version}`}>
       {newest.pictureSha256 && size ? (
@@ -203,36 +211,49 @@ function Newest({ board }: { board: Data['board'] }) {
 
 function Releases({ board, releases }: Pick<Data, 'board' | 'releases'>) {
   if (releases.length === 0) return <p className="soft">There is none yet.</p>
+  const withdrawn = releases.filter((r) => r.withdrawnReason)
   return (
-    <Table
-      number={1}
-      caption={
-        board.canDraft ? 'By version, the highest first. Drafts are seen by maintainers alone.' : 'By version, the highest first.'
-      }
-      rows={releases}
-      rowKey={(r) => r.version}
-      isFolded
-      columns={[
-        {
-          key: 'version',
-          head: 'Version',
-          isRowHead: true,
-          cell: (r) => <TextLink href={releasePath(board.slug, r.version)}>{r.version}</TextLink>
-        },
-        {
-          key: 'state',
-          head: 'State',
-          cell: (r) => (
-            <>
-              <b>{r.state}</b>
-              {r.isNewest && ', newest'}
-              {r.withdrawnReason && <span className="soft"> {r.withdrawnReason}</span>}
-            </>
-          )
-        },
-        { key: 'revision', head: 'Board revision', cell: (r) => r.boardRevision },
-        { key: 'on', head: 'Published', cell: (r) => r.publishedOn ?? <span className="soft">changed {r.changedOn}</span> }
-      ]}
-    />
+    <>
+      <Table
+        number={1}
+        caption={
+          board.canDraft
+            ? 'By version, the highest first. Drafts are seen by maintainers alone.'
+            : 'By version, the highest first.'
+        }
+        rows={releases}
+        rowKey={(r) => r.version}
+        columns={[
+          {
+            key: 'version',
+            head: 'Version',
+            isRowHead: true,
+            cell: (r) => <TextLink href={releasePath(board.slug, r.version)}>{r.version}</TextLink>
+          },
+          {
+            key: 'state',
+            head: 'State',
+            cell: (r) => (
+              <>
+                <b>{r.state}</b>
+                {r.isNewest && ', newest'}
+              </>
+            )
+          },
+          { key: 'revision', head: 'Board revision', only: 'wide', cell: (r) => r.boardRevision },
+          {
+            key: 'on',
+            head: 'Published',
+            className: 'nw',
+            cell: (r) => r.publishedOn ?? <span className="soft">changed {r.changedOn}</span>
+          }
+        ]}
+      />
+      {withdrawn.map((r) => (
+        <p key={r.version} className="small mt-3 max-w-[66ch]">
+          <b>Why {r.version} is withdrawn:</b> {r.withdrawnReason}
+        </p>
+      ))}
+    </>
   )
 }

@@ -53,11 +53,11 @@ export default function Boards({ loaderData: { q, isFirst, first, next, boards }
       >
         <Form role="search" action="/boards" className="mt-6 max-w-[560px]">
           <label htmlFor="q">Search</label>
-          <div className="with">
+          <div className="with mt-1.5">
             <input id="q" name="q" type="search" defaultValue={q} maxLength={100} />
             <Button>Find</Button>
           </div>
-          <span className="hint">Name, summary, replaced part or console</span>
+          <span className="hint mt-1.5">Name, summary, replaced part or console</span>
         </Form>
       </Title>
       <Section number={1} heading="The boards">
@@ -84,7 +84,7 @@ export default function Boards({ loaderData: { q, isFirst, first, next, boards }
                 isRowHead: true,
                 cell: (b) => <TextLink href={`/boards/${b.slug}`}>{b.name}</TextLink>
               },
-              { key: 'summary', head: 'What it does', cell: (b) => b.summary },
+              { key: 'summary', head: 'What it does', label: '', className: 'long', cell: (b) => b.summary },
               { key: 'console', head: 'For', cell: (b) => b.consoleName },
               {
                 key: 'newest',

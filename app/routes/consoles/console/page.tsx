@@ -96,7 +96,7 @@ function Revisions({ console }: { console: ConsoleDetail }) {
                 cell: (r) => <TextLink href={`/consoles/${console.slug}/${r.code}`}>{r.code}</TextLink>
               },
               { key: 'from', head: 'From', isFigure: true, cell: (r) => r.builtFrom ?? '?' },
-              { key: 'recognise', head: 'How to recognise it', className: 'long', cell: (r) => r.recognise },
+              { key: 'recognise', head: 'How to recognise it', label: '', className: 'long', cell: (r) => r.recognise },
               { key: 'reports', head: 'Reports', isFigure: true, cell: (r) => r.reports }
             ]}
             rows={console.revisions}

@@ -1,4 +1,4 @@
-import { BoardFigures, Facts, FindingEntry, foundInWords, Layers } from './release-parts'
+import { BoardFigures, drawnFigures, Facts, FindingEntry, foundInWords, Layers } from './release-parts'
 import { Actions, ButtonLink } from '~/components/button'
 import { Checksum } from '~/components/checksum'
 import { Definitions } from '~/components/definition'
@@ -155,6 +155,8 @@ export function PublishedRelease({ page, lasting, today, done }: PublishedReleas
       <Section number={8} heading="How long it lasts">
         <LastingWords
           lasting={lasting}
+          name={`${board.name} ${release.version}`}
+          figure={drawnFigures(page) + 1}
           href={`/boards/${board.slug}/reliability?release=${encodeURIComponent(release.version)}`}
           link="Reliability by console revision"
         />

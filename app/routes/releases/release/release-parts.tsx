@@ -56,6 +56,10 @@ export function BoardFigures({ page }: { page: ReleasePage }) {
   )
 }
 
+/** How many figures `BoardFigures` draws. */
+export const drawnFigures = ({ facts, pictures }: ReleasePage) =>
+  !pictures.top || !facts || facts.width === null || facts.height === null ? 0 : pictures.bottom ? 2 : 1
+
 export function Facts({ page, number }: { page: ReleasePage; number: number }) {
   const at = (code: string) => page.findings.findIndex((f) => f.code === code)
   return (
