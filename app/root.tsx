@@ -1,5 +1,5 @@
-import type { ReactNode } from 'react'
-import { isRouteErrorResponse, Links, Meta, Outlet, Scripts, ScrollRestoration } from 'react-router'
+import { useEffect, useRef, type ReactNode } from 'react'
+import { isRouteErrorResponse, Links, Meta, Outlet, Scripts, ScrollRestoration, useLocation } from 'react-router'
 import type { Route } from './+types/root'
 import stylesheet from './app.css?url'
 import { PageError } from '~/components/page-error'
@@ -40,7 +40,26 @@ export function Layout({ children }: { children: ReactNode }) {
 }
 
 export default function Root() {
+  useHeadingFocus()
   return <Outlet />
+}
+
+/**
+ * After a step to another page without a page load, the focus goes where a page load would leave it: to the top, so that the new heading
+ * is read. A summary of errors or a line that says what was done goes first; an address with a place in it has named its own.
+ */
+function useHeadingFocus() {
+  const { pathname, search, hash } = useLocation()
+  const at = pathname + search
+  const before = useRef(at)
+  useEffect(() => {
+    if (before.current === at) return
+    before.current = at
+    if (hash !== '' || document.activeElement?.closest('.sumerr, .done')) return
+    const heading = document.querySelector('h1')
+    heading?.setAttribute('tabindex', '-1')
+    heading?.focus({ preventScroll: true })
+  }, [at, hash])
 }
 
 export function ErrorBoundary({ error }: Route.ErrorBoundaryProps) {

@@ -2,9 +2,8 @@ import { useEffect, useRef, useState, type FormEvent } from 'react'
 import { aboutBytes, shareOfBytes } from '~/lib/byte-size'
 import { Actions, Button } from './button'
 import { FileField } from './file-field'
-import { CheckSteps, UploadScale } from './progress'
-
-export type CheckStepName = { step: string; name: string }
+import { BundleChecking, type CheckStepName } from './bundle-checking'
+import { UploadScale } from './progress'
 
 type Going =
   | { phase: 'idle'; error?: string }
@@ -13,8 +12,12 @@ type Going =
   | { phase: 'broken'; sent: number; total: number; error: string }
 
 export type BundleUploadProps = {
-  /** Where the form posts to; the same address takes the plain form. */
+  /** Where the plain form posts to, without scripts. */
   action: string
+  /** Where a script sends the file, for an answer in JSON. */
+  send: string
+  /** Why the plain form was refused. */
+  refused?: string
   /** Where the progress of the check is asked. */
   progress: string
   steps: CheckStepName[]
@@ -33,13 +36,31 @@ const pollMs = 500
  * Uploads a bundle: a plain form without scripts; with them a scale in bytes and percent, a way to stop, then the steps of the check as
  * they are done.
  */
-export function BundleUpload({ action, progress, steps, maxBytes, isReplacing, isRunning, onDone }: BundleUploadProps) {
-  const [going, setGoing] = useState<Going>(isRunning ? { phase: 'checking', isStored: false, step: null } : { phase: 'idle' })
+export function BundleUpload({
+  action,
+  send: address,
+  refused,
+  progress,
+  steps,
+  maxBytes,
+  isReplacing,
+  isRunning,
+  onDone
+}: BundleUploadProps) {
+  const [going, setGoing] = useState<Going>(
+    isRunning ? { phase: 'checking', isStored: false, step: null } : { phase: 'idle', error: refused }
+  )
   const [file, setFile] = useState<File | null>(null)
   const request = useRef<XMLHttpRequest | null>(null)
   const isChecking = going.phase === 'checking'
 
+  const error = going.phase === 'idle' || going.phase === 'broken' ? going.error : undefined
+
   useEffect(() => () => request.current?.abort(), [])
+  /* Where the upload ended badly the way on is to choose again: the focus goes there, and reads out why. */
+  useEffect(() => {
+    if (error !== undefined) document.getElementById('bundle')?.focus()
+  }, [error])
   useEffect(() => {
     if (!isChecking) return
     const timer = setInterval(async () => {
@@ -93,7 +114,7 @@ export function BundleUpload({ action, progress, steps, maxBytes, isReplacing, i
         error: 'The connection was lost. Send the file again; the draft is as it was.'
       })
     xhr.onabort = () => end({ phase: 'broken', sent, total: file.size, error: 'You stopped it. The draft is as it was.' })
-    xhr.open('POST', action)
+    xhr.open('POST', address)
     xhr.setRequestHeader('Accept', 'application/json')
     const form = new FormData()
     form.set('bundle', file)
@@ -115,7 +136,7 @@ export function BundleUpload({ action, progress, steps, maxBytes, isReplacing, i
         </Actions>
       </>
     )
-  if (going.phase === 'checking') return <Checking isStored={going.isStored} step={going.step} steps={steps} />
+  if (going.phase === 'checking') return <BundleChecking isStored={going.isStored} step={going.step} steps={steps} />
   return (
     <form method="post" action={action} encType="multipart/form-data" onSubmit={send} noValidate>
       {going.phase === 'broken' && (
@@ -123,7 +144,6 @@ export function BundleUpload({ action, progress, steps, maxBytes, isReplacing, i
           label={`Broken off at ${shareOfBytes(going.sent, going.total)}`}
           detail="nothing was kept"
           share={going.total === 0 ? 0 : going.sent / going.total}
-          error={going.error}
         />
       )}
       <FileField
@@ -135,7 +155,7 @@ export function BundleUpload({ action, progress, steps, maxBytes, isReplacing, i
             : `one zip, at most ${Math.floor(maxBytes / 1024 / 1024)} MiB, or drop it here`
         }
         accept=".zip,application/zip"
-        error={going.phase === 'idle' ? going.error : undefined}
+        error={error}
         onChange={(event) => {
           setFile(event.currentTarget.files?.[0] ?? null)
           setGoing({ phase: 'idle' })
@@ -162,26 +182,4 @@ function messageOf(xhr: XMLHttpRequest): string {
     /* Not our own answer: something between here and the server spoke. */
   }
   return `The upload was not taken (answer ${xhr.status}). Try again in a minute; the draft is as it was.`
-}
-
-function Checking({ isStored, step, steps }: { isStored: boolean; step: string | null; steps: CheckStepName[] }) {
-  /* The child process takes a moment to begin with the first step. */
-  const at = isStored
-    ? Math.max(
-        0,
-        steps.findIndex((s) => s.step === step)
-      )
-    : -1
-  const state = (i: number) => (i < at ? 'done' : i === at ? 'now' : 'waiting')
-  return (
-    <div role="status">
-      <CheckSteps
-        steps={[
-          { label: 'Store the bundle', state: isStored ? 'done' : 'now' },
-          ...steps.map(({ name }, i) => ({ label: name, state: state(i) as 'done' | 'now' | 'waiting' }))
-        ]}
-        hint="20 seconds at most. You can leave; the draft keeps the result."
-      />
-    </div>
-  )
 }

@@ -1,5 +1,4 @@
 import type { ReactNode } from 'react'
-import { FieldMessage } from './field'
 import { DottedSign, NowSign, StopSign, TickSign } from './signs'
 
 export type UploadScaleProps = {
@@ -9,12 +8,10 @@ export type UploadScaleProps = {
   detail: string
   /** 0 to 1. */
   share: number
-  /** What broke off, and what to do. */
-  error?: string
 }
 
 /** A scale that fills. */
-export function UploadScale({ label, detail, share, error }: UploadScaleProps) {
+export function UploadScale({ label, detail, share }: UploadScaleProps) {
   const filled = Math.min(1, Math.max(0, share))
   return (
     <div className="prog">
@@ -37,7 +34,6 @@ export function UploadScale({ label, detail, share, error }: UploadScaleProps) {
           <path key={i} className="ln" strokeWidth="1" d={`M${(1 + i * 55.8).toFixed(1)} 15v${i % 5 === 0 ? 10 : 5}`} />
         ))}
       </svg>
-      {error && <FieldMessage>{error}</FieldMessage>}
     </div>
   )
 }

@@ -16,16 +16,40 @@ export function formValues(form: FormData): FormValues {
  * On failure the messages stand at their fields and the entered values come back.
  */
 export function parseForm<S extends z.ZodType>(schema: S, form: FormData): ParsedForm<z.output<S>> {
+  const result = schema.safeParse(inputOf(form))
+  if (result.success) return { ok: true, value: result.data }
+  return { ok: false, errors: fieldErrors(result.error), values: formValues(form) }
+}
+
+function inputOf(form: FormData): Record<string, string | string[]> {
   const input: Record<string, string | string[]> = {}
   for (const name of new Set(form.keys())) {
     const all = form.getAll(name).filter((v): v is string => typeof v === 'string' && v.trim() !== '')
     if (all.length === 1) input[name] = all[0]!.trim()
     else if (all.length > 1) input[name] = all.map((v) => v.trim())
   }
-  const result = schema.safeParse(input)
-  if (result.success) return { ok: true, value: result.data }
-  return { ok: false, errors: fieldErrors(result.error), values: formValues(form) }
+  return input
 }
+
+/**
+ * The fields of a posted form that can be read each by itself, whatever is wrong with the others: so that what the database has against them
+ * can be said in the same answer.
+ */
+export function readableFields<S extends z.ZodRawShape>(fields: S, form: FormData): Partial<{ [K in keyof S]: z.output<S[K]> }> {
+  const input = inputOf(form)
+  const read: Record<string, unknown> = {}
+  for (const [name, field] of Object.entries(fields)) {
+    const result = (field as z.ZodType).safeParse(input[name])
+    if (result.success && result.data !== undefined) read[name] = result.data
+  }
+  return read as Partial<{ [K in keyof S]: z.output<S[K]> }>
+}
+
+/** Both lists of messages, one a field: the first list's where both have one. */
+export const joinErrors = (first: FieldError[], second: FieldError[]): FieldError[] => [
+  ...first,
+  ...second.filter(({ path }) => first.every((e) => e.path !== path))
+]
 
 /** Flattens zod's issues: one message a path, the first that applies. */
 export function fieldErrors(error: z.ZodError): FieldError[] {

@@ -5,13 +5,19 @@ import { createRequestHandler } from '@react-router/express'
 import { RouterContextProvider, type ServerBuild } from 'react-router'
 import { requestInfoContext, type RequestInfo } from './context'
 import { logError } from './log.server'
+import { isFileForm } from './receive-file.server'
 import { refuseForeignOrigin, refuseLargeBody, type GuardedRequest } from './request-guard.server'
 import { securityHeaders } from './security-headers.server'
 import type { Services } from './services.server'
 
-/** Paths whose handler reads its body as a stream with a limit of its own. */
-export const streamsItsBody = (path: string) =>
-  path.startsWith('/api/v1/compute/') || /^\/boards\/[^/]+\/releases\/[^/]+\/bundle(\.data)?$/.test(path)
+/**
+ * Requests whose handler reads its body as a stream with a limit of its own. A version begins with a digit, so that no other page beside
+ * the draft's is meant.
+ */
+export const streamsItsBody = ({ path, headers }: GuardedRequest) =>
+  path.startsWith('/api/v1/compute/') ||
+  /^\/boards\/[^/]+\/releases\/[^/]+\/bundle(\.data)?$/.test(path) ||
+  (/^\/boards\/[^/]+\/releases\/\d[^/]*$/.test(path) && isFileForm(headers['content-type']))
 
 /**
  * The HTTP frame around the router: headers, static files, and the refusals that hold for every path.

@@ -12,6 +12,10 @@ import { DomainError } from '~/lib/domain-error'
 /** A file that lies complete in the upload folder; whoever gets it removes it. `name` is what the client called it, for show only. */
 export type ReceivedFile = { path: string; bytes: number; sha256: string; name: string }
 
+/** Whether a form was sent in the way that carries files. */
+export const isFileForm = (contentType: string | string[] | null | undefined) =>
+  typeof contentType === 'string' && /^multipart\/form-data\b/i.test(contentType)
+
 /** What a multipart body may carry besides the file. */
 const slackBytes = 64 * 1024
 /** A refused sender gets so long to finish, so that it reads the answer instead of a broken connection; then it is cut off. */

@@ -63,6 +63,7 @@ describe('refuseForeignOrigin', () => {
 describe('refuseLargeBody', () => {
   const status = (method: string, path: string, headers: Record<string, string>) =>
     refuseLargeBody({ method, path, headers }, streamsItsBody)?.status ?? null
+  const file = { 'content-type': 'multipart/form-data; boundary=x' }
 
   it.each([
     ['a form', 'POST', '/account', { 'content-length': '1000' }, null],
@@ -72,6 +73,10 @@ describe('refuseLargeBody', () => {
     ['no body', 'POST', '/sign-out', {}, null],
     ['a bundle', 'POST', '/boards/x/releases/1.0.0/bundle', { 'content-length': '60000000' }, null],
     ['a bundle sent by script', 'POST', '/boards/x/releases/1.0.0/bundle.data', { 'transfer-encoding': 'chunked' }, null],
+    ['a bundle sent by a plain form', 'POST', '/boards/x/releases/1.0.0', { 'content-length': '60000000', ...file }, null],
+    ['another form of that page', 'POST', '/boards/x/releases/1.0.0', { 'content-length': '9000000' }, 413],
+    ['a file where none is taken', 'POST', '/boards/x/releases/new', { 'content-length': '9000000', ...file }, 413],
+    ['the same, written otherwise', 'POST', '/boards/x/releases/%6Eew', { 'content-length': '9000000', ...file }, 413],
     ['a computation', 'POST', '/api/v1/compute/survival', { 'content-length': '9000000' }, null],
     ['a path that only looks like it', 'POST', '/boards/x/y/releases/1.0.0/bundle', { 'content-length': '9000000' }, 413]
   ])('%s: %s %s', (_, method, path, headers, expected) => {

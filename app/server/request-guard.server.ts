@@ -25,8 +25,8 @@ export function refuseForeignOrigin(request: GuardedRequest, publicOrigin: strin
 }
 
 /** Bodies are small forms, except where an endpoint streams its own upload and counts for itself. */
-export function refuseLargeBody(request: GuardedRequest, streamsItsBody: (path: string) => boolean): Refusal | null {
-  if (['GET', 'HEAD', 'OPTIONS'].includes(request.method) || streamsItsBody(request.path)) return null
+export function refuseLargeBody(request: GuardedRequest, streamsItsBody: (request: GuardedRequest) => boolean): Refusal | null {
+  if (['GET', 'HEAD', 'OPTIONS'].includes(request.method) || streamsItsBody(request)) return null
   const length = one(request.headers['content-length'])
   if (length === undefined && request.headers['transfer-encoding'] !== undefined)
     return { status: 411, title: 'Length required', detail: 'Send the form with its length (Content-Length).' }

@@ -30,7 +30,7 @@ export function upload(
     new Blob([new Uint8Array(content)], { type: 'application/zip' }),
     options.name ?? 'my bundle.zip'
   )
-  return browser.fetch(`${path}/bundle`, {
+  return browser.fetch(options.isScript ? `${path}/bundle` : path, {
     method: 'POST',
     body,
     headers: options.isScript ? { Accept: 'application/json' } : { Accept: 'text/html' }

@@ -93,7 +93,10 @@ describe('uploading', () => {
   it('wants a file', async () => {
     const empty = await upload(owner, at('1.1.0'), Buffer.alloc(0), { name: '' })
     expect(empty.status).toBe(400)
-    expect(textOf(await empty.text())).toContain('Choose the bundle first')
+    const html = await empty.text()
+    expect(textOf(html)).toContain('Draft')
+    expect(html).toMatch(/<input[^>]* aria-describedby="bundle-error"/)
+    expect(textOf(/<p class="err" id="bundle-error">.*?<\/p>/s.exec(html)![0])).toContain('Choose the bundle first')
     const elsewhere = await upload(owner, at('1.1.0'), zip, { field: 'picture', isScript: true })
     expect([elsewhere.status, elsewhere.headers.get('Content-Type')]).toEqual([400, 'application/problem+json'])
     const plain = await owner.fetch(`${at('1.1.0')}/bundle`, {
@@ -102,6 +105,14 @@ describe('uploading', () => {
       headers: { 'Content-Type': 'application/zip' }
     })
     expect(plain.status).toBe(415)
+    await unchanged()
+  })
+
+  it('is for its maintainers, also by the plain form', async () => {
+    const [visitor, stranger] = [site.browser(), await site.signInByGithub('mosse')]
+    const asked = await upload(visitor, at('1.1.0'), zip)
+    expect([asked.status, asked.headers.get('Location')]).toEqual([302, `/sign-in?return=${encodeURIComponent(at('1.1.0'))}`])
+    expect((await upload(stranger, at('1.1.0'), zip)).status).toBe(404)
     await unchanged()
   })
 

@@ -119,6 +119,11 @@ describe('filing a report', () => {
     ['a draft', { release: 'v4' }, ['There is no such published release']],
     ['an unknown unit', { unit_tag: 'BT-77' }, ['No unit has this tag']],
     ['a unit of another release', { unit_tag: 'BT-1', release: 'v2' }, ['This unit is a Buttress 1.0.0']],
+    [
+      'what only the database knows, along with what the form lacks',
+      { unit_tag: 'BT-77', installed_on: addDays(today, 2), evidence: '', first_power: 'worse' },
+      ['No unit has this tag', 'has not come yet', 'Say how the fault was established', 'Say what it came from']
+    ],
     ['a failure without a cause', { first_power: 'worse' }, ['Say what it came from']],
     [
       'an unknown word',
@@ -182,6 +187,14 @@ describe('following a report up', () => {
     const answer = await checkIn(author, id, fields)
     expect(answer.status).toBe(400)
     expect(textOf(await answer.text())).toContain(message)
+  })
+  it('says all that is wrong at once', async () => {
+    const id = await filed(author)
+    const answer = await checkIn(author, id, { statement: 'failed', stated_on: addDays(today, 2), last_running_on: '2026-01-01' })
+    expect(answer.status).toBe(400)
+    const text = textOf(await answer.text())
+    for (const message of ['has not come yet', 'Leave it empty when you do not know', 'Say what it came from'])
+      expect(text).toContain(message)
   })
   it('is the author’s alone', async () => {
     const id = await filed(author)

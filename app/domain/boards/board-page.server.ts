@@ -11,6 +11,8 @@ import * as fitRepo from './fit-claims.repo.server'
 /** The fit of a board on each revision of its console, in the order of the revisions. */
 export const claimsOf = (db: Db, board: repo.BoardRow) => fitRepo.listByBoard(db, board.id, board.console_id)
 
+export type BoardPage = Awaited<ReturnType<typeof boardPage>>
+
 /** Everything that a board's page prints, its releases aside (`releasesOfBoard` of the area releases has them). */
 export async function boardPage(db: Db, actor: Actor, slug: string) {
   const board = await boardBySlug(db, slug)

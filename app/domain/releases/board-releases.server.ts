@@ -8,6 +8,8 @@ import * as repo from './releases.repo.server'
 import { findRelease } from './releases.server'
 import { newestOf } from './version'
 
+export type BoardRelease = Awaited<ReturnType<typeof releasesOfBoard>>[number]
+
 /** The releases of a board for its page: published ones for everybody, drafts only when asked for. Newest version first. */
 export async function releasesOfBoard(db: Db, boardId: string, withDrafts: boolean) {
   const rows = (await repo.listByBoard(db, boardId)).filter((r) => withDrafts || r.state !== 'draft')

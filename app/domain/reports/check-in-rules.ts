@@ -11,7 +11,8 @@ export type SaidSoFar = {
   partedOn: Day | null
 }
 
-export type NewStatement = { statement: Statement; statedOn: Day; lastRunningOn: Day | null; cause: string | null }
+/** `statedOn` is null where the day could not be read, which is said elsewhere. */
+export type NewStatement = { statement: Statement; statedOn: Day | null; lastRunningOn: Day | null; cause: string | null }
 
 /** Why nothing more can be said of a unit; null while its history is open. */
 export function whyEnded(said: SaidSoFar): string | null {
@@ -31,14 +32,15 @@ export function statementErrors(said: SaidSoFar, next: NewStatement, latest: Day
   const errors: FieldError[] = []
   const say = (path: string, message: string) => errors.push({ path, message })
   const field = 'stated_on'
-  if (next.statedOn > latest) say(field, `${next.statedOn} has not come yet.`)
-  else if (next.statedOn < said.installedOn) say(field, `This lies before the day it was fitted, ${said.installedOn}.`)
-  else if (said.lastRunningOn !== null && next.statedOn < said.lastRunningOn)
+  if (next.statedOn !== null && next.statedOn > latest) say(field, `${next.statedOn} has not come yet.`)
+  else if (next.statedOn !== null && next.statedOn < said.installedOn)
+    say(field, `This lies before the day it was fitted, ${said.installedOn}.`)
+  else if (said.lastRunningOn !== null && next.statedOn !== null && next.statedOn < said.lastRunningOn)
     say(field, `It was said to run on ${said.lastRunningOn}. Give that day or a later one.`)
   if (next.statement !== 'failed') return errors
   if (next.cause === null) say('cause', 'Say what it came from; “I do not know” is an answer too.')
   if (next.lastRunningOn !== null) {
-    if (next.lastRunningOn > next.statedOn)
+    if (next.statedOn !== null && next.lastRunningOn > next.statedOn)
       say('last_running_on', `This lies after the day the failure was found, ${next.statedOn}.`)
     else if (next.lastRunningOn < said.installedOn)
       say('last_running_on', `This lies before the day it was fitted, ${said.installedOn}. Leave it empty when you do not know.`)

@@ -1,7 +1,7 @@
 import { z } from 'zod'
 import { isDay } from '~/lib/dates'
 import { normalTag } from './filing-rules'
-import { causes, evidenceGrades, exclusionKinds, firstPowerResults, installMethods } from './report-words'
+import { causes, evidenceGrades, exclusionKinds, firstPowerResults, installMethods, statements } from './report-words'
 
 const maxNotes = 4000
 const day = (message: string) => z.string(message).refine(isDay, 'Write a day of the calendar as 2026-11-30.')
@@ -18,24 +18,27 @@ const oneOf = <const T extends readonly [string, ...string[]]>(values: T, messag
 // Line breaks and tabs are text; other control characters are not.
 const hasControls = (text: string) => [...text].some((c) => (c < ' ' && c !== '\n' && c !== '\r' && c !== '\t') || c === '\u007f')
 
+/** The fields of an install report as the form sends them. */
+export const installReportFields = {
+  form_key: formKey,
+  release: id('Choose the release that was fitted.'),
+  revision: id('Choose the revision of the console.'),
+  unit_tag: z
+    .string()
+    .transform(normalTag)
+    .refine((tag) => /^[0-9A-Z][0-9A-Z-]{1,31}$/.test(tag), 'A tag has letters, digits and hyphens, like BT-7K4-19.')
+    .optional(),
+  installed_on: day('Say on which day it was fitted.'),
+  evidence: oneOf(evidenceGrades, 'Say how the fault was established.'),
+  method: oneOf(installMethods, 'Choose how it was soldered.').optional(),
+  first_power: oneOf(firstPowerResults, 'Say what it did at first power.'),
+  cause: oneOf(causes, 'Choose what it came from.').optional(),
+  notes: notes.optional()
+}
+
 /** An install report as the form sends it. The cause is asked only when it did not work at first power. */
 export const installReportSchema = z
-  .object({
-    form_key: formKey,
-    release: id('Choose the release that was fitted.'),
-    revision: id('Choose the revision of the console.'),
-    unit_tag: z
-      .string()
-      .transform(normalTag)
-      .refine((tag) => /^[0-9A-Z][0-9A-Z-]{1,31}$/.test(tag), 'A tag has letters, digits and hyphens, like BT-7K4-19.')
-      .optional(),
-    installed_on: day('Say on which day it was fitted.'),
-    evidence: oneOf(evidenceGrades, 'Say how the fault was established.'),
-    method: oneOf(installMethods, 'Choose how it was soldered.').optional(),
-    first_power: oneOf(firstPowerResults, 'Say what it did at first power.'),
-    cause: oneOf(causes, 'Choose what it came from.').optional(),
-    notes: notes.optional()
-  })
+  .object(installReportFields)
   .refine((report) => report.first_power === 'works' || report.cause !== undefined, {
     path: ['cause'],
     message: 'Say what it came from; “I do not know” is an answer too.',
@@ -49,6 +52,17 @@ const checkInFields = {
   notes: notes.optional()
 }
 
+const lastRunningOn = day('Write a day of the calendar as 2026-11-30.').optional()
+const failureCause = oneOf(causes, 'Say what it came from; “I do not know” is an answer too.')
+
+/** What of a check-in the stored history may be held against, each field by itself. */
+export const checkInStatementFields = {
+  statement: oneOf(statements, 'Say how it is.'),
+  stated_on: checkInFields.stated_on,
+  last_running_on: lastRunningOn,
+  cause: failureCause
+}
+
 /** A check-in, told apart by its statement. */
 export const checkInSchema = z.discriminatedUnion(
   'statement',
@@ -57,8 +71,8 @@ export const checkInSchema = z.discriminatedUnion(
     z.object({
       statement: z.literal('failed'),
       ...checkInFields,
-      last_running_on: day('Write a day of the calendar as 2026-11-30.').optional(),
-      cause: oneOf(causes, 'Say what it came from; “I do not know” is an answer too.')
+      last_running_on: lastRunningOn,
+      cause: failureCause
     }),
     z.object({ statement: z.literal('parted'), ...checkInFields })
   ],

@@ -1,19 +1,14 @@
 import type { Actor } from '~/domain/accounts/can'
 import { must } from '~/domain/accounts/must'
 import { recordAudit } from '~/domain/audit/record.server'
-import { addDays, dayOf, type Day } from '~/lib/dates'
+import { dayOf } from '~/lib/dates'
 import { DomainError } from '~/lib/domain-error'
 import { newId } from '~/lib/new-id'
 import type { Services } from '~/server/services.server'
-import type { DbOrTx } from '~db/client.server'
-import { statementErrors, whyEnded, type SaidSoFar } from './check-in-rules'
-import * as filing from './filing.repo.server'
-import { filingErrors } from './filing-rules'
+import { statementErrors, whyEnded } from './check-in-rules'
 import type { CheckInInput, ExclusionInput, InstallReportInput } from './report.schema'
 import * as repo from './reports.repo.server'
-
-/** The last day that today can be anywhere on earth. */
-const latestDay = (now: Date): Day => addDays(dayOf(now), 1)
+import { latestDay, saidSoFar, storedFilingErrors } from './stored-errors.server'
 
 const entry = (actor: Actor, action: string, subjectId: string, detail: Record<string, string>) => ({
   actorId: actor.userId,
@@ -39,17 +34,7 @@ export async function fileReport({ db, now }: Services, actor: Actor, input: Ins
       if (sent.reporter_id === actor.userId) return { id: sent.id }
       throw new DomainError('conflict', 'This form was used before. Load it again.')
     }
-    const release = await filing.findRelease(tx, input.release)
-    const revision = await filing.findRevision(tx, input.revision)
-    const unit = input.unit_tag === undefined ? undefined : ((await filing.findUnit(tx, input.unit_tag)) ?? null)
-    const errors = filingErrors(
-      {
-        release: release ? { id: release.id, state: release.state, consoleId: release.console_id } : null,
-        revision: revision ? { consoleId: revision.console_id } : null,
-        unit: unit && { releaseId: unit.release_id, boardName: unit.board_name, version: unit.version }
-      },
-      { installedOn: input.installed_on, today: dayOf(at), latest: latestDay(at) }
-    )
+    const errors = await storedFilingErrors(tx, input, at)
     if (errors.length > 0) throw new DomainError('invalid', 'This report cannot be filed yet.', errors)
 
     const id = newId()
@@ -176,15 +161,4 @@ export async function myReports({ db }: Services, actor: Actor, page: number) {
   const total = await repo.countByReporter(db, actor.userId!)
   const reports = await repo.listByReporter(db, actor.userId!, myReportsPageSize, (page - 1) * myReportsPageSize)
   return { reports, total }
-}
-
-async function saidSoFar(db: DbOrTx, reportId: string, installedOn: Day): Promise<SaidSoFar> {
-  const stated = new Map((await repo.lastStatedOn(db, reportId)).map((row) => [row.statement, row.stated_on]))
-  const failure = await repo.findFailure(db, reportId)
-  return {
-    installedOn,
-    lastRunningOn: stated.get('running') ?? null,
-    failedOn: failure?.found_on ?? null,
-    partedOn: stated.get('parted') ?? null
-  }
 }

@@ -1,7 +1,7 @@
 import type { Route } from './+types/page'
-import { Actions, ButtonLink } from '~/components/button'
-import { EmptyOutline } from '~/components/empty'
-import { Figure, TwoDrawings } from '~/components/figure'
+import { FirstSteps } from './first-steps'
+import { LatestReports } from './latest-reports'
+import { ButtonLink } from '~/components/button'
 import { Section } from '~/components/section'
 import { SiteSheet } from '~/components/site-sheet'
 import { Table } from '~/components/table'
@@ -9,6 +9,7 @@ import { TextLink } from '~/components/text-link'
 import { Title } from '~/components/title'
 import { benchOf } from '~/domain/releases/board-releases.server'
 import { releasePath } from '~/domain/releases/release-path'
+import { latestReports } from '~/domain/reports/latest.server'
 import { answerPage } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
 import { services } from '~/server/services.server'
@@ -16,9 +17,12 @@ import { services } from '~/server/services.server'
 export const meta: Route.MetaFunction = () => [{ title: 'My bench · Fettle' }]
 
 export const loader = ({ url, context }: Route.LoaderArgs) =>
-  answerPage(url, () => benchOf(services().db, context.get(actorContext)))
+  answerPage(url, async () => {
+    const actor = context.get(actorContext)
+    return { ...(await benchOf(services().db, actor)), reports: await latestReports(services(), actor) }
+  })
 
-export default function Bench({ loaderData: { boards, drafts } }: Route.ComponentProps) {
+export default function Bench({ loaderData: { boards, drafts, reports } }: Route.ComponentProps) {
   const hasBoards = boards.length > 0
   return (
     <SiteSheet current="My bench" trail={[{ label: 'Boards', href: '/' }, { label: 'My bench' }]}>
@@ -26,15 +30,20 @@ export default function Bench({ loaderData: { boards, drafts } }: Route.Componen
         heading="My bench"
         lead={
           hasBoards
-            ? 'Your boards, and the drafts that wait for you.'
+            ? 'The drafts that wait for you, what installers say, and your boards.'
             : 'This is where your drafts, incoming reports and silent units will lie.'
         }
         actions={
-          hasBoards && (
-            <ButtonLink kind="outline" href="/boards/new">
-              Name a board
+          <>
+            {hasBoards && (
+              <ButtonLink kind="outline" href="/boards/new">
+                Name a board
+              </ButtonLink>
+            )}
+            <ButtonLink kind="outline" href="/reports">
+              Reports that you filed
             </ButtonLink>
-          )
+          </>
         }
       />
       {!hasBoards && <FirstSteps />}
@@ -63,7 +72,22 @@ export default function Bench({ loaderData: { boards, drafts } }: Route.Componen
               />
             )}
           </Section>
-          <Section number={2} heading="Boards">
+          <Section
+            number={2}
+            heading="Latest reports"
+            id="reports"
+            margin={
+              reports.length > 0 && (
+                <p>
+                  <b>Read the failures first.</b> A report can be answered by the next release; nobody but a steward can take it
+                  out.
+                </p>
+              )
+            }
+          >
+            <LatestReports reports={reports} />
+          </Section>
+          <Section number={3} heading="Boards">
             <Table
               caption="The boards you maintain, by name."
               rows={boards}
@@ -100,37 +124,5 @@ export default function Bench({ loaderData: { boards, drafts } }: Route.Componen
         </>
       )}
     </SiteSheet>
-  )
-}
-
-function FirstSteps() {
-  return (
-    <Section number={1} heading="To begin">
-      <Figure number={1} caption="Nothing released yet.">
-        <TwoDrawings
-          wide={<EmptyOutline width={400} height={170} words="your first board goes here" />}
-          narrow={<EmptyOutline width={320} height={140} words="your first board goes here" />}
-        />
-      </Figure>
-      <ol className="mt-6 list-decimal pl-6">
-        <li>
-          <b>Name the board</b> and the part it replaces.
-        </li>
-        <li>
-          <b>Say which revisions it fits,</b> and how you know.
-        </li>
-        <li>
-          <b>Upload a bundle.</b> The check takes a few seconds and changes nothing; a draft is yours alone.
-        </li>
-      </ol>
-      <div className="mt-6">
-        <Actions>
-          <ButtonLink href="/boards/new">Name a board</ButtonLink>
-          <ButtonLink kind="outline" href="/boards">
-            Look at the boards of others
-          </ButtonLink>
-        </Actions>
-      </div>
-    </Section>
   )
 }

@@ -1,23 +1,21 @@
 import type { Route } from './+types/page'
-import { BoardAtScale } from '~/components/board-drawing'
-import { Actions, ButtonLink } from '~/components/button'
+import { isDrawn, NewestRelease } from './newest-release'
+import { ReleaseTable } from './release-table'
+import { ButtonLink } from '~/components/button'
 import { Definitions } from '~/components/definition'
 import { DoneLine } from '~/components/done-line'
-import { Empty } from '~/components/empty'
-import { Figure } from '~/components/figure'
 import { FitStrip } from '~/components/fit-strip'
 import { LastingWords } from '~/components/lasting-words'
 import { Prose } from '~/components/prose'
 import { ReleaseLine } from '~/components/release-line'
 import { MarginNote, Section } from '~/components/section'
 import { SiteSheet } from '~/components/site-sheet'
-import { Table } from '~/components/table'
 import { TextLink } from '~/components/text-link'
 import { Title } from '~/components/title'
 import { boardPage } from '~/domain/boards/board-page.server'
 import { releasesOfBoard } from '~/domain/releases/board-releases.server'
 import { lastingOf } from '~/domain/releases/lasting.server'
-import { picturePath, releasePath } from '~/domain/releases/release-path'
+import { releasePath } from '~/domain/releases/release-path'
 import { dayOf } from '~/lib/dates'
 import { answerPage } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
@@ -75,7 +73,7 @@ export default function Board({ loaderData }: Route.ComponentProps) {
         />
       </Title>
       {published.length > 0 && <ReleaseLine board={board.name} releases={published} today={today} />}
-      <Newest board={board} />
+      <NewestRelease board={board} />
       <Section
         number={2}
         heading="What it fits"
@@ -97,7 +95,7 @@ export default function Board({ loaderData }: Route.ComponentProps) {
         <FitStrip cells={board.fit.map((f) => ({ code: f.code, fit: f.claim, reason: f.reason || undefined }))} />
       </Section>
       <Section number={3} heading="Releases">
-        <Releases {...loaderData} />
+        <ReleaseTable board={board} releases={releases} />
       </Section>
       <Section number={4} heading="How it works">
         {board.description ? (
@@ -153,107 +151,6 @@ function BoardActions({ board }: { board: Data['board'] }) {
       <ButtonLink kind="outline" href={`/report?board=${board.slug}`}>
         File a report
       </ButtonLink>
-    </>
-  )
-}
-
-type NewestRelease = NonNullable<Data['board']['newest']>
-
-const sizeOf = ({ widthMm, heightMm }: NewestRelease) =>
-  widthMm !== null && heightMm !== null ? { width: widthMm, height: heightMm } : null
-const isDrawn = (newest: NewestRelease | null) => newest !== null && newest.pictureSha256 !== null && sizeOf(newest) !== null
-
-/** The newest release drawn to scale, or that there is none. */
-function Newest({ board }: { board: Data['board'] }) {
-  const { newest } = board
-  if (!newest)
-    return (
-      <Section number={1} heading="The board">
-        <Empty
-          words="the first release goes here"
-          action={board.canDraft && <ButtonLink href={`/boards/${board.slug}/releases/new`}>Draft a release</ButtonLink>}
-        >
-          {board.canDraft
-            ? 'Nothing is released yet. A draft is yours alone until you publish it.'
-            : 'Nothing is released yet. Its maintainer is still at work.'}
-        </Empty>
-      </Section>
-    )
-  const path = releasePath(board.slug, newest.version)
-  const size = sizeOf(newest)
-  return (
-    <Section number={1} heading={`The board, ${newest.version}`}>
-      {newest.pictureSha256 && size ? (
-        <Figure
-          number={1}
-          caption={`Top side of ${newest.version}, drawn from the released files; a small square is 1 mm. ${size.width.toFixed(1)} × ${size.height.toFixed(1)} mm.`}
-        >
-          <BoardAtScale
-            src={picturePath(board.slug, newest.version, 'top', newest.pictureSha256)}
-            alt={`Top side of ${board.name} ${newest.version}`}
-            {...size}
-            columns={{ wide: 804, narrow: 326 }}
-          />
-        </Figure>
-      ) : (
-        <p>{size ? `${size.width.toFixed(1)} × ${size.height.toFixed(1)} mm. ` : ''}There is no picture of this release.</p>
-      )}
-      <div className="mt-4">
-        <Actions>
-          <ButtonLink href={path} kind={board.canDraft ? 'outline' : 'solid'}>
-            Files, facts and findings of {newest.version}
-          </ButtonLink>
-        </Actions>
-      </div>
-    </Section>
-  )
-}
-
-function Releases({ board, releases }: Pick<Data, 'board' | 'releases'>) {
-  if (releases.length === 0) return <p className="soft">There is none yet.</p>
-  const withdrawn = releases.filter((r) => r.withdrawnReason)
-  return (
-    <>
-      <Table
-        number={1}
-        caption={
-          board.canDraft
-            ? 'By version, the highest first. Drafts are seen by maintainers alone.'
-            : 'By version, the highest first.'
-        }
-        rows={releases}
-        rowKey={(r) => r.version}
-        columns={[
-          {
-            key: 'version',
-            head: 'Version',
-            isRowHead: true,
-            cell: (r) => <TextLink href={releasePath(board.slug, r.version)}>{r.version}</TextLink>
-          },
-          {
-            key: 'state',
-            head: 'State',
-            cell: (r) => (
-              <>
-                <b>{r.state}</b>
-                {r.isNewest && ', newest'}
-              </>
-            )
-          },
-          { key: 'revision', head: 'Board revision', only: 'wide', cell: (r) => r.boardRevision },
-          {
-            key: 'on',
-            head: 'Published',
-            className: 'nw',
-            cell: (r) => r.publishedOn ?? <span className="soft">changed {r.changedOn}</span>
-          }
-        ]}
-      />
-      {withdrawn.map((r) => (
-        <p key={r.version} className="small mt-3 max-w-[66ch]">
-          <b>Why {r.version} is withdrawn:</b> {r.withdrawnReason}
-        </p>
-      ))}
     </>
   )
 }

@@ -24,7 +24,9 @@ const words: Record<(typeof fitClaims)[number], string> = {
   untested: 'untested'
 }
 
-export const meta: Route.MetaFunction = () => [{ title: 'What it fits · Fettle' }]
+export const meta: Route.MetaFunction = ({ loaderData }) => [
+  { title: `What ${loaderData ? loaderData.name : 'a board'} fits · Fettle` }
+]
 
 export function loader({ url, params, context }: Route.LoaderArgs) {
   return answerPage(url, async () => {

@@ -1,12 +1,11 @@
 import { createReadableStreamFromReadable } from '@react-router/node'
-import { redirect } from 'react-router'
 import type { Route } from './+types/endpoint'
 import { downloadBundle } from '~/domain/releases/download-bundle.server'
 import { intakeDeps } from '~/domain/releases/intake-deps.server'
 import { releasePath } from '~/domain/releases/release-path'
 import { takeInBundle } from '~/domain/releases/take-in-bundle.server'
 import { DomainError, statusOf } from '~/lib/domain-error'
-import { problemOf } from '~/lib/problem'
+import { answerApi } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
 import { discardBody, receiveFile } from '~/server/receive-file.server'
 import { services } from '~/server/services.server'
@@ -38,27 +37,18 @@ export async function loader({ request, params, context }: Route.LoaderArgs) {
   }
 }
 
+/** Takes the bundle that a script sends, and answers it in JSON; without scripts the form goes to the draft's own page. */
 export async function action({ request, params, context }: Route.ActionArgs) {
   const { board, version } = params
-  const draft = releasePath(board, version)
-  const isScript = request.headers.get('Accept')?.includes('application/json') ?? false
   const s = services()
-  try {
-    await takeInBundle(intakeDeps(s), context.get(actorContext), board, version, () =>
-      receiveFile(request, 'bundle', s.config.uploadDir, s.config.uploadMaxBytes)
-    )
-    return isScript ? Response.json({ location: `${draft}?done=checked#found` }) : redirect(`${draft}?done=checked#found`, 303)
-  } catch (error) {
-    discardBody(request)
-    if (!(error instanceof DomainError)) throw error
-    const status = statusOf[error.kind]
-    if (isScript) return Response.json(problemOf(error), { status, headers: { 'Content-Type': 'application/problem+json' } })
-    if (error.kind === 'unauthenticated') return redirect(`/sign-in?return=${encodeURIComponent(draft)}`, 303)
-    return plainPage({
-      status,
-      heading: 'The bundle was not taken',
-      lead: `${error.message} The draft is as it was.`,
-      way: { label: 'Back to the draft', href: draft }
-    })
-  }
+  return answerApi(async () => {
+    try {
+      await takeInBundle(intakeDeps(s), context.get(actorContext), board, version, () =>
+        receiveFile(request, 'bundle', s.config.uploadDir, s.config.uploadMaxBytes)
+      )
+    } finally {
+      discardBody(request)
+    }
+    return { location: `${releasePath(board, version)}?done=checked#found` }
+  })
 }

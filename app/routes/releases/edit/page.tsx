@@ -14,7 +14,9 @@ import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
 import { services } from '~/server/services.server'
 
-export const meta: Route.MetaFunction = () => [{ title: 'Edit a draft · Fettle' }]
+export const meta: Route.MetaFunction = ({ loaderData }) => [
+  { title: `Edit ${loaderData ? `${loaderData.name} ${loaderData.version}` : 'a draft'} · Fettle` }
+]
 
 const text = (value: number | string | null) => (value === null ? '' : String(value))
 

@@ -13,7 +13,9 @@ import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
 import { services } from '~/server/services.server'
 
-export const meta: Route.MetaFunction = () => [{ title: 'Draft a release · Fettle' }]
+export const meta: Route.MetaFunction = ({ loaderData }) => [
+  { title: `Draft a release${loaderData ? ` of ${loaderData.name}` : ''} · Fettle` }
+]
 
 export function loader({ url, params, context }: Route.LoaderArgs) {
   return answerPage(url, async () => {

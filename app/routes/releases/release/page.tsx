@@ -11,12 +11,13 @@ import { answerSchema, publishSchema } from '~/domain/releases/release.schema'
 import { releasePage } from '~/domain/releases/release-page.server'
 import { releasePath } from '~/domain/releases/release-path'
 import { findRelease } from '~/domain/releases/releases.server'
-import { recheckBundle } from '~/domain/releases/take-in-bundle.server'
+import { recheckBundle, takeInBundle } from '~/domain/releases/take-in-bundle.server'
 import { dayOf } from '~/lib/dates'
-import type { FieldError } from '~/lib/domain-error'
+import { DomainError, statusOf, type FieldError } from '~/lib/domain-error'
 import { formValues, parseForm, type FormValues } from '~/lib/parse-form'
 import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
+import { discardBody, isFileForm, receiveFile } from '~/server/receive-file.server'
 import { services } from '~/server/services.server'
 
 const done = {
@@ -30,10 +31,15 @@ const done = {
 }
 
 export const meta: Route.MetaFunction = ({ loaderData }) => {
-  const page = (loaderData as { page?: { board: { name: string; summary: string }; release: { version: string } } } | undefined)
-    ?.page
+  const page = (
+    loaderData as { page?: { board: { name: string; summary: string }; release: { version: string; state: string } } } | undefined
+  )?.page
   if (!page) return [{ title: 'Fettle' }]
-  return [{ title: `${page.board.name} ${page.release.version} · Fettle` }, { name: 'description', content: page.board.summary }]
+  const draft = page.release.state === 'draft' ? 'Draft: ' : ''
+  return [
+    { title: `${draft}${page.board.name} ${page.release.version} · Fettle` },
+    { name: 'description', content: page.board.summary }
+  ]
 }
 
 export function loader({ url, params, context }: Route.LoaderArgs) {
@@ -53,6 +59,8 @@ export function loader({ url, params, context }: Route.LoaderArgs) {
 }
 
 export async function action({ request, url, params, context }: Route.ActionArgs) {
+  // The one form of this page that carries a file; every other is short.
+  if (isFileForm(request.headers.get('Content-Type'))) return takeUpload(request, url, params, context.get(actorContext))
   const form = await request.formData()
   const values = formValues(form)
   return answerForm(url, values, async () => {
@@ -82,6 +90,23 @@ export async function action({ request, url, params, context }: Route.ActionArgs
         await findRelease(services().db, actor, params.board, params.version)
         return formAnswer([{ path: '', message: 'This form is not complete. Load the page again.' }], values)
     }
+  })
+}
+
+/** Takes the bundle as a browser without scripts sends it: streamed, and refused at its field. */
+async function takeUpload(request: Request, url: URL, { board, version }: { board: string; version: string }, actor: Actor) {
+  const s = services()
+  return answerForm(url, { intent: 'bundle' }, async () => {
+    try {
+      await takeInBundle(intakeDeps(s), actor, board, version, () =>
+        receiveFile(request, 'bundle', s.config.uploadDir, s.config.uploadMaxBytes)
+      )
+    } catch (error) {
+      discardBody(request)
+      if (!(error instanceof DomainError) || ['unauthenticated', 'forbidden', 'not-found'].includes(error.kind)) throw error
+      return formAnswer([{ path: 'bundle', message: error.message }], { intent: 'bundle' }, statusOf[error.kind])
+    }
+    throw redirect(`${releasePath(board, version)}?done=checked#found`, 303)
   })
 }
 

@@ -1,14 +1,13 @@
 import { BoardFigures, drawnFigures, Facts, FindingEntry, foundInWords, Layers } from './release-parts'
-import { Actions, ButtonLink } from '~/components/button'
-import { Checksum } from '~/components/checksum'
-import { Definitions } from '~/components/definition'
+import { TakeFiles } from './take-files'
+import { ButtonLink } from '~/components/button'
 import { DoneLine } from '~/components/done-line'
 import { FitStrip } from '~/components/fit-strip'
 import { IndexLine } from '~/components/index-line'
 import { Prose } from '~/components/prose'
 import { ReleaseLine } from '~/components/release-line'
 import { LastingWords, type LastingWordsProps } from '~/components/lasting-words'
-import { MarginNote, Section } from '~/components/section'
+import { Section } from '~/components/section'
 import { NoteSign } from '~/components/signs'
 import { SiteSheet } from '~/components/site-sheet'
 import { ReleaseTag } from '~/components/tag'
@@ -17,8 +16,7 @@ import { Title } from '~/components/title'
 import { Warning } from '~/components/warning'
 import type { ReleasePage } from '~/domain/releases/release-page.server'
 import { releasePath } from '~/domain/releases/release-path'
-import { safetyCautions } from '~/domain/releases/safety-cautions'
-import { aboutBytes, exactBytes } from '~/lib/byte-size'
+import { aboutBytes } from '~/lib/byte-size'
 
 export type PublishedReleaseProps = {
   page: ReleasePage
@@ -30,7 +28,6 @@ export type PublishedReleaseProps = {
 /** A published release as everybody sees it. */
 export function PublishedRelease({ page, lasting, today, done }: PublishedReleaseProps) {
   const { board, release, bundle, findings } = page
-  const cautions = findings.filter((f) => f.severity === 'caution').length
   return (
     <SiteSheet
       current="Boards"
@@ -117,7 +114,7 @@ export function PublishedRelease({ page, lasting, today, done }: PublishedReleas
         <FitStrip cells={page.fit.map((f) => ({ code: f.code, fit: f.claim, reason: f.reason || undefined }))} />
       </Section>
       <Section number={3} heading="Take the files">
-        <Files page={page} cautions={cautions} />
+        <TakeFiles page={page} />
       </Section>
       <Section
         number={4}
@@ -162,51 +159,5 @@ export function PublishedRelease({ page, lasting, today, done }: PublishedReleas
         />
       </Section>
     </SiteSheet>
-  )
-}
-
-/** The cautions stand before the button. */
-function Files({ page, cautions }: { page: ReleasePage; cautions: number }) {
-  const { board, release, bundle, files } = page
-  if (!bundle) return null
-  const path = `${releasePath(board.slug, release.version)}/bundle`
-  return (
-    <>
-      {safetyCautions(board.consoleKind).map(({ heading, text }) => (
-        <Warning key={heading} severity="caution" heading={heading}>
-          {text}
-        </Warning>
-      ))}
-      {cautions > 0 && (
-        <Warning
-          severity="note"
-          heading={cautions === 1 ? 'One finding to know before ordering' : `${cautions} findings to know before ordering`}
-        >
-          <p>
-            The check raised {cautions === 1 ? 'a caution' : 'cautions'}, answered by the maintainer: <a href="#s5">section 5</a>.
-            Pass on to the board house what concerns it.
-          </p>
-        </Warning>
-      )}
-      <Actions isWide>
-        <ButtonLink href={path} download={bundle.fileName} kind={release.state === 'withdrawn' ? 'outline' : 'solid'}>
-          Download {bundle.fileName}
-        </ButtonLink>
-      </Actions>
-      <Definitions
-        items={[
-          { label: 'Size', value: `${exactBytes(bundle.bytes)}, ${files.length} files` },
-          { label: 'SHA-256', value: <Checksum sha256={bundle.sha256} /> },
-          { label: 'Licence', value: board.licence },
-          { label: 'Taken', value: page.downloaded === 1 ? 'once so far' : `${page.downloaded} times so far` }
-        ]}
-      />
-      <MarginNote>
-        <p>
-          <b>Check what you took.</b> The sum you compute over the zip must be this one, all 64 digits. Copying it leaves the gaps
-          out.
-        </p>
-      </MarginNote>
-    </>
   )
 }

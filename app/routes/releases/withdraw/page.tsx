@@ -17,7 +17,9 @@ import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
 import { services } from '~/server/services.server'
 
-export const meta: Route.MetaFunction = () => [{ title: 'Withdraw a release · Fettle' }]
+export const meta: Route.MetaFunction = ({ loaderData }) => [
+  { title: `Withdraw ${loaderData ? `${loaderData.name} ${loaderData.version}` : 'a release'} · Fettle` }
+]
 
 export function loader({ url, params, context }: Route.LoaderArgs) {
   return answerPage(url, async () => {

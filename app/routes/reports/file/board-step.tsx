@@ -1,6 +1,8 @@
+import { useMemo } from 'react'
 import { Form } from 'react-router'
 import { Button } from '~/components/button'
 import { Empty } from '~/components/empty'
+import { ErrorSummary } from '~/components/error-summary'
 import { TextField } from '~/components/field'
 import { Section, SubHeading } from '~/components/section'
 import { TextLink } from '~/components/text-link'
@@ -9,17 +11,20 @@ import { SafetyCautions } from './safety-cautions'
 
 /** The first step: a unit tag, or the board by its console. */
 export function BoardStep({ step }: { step: Extract<FilingStep, { kind: 'board' }> }) {
+  const { tagError } = step
+  const errors = useMemo(() => (tagError === null ? [] : [{ path: 'unit', message: tagError }]), [tagError])
   return (
     <>
       <Section number={1} heading="By the unit tag">
         <SafetyCautions />
         <Form method="get" action="/report">
+          <ErrorSummary errors={errors} before="the unit can be looked up" labels={{ unit: 'Unit tag' }} />
           <TextField
             name="unit"
             label="Unit tag"
             hint="On the label of the board, beside its square code. It says board, release and batch."
             defaultValue={step.tag ?? ''}
-            error={step.tagError ?? undefined}
+            error={tagError ?? undefined}
             autoCapitalize="characters"
             autoComplete="off"
             maxLength={40}

@@ -3,12 +3,13 @@ import type { Route } from './+types/page'
 import { SiteSheet } from '~/components/site-sheet'
 import { Title } from '~/components/title'
 import { must } from '~/domain/accounts/must'
-import { filingStep } from '~/domain/reports/filing.server'
-import { installReportSchema } from '~/domain/reports/report.schema'
+import { filingStep, type FilingStep } from '~/domain/reports/filing.server'
+import { installReportFields, installReportSchema } from '~/domain/reports/report.schema'
 import { fileReport } from '~/domain/reports/reports.server'
+import { furtherFilingErrors } from '~/domain/reports/stored-errors.server'
 import { dayOf } from '~/lib/dates'
 import { newId } from '~/lib/new-id'
-import { formValues, parseForm } from '~/lib/parse-form'
+import { formValues, joinErrors, parseForm, readableFields } from '~/lib/parse-form'
 import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
 import { services } from '~/server/services.server'
@@ -16,7 +17,12 @@ import { BoardStep } from './board-step'
 import { ReportForm } from './report-form'
 import { WhichStep } from './which-step'
 
-export const meta: Route.MetaFunction = () => [{ title: 'File an install report · Fettle' }]
+export const meta: Route.MetaFunction = ({ loaderData }) => {
+  const step = (loaderData as { step?: FilingStep } | undefined)?.step
+  if (step?.kind === 'which') return [{ title: `Which ${step.board.name}? File an install report · Fettle` }]
+  if (step?.kind !== 'report') return [{ title: 'File an install report · Fettle' }]
+  return [{ title: `${step.board.name} ${step.release.version} on ${step.revision.code}: file an install report · Fettle` }]
+}
 
 export function loader({ url, context }: Route.LoaderArgs) {
   return answerPage(url, async () => {
@@ -32,7 +38,10 @@ export async function action({ request, url, context }: Route.ActionArgs) {
   const parsed = parseForm(installReportSchema, form)
   return answerForm(url, formValues(form), async () => {
     must(context.get(actorContext), 'report.file', null)
-    if (!parsed.ok) return formAnswer(parsed.errors, parsed.values)
+    if (!parsed.ok) {
+      const further = await furtherFilingErrors(services(), readableFields(installReportFields, form))
+      return formAnswer(joinErrors(parsed.errors, further), parsed.values)
+    }
     const { id } = await fileReport(services(), context.get(actorContext), parsed.value)
     return redirect(`/reports/${id}?filed`)
   })

@@ -96,7 +96,8 @@ export function ReportForm({ step, today, formKey, answer }: Props) {
           <b>
             {board.name} {release.version}
           </b>{' '}
-          in a <b>{board.console_name}</b>, revision <b>{revision.code}</b>. <TextLink href={back}>Change</TextLink>
+          in a <b>{board.console_name}</b>, revision <b className="nw">{revision.code}</b>.{' '}
+          <TextLink href={back}>Change</TextLink>
         </p>
         {warnings.map(({ severity, heading, text, because }) => (
           <Warning key={heading} severity={severity} heading={heading} because={because}>

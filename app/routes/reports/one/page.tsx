@@ -8,12 +8,13 @@ import { TextLink } from '~/components/text-link'
 import { Title } from '~/components/title'
 import { Warning } from '~/components/warning'
 import { can } from '~/domain/accounts/can'
-import { checkInSchema, exclusionSchema } from '~/domain/reports/report.schema'
+import { checkInSchema, checkInStatementFields, exclusionSchema } from '~/domain/reports/report.schema'
 import { exclusionWords, firstPowerWords } from '~/domain/reports/report-words'
 import { addCheckIn, excludeReport, reportWithHistory } from '~/domain/reports/reports.server'
+import { furtherCheckInErrors } from '~/domain/reports/stored-errors.server'
 import { dayOf } from '~/lib/dates'
 import { newId } from '~/lib/new-id'
-import { formValues, parseForm } from '~/lib/parse-form'
+import { formValues, joinErrors, parseForm, readableFields } from '~/lib/parse-form'
 import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
 import { services } from '~/server/services.server'
@@ -91,7 +92,10 @@ export async function action({ request, params, url, context }: Route.ActionArgs
       return redirect(`/reports/${params.id}`)
     }
     const parsed = parseForm(checkInSchema, form)
-    if (!parsed.ok) return formAnswer(parsed.errors, parsed.values)
+    if (!parsed.ok) {
+      const further = await furtherCheckInErrors(services(), params.id, readableFields(checkInStatementFields, form))
+      return formAnswer(joinErrors(parsed.errors, further), parsed.values)
+    }
     await addCheckIn(services(), actor, params.id, parsed.value)
     return redirect(`/reports/${params.id}?added`)
   })

@@ -1,0 +1,67 @@
+import { Form, useNavigation } from 'react-router'
+import { FindingEntry, foundInWords } from './release-parts'
+import { Actions, Button } from '~/components/button'
+import { ErrorSummary } from '~/components/error-summary'
+import { TextArea } from '~/components/field'
+import { Section } from '~/components/section'
+import type { ReleasePage } from '~/domain/releases/release-page.server'
+import type { FieldError } from '~/lib/domain-error'
+import type { FormValues } from '~/lib/parse-form'
+
+/** What the check found on a draft, with room for an answer under each caution. */
+export function DraftFindings({ page, errors, values }: { page: ReleasePage; errors: FieldError[]; values: FormValues }) {
+  const { findings } = page
+  const hasCautions = findings.some((f) => f.severity === 'caution')
+  const isBusy = useNavigation().formData?.get('intent') === 'answers'
+  const error = (id: string) => errors.find((e) => e.path === `answer.${id}`)?.message
+  return (
+    <Section
+      number={2}
+      heading="What the check found"
+      id="found"
+      margin={
+        <>
+          <p>
+            <b>A stop</b> keeps a release from being published. <b>A caution</b> must be answered first. <b>A note</b> wants
+            nothing.
+          </p>
+          <p>Your answers stand under the findings on the release page.</p>
+        </>
+      }
+    >
+      <p role="status">The bundle check raised {foundInWords(findings)}.</p>
+      <ErrorSummary errors={errors} before="the answers can be saved" />
+      {findings.map((f, i) => (
+        <FindingEntry key={f.id} finding={f} place={i + 1} isDraft>
+          {f.severity === 'caution' && (
+            <TextArea
+              form="answers"
+              name={`answer.${f.id}`}
+              label="Your answer"
+              hint={
+                f.answer
+                  ? 'Answered. You can still change it.'
+                  : 'A caution must be answered before the release can be published.'
+              }
+              rows={2}
+              maxLength={2000}
+              defaultValue={values[`answer.${f.id}`] ?? f.answer ?? ''}
+              error={error(f.id)}
+              isLong
+            />
+          )}
+        </FindingEntry>
+      ))}
+      {hasCautions && (
+        <Form method="post" action="#found" id="answers" className="mt-6" noValidate>
+          <input type="hidden" name="intent" value="answers" />
+          <Actions>
+            <Button kind="outline" busy={isBusy ? 'Saving' : undefined}>
+              Save the answers
+            </Button>
+          </Actions>
+        </Form>
+      )}
+    </Section>
+  )
+}
