@@ -5,7 +5,7 @@ import type { DbOrTx } from '~db/client.server'
  * The latest reports on the boards that somebody maintains, newest first. Reads at most `limit` reports of each release, from the end of
  * the index install_reports_latest.
  */
-export const listLatestOfMaintainer = (db: DbOrTx, userId: string, limit: number) =>
+export const latestOfMaintainer = (db: DbOrTx, userId: string, limit: number) =>
   db
     .selectFrom('board_maintainers as m')
     .innerJoin('boards as b', 'b.id', 'm.board_id')
@@ -35,4 +35,7 @@ export const listLatestOfMaintainer = (db: DbOrTx, userId: string, limit: number
       'f.cause',
       'u.display_name as reporter_name'
     ])
-    .execute()
+
+/** What `latestOfMaintainer` asks for. */
+export const listLatestOfMaintainer = (db: DbOrTx, userId: string, limit: number) =>
+  latestOfMaintainer(db, userId, limit).execute()
