@@ -1,6 +1,6 @@
 import { Writable } from 'node:stream'
 import { renderToPipeableStream } from 'react-dom/server'
-import { ServerRouter, type EntryContext, type RouterContextProvider } from 'react-router'
+import { isRouteErrorResponse, ServerRouter, type EntryContext, type RouterContextProvider } from 'react-router'
 import { requestInfoContext } from '~/server/context'
 import { logError } from '~/server/log.server'
 import { DomainError } from '~/lib/domain-error'
@@ -54,5 +54,6 @@ export default function handleRequest(
 /** Defects only: an expected failure has its own answer, and a reader who left is none. */
 export function handleError(error: unknown, { request }: { request: Request }): void {
   if (request.signal.aborted || error instanceof DomainError) return
+  if (isRouteErrorResponse(error) && error.status < 500) return
   logError('handler-failed', error, { method: request.method, path: new URL(request.url).pathname })
 }

@@ -10,6 +10,22 @@ const url = z
   .refine((u) => /^https?:/.test(u), 'must be an absolute http or https address')
 const isLoopback = (address: string) => /^(localhost|127(\.\d+){3}|\[::1\])$/.test(new URL(address).hostname)
 
+/** What no mode can do without. */
+const named = [
+  'APP_SECRET',
+  'STORAGE_BUCKET',
+  'STORAGE_ACCESS_KEY_ID',
+  'STORAGE_SECRET_ACCESS_KEY',
+  'MAIL_API_KEY',
+  'MAIL_FROM',
+  'GITHUB_CLIENT_ID',
+  'GITHUB_CLIENT_SECRET'
+] as const
+
+const notSet = (mode: string) => `is not set (needed in ${mode} mode)`
+const modeOf = <M extends string>(env: { FETTLE_MODE?: M; NODE_ENV?: string }) =>
+  env.FETTLE_MODE ?? (env.NODE_ENV === 'production' ? 'production' : 'development')
+
 /**
  * Every setting, read from the environment once. `mode` decides what may be left out: in `production` each service must be real
  * and named; `demo`, `development` and `test` talk to the project's own fakes, whose addresses they are given.
@@ -46,19 +62,9 @@ const schema = z
       .default(64 * 1024 * 1024)
   })
   .transform((env, ctx) => {
-    const mode = env.FETTLE_MODE ?? (env.NODE_ENV === 'production' ? 'production' : 'development')
+    const mode = modeOf(env)
     const say = (path: string, message: string) => ctx.addIssue({ code: 'custom', path: [path], message })
-    const named = [
-      'APP_SECRET',
-      'STORAGE_BUCKET',
-      'STORAGE_ACCESS_KEY_ID',
-      'STORAGE_SECRET_ACCESS_KEY',
-      'MAIL_API_KEY',
-      'MAIL_FROM',
-      'GITHUB_CLIENT_ID',
-      'GITHUB_CLIENT_SECRET'
-    ] as const
-    for (const name of named) if (env[name] === undefined) say(name, `is not set (needed in ${mode} mode)`)
+    for (const name of named) if (env[name] === undefined) say(name, notSet(mode))
     if (mode === 'production') {
       if (env.PUBLIC_ORIGIN === undefined)
         say('PUBLIC_ORIGIN', 'is not set: the address that people see, for example https://fettle.example')
@@ -113,11 +119,15 @@ export type Config = z.output<typeof schema>
  * @throws ConfigError with one line for each variable that is wrong or missing
  */
 export function readConfig(env: Record<string, string | undefined>): Config {
-  const result = schema.safeParse(
-    Object.fromEntries(Object.entries(env).filter(([, value]) => value !== undefined && value !== ''))
-  )
+  const given = Object.fromEntries(Object.entries(env).filter(([, value]) => value !== undefined && value !== ''))
+  const result = schema.safeParse(given)
   if (result.success) return result.data
-  throw new ConfigError(result.error.issues.map((issue) => `${issue.path.join('.')} ${issue.message}`))
+  const problems = result.error.issues.map((issue) => `${issue.path.join('.')} ${issue.message}`)
+  // One value of the wrong form keeps the schema from looking at what is missing.
+  for (const name of named)
+    if (given[name] === undefined && !problems.some((line) => line.startsWith(`${name} `)))
+      problems.push(`${name} ${notSet(modeOf(given))}`)
+  throw new ConfigError(problems)
 }
 
 export class ConfigError extends Error {

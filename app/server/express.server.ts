@@ -5,6 +5,7 @@ import { createRequestHandler } from '@react-router/express'
 import { RouterContextProvider, type ServerBuild } from 'react-router'
 import { requestInfoContext, type RequestInfo } from './context'
 import { logError } from './log.server'
+import { readAsPublic } from './public-request.server'
 import { isFileForm } from './receive-file.server'
 import { refuseForeignOrigin, refuseLargeBody, type GuardedRequest } from './request-guard.server'
 import { securityHeaders } from './security-headers.server'
@@ -42,7 +43,8 @@ export function createApp(
     res.locals.info = info
     for (const [name, value] of Object.entries(securityHeaders(config, nonce))) res.setHeader(name, value)
     res.setHeader('X-Request-Id', info.id)
-    next()
+    if (readAsPublic(req, config.publicOrigin)) return next()
+    res.status(400).type('text/plain').send('The address of this request cannot be read.')
   })
   app.use((req, res, next) => {
     const request: GuardedRequest = { method: req.method, path: req.path, headers: req.headers }

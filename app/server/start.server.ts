@@ -1,4 +1,4 @@
-import { mkdirSync } from 'node:fs'
+import { mkdirSync, rmSync } from 'node:fs'
 import { createServer, type Server } from 'node:http'
 import { fileURLToPath } from 'node:url'
 import type { Handler } from 'express'
@@ -23,6 +23,8 @@ export async function start(env: Record<string, string | undefined>, before: Han
   const releaseFolder = holdDataFolder(config.databaseFile)
   const db = openDb(config.databaseFile)
   for (const name of await migrate(db)) log('info', 'migrated', { name })
+  // What a killed process was receiving: nobody else writes here while the data folder is held.
+  rmSync(config.uploadDir, { recursive: true, force: true })
   mkdirSync(config.uploadDir, { recursive: true })
   const storage = createStorage(config.storage)
   await storage.ensureBucket()

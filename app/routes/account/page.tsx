@@ -16,6 +16,7 @@ import { DomainError } from '~/lib/domain-error'
 import { formValues, parseForm } from '~/lib/parse-form'
 import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
 import { actorContext, sessionContext } from '~/server/context'
+import { readForm } from '~/server/read-form.server'
 import { services } from '~/server/services.server'
 
 export const meta: Route.MetaFunction = () => [{ title: 'Your account · Fettle' }]
@@ -26,7 +27,7 @@ export function loader({ url, context }: Route.LoaderArgs) {
   return answerPage(url, async () => {
     const account = await loadAccount(services(), context.get(actorContext).userId, context.get(sessionContext)?.idHash ?? null)
     const asked = url.searchParams.get('done')
-    return { ...account, done: asked !== null && asked in done ? done[asked as keyof typeof done] : null }
+    return { ...account, done: asked !== null && Object.hasOwn(done, asked) ? done[asked as keyof typeof done] : null }
   })
 }
 
@@ -41,7 +42,7 @@ const intents = z.discriminatedUnion(
 )
 
 export async function action({ request, url, context }: Route.ActionArgs) {
-  const form = await request.formData()
+  const form = await readForm(request)
   const values = formValues(form)
   return answerForm(url, values, async () => {
     const { userId } = context.get(actorContext)

@@ -13,6 +13,7 @@ import { askForLink } from '~/domain/accounts/sign-in-by-mail.server'
 import { formValues, parseForm } from '~/lib/parse-form'
 import { answerForm, formAnswer } from '~/server/answer.server'
 import { actorContext, requestInfoContext } from '~/server/context'
+import { readForm } from '~/server/read-form.server'
 import { services } from '~/server/services.server'
 
 export const meta: Route.MetaFunction = () => [{ title: 'Sign in · Fettle' }]
@@ -24,7 +25,7 @@ export function loader({ url, context }: Route.LoaderArgs) {
 }
 
 export async function action({ request, url, context }: Route.ActionArgs) {
-  const form = await request.formData()
+  const form = await readForm(request)
   const parsed = parseForm(askLinkSchema, form)
   if (!parsed.ok) return formAnswer(parsed.errors, parsed.values)
   const { email } = parsed.value

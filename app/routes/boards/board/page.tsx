@@ -39,7 +39,7 @@ export function loader({ url, params, context }: Route.LoaderArgs) {
       releases: await releasesOfBoard(db, board.id, board.canDraft),
       lasting: await lastingOf(s, board.slug),
       today: dayOf(now()),
-      done: asked !== null && asked in done ? done[asked as keyof typeof done] : null
+      done: asked !== null && Object.hasOwn(done, asked) ? done[asked as keyof typeof done] : null
     }
   })
 }

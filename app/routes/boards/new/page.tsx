@@ -12,6 +12,7 @@ import { customaryLicences } from '~/domain/boards/spdx'
 import { formValues, parseForm } from '~/lib/parse-form'
 import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
+import { readForm } from '~/server/read-form.server'
 import { services } from '~/server/services.server'
 
 export const meta: Route.MetaFunction = () => [{ title: 'Name a board · Fettle' }]
@@ -24,7 +25,7 @@ export function loader({ url, context }: Route.LoaderArgs) {
 }
 
 export async function action({ request, url, context }: Route.ActionArgs) {
-  const form = await request.formData()
+  const form = await readForm(request)
   const values = formValues(form)
   return answerForm(url, values, async () => {
     const actor = context.get(actorContext)

@@ -17,6 +17,7 @@ import { DomainError, statusOf, type FieldError } from '~/lib/domain-error'
 import { formValues, parseForm, type FormValues } from '~/lib/parse-form'
 import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
+import { readForm } from '~/server/read-form.server'
 import { discardBody, isFileForm, receiveFile } from '~/server/receive-file.server'
 import { services } from '~/server/services.server'
 
@@ -53,7 +54,7 @@ export function loader({ url, params, context }: Route.LoaderArgs) {
       lasting: page.release.state === 'draft' ? null : await lastingOf(s, params.board, params.version),
       maxBytes: config.uploadMaxBytes,
       today: dayOf(now()),
-      done: asked !== null && asked in done ? done[asked as keyof typeof done] : null
+      done: asked !== null && Object.hasOwn(done, asked) ? done[asked as keyof typeof done] : null
     }
   })
 }
@@ -61,7 +62,7 @@ export function loader({ url, params, context }: Route.LoaderArgs) {
 export async function action({ request, url, params, context }: Route.ActionArgs) {
   // The one form of this page that carries a file; every other is short.
   if (isFileForm(request.headers.get('Content-Type'))) return takeUpload(request, url, params, context.get(actorContext))
-  const form = await request.formData()
+  const form = await readForm(request)
   const values = formValues(form)
   return answerForm(url, values, async () => {
     const actor = context.get(actorContext)

@@ -15,6 +15,7 @@ import { DomainError } from '~/lib/domain-error'
 import { formValues, parseForm } from '~/lib/parse-form'
 import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
+import { readForm } from '~/server/read-form.server'
 import { services } from '~/server/services.server'
 
 export const meta: Route.MetaFunction = ({ loaderData }) => [
@@ -32,7 +33,7 @@ export function loader({ url, params, context }: Route.LoaderArgs) {
 }
 
 export async function action({ request, url, params, context }: Route.ActionArgs) {
-  const form = await request.formData()
+  const form = await readForm(request)
   const values = formValues(form)
   return answerForm(url, values, async () => {
     const actor = context.get(actorContext)

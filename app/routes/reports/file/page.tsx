@@ -12,6 +12,7 @@ import { newId } from '~/lib/new-id'
 import { formValues, joinErrors, parseForm, readableFields } from '~/lib/parse-form'
 import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
+import { readForm } from '~/server/read-form.server'
 import { services } from '~/server/services.server'
 import { BoardStep } from './board-step'
 import { ReportForm } from './report-form'
@@ -34,7 +35,7 @@ export function loader({ url, context }: Route.LoaderArgs) {
 }
 
 export async function action({ request, url, context }: Route.ActionArgs) {
-  const form = await request.formData()
+  const form = await readForm(request)
   const parsed = parseForm(installReportSchema, form)
   return answerForm(url, formValues(form), async () => {
     must(context.get(actorContext), 'report.file', null)

@@ -17,6 +17,7 @@ import { newId } from '~/lib/new-id'
 import { formValues, parseForm } from '~/lib/parse-form'
 import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
+import { readForm } from '~/server/read-form.server'
 import { services } from '~/server/services.server'
 
 export const meta: Route.MetaFunction = () => [{ title: 'My reports · Fettle' }]
@@ -55,7 +56,7 @@ const quickSchema = z.object({
 })
 
 export async function action({ request, url, context }: Route.ActionArgs) {
-  const form = await request.formData()
+  const form = await readForm(request)
   return answerForm(url, formValues(form), async () => {
     const parsed = parseForm(quickSchema, form)
     if (!parsed.ok) return formAnswer([{ path: '', message: parsed.errors[0]!.message }], parsed.values)

@@ -17,6 +17,7 @@ import { newId } from '~/lib/new-id'
 import { formValues, joinErrors, parseForm, readableFields } from '~/lib/parse-form'
 import { answerForm, answerPage, formAnswer } from '~/server/answer.server'
 import { actorContext } from '~/server/context'
+import { readForm } from '~/server/read-form.server'
 import { services } from '~/server/services.server'
 import { CheckInForm } from './check-in-form'
 import { ExclusionForm } from './exclusion-form'
@@ -80,7 +81,7 @@ export function loader({ params, url, context }: Route.LoaderArgs) {
 const intentSchema = z.object({ intent: z.enum(['check-in', 'exclude'], 'The form is incomplete. Load it again.') })
 
 export async function action({ request, params, url, context }: Route.ActionArgs) {
-  const form = await request.formData()
+  const form = await readForm(request)
   const actor = context.get(actorContext)
   return answerForm(url, formValues(form), async () => {
     const intent = parseForm(intentSchema, form)

@@ -4,6 +4,7 @@ import { callerOf, countUse } from '~/domain/accounts/rate-limit.server'
 import { answerPage } from '~/server/answer.server'
 import { requestInfoContext } from '~/server/context'
 import { authenticator } from '~/server/github-sign-in.server'
+import { readForm } from '~/server/read-form.server'
 import { services } from '~/server/services.server'
 
 const perCaller = { kind: 'github-caller', limit: 60, windowMs: 3_600_000 }
@@ -13,7 +14,7 @@ export const loader = () => redirect('/sign-in')
 
 /** Begins a sign-in: the answer sends the browser to the provider. */
 export async function action({ request, url, context }: Route.ActionArgs) {
-  const form = await request.formData()
+  const form = await readForm(request)
   const given = services()
   return answerPage(url, async () => {
     await countUse(given, perCaller, callerOf(context.get(requestInfoContext).ip))

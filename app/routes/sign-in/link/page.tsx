@@ -11,6 +11,7 @@ import { lookAtLink, signInByLink, type LinkState } from '~/domain/accounts/sign
 import { formValues, parseForm } from '~/lib/parse-form'
 import { answerForm, formAnswer } from '~/server/answer.server'
 import { requestInfoContext } from '~/server/context'
+import { readForm } from '~/server/read-form.server'
 import { services } from '~/server/services.server'
 import { sessionCookie, sessionToken } from '~/server/session.server'
 
@@ -26,7 +27,7 @@ export async function loader({ params }: Route.LoaderArgs) {
 
 export async function action({ request, params, url, context }: Route.ActionArgs) {
   const given = services()
-  const form = await request.formData()
+  const form = await readForm(request)
   const link = await lookAtLink(given, params.token)
   const name = link.kind === 'open' && link.isNew ? parseForm(displayNameSchema, form) : null
   if (name !== null && !name.ok) return formAnswer(name.errors, name.values)
