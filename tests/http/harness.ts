@@ -83,7 +83,7 @@ const freePort = () =>
   })
 
 /** Starts the fakes and the built server, each on a port of its own of loopback. */
-export async function startSite(options: SiteOptions = {}): Promise<Site> {
+export async function startSite(options: SiteOptions = {}, tries = 3): Promise<Site> {
   if (!existsSync(buildFile)) throw new Error('There is no build: run `npx react-router build` before the HTTP tests')
   const dataDir = mkdtempSync(join(tmpdir(), 'fettle-http-'))
   const port = await freePort()
@@ -126,6 +126,8 @@ export async function startSite(options: SiteOptions = {}): Promise<Site> {
     await server.ready
   } catch (error) {
     await cleanUp()
+    // another program may have taken the port since it was found free
+    if (tries > 1 && server.log().includes('EADDRINUSE')) return startSite(options, tries - 1)
     throw error
   }
   const site: Site = {
