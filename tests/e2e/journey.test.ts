@@ -17,6 +17,13 @@ const bundleFile = fileURLToPath(new URL('../../db/seed/bundles/buttress-2.0.0.z
 const version = '2.1.0'
 const board = 'Buttress'
 
+/** What somebody might try to run in another's browser, around honest words. */
+const hostileNotes = `Same copper as **2.0.0**, for the journey.
+
+<script>taken = true</script><img src=x onerror="taken = true"><svg onload="taken = true"></svg><iframe src="javascript:top.taken=true"></iframe>
+[one](javascript:taken=true) [two](JaVaScRiPt:taken=true) [three](//elsewhere.example) [four](data:text/html,<script>1</script>)
+<p style="position:fixed" id="main" onclick="taken = true">five</p> [fine](https://fettle.example/)`
+
 let site: Site
 let chromium: Browser
 let bundle: Buffer
@@ -74,7 +81,7 @@ describe('the main job', () => {
     await page.getByLabel('Board revision').fill('C')
     await page.getByLabel('Copper layers').fill('4')
     await page.getByLabel('Thickness').fill('0.8')
-    await page.getByLabel('Release notes').fill('Same copper as **2.0.0**, for the journey.')
+    await page.getByLabel('Release notes').fill(hostileNotes)
     await page.getByRole('button', { name: /draft/i }).click()
     await page.waitForURL(`**/boards/buttress/releases/${version}**`)
 
@@ -90,6 +97,11 @@ describe('the main job', () => {
     await page.locator('.tag.released').waitFor()
     expect(await page.getByRole('heading', { level: 1 }).innerText()).toContain(version)
     await page.getByText('Same copper as').waitFor()
+    expect(await page.evaluate(() => (globalThis as { taken?: boolean }).taken)).toBeUndefined()
+    const prose = page.locator('.prose')
+    expect(await prose.locator('script, iframe, img, svg, form, [onclick], [onerror], [style], [id]').count()).toBe(0)
+    expect(await prose.locator('a[href^="javascript:" i], a[href^="data:" i], a[href^="//"]').count()).toBe(0)
+    expect(await prose.locator('a[href="https://fettle.example/"]').getAttribute('rel')).toBe('nofollow ugc noopener')
     await close()
   })
 

@@ -51,6 +51,8 @@ export type Site = {
   mail: MailFake
   githubUrl: string
   dataDir: string
+  /** The server's process. */
+  pid: number
   /** What the server wrote to its log so far. */
   log(): string
   /** A visitor's browser, from a place of its own unless one is given. */
@@ -135,6 +137,7 @@ export async function startSite(options: SiteOptions = {}, tries = 3): Promise<S
     mail,
     githubUrl: github.url,
     dataDir,
+    pid: server.pid,
     log: server.log,
     browser: (ip) => new Browser(url, ip),
     signInByGithub: (login, browser = new Browser(url)) => signInByGithub(browser, login),
@@ -169,7 +172,7 @@ async function prepareWorld(dataDir: string, endpoint: string, prepare: NonNulla
   }
 }
 
-type Server = { ready: Promise<void>; log(): string; stop(): Promise<void> }
+type Server = { pid: number; ready: Promise<void>; log(): string; stop(): Promise<void> }
 
 function startServer(env: Record<string, string>): Server {
   const child = spawn(process.execPath, [buildFile], {
@@ -184,7 +187,7 @@ function startServer(env: Record<string, string>): Server {
     child.once('error', reject)
     child.once('exit', (code) => reject(new Error(`The server ended with ${code} before it answered:\n${written}`)))
   })
-  return { ready, log: () => written, stop: () => stopChild(child, ended) }
+  return { pid: child.pid!, ready, log: () => written, stop: () => stopChild(child, ended) }
 }
 
 async function stopChild(child: ChildProcess, ended: Promise<void>): Promise<void> {
