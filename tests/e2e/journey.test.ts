@@ -22,7 +22,9 @@ const hostileNotes = `Same copper as **2.0.0**, for the journey.
 
 <script>taken = true</script><img src=x onerror="taken = true"><svg onload="taken = true"></svg><iframe src="javascript:top.taken=true"></iframe>
 [one](javascript:taken=true) [two](JaVaScRiPt:taken=true) [three](//elsewhere.example) [four](data:text/html,<script>1</script>)
-<p style="position:fixed" id="main" onclick="taken = true">five</p> [fine](https://fettle.example/)`
+<p style="position:fixed" id="main" onclick="taken = true">five</p>
+
+[fine](https://fettle.example/)`
 
 let site: Site
 let chromium: Browser
@@ -202,7 +204,7 @@ describe('the main job', () => {
   it(`${board}'s pages work without scripts`, async () => {
     const { page, close } = await openPage(chromium, { baseURL: site.url, javaScriptEnabled: false })
     await page.goto('/')
-    await page.getByLabel('Console', { exact: true }).selectOption({ label: 'Talvi 16' })
+    await page.getByLabel('Console and mainboard revision').selectOption({ label: 'Talvi 16 TM-3' })
     await page.getByRole('button', { name: 'See what fits' }).click()
     await page.getByText(board).first().waitFor()
     await page.goto('/boards/buttress/reliability')
