@@ -144,10 +144,8 @@ describe('the main job', () => {
 
     await page.locator('input[name=statement][value=running]').check()
     await page.getByRole('button', { name: 'Add this' }).click()
-    await page
-      .getByText(/running|still runs/i)
-      .first()
-      .waitFor()
+    await page.locator('table').getByText('Still runs').waitFor()
+    expect(await counted(version)).toEqual({ n: 1, events: 0 })
     await close()
   })
 
