@@ -3,12 +3,14 @@ import type { Db } from './client.server'
 import * as m0001 from './migrations/0001-ground'
 import * as m0002 from './migrations/0002-report-versions'
 import * as m0003 from './migrations/0003-latest-reports'
+import * as m0004 from './migrations/0004-bundle-record'
 
 /** Every migration, in order, listed by hand; they only go forward. */
 const migrations: Record<string, Migration> = {
   '0001-ground': m0001,
   '0002-report-versions': m0002,
-  '0003-latest-reports': m0003
+  '0003-latest-reports': m0003,
+  '0004-bundle-record': m0004
 }
 
 /**

@@ -113,6 +113,10 @@ export type ReleasesTable = {
   facts_json: string | null
   picture_top_sha256: string | null
   picture_bottom_sha256: string | null
+  thumb_top_sha256: string | null
+  thumb_bottom_sha256: string | null
+  /** The outline's box in mm as the layers count: minX, minY, maxX, maxY. */
+  outline_json: string | null
   created_at: string
   created_by: string | null
   updated_at: string
@@ -146,6 +150,48 @@ export type FindingsTable = {
   answer: string | null
   answered_at: string | null
   answered_by: string | null
+  place_x_mm: number | null
+  place_y_mm: number | null
+  place_side: 'top' | 'bottom' | null
+}
+
+export type BomLinesTable = {
+  release_id: string
+  position: number
+  designators_json: string
+  quantity: number | null
+  value: string
+  footprint: string
+  description: string
+  is_fitted: 0 | 1
+  reading_json: string
+}
+
+export type PlacementsTable = {
+  release_id: string
+  position: number
+  designator: string
+  x_mm: number
+  y_mm: number
+  rotation_deg: number | null
+  side: 'top' | 'bottom'
+}
+
+export type LayerFingerprintsTable = {
+  release_id: string
+  position: number
+  function: 'copper' | 'outline' | 'drill'
+  side: 'top' | 'bottom' | 'inner' | null
+  layer_index: number | null
+  file: string
+  fingerprint: string
+}
+
+export type LayerPicturesTable = {
+  release_id: string
+  position: number
+  file: string
+  sha256: string
 }
 
 export type DownloadsTable = {
@@ -268,6 +314,10 @@ export type Schema = {
   releases: ReleasesTable
   release_files: ReleaseFilesTable
   findings: FindingsTable
+  bom_lines: BomLinesTable
+  placements: PlacementsTable
+  layer_fingerprints: LayerFingerprintsTable
+  layer_pictures: LayerPicturesTable
   downloads: DownloadsTable
   staged_objects: StagedObjectsTable
   batches: BatchesTable

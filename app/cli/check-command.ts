@@ -1,5 +1,6 @@
 import { parseArgs } from 'node:util'
 import { layersReader, thicknessReader, type DetailReader } from '../domain/bundle/declared-details'
+import { publicAnswer } from '../domain/bundle/bundle-check.types'
 import { runBundleCheck } from '../domain/bundle/run-bundle-check.server'
 import { DomainError } from '../lib/domain-error'
 import type { Command } from './command'
@@ -36,7 +37,7 @@ export const checkCommand: Command = {
     const declaredLayers = numberOption('layers', values.layers, layersReader)
     const thicknessMm = numberOption('thickness', values.thickness, thicknessReader)
     const check = await runBundleCheck({ path: positionals[0]!, declaredLayers, thicknessMm })
-    io.out(`${JSON.stringify(check, null, 2)}\n`)
+    io.out(`${JSON.stringify(publicAnswer(check), null, 2)}\n`)
     return 0
   }
 }

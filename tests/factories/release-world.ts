@@ -28,7 +28,7 @@ export async function openReleaseWorld() {
     const answer = check.next
     await check.hook()
     const svg = (side: string) => `<svg xmlns="http://www.w3.org/2000/svg"><title>${side} ${path.length}</title></svg>`
-    return { check: answer, pictures: { top: svg('top'), bottom: svg('bottom') } }
+    return { check: answer, pictures: { top: svg('top'), bottom: svg('bottom'), thumbnails: null, layers: [] } }
   }
   const deps: IntakeDeps = { db, storage, now: () => clock.now, uploadDir, check: run }
   let files = 0
@@ -126,6 +126,7 @@ export const caution = (message = 'No paste layer.') => ({
   file: null,
   message,
   expected: null,
-  found: null
+  found: null,
+  place: null
 })
 export const stop = () => ({ ...caution('No outline.'), code: 'outline-missing' as const, severity: 'stop' as const })

@@ -1,4 +1,7 @@
 import type { FindingCode, Severity } from './finding-codes'
+import type { Box } from './geometry'
+import type { PartReading } from './part-reading.types'
+import type { Placed } from './read-placement'
 
 /** What a file of a bundle is for. The drill kinds say whether the holes are plated; `drill` when the file does not tell. */
 export type LayerFunction =
@@ -54,6 +57,10 @@ export type BundleFacts = {
   sha256: string | null
 }
 
+/** Where on the board a finding points, in mm as the layers count; the side is null where it concerns both or all layers. */
+export type FindingPlace = { x: number; y: number; side: 'top' | 'bottom' | null }
+
+/** `place` is kept for the pages and is no part of the public answer (see `publicAnswer`). */
 export type BundleFinding = {
   code: FindingCode
   severity: Severity
@@ -61,6 +68,7 @@ export type BundleFinding = {
   message: string
   expected: string | null
   found: string | null
+  place: FindingPlace | null
 }
 
 /** The answer of the bundle check. `ok` is false exactly when a `stop` stands among the findings. */
@@ -71,11 +79,79 @@ export type BundleCheck = {
   ok: boolean
 }
 
-/** Both sides drawn as sanitised SVG, or null where they could not be drawn. They stand beside the answer, not in it. */
-export type BundlePictures = { top: string; bottom: string }
+/** The answer as the API and the command line give it. */
+export function publicAnswer({ layers, facts, findings, ok }: BundleCheck) {
+  return {
+    layers,
+    facts,
+    findings: findings.map(({ code, severity, file, message, expected, found }) => ({
+      code,
+      severity,
+      file,
+      message,
+      expected,
+      found
+    })),
+    ok
+  }
+}
 
-/** What the release form says about the board, to compare the files with. */
-export type DeclaredDetails = { declaredLayers?: number; thicknessMm?: number }
+/**
+ * The geometry of one layer, or of all drilled holes, as a hash that does not depend on how the file was written: order, comments, dates,
+ * attributes, units and where 0, 0 lies do not count. Two releases of one board revision have the same.
+ */
+export type LayerFingerprint = {
+  function: 'copper' | 'outline' | 'drill'
+  side: LayerSide | null
+  index: number | null
+  file: string
+  fingerprint: string
+}
+
+/** One line of the bill of materials with what could be read out of its value. */
+export type BundlePart = {
+  designators: string[]
+  quantity: number | null
+  value: string
+  footprint: string
+  description: string
+  isFitted: boolean
+  reading: PartReading
+}
+
+/** What is kept of a bundle beside the answer: to compare releases, and for everything that is computed from the parts. */
+export type BundleRecord = {
+  /** The outline's box in mm, as the layers count; null without a closed outline. */
+  outline: Box | null
+  fingerprints: LayerFingerprint[]
+  parts: BundlePart[]
+  placements: Placed[]
+}
+
+/** One single layer drawn as sanitised SVG in one ink on nothing, seen from the top, its viewBox the same as that of both sides. */
+export type LayerPicture = { file: string; svg: string }
+
+/**
+ * Both sides drawn as sanitised SVG with their thumbnails as PNG, and each single layer. They stand beside the answer, not in it; where
+ * a layer could not be drawn it is left out, and where a side could not be drawn there is no `BundlePictures` at all.
+ */
+export type BundlePictures = {
+  top: string
+  bottom: string
+  thumbnails: { top: Uint8Array; bottom: Uint8Array } | null
+  layers: LayerPicture[]
+}
+
+/** An earlier published release of the same board revision, to compare with. */
+export type EarlierRelease = { version: string; fingerprints: LayerFingerprint[] }
+
+/** What the release form says about the board, and what was published of its revision before, to compare the files with. */
+export type DeclaredDetails = {
+  declaredLayers?: number
+  thicknessMm?: number
+  boardRevision?: string
+  earlier?: EarlierRelease[]
+}
 
 /** The steps of a check, in order, as they are reported while it runs. */
 export const checkSteps = ['read-zip', 'tell-layers', 'measure', 'compare-lists', 'draw'] as const

@@ -62,7 +62,7 @@ export async function drawPictures(
   const mark = createHash('sha256').update(stackup.top.svg).update(stackup.bottom.svg).digest('hex').slice(0, 8)
   const [top, bottom] = [draw('top', `t${mark}-`), draw('bottom', `b${mark}-`)]
   if (!top || !bottom || Math.max(top.length, bottom.length) > limits.pictureBytes) return null
-  return { top, bottom }
+  return { top, bottom, thumbnails: null, layers: [] }
 }
 
 /** Contours inside the board that are large enough to be cut-outs; what lies outside is a title or a dimension. */

@@ -1,7 +1,12 @@
-import type { BundleFinding } from './bundle-check.types'
+import type { BundleFinding, FindingPlace } from './bundle-check.types'
 import { findingCodes, type FindingCode } from './finding-codes'
 
-export type FindingDetails = { file?: string | null; expected?: string | number | null; found?: string | number | null }
+export type FindingDetails = {
+  file?: string | null
+  expected?: string | number | null
+  found?: string | number | null
+  place?: FindingPlace | null
+}
 
 const textOf = (value: string | number | null | undefined) => (value === undefined || value === null ? null : String(value))
 
@@ -13,7 +18,8 @@ export function finding(code: FindingCode, message: string, details: FindingDeta
     file: details.file ?? null,
     message,
     expected: textOf(details.expected),
-    found: textOf(details.found)
+    found: textOf(details.found),
+    place: details.place ?? null
   }
 }
 

@@ -1,7 +1,7 @@
 import { rm } from 'node:fs/promises'
 import type { Route } from './+types/endpoint'
 import { callerOf, countUse } from '~/domain/accounts/rate-limit.server'
-import type { DeclaredDetails } from '~/domain/bundle/bundle-check.types'
+import { publicAnswer, type DeclaredDetails } from '~/domain/bundle/bundle-check.types'
 import { readDeclaredDetails } from '~/domain/bundle/declared-details'
 import { runBundleCheck } from '~/domain/bundle/run-bundle-check.server'
 import { DomainError } from '~/lib/domain-error'
@@ -38,7 +38,7 @@ async function check(request: Request, declared: DeclaredDetails) {
   try {
     const onCrash = (detail: string) => log('warn', 'bundle-check-crashed', { detail })
     const answer = await runBundleCheck({ ...declared, path: file.path, signal: request.signal, onCrash })
-    return Response.json(answer, { headers: { 'Cache-Control': 'no-store' } })
+    return Response.json(publicAnswer(answer), { headers: { 'Cache-Control': 'no-store' } })
   } finally {
     await rm(file.path, { force: true })
   }
