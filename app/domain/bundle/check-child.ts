@@ -3,8 +3,8 @@ import { checkBundle } from './check-bundle.server'
 import type { ChildMessage, ChildOrder } from './check-child.types'
 
 /**
- * The child process of a bundle check: gets one order over IPC, reports its steps, sends the answer and then the pictures, and ends.
- * It is killed from outside when it takes too long; a crash takes only itself along.
+ * The child process of bundle checks: gets one order at a time over IPC, reports its steps, sends the answer and then the pictures, and says
+ * that it is free. It is killed from outside when it takes too long; a crash takes only itself along. It ends with its channel.
  */
 function send(message: ChildMessage): Promise<void> {
   return new Promise((resolve, reject) => {
@@ -30,9 +30,9 @@ async function run(order: ChildOrder): Promise<void> {
   await send({ kind: 'drawn', pictures })
 }
 
-process.once('message', (order: ChildOrder) => {
+process.on('message', (order: ChildOrder) => {
   run(order).then(
-    () => process.disconnect(),
+    () => send({ kind: 'free', residentBytes: process.memoryUsage.rss() }),
     (error: unknown) => {
       console.error(error)
       process.exit(1)

@@ -1,12 +1,8 @@
-import { fork, type ChildProcess } from 'node:child_process'
-import { existsSync } from 'node:fs'
 import { stat } from 'node:fs/promises'
-import { createRequire } from 'node:module'
-import { setPriority } from 'node:os'
-import { fileURLToPath, pathToFileURL } from 'node:url'
 import { DomainError } from '../../lib/domain-error'
 import { unknownFacts, type BundleCheck, type BundlePictures, type CheckStep, type DeclaredDetails } from './bundle-check.types'
 import type { ChildMessage, ChildOrder } from './check-child.types'
+import { CheckProcesses, type CheckProcess } from './check-processes.server'
 import { Queue } from './check-queue'
 import { finding } from './finding'
 import { defaultLimits, type CheckLimits } from './limits'
@@ -24,10 +20,11 @@ export type CheckWithPictures = { check: BundleCheck; pictures: BundlePictures |
 
 /** At most two checks at once; more than fifty waiting are turned away. */
 const queue = new Queue(2, 50)
+const processes = new CheckProcesses()
 
 /**
- * Checks a bundle in a child process of its own, which is killed when it exceeds its time; its memory is bounded and its environment
- * empty. A child that is killed or dies gives a `check-cut-off` finding.
+ * Checks a bundle in a child process that does nothing else meanwhile and is killed when it exceeds its time; its memory is bounded and its
+ * environment empty. A child that is killed or dies gives a `check-cut-off` finding.
  *
  * @throws DomainError `not-found` where the file does not exist, `rate-limited` when too many checks wait
  * @throws the signal's reason when aborted
@@ -49,15 +46,24 @@ async function runChild(input: CheckInput, limits: CheckLimits, withPictures: bo
     return { check: failed(bytes, finding('zip-too-large', 'The zip is larger than a bundle may be.', details)), pictures: null }
   }
   const { path, declaredLayers, thicknessMm } = input
-  return follow(startChild(limits), { path, declared: { declaredLayers, thicknessMm }, limits, withPictures }, bytes, input)
+  const order = { path, declared: { declaredLayers, thicknessMm }, limits, withPictures }
+  for (;;) {
+    const outcome = await follow(processes.take(limits.heapMib), order, bytes, input)
+    if (outcome) return outcome
+  }
 }
 
-/** Waits for the child's answer, its death, the end of its time or the caller's signal, whichever comes first. */
-function follow(child: ChildProcess, order: ChildOrder, bytes: number, input: CheckInput): Promise<CheckWithPictures> {
+/**
+ * Waits for the child's answer, its death, the end of its time or the caller's signal, whichever comes first. Null when a process that had been
+ * waiting turned out to be dead before it heard the order.
+ */
+function follow(process: CheckProcess, order: ChildOrder, bytes: number, input: CheckInput): Promise<CheckWithPictures | null> {
+  const { child } = process
   return new Promise((resolve, reject) => {
     let check: BundleCheck | null = null
     let pictures: BundlePictures | null = null
     let isLate = false
+    let hasHeard = process.checks === 0
     let lastWords = ''
     const kill = () => child.kill('SIGKILL')
     const timer = setTimeout(() => {
@@ -67,14 +73,25 @@ function follow(child: ChildProcess, order: ChildOrder, bytes: number, input: Ch
     input.signal?.addEventListener('abort', kill, { once: true })
     child.stderr?.on('data', (chunk: Buffer) => (lastWords += chunk.toString().slice(0, Math.max(0, 4000 - lastWords.length))))
     child.on('message', (message: ChildMessage) => {
+      hasHeard = true
       if (message.kind === 'step') input.onProgress?.(message.step)
       else if (message.kind === 'checked') check = message.check
-      else pictures = message.pictures
+      else if (message.kind === 'drawn') pictures = message.pictures
+      else {
+        stopWaiting()
+        processes.release(process, message.residentBytes)
+        if (input.signal?.aborted) reject(input.signal.reason as Error)
+        else resolve({ check: check!, pictures })
+      }
     })
-    const end = (code: number | null, signal: string | null) => {
+    const stopWaiting = () => {
       clearTimeout(timer)
       input.signal?.removeEventListener('abort', kill)
+    }
+    const end = (code: number | null, signal: string | null) => {
+      stopWaiting()
       if (input.signal?.aborted) return reject(input.signal.reason as Error)
+      if (!hasHeard && !isLate) return resolve(null)
       if (!check || code !== 0) input.onCrash?.(`code ${code}, signal ${signal}: ${lastWords}`)
       resolve({ check: check ?? failed(bytes, cutOff(isLate, order.limits, signal ?? `exit ${code}`)), pictures })
     }
@@ -112,37 +129,4 @@ async function sizeOf(path: string): Promise<number> {
   if (!stats?.isFile())
     throw new DomainError('not-found', 'The file does not exist or is no file.', [{ path: 'file', message: 'No such file' }])
   return stats.size
-}
-
-function startChild(limits: CheckLimits): ChildProcess {
-  const { entry, loader } = childEntry()
-  const child = fork(entry, [], {
-    execArgv: [...loader, `--max-old-space-size=${limits.heapMib}`],
-    // Nothing of the server's configuration reaches the child.
-    env: { NODE_ENV: process.env.NODE_ENV ?? 'production' },
-    serialization: 'advanced',
-    stdio: ['ignore', 'ignore', 'pipe', 'ipc']
-  })
-  if (child.pid !== undefined) {
-    try {
-      setPriority(child.pid, 10)
-    } catch {
-      // Putting requests before checks is a nicety: without the right to it the check runs all the same.
-    }
-  }
-  return child
-}
-
-/** In the built server the child lies beside its bundle; from the sources it runs through tsx. */
-function childEntry(): { entry: string; loader: string[] } {
-  const here = import.meta.url
-  if (!here.endsWith('.ts')) {
-    const built = ['./check-child.js', '../check-child.js']
-      .map((name) => fileURLToPath(new URL(name, here)))
-      .find((path) => existsSync(path))
-    if (!built) throw new Error('The build lacks check-child.js')
-    return { entry: built, loader: [] }
-  }
-  const tsx = pathToFileURL(createRequire(here).resolve('tsx')).href
-  return { entry: fileURLToPath(new URL('./check-child.ts', here)), loader: ['--import', tsx] }
 }
