@@ -83,7 +83,8 @@ function checkOutline({ outline, outlineFile }: BundleReading): BundleFinding[] 
     finding('outline-open', message, {
       file: outlineFile.layer.file,
       expected: 'a closed contour',
-      found: gap === null ? null : `a gap of ${mm(gap)}`
+      found: gap === null ? null : `a gap of ${mm(gap)}`,
+      place: outlineFile.image && outlineFile.image.objects > 0 ? { x, y, side: null } : null
     })
   ]
 }

@@ -43,6 +43,6 @@ function checkHolesOnOutline(reading: BundleReading): BundleFinding[] {
     if (cut.length === 0) return []
     const [x, y] = holeCentre(cut[0]!)
     const message = `${cut.length} ${cut.length === 1 ? 'hole is' : 'holes are'} cut by the outline, as plated half-holes are; the first at ${mm(x)}, ${mm(y)}.`
-    return [finding('hole-on-outline', message, { file: file.layer.file, found: cut.length })]
+    return [finding('hole-on-outline', message, { file: file.layer.file, found: cut.length, place: { x, y, side: null } })]
   })
 }

@@ -107,7 +107,8 @@ function outsideFinding(outside: Placed[], file: string | null): BundleFinding {
   const [first] = outside
   const names = listed(outside.map((part) => part.designator))
   const message = `${names} ${outside.length === 1 ? 'is' : 'are'} placed outside the board; the first at ${mm(first!.x)}, ${mm(first!.y)}.`
-  return finding('placement-outside', message, { file, expected: 'inside the outline', found: names })
+  const place = { x: first!.x, y: first!.y, side: first!.side }
+  return finding('placement-outside', message, { file, expected: 'inside the outline', found: names, place })
 }
 
 function compareLists({ bom, bomFile, placement, placementFile }: BundleReading): BundleFinding[] {

@@ -21,6 +21,8 @@ export type Aperture = {
   /** The short and long side in mm of circles, rectangles and obrounds. */
   size: [number, number] | null
   aperFunction: string | null
+  /** Of a macro: x, y and radius in mm of its corners and rounds. */
+  dots?: number[]
   /** Primitives that one flash draws. */
   primitives: number
   /** Of a block: what it holds, and how many objects one flash of it comes to. */
@@ -83,12 +85,12 @@ export function defineAperture(
   const macro = macros.get(name)
   if (!macro) throw new GerberNonsense(`aperture D${code} uses the undefined macro ${name.slice(0, 40)}`)
   if (macro.statements.length > limits.macroPrimitives) throw new TooComplex(`aperture macro ${name.slice(0, 40)}`)
-  const { box, primitives } = macroExtents(macro, values)
+  const { box, primitives, dots } = macroExtents(macro, values)
   const scaled =
     primitives === 0
       ? around(0, 0)
       : { minX: box.minX * unit, minY: box.minY * unit, maxX: box.maxX * unit, maxY: box.maxY * unit }
-  return { code, aperture: { ...base, shape: 'macro', box: scaled, primitives } }
+  return { code, aperture: { ...base, shape: 'macro', box: scaled, primitives, dots: dots.map((value) => value * unit) } }
 }
 
 /** Where a point of a flashed aperture comes to lie, relative to the flash. */

@@ -11,6 +11,16 @@ const largestPad = 8
 
 export type Stroke = { points: Path; aperture: Aperture }
 
+/** Looks on while a layer is drawn, object by object with blocks and steps counted out, clear ones among them; keeps what it needs. */
+export type DrawingWatch = {
+  stroke(points: Path, aperture: Aperture, isDark: boolean): void
+  region(points: Path, isDark: boolean): void
+  flash(x: number, y: number, aperture: Aperture, placing: Placing, isDark: boolean): void
+}
+
+/** Which objects to keep besides counting them, and who looks on. */
+export type Keeping = { strokes: boolean; flashes: boolean; watches?: readonly DrawingWatch[] }
+
 /**
  * What a Gerber file draws, as far as a check needs it: extents, strokes, flashes, the thinnest lines; within a budget of objects.
  * Blocks and steps are recorded once and drawn again at each of their places.
@@ -30,7 +40,7 @@ export class GerberCanvas {
 
   constructor(
     private readonly limits: CheckLimits,
-    private readonly keep: { strokes: boolean; flashes: boolean }
+    private readonly keep: Keeping
   ) {}
 
   /** Counts work; throws TooComplex past the budget. */
@@ -102,6 +112,7 @@ export class GerberCanvas {
   }
 
   private drawPath(points: Path, aperture: Aperture, isDark: boolean): void {
+    for (const watch of this.keep.watches ?? []) watch.stroke(points, aperture, isDark)
     if (!isDark) return
     this.objects++
     const halfX = (aperture.box.maxX - aperture.box.minX) / 2
@@ -120,7 +131,9 @@ export class GerberCanvas {
   }
 
   private drawRegion(points: Path, isDark: boolean): void {
-    if (!isDark || points.length < 6) return
+    if (points.length < 6) return
+    for (const watch of this.keep.watches ?? []) watch.region(points, isDark)
+    if (!isDark) return
     this.objects++
     const box = boxOf(points)
     growBox(this.box, box.minX, box.minY)
@@ -150,6 +163,7 @@ export class GerberCanvas {
     this.shapes += aperture.primitives
     if (this.shapes > this.limits.macroShapes)
       throw new TooComplex(`more than ${this.limits.macroShapes} shapes in aperture macros`)
+    for (const watch of this.keep.watches ?? []) watch.flash(x, y, aperture, placing, isDark)
     if (!isDark) return
     this.objects++
     const { minX, minY, maxX, maxY } = aperture.box

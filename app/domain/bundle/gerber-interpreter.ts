@@ -2,7 +2,7 @@ import type { Path } from './geometry'
 import { defineAperture, upright, type Aperture, type Placing } from './gerber-apertures'
 import { gerberArc } from './gerber-arc'
 import { hasMarkup, parseAttribute, parseCommentAttribute, textOf, type Attribute } from './gerber-attributes'
-import { GerberCanvas } from './gerber-canvas'
+import { GerberCanvas, type Keeping } from './gerber-canvas'
 import { GerberNonsense, TooComplex, type Macro } from './gerber-macro'
 import { excerpt, GerberWord } from './gerber-words'
 import type { CheckLimits } from './limits'
@@ -44,7 +44,7 @@ export class GerberInterpreter {
 
   constructor(
     private readonly limits: CheckLimits,
-    keep: { strokes: boolean; flashes: boolean }
+    keep: Keeping
   ) {
     this.canvas = new GerberCanvas(limits, keep)
   }

@@ -65,13 +65,15 @@ export function evaluate(expression: string, variables: readonly (number | undef
 const required: Record<number, number> = { 1: 4, 2: 7, 20: 7, 21: 6, 22: 6, 4: 5, 5: 6, 6: 9, 7: 6 }
 
 /**
- * The extents of a macro aperture with its parameters, in the file's unit, and how many primitives it draws.
+ * The extents of a macro aperture with its parameters, in the file's unit, how many primitives it draws, and its dots: x, y and radius of
+ * the corners and rounds of everything it exposes, whose hull is the shape as far as it bulges outwards.
  *
  * Source: Gerber Layer Format Specification 2024.05, section 4.5; codes 2, 6 and 22 are deprecated there and still read.
  */
-export function macroExtents(macro: Macro, parameters: readonly number[]): { box: Box; primitives: number } {
+export function macroExtents(macro: Macro, parameters: readonly number[]): { box: Box; primitives: number; dots: number[] } {
   const variables: (number | undefined)[] = [undefined, ...parameters]
   const box = emptyBox()
+  const dots: number[] = []
   let primitives = 0
   for (const statement of macro.statements) {
     if (/^\s*0(\D|$)/.test(statement)) continue
@@ -88,16 +90,20 @@ export function macroExtents(macro: Macro, parameters: readonly number[]): { box
       throw new GerberNonsense(`aperture macro ${macro.name.slice(0, 40)} uses the unknown primitive ${code}`)
     if (values.length < least - 1) throw new GerberNonsense(`aperture macro ${macro.name.slice(0, 40)} lacks values`)
     primitives++
-    grow(box, code, values)
+    const isErasing = code !== 6 && code !== 7 && values[0] === 0
+    grow(box, code, values, isErasing ? null : dots)
   }
-  return { box, primitives }
+  return { box, primitives, dots }
 }
 
-/** Grows the box by one primitive. */
-function grow(box: Box, code: number, v: number[]): void {
+/** Grows the box by one primitive, and adds its corners (x, y, 0) and rounds (x, y, radius) to the dots. */
+function grow(box: Box, code: number, v: number[], dots: number[] | null): void {
   const at = (x: number, y: number, half: number, rotation: number) => {
     const angle = (rotation * Math.PI) / 180
-    growBox(box, x * Math.cos(angle) - y * Math.sin(angle), x * Math.sin(angle) + y * Math.cos(angle), half)
+    const turnedX = x * Math.cos(angle) - y * Math.sin(angle)
+    const turnedY = x * Math.sin(angle) + y * Math.cos(angle)
+    growBox(box, turnedX, turnedY, half)
+    dots?.push(turnedX, turnedY, half)
   }
   const corners = (x0: number, y0: number, x1: number, y1: number, rotation: number) => {
     for (const [x, y] of [

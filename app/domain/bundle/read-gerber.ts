@@ -1,5 +1,5 @@
 import { emptyBox, type Box, type Path } from './geometry'
-import type { Flashes, Stroke } from './gerber-canvas'
+import type { Flashes, Keeping, Stroke } from './gerber-canvas'
 import { GerberInterpreter } from './gerber-interpreter'
 import { GerberNonsense, TooComplex } from './gerber-macro'
 import type { CheckLimits } from './limits'
@@ -36,7 +36,7 @@ export type GerberImage = {
  *
  * @param keep which objects to keep besides counting them: strokes and regions for an outline, flashes for alignment
  */
-export function readGerber(bytes: Uint8Array, limits: CheckLimits, keep: { strokes: boolean; flashes: boolean }): GerberImage {
+export function readGerber(bytes: Uint8Array, limits: CheckLimits, keep: Keeping): GerberImage {
   const interpreter = new GerberInterpreter(limits, keep)
   let problem: ReadProblem | null = null
   try {
