@@ -1,4 +1,6 @@
 import type { BundleFinding, BundleLayer, DeclaredDetails } from './bundle-check.types'
+import type { BoardArea } from './board-area'
+import type { EdgeExcess } from './edge-watch'
 import type { FileKind } from './file-kind'
 import type { Role } from './name-layer'
 import type { Outline } from './outline-contours'
@@ -22,6 +24,8 @@ export type FileReading = {
   /** Holes of a drill file of either format, in mm. */
   holes: Hole[] | null
   drillFormat: DrillFormat | null
+  /** Of a copper layer: what it draws past the board's edge; null where there is no closed outline. */
+  excess: EdgeExcess | null
   /** The copper layers that a drill file's holes run between, as its attribute says; null for all. */
   span: [number, number] | null
   /** Set once something was found wrong with the file itself, so that checks resting on it are left out. */
@@ -38,6 +42,8 @@ export type BundleReading = {
   placementFile: string | null
   outline: Outline | null
   outlineFile: FileReading | null
+  /** The board's area by the outline, ready to be asked; null without a closed one. */
+  area: BoardArea | null
   declared: DeclaredDetails
 }
 

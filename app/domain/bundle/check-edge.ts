@@ -1,45 +1,122 @@
 import { holeCentre } from './alignment'
+import type { BoardArea } from './board-area'
 import type { BundleFinding } from './bundle-check.types'
 import type { BundleReading, FileReading } from './bundle-reading.types'
-import { finding, mm } from './finding'
-import { distanceToEdge } from './geometry'
+import type { EdgeSpot } from './edge-watch'
+import { finding, listed, mm } from './finding'
+import { distanceToEdge, isInside } from './geometry'
+import type { Hole } from './read-excellon'
+
+/** A pad of a half-hole reaches this far past its hole, in mm. */
+const halfHolePad = 1.2
 
 /** What lies across the board's edge: copper past it, holes cut by it. Both may be meant. */
 export function checkEdge(reading: BundleReading, copper: FileReading[]): BundleFinding[] {
   return [...checkCopperEdge(reading, copper), ...checkHolesOnOutline(reading)]
 }
 
-const edgeNames = ['left', 'right', 'lower', 'upper'] as const
+const drilled = (reading: BundleReading) =>
+  reading.files.filter((file) => file.layer.function.startsWith('drill') && !file.isBroken && file.holes)
 
-/** Copper that reaches past the outline, as plated half-holes do on purpose. */
+/** Copper that reaches past the outline or into a cut-out, as plated half-holes do on purpose. */
 function checkCopperEdge(reading: BundleReading, copper: FileReading[]): BundleFinding[] {
-  const board = reading.outline?.box
-  if (!board || reading.outlineFile?.isBroken) return []
-  const worst = new Map<string, number>()
-  const files: string[] = []
-  for (const file of copper) {
-    const box = file.image?.box
-    if (!box || file.isBroken) continue
-    const past = [board.minX - box.minX, box.maxX - board.maxX, board.minY - box.minY, box.maxY - board.maxY]
-    if (past.every((by) => by <= 0.05)) continue
-    files.push(file.layer.file)
-    past.forEach((by, i) => {
-      if (by > 0.05) worst.set(edgeNames[i]!, Math.max(by, worst.get(edgeNames[i]!) ?? 0))
-    })
+  const { area } = reading
+  if (!area || reading.outlineFile?.isBroken) return []
+  const layers = copper.filter((file) => !file.isBroken && file.excess)
+  const passed = notMilled(reading, area, layers)
+  const found = layers
+    .map((file) => ({ file, spots: file.excess!.spots.filter(({ contour }) => !passed.has(contour)) }))
+    .filter(({ spots }) => spots.length > 0)
+  if (found.length === 0) return []
+  const half = halfHoles(reading, area)
+  const isAtHalfHole = ({ x, y }: EdgeSpot) => half.some((hole) => distanceToHole(hole, x, y) <= hole.diameter / 2 + halfHolePad)
+  const all = found.flatMap(({ file, spots }) => spots.map((spot) => ({ ...spot, file })))
+  const others = all.filter((spot) => !isAtHalfHole(spot))
+  const worst = byPlace(others.length > 0 ? others : all)
+  const first = worst[0]!
+  const { side } = first.file.layer
+  const place = { x: first.x, y: first.y, side: side === 'inner' ? null : side }
+  const count = `on ${found.length} ${found.length === 1 ? 'layer' : 'layers'}`
+  const at = `, the farthest at ${mm(first.x)}, ${mm(first.y)}`
+  const message =
+    others.length === 0
+      ? `Copper reaches past the outline ${count} where plated holes are cut by it: plated half-holes on purpose, or a mistake.`
+      : others.length < all.length
+        ? `Copper reaches past the outline ${count}, beside plated half-holes also where there are none${at}.`
+        : `Copper reaches past the outline ${count}${at}: edge plating on purpose, or a mistake.`
+  const details = {
+    file: first.file.layer.file,
+    expected: 'copper inside the outline',
+    found: listed(
+      worst.map((spot) => wording(spot, area)),
+      6
+    ),
+    place
   }
-  if (files.length === 0) return []
-  const found = [...worst].map(([edge, by]) => `${mm(by)} past the ${edge} edge`).join(', ')
-  const message = `Copper reaches past the outline on ${files.length} ${files.length === 1 ? 'layer' : 'layers'}: plated half-holes on purpose, or a mistake.`
-  return [finding('copper-past-outline', message, { file: files[0]!, expected: 'copper inside the outline', found })]
+  return [finding('copper-past-outline', message, details)]
+}
+
+type Spot = EdgeSpot & { file: FileReading }
+
+/** The worst place of each side and cut-out, the worst of all first. */
+function byPlace(spots: Spot[]): Spot[] {
+  const worst = new Map<string, Spot>()
+  for (const spot of spots) {
+    const key = `${spot.contour} ${spot.side}`
+    const known = worst.get(key)
+    if (!known || known.by < spot.by) worst.set(key, spot)
+  }
+  return [...worst.values()].sort((a, b) => b.by - a.by)
+}
+
+function wording({ by, side, contour, x, y }: EdgeSpot, area: BoardArea): string {
+  if (side === 'cut-out')
+    return `${mm(by)} into the cut-out at ${mm(area.contours[contour]!.x)}, ${mm(area.contours[contour]!.y)}`
+  if (side === 'edge') return `${mm(by)} past the edge at ${mm(x)}, ${mm(y)}`
+  return `${mm(by)} past the ${side} edge`
+}
+
+/**
+ * Closed contours inside the board that are not milled out of the copper: what a single pad covers whole is a plated slot, what a drilled
+ * hole fills is drawn twice, and what many holes lie in is a board of a panel or a drawing of a part.
+ */
+function notMilled(reading: BundleReading, area: BoardArea, layers: FileReading[]): Set<number> {
+  const passed = new Set<number>(layers.flatMap((file) => [...file.excess!.covered]))
+  const holes = drilled(reading).flatMap((file) => file.holes!)
+  area.contours.forEach(({ isCutout, path, box, depth }, index) => {
+    if (!isCutout || passed.has(index)) return
+    let count = 0
+    for (const hole of holes) {
+      const [x, y] = holeCentre(hole)
+      if (x < box.minX || x > box.maxX || y < box.minY || y > box.maxY || !isInside(path, x, y)) continue
+      count++
+      if (count > 2 || hole.diameter / 2 >= depth * 0.7) passed.add(index)
+    }
+  })
+  return passed
+}
+
+/** Plated holes that the edge cuts. */
+function halfHoles(reading: BundleReading, area: BoardArea): Hole[] {
+  return drilled(reading).flatMap((file) =>
+    file.holes!.filter((hole) => {
+      if ((hole.plating ?? (file.layer.function === 'drill-nonplated' ? 'non-plated' : 'plated')) !== 'plated') return false
+      return area.nearest(...holeCentre(hole), hole.diameter / 2).segment >= 0
+    })
+  )
+}
+
+function distanceToHole({ x, y, toX, toY }: Hole, px: number, py: number): number {
+  if (toX === null || toY === null) return Math.hypot(px - x, py - y)
+  return distanceToEdge([x, y, toX, toY], px, py)
 }
 
 /** Holes that the outline cuts through. */
 function checkHolesOnOutline(reading: BundleReading): BundleFinding[] {
   const { contour, box } = reading.outline ?? {}
   if (!contour || !box || reading.outlineFile?.isBroken) return []
-  return reading.files.flatMap((file) => {
-    if (file.isBroken || !file.layer.function.startsWith('drill') || !file.holes) return []
-    const cut = file.holes.filter((hole) => distanceToEdge(contour, ...holeCentre(hole)) < hole.diameter / 2 - 0.01)
+  return drilled(reading).flatMap((file) => {
+    const cut = file.holes!.filter((hole) => distanceToEdge(contour, ...holeCentre(hole)) < hole.diameter / 2 - 0.01)
     if (cut.length === 0) return []
     const [x, y] = holeCentre(cut[0]!)
     const message = `${cut.length} ${cut.length === 1 ? 'hole is' : 'holes are'} cut by the outline, as plated half-holes are; the first at ${mm(x)}, ${mm(y)}.`

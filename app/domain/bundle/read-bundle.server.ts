@@ -1,6 +1,8 @@
 import { indexFlashes } from './alignment'
+import { BoardArea } from './board-area'
 import type { BundleFinding, CheckStep, DeclaredDetails } from './bundle-check.types'
 import type { BundleReading, FileReading } from './bundle-reading.types'
+import { EdgeWatch } from './edge-watch'
 import { kindOf, roleOfOtherFile, roleOfSupposedLayer } from './file-kind'
 import { finding } from './finding'
 import { readFileAttributes, textOf } from './gerber-attributes'
@@ -58,7 +60,20 @@ export async function tellLayers(source: BundleSource, limits: CheckLimits): Pro
   const roles = decideRoles(named)
   return named.map(({ path, kind, size, span }, i) => {
     const { isUndecided, conflict, ...layer } = roles[i]!
-    return { layer, path, kind, size, conflict, isUndecided, image: null, holes: null, drillFormat: null, span, isBroken: false }
+    return {
+      layer,
+      path,
+      kind,
+      size,
+      conflict,
+      isUndecided,
+      image: null,
+      holes: null,
+      drillFormat: null,
+      excess: null,
+      span,
+      isBroken: false
+    }
   })
 }
 
@@ -105,6 +120,7 @@ export async function readBundle(
     placementFile: null,
     outline: null,
     outlineFile: null,
+    area: null,
     declared
   }
   const findings: BundleFinding[] = []
@@ -112,24 +128,36 @@ export async function readBundle(
   const bytesOf = (file: FileReading) => source.read(byPath.get(file.path)!)
 
   onStep('measure')
-  for (const file of files) {
-    if (file.kind === 'empty' || !isLayerRole(file.layer.function) || file.kind === 'drill') continue
-    if (file.layer.function === 'other' && file.kind !== 'gerber') continue
+  const readLayer = async (file: FileReading) => {
     const bytes = await bytesOf(file)
     const fn = file.layer.function
     const isDrill = fn.startsWith('drill')
     if (file.kind !== 'gerber') {
       file.image = noImage({ kind: 'unreadable', message: `it is no ${isDrill ? 'drill' : 'Gerber'} file`, found: file.kind })
-      continue
+      return
     }
+    const edge = fn === 'copper' && reading.area ? new EdgeWatch(reading.area) : null
     file.image = safely(() =>
       readGerber(bytes, limits, {
         strokes: isDrill || fn === 'outline',
-        flashes: isDrill || fn === 'copper' || fn === 'soldermask'
+        flashes: isDrill || fn === 'copper' || fn === 'soldermask',
+        watches: edge ? [edge] : []
       })
     )
+    file.excess = edge
     if (isDrill && !file.image.problem) file.holes = holesOfGerber(file.image)
   }
+  const layers = files.filter(
+    (file) =>
+      file.kind !== 'empty' &&
+      file.kind !== 'drill' &&
+      isLayerRole(file.layer.function) &&
+      (file.layer.function !== 'other' || file.kind === 'gerber')
+  )
+  // The outline goes first: copper is compared with it while it is drawn.
+  for (const file of layers) if (file.layer.function === 'outline') await readLayer(file)
+  chooseOutline(reading, limits)
+  for (const file of layers) if (file.layer.function !== 'outline') await readLayer(file)
   const pads = files
     .filter((file) => file.layer.function === 'copper' && file.image && !file.image.problem && file.image.flashes.x.length > 0)
     .map((file) => indexFlashes(file.image!.flashes))
@@ -149,7 +177,6 @@ export async function readBundle(
     }
     file.image = safely(read)
   }
-  chooseOutline(reading, limits)
   for (const file of files) {
     if (file.layer.function === 'job' && !reading.job) reading.job = readJob(await bytesOf(file))
   }
@@ -196,6 +223,7 @@ function chooseOutline(reading: BundleReading, limits: CheckLimits): void {
     reading.outline = outline
     reading.outlineFile = file
   }
+  reading.area = BoardArea.of(reading.outline)
 }
 
 async function readLists(
