@@ -11,6 +11,10 @@ const benches: Record<string, { what: string; run(args: string[]): Promise<Claim
   'check-load': {
     what: "the built server's answers while four checks run [FILE.zip]",
     run: async (args) => (await import('./check-load')).checkLoad(args[0])
+  },
+  survival: {
+    what: "the survival estimators beside R's survival and npsurv packages",
+    run: async () => (await import('./survival')).survival()
   }
 }
 
