@@ -115,6 +115,7 @@ export type ReleasesTable = {
   picture_bottom_sha256: string | null
   thumb_top_sha256: string | null
   thumb_bottom_sha256: string | null
+  picture_box_json: string | null
   /** The outline's box in mm as the layers count: minX, minY, maxX, maxY. */
   outline_json: string | null
   created_at: string
@@ -190,7 +191,10 @@ export type LayerFingerprintsTable = {
 export type LayerPicturesTable = {
   release_id: string
   position: number
-  file: string
+  file: string | null
+  function: 'copper' | 'soldermask' | 'paste' | 'legend' | 'outline' | 'drill'
+  side: 'top' | 'bottom' | 'inner' | null
+  layer_index: number | null
   sha256: string
 }
 

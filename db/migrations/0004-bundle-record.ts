@@ -7,6 +7,9 @@ const statements = [
   "alter table findings add column place_side text check (place_side in ('top', 'bottom'))",
   'alter table releases add column thumb_top_sha256 text',
   'alter table releases add column thumb_bottom_sha256 text',
+  'alter table releases add column picture_box_json text',
+  'create index releases_by_thumb_top on releases (thumb_top_sha256)',
+  'create index releases_by_thumb_bottom on releases (thumb_bottom_sha256)',
   'alter table releases add column outline_json text',
   `create table bom_lines (
     release_id text not null references releases (id) on delete cascade,
@@ -43,7 +46,10 @@ const statements = [
   `create table layer_pictures (
     release_id text not null references releases (id) on delete cascade,
     position integer not null,
-    file text not null,
+    file text,
+    function text not null check (function in ('copper', 'soldermask', 'paste', 'legend', 'outline', 'drill')),
+    side text check (side in ('top', 'bottom', 'inner')),
+    layer_index integer,
     sha256 text not null,
     primary key (release_id, position)
   ) strict, without rowid`,

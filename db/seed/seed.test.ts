@@ -126,7 +126,8 @@ describe('the seeded world', () => {
     const rows = await db
       .selectFrom('releases')
       .innerJoin('boards', 'boards.id', 'releases.board_id')
-      .select(['boards.slug', 'version', 'facts_json', 'is_check_ok', 'picture_top_sha256', 'picture_bottom_sha256'])
+      .selectAll('releases')
+      .select('boards.slug')
       .execute()
     for (const row of rows) {
       const manifest = readManifests().find((m) => m.board === row.slug && m.version === row.version)!
@@ -137,6 +138,13 @@ describe('the seeded world', () => {
         expect(sha256).not.toBeNull()
         expect(await storage.head(objectKey('picture', sha256!))).toMatchObject({ contentType: 'image/svg+xml' })
       }
+      for (const sha256 of [row.thumb_top_sha256, row.thumb_bottom_sha256])
+        expect(await storage.head(objectKey('picture', sha256!))).toMatchObject({ contentType: 'image/png' })
+      const layers = await db.selectFrom('layer_pictures').selectAll().where('release_id', '=', row.id).execute()
+      expect(layers.filter((layer) => layer.function === 'copper')).toHaveLength(manifest.declared.copperLayers)
+      expect(layers.at(-1)).toMatchObject({ function: 'drill', file: null })
+      for (const { sha256 } of layers)
+        expect(await storage.head(objectKey('picture', sha256))).toMatchObject({ contentType: 'image/svg+xml' })
     }
     const open = await db.selectFrom('findings').select(['code', 'severity', 'answer']).where('severity', '<>', 'note').execute()
     expect(open.length).toBeGreaterThan(0)
@@ -144,10 +152,20 @@ describe('the seeded world', () => {
   })
 
   it('puts back what storage lost', async () => {
-    const key = objectKey('bundle', readManifests()[3]!.bundle.sha256)
-    await storage.remove(key)
-    expect(await seedDemo({ db, storage }, { check })).toBe('present')
-    expect(await storage.head(key)).not.toBeNull()
+    const { sha256 } = await db
+      .selectFrom('layer_pictures')
+      .select('sha256')
+      .where('function', '=', 'drill')
+      .executeTakeFirstOrThrow()
+    const { thumb_top_sha256: thumb } = await db.selectFrom('releases').select('thumb_top_sha256').executeTakeFirstOrThrow()
+    for (const key of [
+      objectKey('bundle', readManifests()[3]!.bundle.sha256),
+      ...[sha256, thumb!].map((sha) => objectKey('picture', sha))
+    ]) {
+      await storage.remove(key)
+      expect(await seedDemo({ db, storage }, { check })).toBe('present')
+      expect(await storage.head(key)).not.toBeNull()
+    }
   })
 
   it('leaves nothing behind when a bundle does not pass', async () => {

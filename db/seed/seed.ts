@@ -1,7 +1,7 @@
-import { createHash } from 'node:crypto'
 import type { Insertable } from 'kysely'
 import type { BundleCheck, BundlePictures, DeclaredDetails } from '~/domain/bundle/bundle-check.types'
 import { runBundleCheckWithPictures } from '~/domain/bundle/run-bundle-check.server'
+import { keepLayerPictures, objectsOfRelease, storePictures, type StoredPictures } from '~/domain/releases/store-pictures.server'
 import { mustReadVersion, precedenceKey } from '~/domain/releases/version'
 import { addDays } from '~/lib/dates'
 import { objectKey, type Storage } from '~/server/storage.server'
@@ -28,7 +28,7 @@ export type SeedOptions = {
 export const realCheck: NonNullable<SeedOptions['check']> = runBundleCheckWithPictures
 
 type Rows<T extends keyof Schema> = Insertable<Schema[T]>[]
-type Checked = { manifest: Manifest; check: BundleCheck; pictureTop: string | null; pictureBottom: string | null }
+type Checked = { manifest: Manifest; check: BundleCheck; pictures: StoredPictures }
 
 /**
  * Fills a migrated database and an object storage with the demo world: everything or nothing, the same rows every time. Run again it
@@ -64,10 +64,11 @@ export async function seedDemo(
   await db.transaction().execute(async (tx) => {
     for (const table of ['users', 'consoles', 'console_revisions', 'boards', 'board_maintainers', 'fit_claims'] as const)
       await insertRows(tx, table, world[table])
-    for (const { release, files, findings, audit } of releases) {
+    for (const { release, files, findings, pictures, audit } of releases) {
       await insertRows(tx, 'releases', [release])
       await insertRows(tx, 'release_files', files)
       await insertRows(tx, 'findings', findings)
+      await keepLayerPictures(tx, release.id, pictures)
       await insertRows(tx, 'audit_log', audit)
     }
     for (const table of ['batches', 'units', 'install_reports', 'check_ins', 'failures', 'downloads'] as const)
@@ -81,7 +82,7 @@ export async function seedDemo(
 async function lacksObjects(db: Db, storage: Storage): Promise<boolean> {
   const rows = await db
     .selectFrom('releases')
-    .select(['bundle_sha256', 'picture_top_sha256', 'picture_bottom_sha256'])
+    .select(['id', 'bundle_sha256', 'picture_top_sha256', 'picture_bottom_sha256', 'thumb_top_sha256', 'thumb_bottom_sha256'])
     .where(
       'board_id',
       'in',
@@ -89,11 +90,7 @@ async function lacksObjects(db: Db, storage: Storage): Promise<boolean> {
     )
     .where('state', '<>', 'draft')
     .execute()
-  for (const row of rows) {
-    const pictures = [row.picture_top_sha256, row.picture_bottom_sha256].filter((sha) => sha !== null)
-    for (const key of [objectKey('bundle', row.bundle_sha256!), ...pictures.map((sha) => objectKey('picture', sha))])
-      if ((await storage.head(key)) === null) return true
-  }
+  for (const row of rows) for (const key of await objectsOfRelease(db, row)) if ((await storage.head(key)) === null) return true
   return false
 }
 
@@ -115,31 +112,20 @@ async function checkAndStore(storage: Storage, options: SeedOptions): Promise<Ch
         contentType: 'application/zip',
         ifAbsent: true
       })
-      return {
-        manifest,
-        check: found,
-        pictureTop: await putPicture(storage, pictures?.top),
-        pictureBottom: await putPicture(storage, pictures?.bottom)
+      const put = async (key: string, sum: string, content: { body: Buffer; contentType: string }) => {
+        await storage.putFile({ key, ...content, bytes: content.body.length, sha256: sum, ifAbsent: true })
       }
+      return { manifest, check: found, pictures: await storePictures(put, pictures) }
     })
   )
 }
 
-async function putPicture(storage: Storage, svg: string | undefined): Promise<string | null> {
-  if (!svg) return null
-  const body = Buffer.from(svg, 'utf8')
-  const sha256 = createHash('sha256').update(body).digest('hex')
-  const key = objectKey('picture', sha256)
-  await storage.putFile({ key, body, bytes: body.length, sha256, contentType: 'image/svg+xml', ifAbsent: true })
-  return sha256
-}
-
 /** A release with what its check found, every caution answered by the board's owner the evening before it was published. */
-function releaseRows(seed: number, { manifest, check, pictureTop, pictureBottom }: Checked) {
+function releaseRows(seed: number, { manifest, check, pictures }: Checked) {
   const { board, version, date } = manifest
   const id = releaseId(seed, board, version)
   const key = precedenceKey(mustReadVersion(version))
-  const stored = { isOk: check.ok, factsJson: JSON.stringify(check.facts), pictureTop, pictureBottom }
+  const stored = { isOk: check.ok, factsJson: JSON.stringify(check.facts), pictures: pictures.columns }
   const release = releaseRow(seed, manifest, key, bundleName(manifest), stored)
   const owner = personByLogin(demoBoards.find((b) => b.slug === board)!.owner).id
   const files: Rows<'release_files'> = check.layers.map((layer, position) => ({
@@ -181,7 +167,7 @@ function releaseRows(seed: number, { manifest, check, pictureTop, pictureBottom 
   })
   const audit = [entry('release.publish', release.published_at!, owner)]
   if (release.withdrawn_at) audit.push(entry('release.withdraw', release.withdrawn_at, release.withdrawn_by!))
-  return { release, files, findings, audit }
+  return { release, files, findings, pictures, audit }
 }
 
 const exclusionAudit = (seed: number, reports: Rows<'install_reports'>): Rows<'audit_log'> =>

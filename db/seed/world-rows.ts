@@ -85,7 +85,9 @@ export function worldRows(seed: number) {
   return { users, consoles, console_revisions, boards, board_maintainers, fit_claims }
 }
 
-export type StoredCheck = { isOk: boolean; factsJson: string; pictureTop: string | null; pictureBottom: string | null }
+type PictureColumns =
+  'picture_top_sha256' | 'picture_bottom_sha256' | 'thumb_top_sha256' | 'thumb_bottom_sha256' | 'picture_box_json'
+export type StoredCheck = { isOk: boolean; factsJson: string; pictures: Pick<Insertable<Schema['releases']>, PictureColumns> }
 
 /** A published release as it stands after publishing (and withdrawing, where it was). */
 export function releaseRow(seed: number, manifest: Manifest, precedenceKey: string, name: string, check: StoredCheck) {
@@ -116,8 +118,7 @@ export function releaseRow(seed: number, manifest: Manifest, precedenceKey: stri
     check_started_at: `${manifest.date}T09:30:00.000Z`,
     is_check_ok: check.isOk ? 1 : 0,
     facts_json: check.factsJson,
-    picture_top_sha256: check.pictureTop,
-    picture_bottom_sha256: check.pictureBottom,
+    ...check.pictures,
     created_at: `${addDays(manifest.date, -9)}T18:00:00.000Z`,
     created_by: owner,
     updated_at: publishedAt,

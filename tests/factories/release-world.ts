@@ -3,7 +3,7 @@ import { createHash } from 'node:crypto'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import type { Actor } from '~/domain/accounts/can'
-import { unknownFacts, type BundleCheck } from '~/domain/bundle/bundle-check.types'
+import { unknownFacts, type BundleCheck, type BundlePictures } from '~/domain/bundle/bundle-check.types'
 import type { Draft } from '~/domain/releases/release.schema'
 import type { CheckBundle, IntakeDeps } from '~/domain/releases/take-in-bundle.server'
 import { mustReadVersion } from '~/domain/releases/version'
@@ -23,12 +23,26 @@ export async function openReleaseWorld() {
   await fill(db)
   const clock = { now: new Date('2026-01-01T10:00:00.000Z') }
   /* Stands in for the child process, whose own tests hold it: here its answer is the input. */
-  const check: { next: BundleCheck; hook: () => Promise<void> } = { next: answerOf([]), hook: async () => {} }
+  const check: { next: BundleCheck; pictures: Partial<BundlePictures>; hook: () => Promise<void> } = {
+    next: answerOf([]),
+    pictures: {},
+    hook: async () => {}
+  }
   const run: CheckBundle = async ({ path }) => {
     const answer = check.next
     await check.hook()
     const svg = (side: string) => `<svg xmlns="http://www.w3.org/2000/svg"><title>${side} ${path.length}</title></svg>`
-    return { check: answer, pictures: { top: svg('top'), bottom: svg('bottom'), thumbnails: null, layers: [] } }
+    const layer = { file: 'f.gbr', function: 'copper' as const, side: 'top' as const, index: 1, svg: svg('copper') }
+    const holes = { file: null, function: 'drill' as const, side: null, index: null, svg: svg('holes') }
+    const png = (side: string) => new Uint8Array(Buffer.from(`png of ${side} ${path.length}`))
+    const pictures = {
+      box: { minX: 0, minY: 0, maxX: 10, maxY: 5 },
+      top: svg('top'),
+      bottom: svg('bottom'),
+      thumbnails: { top: png('top'), bottom: png('bottom') },
+      layers: [layer, holes]
+    }
+    return { check: answer, pictures: { ...pictures, ...check.pictures } }
   }
   const deps: IntakeDeps = { db, storage, now: () => clock.now, uploadDir, check: run }
   let files = 0

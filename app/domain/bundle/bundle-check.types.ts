@@ -128,16 +128,27 @@ export type BundleRecord = {
   placements: Placed[]
 }
 
-/** One single layer drawn as sanitised SVG in one ink on nothing, seen from the top, its viewBox the same as that of both sides. */
-export type LayerPicture = { file: string; svg: string }
+/**
+ * One single layer drawn as sanitised SVG in one ink on nothing, seen from the top, its viewBox the same as that of both sides.
+ * All drilled holes together are one picture, with the function `drill` and no file.
+ */
+export type LayerPicture = {
+  file: string | null
+  function: 'copper' | 'soldermask' | 'paste' | 'legend' | 'outline' | 'drill'
+  side: LayerSide | null
+  index: number | null
+  svg: string
+}
 
 /**
- * Both sides drawn as sanitised SVG with their thumbnails as PNG, and each single layer. They stand beside the answer, not in it; where
- * a layer could not be drawn it is left out, and where a side could not be drawn there is no `BundlePictures` at all.
+ * Both sides drawn as sanitised SVG with their thumbnails as PNG, and each single layer. They stand beside the answer, not in it. Both
+ * sides are null where one could not be drawn, and a layer that could not be drawn is left out.
  */
 export type BundlePictures = {
-  top: string
-  bottom: string
+  /** What every picture shows, in mm as the layers count: the outline's box, or without a closed outline that of what is drawn. */
+  box: Box
+  top: string | null
+  bottom: string | null
   thumbnails: { top: Uint8Array; bottom: Uint8Array } | null
   layers: LayerPicture[]
 }
@@ -163,7 +174,7 @@ export const checkStepNames: Record<CheckStep, string> = {
   'tell-layers': 'Tell the layers',
   measure: 'Measure',
   'compare-lists': 'Compare the parts lists',
-  draw: 'Draw both sides'
+  draw: 'Draw both sides and every layer'
 }
 
 /** Facts of which nothing is known yet. */

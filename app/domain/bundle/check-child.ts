@@ -3,8 +3,9 @@ import { checkBundle } from './check-bundle.server'
 import type { ChildMessage, ChildOrder } from './check-child.types'
 
 /**
- * The child process of bundle checks: gets one order at a time over IPC, reports its steps, sends the answer and then the pictures, and says
- * that it is free. It is killed from outside when it takes too long; a crash takes only itself along. It ends with its channel.
+ * The child process of bundle checks: gets one order at a time over IPC, reports its steps, sends the answer and then the pictures part by
+ * part, and says that it is free. It is killed from outside when it takes too long; a crash takes only itself along. It ends with its
+ * channel.
  */
 function send(message: ChildMessage): Promise<void> {
   return new Promise((resolve, reject) => {
@@ -26,8 +27,8 @@ async function run(order: ChildOrder): Promise<void> {
   await send({ kind: 'step', step: 'draw' })
   // Loaded only now: a check without pictures starts faster.
   const { drawPictures } = await import('./draw-pictures.server')
-  const pictures = reading && source ? await drawPictures(reading, source, order.limits) : null
-  await send({ kind: 'drawn', pictures })
+  if (!reading || !source) return
+  for await (const part of drawPictures(reading, source, order.limits)) await send({ kind: 'drawn', part })
 }
 
 process.on('message', (order: ChildOrder) => {

@@ -1,3 +1,5 @@
+import type { Box } from './geometry'
+
 /** Elements that a board picture is made of. */
 const elements = new Set(['svg', 'g', 'defs', 'use', 'mask', 'clipPath', 'rect', 'circle', 'path', 'polygon', 'polyline', 'line'])
 
@@ -39,13 +41,14 @@ const attributes: Record<string, RegExp> = {
 export type SvgPaint = { color: string; opacity?: string }
 
 /**
- * Rewrites a drawn SVG from the few elements and attributes that a board picture needs. Ids get the prefix, so that several pictures
- * can stand in one page; classes (`…_sm`) become the paint of that name, so that no style sheet is left; lengths become mm.
+ * Rewrites a drawn SVG in µm from the few elements and attributes that a board picture needs. Ids get the prefix, so that several
+ * pictures can stand in one page; classes (`…_sm`) become the paint of that name, so that no style sheet is left; viewBox and size are
+ * written anew in mm.
  *
- * @param scale mm per unit of the SVG's viewBox
+ * @param box what the picture shows, in mm
  * @returns null when there is anything in it that a picture does not hold: text, scripts, comments, unknown elements
  */
-export function cleanSvg(svg: string, prefix: string, paints: Record<string, SvgPaint>, scale = 0.001): string | null {
+export function cleanSvg(svg: string, prefix: string, paints: Record<string, SvgPaint>, box: Box): string | null {
   const tag = /<(\/?)([A-Za-z]+)((?:\s+[A-Za-z:-]+="[^"<>&]*")*)\s*(\/?)>/y
   const body = svg.replace(/<style>[^<]*<\/style>/, '').trim()
   const ids = new Map<string, string>()
@@ -69,7 +72,7 @@ export function cleanSvg(svg: string, prefix: string, paints: Record<string, Svg
     }
     const kept = attributesOf(text, idOf, paints)
     if (name === 'svg') {
-      const head = svgHead(text, kept, scale)
+      const head = svgHead(kept, box)
       if (head === null || isEmpty) return null
       out.push(head)
     } else out.push(`<${name}${kept}${isEmpty ? '/' : ''}>`)
@@ -96,11 +99,11 @@ function attributesOf(text: string, idOf: (id: string) => string, paints: Record
 }
 
 /** The outer element anew: viewBox and size in mm, the content scaled into it. */
-function svgHead(text: string, kept: string, scale: number): string | null {
-  const box = /viewBox="([-\d.e]+) ([-\d.e]+) ([-\d.e]+) ([-\d.e]+)"/.exec(text)?.slice(1).map(Number)
-  if (!box || box.some((value) => !Number.isFinite(value)) || box[2]! <= 0 || box[3]! <= 0) return null
-  const [x, y, width, height] = box.map((value) => Number((value * scale).toFixed(4)))
+function svgHead(kept: string, box: Box): string | null {
+  const values = [box.minX, box.minY, box.maxX - box.minX, box.maxY - box.minY].map((value) => Number(value.toFixed(4)))
+  const [x, y, width, height] = values as [number, number, number, number]
+  if (!values.every(Number.isFinite) || width <= 0 || height <= 0) return null
   const paint = kept.match(/ (stroke|fill|clip)-[a-z]+="[^"]*"/g)?.join('') ?? ''
   const head = `<svg xmlns="http://www.w3.org/2000/svg" viewBox="${x} ${y} ${width} ${height}" width="${width}mm" height="${height}mm"${paint}>`
-  return `${head}<g transform="scale(${scale})">`
+  return `${head}<g transform="scale(0.001)">`
 }

@@ -26,8 +26,14 @@ export type CheckLimits = {
   listCells: number
   /** Findings of one code; what is past it is counted in the last one's message. */
   findingsPerCode: number
+  /** Of one picture. */
   pictureBytes: number
+  /** Drawn objects of both sides together, and of one single layer. */
   pictureObjects: number
+  /** Single layers that are drawn, and the bytes and objects of all of them. */
+  layerPictures: number
+  layerPictureBytes: number
+  layerPictureObjects: number
   wallMs: number
   heapMib: number
 }
@@ -54,6 +60,9 @@ export const defaultLimits: CheckLimits = {
   findingsPerCode: 20,
   pictureBytes: 4 * mib,
   pictureObjects: 200_000,
+  layerPictures: 64,
+  layerPictureBytes: 24 * mib,
+  layerPictureObjects: 500_000,
   wallMs: 20_000,
   heapMib: 512
 }

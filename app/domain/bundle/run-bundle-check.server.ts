@@ -3,6 +3,7 @@ import { DomainError } from '../../lib/domain-error'
 import { unknownFacts, type BundleCheck, type BundlePictures, type CheckStep, type DeclaredDetails } from './bundle-check.types'
 import type { ChildMessage, ChildOrder } from './check-child.types'
 import { CheckProcesses, type CheckProcess } from './check-processes.server'
+import { somePictures, withPart } from './drawn-part'
 import { Queue } from './check-queue'
 import { finding } from './finding'
 import { defaultLimits, type CheckLimits } from './limits'
@@ -33,7 +34,10 @@ export async function runBundleCheck(input: CheckInput, limits: Partial<CheckLim
   return (await queue.add(() => runChild(input, { ...defaultLimits, ...limits }, false), input.signal)).check
 }
 
-/** The same check, and both sides drawn where that is possible. A failure to draw never fails the check. */
+/**
+ * The same check, and both sides and every layer drawn where that is possible. A failure to draw never fails the check; what was drawn
+ * until the time was up stands.
+ */
 export function runBundleCheckWithPictures(input: CheckInput, limits: Partial<CheckLimits> = {}): Promise<CheckWithPictures> {
   return queue.add(() => runChild(input, { ...defaultLimits, ...limits }, true), input.signal)
 }
@@ -76,12 +80,12 @@ function follow(process: CheckProcess, order: ChildOrder, bytes: number, input: 
       hasHeard = true
       if (message.kind === 'step') input.onProgress?.(message.step)
       else if (message.kind === 'checked') check = message.check
-      else if (message.kind === 'drawn') pictures = message.pictures
+      else if (message.kind === 'drawn') pictures = withPart(pictures, message.part)
       else {
         stopWaiting()
         processes.release(process, message.residentBytes)
         if (input.signal?.aborted) reject(input.signal.reason as Error)
-        else resolve({ check: check!, pictures })
+        else resolve({ check: check!, pictures: somePictures(pictures) })
       }
     })
     const stopWaiting = () => {
@@ -93,7 +97,10 @@ function follow(process: CheckProcess, order: ChildOrder, bytes: number, input: 
       if (input.signal?.aborted) return reject(input.signal.reason as Error)
       if (!hasHeard && !isLate) return resolve(null)
       if (!check || code !== 0) input.onCrash?.(`code ${code}, signal ${signal}: ${lastWords}`)
-      resolve({ check: check ?? failed(bytes, cutOff(isLate, order.limits, signal ?? `exit ${code}`)), pictures })
+      resolve({
+        check: check ?? failed(bytes, cutOff(isLate, order.limits, signal ?? `exit ${code}`)),
+        pictures: somePictures(pictures)
+      })
     }
     child.once('error', (error) => {
       lastWords = error.message

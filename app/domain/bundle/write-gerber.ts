@@ -4,9 +4,9 @@ import type { Hole } from './read-excellon'
 const head = '%FSLAX46Y46*%\n%MOMM*%\nG01*\n'
 const at = (x: number, y: number) => `X${Math.round(x * 1e6)}Y${Math.round(y * 1e6)}`
 
-/** Closed contours (mm) as a Gerber file that draws them with a hair line. */
-export function gerberOfContours(contours: readonly Path[]): string {
-  const lines = ['%ADD10C,0.01*%', 'D10*']
+/** Closed contours (mm) as a Gerber file that draws them with a line of this width (mm), a hair line if not told. */
+export function gerberOfContours(contours: readonly Path[], width = 0.01): string {
+  const lines = [`%ADD10C,${width.toFixed(4)}*%`, 'D10*']
   for (const contour of contours) {
     lines.push(`${at(contour[0]!, contour[1]!)}D02*`)
     for (let i = 2; i < contour.length; i += 2) lines.push(`${at(contour[i]!, contour[i + 1]!)}D01*`)

@@ -3,7 +3,6 @@ import { recordAudit } from '~/domain/audit/record.server'
 import type { Actor } from '~/domain/accounts/can'
 import { must } from '~/domain/accounts/must'
 import { boardBySlug } from '~/domain/boards/boards.server'
-import { objectKey } from '~/server/storage.server'
 import { DomainError } from '~/lib/domain-error'
 import { newId } from '~/lib/new-id'
 import * as findings from './findings.repo.server'
@@ -11,6 +10,7 @@ import type { Draft } from './release.schema'
 import * as repo from './releases.repo.server'
 import { findRelease } from './releases.server'
 import * as staged from './staged-objects.repo.server'
+import { objectsOfRelease } from './store-pictures.server'
 import { precedenceKey, type Version } from './version'
 
 type Deps = { db: Db; now: () => Date }
@@ -115,12 +115,6 @@ export async function editDraft({ db, now }: Deps, actor: Actor, slug: string, v
   return { version: draft.version.text, releaseId: release.id, needsCheck }
 }
 
-/** The keys of what a release row refers to in storage. */
-export const objectsOf = (release: Pick<repo.ReleaseRow, 'bundle_sha256' | 'picture_top_sha256' | 'picture_bottom_sha256'>) => [
-  ...(release.bundle_sha256 ? [objectKey('bundle', release.bundle_sha256)] : []),
-  ...[release.picture_top_sha256, release.picture_bottom_sha256].flatMap((sha) => (sha ? [objectKey('picture', sha)] : []))
-]
-
 /** Deletes a draft; its objects go to the sweep, which keeps those that another release shares. */
 export async function deleteDraft({ db, now }: Deps, actor: Actor, slug: string, version: string): Promise<void> {
   const { board, release } = await findRelease(db, actor, slug, version)
@@ -128,8 +122,9 @@ export async function deleteDraft({ db, now }: Deps, actor: Actor, slug: string,
   const at = now().toISOString()
   await db.transaction().execute(async (tx) => {
     const row = await repo.findById(tx, release.id)
+    const keys = row ? await objectsOfRelease(tx, row) : []
     if (!row || !(await repo.deleteDraft(tx, release.id))) throw draftGone()
-    for (const key of objectsOf(row)) await staged.stage(tx, key, at)
+    for (const key of keys) await staged.stage(tx, key, at)
     await recordAudit(
       tx,
       {

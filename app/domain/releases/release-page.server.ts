@@ -2,15 +2,17 @@ import type { Db } from '~db/client.server'
 import { can, type Actor } from '~/domain/accounts/can'
 import { claimsOf } from '~/domain/boards/board-page.server'
 import type { BundleFacts } from '~/domain/bundle/bundle-check.types'
+import type { Box } from '~/domain/bundle/geometry'
 import { dayOf } from '~/lib/dates'
 import { renderMarkdown } from '~/server/markdown.server'
 import { runOf } from './check-runs.server'
 import { declaredBesideMeasured } from './declared-beside-measured'
 import * as downloads from './downloads.repo.server'
 import * as findingsRepo from './findings.repo.server'
+import * as layerPicturesRepo from './layer-pictures.repo.server'
 import { obstacles } from './publish-rules'
 import * as repo from './releases.repo.server'
-import { bundleFileName, picturePath, releasePath } from './release-path'
+import { bundleFileName, layerPicturePath, picturePath, releasePath, thumbnailPath } from './release-path'
 import { findRelease } from './releases.server'
 import { mustReadVersion, newestOf, stateWhenPublished } from './version'
 
@@ -30,8 +32,9 @@ function checkStateOf(release: repo.ReleaseRow): 'none' | 'running' | 'interrupt
  */
 export async function releasePage(db: Db, actor: Actor, slug: string, version: string) {
   const { board, release } = await findRelease(db, actor, slug, version)
-  const [files, findings, siblings, fit, downloaded] = await Promise.all([
+  const [files, layers, findings, siblings, fit, downloaded] = await Promise.all([
     findingsRepo.listFiles(db, release.id),
+    layerPicturesRepo.listByRelease(db, release.id),
     findingsRepo.listFindings(db, release.id),
     repo.listByBoard(db, board.id),
     claimsOf(db, board),
@@ -93,6 +96,20 @@ export async function releasePage(db: Db, actor: Actor, slug: string, version: s
       top: pictureOf(release.picture_top_sha256, slug, version, 'top'),
       bottom: pictureOf(release.picture_bottom_sha256, slug, version, 'bottom')
     },
+    thumbnails: {
+      top: thumbnailOf(release.thumb_top_sha256, slug, version, 'top'),
+      bottom: thumbnailOf(release.thumb_bottom_sha256, slug, version, 'bottom')
+    },
+    /** What every picture shows, in mm as the layers count. */
+    pictureBox: release.picture_box_json === null ? null : (JSON.parse(release.picture_box_json) as Box),
+    /** Single layers, seen from the top; all drilled holes are one, without a file. */
+    layerPictures: layers.map(({ file, function: fn, side, layer_index, position, sha256 }) => ({
+      file,
+      src: layerPicturePath(slug, version, position, sha256),
+      function: fn,
+      side,
+      index: layer_index
+    })),
     files,
     findings: findings.map((f) => ({ ...f, answeredOn: day(f.answered_at) })),
     obstacles: obstacles(
@@ -126,3 +143,6 @@ export async function releasePage(db: Db, actor: Actor, slug: string, version: s
 
 const pictureOf = (sha256: string | null, slug: string, version: string, side: 'top' | 'bottom') =>
   sha256 === null ? null : picturePath(slug, version, side, sha256)
+
+const thumbnailOf = (sha256: string | null, slug: string, version: string, side: 'top' | 'bottom') =>
+  sha256 === null ? null : thumbnailPath(slug, version, side, sha256)

@@ -90,9 +90,15 @@ export const updatePublished = async (db: DbOrTx, id: string, release: Updateabl
 export const deleteDraft = async (db: DbOrTx, id: string) =>
   (await db.deleteFrom('releases').where('id', '=', id).where('state', '=', 'draft').executeTakeFirst()).numDeletedRows === 1n
 
-/** Whether any release refers to a stored content, as its bundle or as a picture. */
+/** Whether any release row refers to a stored content, as its bundle or as a picture of a side. */
 export const refersTo = async (db: DbOrTx, sha256: string) => {
-  for (const column of ['bundle_sha256', 'picture_top_sha256', 'picture_bottom_sha256'] as const) {
+  for (const column of [
+    'bundle_sha256',
+    'picture_top_sha256',
+    'picture_bottom_sha256',
+    'thumb_top_sha256',
+    'thumb_bottom_sha256'
+  ] as const) {
     const found = await db.selectFrom('releases').select('id').where(column, '=', sha256).limit(1).executeTakeFirst()
     if (found) return true
   }

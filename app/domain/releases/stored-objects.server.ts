@@ -2,6 +2,7 @@ import type { Db } from '~db/client.server'
 import { KeyedLock } from '~/lib/keyed-lock'
 import { log } from '~/server/log.server'
 import type { Storage } from '~/server/storage.server'
+import * as layerPictures from './layer-pictures.repo.server'
 import * as releases from './releases.repo.server'
 import * as staged from './staged-objects.repo.server'
 
@@ -41,7 +42,8 @@ export async function sweepStaged({ db, storage, now }: Deps): Promise<number> {
   for (const key of await staged.listOlderThan(db, before, sweepBatch))
     await keys.run(key, async () => {
       if (!(await staged.isOlderThan(db, key, before))) return
-      if (!(await releases.refersTo(db, key.split('/').at(-1)!))) {
+      const sha256 = key.split('/').at(-1)!
+      if (!(await releases.refersTo(db, sha256)) && !(await layerPictures.isReferredTo(db, sha256))) {
         await storage.remove(key)
         removed += 1
       }

@@ -1,3 +1,4 @@
+import { createHash } from 'node:crypto'
 import { readdirSync } from 'node:fs'
 import { afterEach, beforeEach, describe, expect, it } from 'vitest'
 import {
@@ -9,7 +10,9 @@ import {
   stop,
   type ReleaseWorld
 } from '../../../tests/factories/release-world'
+import type { BundlePictures } from '~/domain/bundle/bundle-check.types'
 import { DomainError } from '~/lib/domain-error'
+import { objectKey } from '~/server/storage.server'
 import { answerCautions, deleteDraft, draftRelease, editDraft } from './drafts.server'
 import { publishRelease } from './publish.server'
 import { releasePage } from './release-page.server'
@@ -39,8 +42,14 @@ describe('taking in a bundle', () => {
     expect(now.bundle).toMatchObject({ sha256: file.sha256, bytes: 7, sentAs: 'a.zip', fileName: 'ledger-1.0.0.zip' })
     expect([now.checkState, now.files.length, now.findings.length]).toEqual(['done', 1, 1])
     expect(now.pictures.top).toContain('/picture/top.svg?v=')
+    expect(now.thumbnails.bottom).toContain('/picture/bottom.png?v=')
+    expect(now.pictureBox).toEqual({ minX: 0, minY: 0, maxX: 10, maxY: 5 })
+    const [copper, holes] = now.layerPictures
+    expect(copper).toMatchObject({ file: 'f.gbr', function: 'copper', side: 'top', index: 1 })
+    expect(copper!.src).toMatch(/^\/boards\/ledger\/releases\/1\.0\.0\/picture\/layer-1\.svg\?v=[0-9a-f]{12}$/)
+    expect(holes).toMatchObject({ file: null, function: 'drill', side: null, index: null })
     expect(await stagedKeys()).toEqual([])
-    expect(await stored()).toHaveLength(3)
+    expect(await stored()).toHaveLength(7)
     expect(readdirSync(world.uploadDir)).toEqual([])
   })
 
@@ -85,7 +94,7 @@ describe('taking in a bundle', () => {
     world.check.hook = () => deleteDraft(world.deps, owner, 'ledger', '1.0.0')
     await expect(upload('one')).rejects.toMatchObject({ kind: 'conflict' })
     expect(await world.db.selectFrom('findings').selectAll().execute()).toEqual([])
-    expect(await stagedKeys()).toHaveLength(3)
+    expect(await stagedKeys()).toHaveLength(7)
   })
 
   it('asks for another check when the declared details changed meanwhile', async () => {
@@ -99,6 +108,46 @@ describe('taking in a bundle', () => {
 })
 
 describe('the sweep', () => {
+  const drawn = (name: string): Partial<BundlePictures> => ({
+    top: `<svg>${name} top</svg>`,
+    thumbnails: { top: Buffer.from(`${name} top`), bottom: Buffer.from('bottom of all') },
+    layers: [{ file: 'f.gbr', function: 'copper', side: 'top', index: 1, svg: `<svg>${name} copper</svg>` }]
+  })
+  const keyOf = (content: string) => objectKey('picture', createHash('sha256').update(content).digest('hex'))
+  const sweep = async () => {
+    world.tick(dayMs + 1)
+    await sweepStaged(world.deps)
+  }
+
+  it('takes the pictures of the former bundle away, thumbnails and layers too, and keeps those in use', async () => {
+    const former = ['<svg>one top</svg>', 'one top', '<svg>one copper</svg>'].map(keyOf)
+    const used = ['<svg>two top</svg>', 'two top', '<svg>two copper</svg>', 'bottom of all'].map(keyOf)
+    world.check.pictures = drawn('one')
+    await upload('one')
+    expect(await stored()).toEqual(expect.arrayContaining(former))
+    world.check.pictures = drawn('two')
+    await upload('two')
+    expect(await stagedKeys()).toEqual(expect.arrayContaining(former))
+    await sweep()
+    const left = await stored()
+    expect(left).toEqual(expect.arrayContaining(used))
+    for (const key of former) expect(left).not.toContain(key)
+    await deleteDraft(world.deps, owner, 'ledger', '1.0.0')
+    await sweep()
+    expect(await stored()).toEqual([])
+  })
+
+  it('keeps a layer and a thumbnail that another release shares', async () => {
+    world.check.pictures = drawn('same')
+    await upload('one')
+    await draftRelease(world.deps, owner, 'ledger', draftOf('1.0.1'))
+    await takeInBundle(world.deps, owner, 'ledger', '1.0.1', async () => world.file('two'))
+    await deleteDraft(world.deps, owner, 'ledger', '1.0.1')
+    await sweep()
+    expect(await stored()).toEqual(expect.arrayContaining(['same top', '<svg>same copper</svg>'].map(keyOf)))
+    expect(await stagedKeys()).toEqual([])
+  })
+
   it('removes what no release refers to after a day, and nothing else', async () => {
     await upload('one')
     const kept = (await page()).bundle!

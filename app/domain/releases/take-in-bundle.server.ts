@@ -1,4 +1,4 @@
-import { createHash, randomBytes } from 'node:crypto'
+import { randomBytes } from 'node:crypto'
 import { createWriteStream } from 'node:fs'
 import { rm } from 'node:fs/promises'
 import { join } from 'node:path'
@@ -11,11 +11,12 @@ import type { BundleCheck, BundlePictures, CheckStep, DeclaredDetails } from '~/
 import { DomainError } from '~/lib/domain-error'
 import { objectKey, type Storage } from '~/server/storage.server'
 import { beginRun, setRun } from './check-runs.server'
-import { draftGone, objectsOf } from './drafts.server'
+import { draftGone } from './drafts.server'
 import * as findings from './findings.repo.server'
 import * as repo from './releases.repo.server'
 import { findRelease } from './releases.server'
 import * as staged from './staged-objects.repo.server'
+import { keepLayerPictures, objectsOf, objectsOfRelease, storePictures, type StoredPictures } from './store-pictures.server'
 import { putStaged } from './stored-objects.server'
 
 /** The bundle check as this area needs it. */
@@ -103,20 +104,12 @@ async function checkAndKeep(deps: IntakeDeps, actorId: string | null, releaseId:
       thicknessMm: before.declared_thickness_mm ?? undefined,
       onProgress: (step) => setRun(releaseId, { phase: 'checking', step })
     })
-    const [top, bottom] = [await putPicture(deps, pictures?.top), await putPicture(deps, pictures?.bottom)]
-    await keep(deps, actorId, before, file, result, { top, bottom })
+    const stored = await storePictures((...picture) => putStaged(deps, ...picture), pictures)
+    await keep(deps, actorId, before, file, result, stored)
   } catch (error) {
     await repo.updateDraft(db, releaseId, { check_state: before.check_state === 'running' ? 'none' : before.check_state })
     throw error
   }
-}
-
-async function putPicture(deps: IntakeDeps, svg: string | null | undefined): Promise<string | null> {
-  if (!svg) return null
-  const body = Buffer.from(svg, 'utf8')
-  const sha256 = createHash('sha256').update(body).digest('hex')
-  await putStaged(deps, objectKey('picture', sha256), sha256, { body, contentType: 'image/svg+xml' })
-  return sha256
 }
 
 /** The outcome, whole or not at all: the draft, its files, findings, facts and pictures, and what is in storage for it. */
@@ -126,10 +119,10 @@ async function keep(
   before: repo.ReleaseRow,
   file: Content,
   check: BundleCheck,
-  pictures: { top: string | null; bottom: string | null }
+  pictures: StoredPictures
 ): Promise<void> {
   const at = now().toISOString()
-  const refers = { bundle_sha256: file.sha256, picture_top_sha256: pictures.top, picture_bottom_sha256: pictures.bottom }
+  const refers = { bundle_sha256: file.sha256, ...pictures.columns }
   await db.transaction().execute(async (tx) => {
     const row = await repo.findById(tx, before.id)
     if (!row || row.state !== 'draft') throw draftGone()
@@ -145,9 +138,11 @@ async function keep(
       updated_at: at
     })
     await findings.replaceAll(tx, row.id, check)
-    const kept = objectsOf(refers)
+    const kept = objectsOf(refers, pictures.layers)
+    const former = await objectsOfRelease(tx, row)
+    await keepLayerPictures(tx, row.id, pictures)
     for (const key of kept) await staged.unstage(tx, key)
-    for (const key of objectsOf(row)) if (!kept.includes(key)) await staged.stage(tx, key, at)
+    for (const key of former) if (!kept.includes(key)) await staged.stage(tx, key, at)
     await recordAudit(
       tx,
       {

@@ -7,7 +7,6 @@ import { services } from '~/server/services.server'
 
 /** Nothing in a picture may run, load or be read by a page, whatever is in it. */
 const asPicture = {
-  'Content-Type': 'image/svg+xml',
   'Content-Security-Policy': "default-src 'none'; style-src 'unsafe-inline'; sandbox",
   'Cross-Origin-Resource-Policy': 'same-origin'
 }
