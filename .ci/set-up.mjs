@@ -55,14 +55,41 @@ function isInstalled() {
   })
 }
 
-/** npm ci, when there is no complete installation or it is not the lockfile's. */
-export async function ensureInstalled() {
+const driver = at('node_modules', 'better-sqlite3', 'build', 'Release', 'better_sqlite3.node')
+
+/** npm ci without the packages' own scripts, when there is no complete installation or it is not the lockfile's. */
+export async function installPackages() {
   if (isInstalled()) return
   if (lstatSync(at('node_modules'), { throwIfNoEntry: false })?.isSymbolicLink())
     throw new Plain('node_modules is a link to another checkout, and is not what the lockfile says: run npm ci there.')
-  console.log('Installing packages from the lockfile (npm ci; compiling the database driver takes about two minutes) ...')
-  const code = await run('npm', ['ci', '--include=dev', '--no-audit', '--no-fund'])
+  console.log('Installing packages from the lockfile (npm ci) ...')
+  const code = await run('npm', ['ci', '--include=dev', '--ignore-scripts', '--no-audit', '--no-fund'])
   if (code !== 0) throw new Plain(`npm ci failed (exit code ${code}); what it said stands above.`)
+}
+
+/** Compiles the database driver, the one package whose own script is needed, when it is not there. What it says comes only if it fails. */
+export async function compileDriver() {
+  if (existsSync(driver)) return
+  const output = []
+  const child = spawn('npm', ['rebuild', 'better-sqlite3', '--no-audit', '--no-fund', '--foreground-scripts'], {
+    cwd: root,
+    stdio: ['ignore', 'pipe', 'pipe']
+  })
+  for (const stream of [child.stdout, child.stderr]) stream.on('data', (chunk) => output.push(chunk))
+  const code = await new Promise((resolve, reject) => {
+    child.once('error', reject)
+    child.once('close', (exit) => resolve(exit ?? 1))
+  })
+  if (code === 0 && existsSync(driver)) return
+  process.stderr.write(Buffer.concat(output))
+  throw new Plain(`The database driver was not compiled (exit code ${code}); what npm said stands above.`)
+}
+
+/** Everything that is installed, one after the other. */
+export async function ensureInstalled() {
+  await installPackages()
+  if (!existsSync(driver)) console.log('Compiling the database driver, about two minutes ...')
+  await compileDriver()
 }
 
 /** The latest change below a path, folders included, so that a deleted file is noticed too. */

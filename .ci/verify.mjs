@@ -4,7 +4,7 @@ import { existsSync, mkdtempSync, readFileSync, rmSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import { countReport } from './count-report.mjs'
-import { at, build, checkMachine, ensureInstalled, Plain, root, run, runMain } from './set-up.mjs'
+import { at, build, checkMachine, compileDriver, installPackages, Plain, root, run, runMain } from './set-up.mjs'
 
 const chromium = '/usr/bin/chromium'
 const aptChromium = 'apt-get install -y --no-install-recommends chromium'
@@ -81,8 +81,11 @@ function skipFor(name, reason) {
 
 async function main() {
   checkMachine()
-  await ensureChromium()
-  await ensureInstalled()
+  // What takes long and is not needed yet runs beside what is: Chromium beside npm, the compiler beside the static checks.
+  await Promise.all([ensureChromium(), installPackages()])
+  const compiled = compileDriver()
+  // Awaited below; until then a failure must not count as unheard.
+  compiled.catch(() => {})
   const folder = mkdtempSync(join(tmpdir(), 'fettle-verify-'))
   try {
     await check('types', async () => {
@@ -92,6 +95,8 @@ async function main() {
     await check('eslint', () => node(bin('eslint', 'bin', 'eslint.js'), '.'))
     await check('prettier', () => node(bin('prettier', 'bin', 'prettier.cjs'), '--check', '--log-level', 'warn', '.'))
     const isBuilt = await check('build', build)
+    console.log('\n== database driver')
+    await compiled
     await tests('unit', folder)
     for (const project of ['http', 'e2e'])
       if (isBuilt) await tests(project, folder)

@@ -42,7 +42,8 @@ export default defineConfig({
           name: 'e2e',
           root: at('..'),
           include: ['tests/e2e/**/*.test.ts'],
-          fileParallelism: false,
+          // Each file has a site and a browser of its own.
+          maxWorkers: 2,
           testTimeout: 240_000
         }
       }
