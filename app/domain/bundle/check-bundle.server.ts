@@ -10,7 +10,8 @@ import { finding, mm } from './finding'
 import { inStackOrder } from './layer-order'
 import { defaultLimits, type CheckLimits } from './limits'
 import { measureFacts } from './measure-facts'
-import { readBundle, tellLayers, type BundleSource } from './read-bundle.server'
+import { readBundle } from './read-bundle.server'
+import { tellLayers, type BundleSource } from './tell-layers'
 import { unpackZip } from './unpack-zip.server'
 
 export type CheckedBundle = { check: BundleCheck; reading: BundleReading | null; source: BundleSource | null }

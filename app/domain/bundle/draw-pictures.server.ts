@@ -6,7 +6,7 @@ import type { DrawnPart } from './drawn-part'
 import { boxOf, emptyBox, growBox, isEmptyBox, isInside, type Box, type Path } from './geometry'
 import { inStackOrder } from './layer-order'
 import type { CheckLimits } from './limits'
-import type { BundleSource } from './read-bundle.server'
+import type { BundleSource } from './tell-layers'
 import { gerberOfContours, gerberOfHoles } from './write-gerber'
 
 const singleLayers = ['copper', 'soldermask', 'paste', 'legend', 'outline'] as const

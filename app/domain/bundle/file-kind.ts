@@ -1,7 +1,8 @@
 import type { Role } from './name-layer'
 import { roleFromName } from './name-layer'
 
-export type FileKind = 'empty' | 'gerber' | 'drill' | 'archive' | 'text' | 'binary'
+/** `eia` is a drill file in the old EIA punched-tape code instead of ASCII. */
+export type FileKind = 'empty' | 'gerber' | 'drill' | 'eia' | 'archive' | 'text' | 'binary'
 
 const latin1 = new TextDecoder('latin1')
 
@@ -13,6 +14,18 @@ const isArchive = (b: Uint8Array) =>
   (b[0] === 0xfd && b[1] === 0x37 && b[2] === 0x7a) || // xz
   latin1.decode(b.subarray(257, 262)) === 'ustar'
 
+/** EIA code (RS-244): every row has an odd number of holes, and the lines end in hole 8. */
+function isEia(head: Uint8Array): boolean {
+  let lines = 0
+  for (const byte of head) {
+    if (byte === 0x80) lines++
+    let ones = 0
+    for (let rest = byte; rest > 0; rest >>= 1) ones += rest & 1
+    if (byte !== 0 && ones % 2 === 0) return false
+  }
+  return lines > 3
+}
+
 /** What a file is by its first bytes, whatever it is called. */
 export function kindOf(bytes: Uint8Array): FileKind {
   if (bytes.length === 0) return 'empty'
@@ -23,14 +36,16 @@ export function kindOf(bytes: Uint8Array): FileKind {
   if (/^[\s%]*M48\s*$/m.test(head.slice(0, 2000)) || /^\s*T\d+[^\n]*C[\d.]+/m.test(head)) return 'drill'
   if (/^\s*M30\s*$/.test(head)) return 'drill'
   if (/^\s*(G0?4\b|G\d\d\*|D\d\d\*|%[A-Z]{2})/.test(head) && head.includes('*')) return 'gerber'
+  if (isEia(bytes.subarray(0, 1024))) return 'eia'
   return head.includes('\0') && !/^(\xff\xfe|\xfe\xff)/.test(head) ? 'binary' : 'text'
 }
 
 const layerExtension =
-  /\.(gbr|ger|grb|gb|pho|art|g[tb][lospa]|g[kmop]\w?|gm\d+|g\d+|gp\d+|cmp|sol|plc|pls|stc|sts|crc|crs|drl|xln|exc|ncd|drd|cnc)$/i
+  /\.(gbr|gbx|ger|grb|gb|gdo|pho|art|g[tb][lospa]|g[kmop]\w?|gm\d+|g\d+|gp\d+|cmp|sol|plc|pls|stc|sts|crc|crs|top|bot|sm[tb]|ss[tb]|sp[tb]|drl|xln|exc|ncd|drd|tap|npt|cnc)$/i
 
 /** The role of a file that should be a layer by its name but is not readable as one (empty or something else). */
-export const roleOfSupposedLayer = (path: string): Role | null => (layerExtension.test(path) ? roleFromName(path) : null)
+export const roleOfSupposedLayer = (path: string, prefix = ''): Role | null =>
+  layerExtension.test(path) ? roleFromName(path, prefix) : null
 
 const sourceExtension =
   /\.(kicad_(pcb|sch|pro|prl|mod|sym|dru|wks)|sch|schdoc|pcbdoc|prjpcb|pcb|brd|lht|rp|fzz|fz|dip|dch|lbr|schlib|pcblib|intlib|diy|ewprj|ms14|dsn|epro|hkp|net|sym|fp|step|stp|scad|f3d|dxf)$/i

@@ -1,13 +1,8 @@
-import type { BundleLayer, LayerFunction, LayerSide } from './bundle-check.types'
+import type { BundleLayer, LayerSide } from './bundle-check.types'
+import { role, type Role } from './layer-role'
+import { roleFromWords } from './layer-words'
 
-/** What something says about a file's role; `index` numbers copper layers, or orders them where only the order is known. */
-export type Role = { function: LayerFunction; side: LayerSide | null; index: number | null }
-
-const role = (fn: LayerFunction, side: LayerSide | null = null, index: number | null = null): Role => ({
-  function: fn,
-  side,
-  index
-})
+export type { Role } from './layer-role'
 
 const sideOf = (text: string | undefined): LayerSide | null =>
   text === 'Top' ? 'top' : text === 'Bot' ? 'bottom' : text === 'Inr' ? 'inner' : null
@@ -58,62 +53,75 @@ export function spanFromAttribute(values: readonly string[] | undefined): [numbe
   return /^\d{1,3}$/.test(from ?? '') && /^\d{1,3}$/.test(to ?? '') ? [Number(from), Number(to)] : null
 }
 
-/** Customary extensions of Gerber layers (common practice, no source). */
+/** Customary extensions of Gerber layers and drill files (common practice, no source). */
 const byExtension: [RegExp, Role][] = [
-  [/^(gtl|cmp)$/, role('copper', 'top')],
-  [/^(gbl|sol)$/, role('copper', 'bottom')],
-  [/^(gts|stc)$/, role('soldermask', 'top')],
-  [/^(gbs|sts)$/, role('soldermask', 'bottom')],
-  [/^(gtp|crc)$/, role('paste', 'top')],
-  [/^(gbp|crs)$/, role('paste', 'bottom')],
-  [/^(gto|plc)$/, role('legend', 'top')],
-  [/^(gbo|pls)$/, role('legend', 'bottom')],
-  [/^(gko|gm|gm1|gml|mil|oln|gbox|outline)$/, role('outline')],
+  [/^(gtl|cmp|top)$/, role('copper', 'top')],
+  [/^(gbl|sol|bot)$/, role('copper', 'bottom')],
+  [/^(gts|stc|smt|tsm)$/, role('soldermask', 'top')],
+  [/^(gbs|sts|smb|bsm)$/, role('soldermask', 'bottom')],
+  [/^(gtp|crc|spt|tsp)$/, role('paste', 'top')],
+  [/^(gbp|crs|spb|bsp)$/, role('paste', 'bottom')],
+  [/^(gto|plc|sst|tsk)$/, role('legend', 'top')],
+  [/^(gbo|pls|ssb|bsk)$/, role('legend', 'bottom')],
+  [/^(gko|gm|gm\d{1,2}|gml|mil|oln|gbox|outline|dim)$/, role('outline')],
+  [/^(ast|adt)$/, role('assembly', 'top')],
+  [/^(asb|adb)$/, role('assembly', 'bottom')],
+  [/^(fab|gd\d|gg\d)$/, role('fabrication')],
+  [/^(npt)$/, role('drill-nonplated')],
   [/^(drl|xln|exc|nc|ncd|drd|tap|cnc)$/, role('drill')]
 ]
 
-function sideFromWords(text: string): LayerSide | null {
-  if (/(^|[^a-z])(f|top|t|front|component|comp|upper|primary)(?=$|[^a-z])/.test(text) || /top|front|component/.test(text))
-    return 'top'
-  if (/(^|[^a-z])(b|bot|bottom|back|lower|secondary)(?=$|[^a-z])/.test(text) || /bot(tom)?|back/.test(text)) return 'bottom'
-  return null
-}
+/** Whole names that some tools give the films of a board (common practice, no source). */
+const byShortName: [RegExp, Role][] = [
+  [/^sm_?t$/, role('soldermask', 'top')],
+  [/^sm_?b$/, role('soldermask', 'bottom')],
+  [/^(pm|sp)_?t$/, role('paste', 'top')],
+  [/^(pm|sp)_?b$/, role('paste', 'bottom')],
+  [/^(ss|sk)_?t$/, role('legend', 'top')],
+  [/^(ss|sk)_?b$/, role('legend', 'bottom')]
+]
 
-/** The role that words in a name or title customarily stand for; null when they say nothing. `text` is lower case. */
-export function roleFromWords(text: string): Role | null {
-  const side = sideFromWords(text)
-  if (/edge.?cuts?|outline|profile|board.?(edge|shape|cut)|contour|boundary/.test(text)) return role('outline')
-  if (/(^|[^a-z])fab(rication)?($|[^a-z])|drill.?(map|drawing)/.test(text)) return role('fabrication')
-  if (/(^|[^a-z]|top|bottom)(assy|assembly)($|[^a-z])/.test(text)) return role('assembly', side)
-  if (/mask|resist/.test(text)) return role('soldermask', side)
-  if (/paste|stencil|cream/.test(text)) return role('paste', side)
-  if (/silk|legend|overlay/.test(text)) return role('legend', side)
-  if (/(^|[^a-z])(npth|non.?plated|unplated)/.test(text)) return role('drill-nonplated')
-  if (/(^|[^a-z])(pth|plated)($|[^a-z])/.test(text)) return role('drill-plated')
-  if (/drill|(^|[^a-z])holes?($|[^a-z])/.test(text)) return role('drill')
-  const inner = /(?:^|[^a-z])(?:in|inner|internal|intern|inr|mid|plane|pwr|gnd)[^a-z0-9]*(\d{1,2})(?:$|[^0-9])/.exec(text)
-  if (inner) return role('copper', 'inner', Number(inner[1]))
-  if (/(^|[^a-z])intern(al)?($|[^a-z])/.test(text)) return role('copper', 'inner')
-  const layer = /(?:^|[^a-z])(?:layer|l|copper|cu)[^a-z0-9]*(\d{1,2})(?:$|[^0-9])/.exec(text)
-  const group = /(?:^|[^a-z])group[^a-z0-9]*(\d{1,2})(?:$|[^0-9])/.exec(text)
-  if (group) return role('copper', null, Number(group[1]))
-  if (layer && !side) return role('copper', null, Number(layer[1]))
-  if (/copper|(^|[^a-z])cu($|[^a-z])/.test(text)) return role('copper', side)
-  if (side && /(^|[^a-z])(top|bottom|bot|front|back)$/.test(text)) return role('copper', side)
-  return null
-}
+const baseOf = (path: string): string => path.slice(path.lastIndexOf('/') + 1)
 
-/** The role that a Gerber or drill file's name customarily stands for. */
-export function roleFromName(path: string): Role | null {
-  const base = path.slice(path.lastIndexOf('/') + 1).toLowerCase()
+/** A file's name without its extension, and that; an extension of more than ten letters is none. */
+function nameParts(path: string): { stem: string; extension: string } {
+  const base = baseOf(path)
   const dot = base.lastIndexOf('.')
-  const stem = dot < 0 ? base : base.slice(0, dot)
-  const extension = dot < 0 ? '' : base.slice(dot + 1)
+  if (dot < 0 || base.length - dot > 11) return { stem: base, extension: '' }
+  return { stem: base.slice(0, dot), extension: base.slice(dot + 1).toLowerCase() }
+}
+
+/**
+ * What the names of all layers begin with, up to a separator: the project's name, which says nothing about a layer however much it reads
+ * like one ("front-panel", "drill-press"). Empty where they have nothing in common.
+ */
+export function projectPrefix(paths: readonly string[]): string {
+  const stems = paths.map((path) => nameParts(path).stem)
+  if (stems.length < 3) return ''
+  let prefix = stems[0]!
+  for (const stem of stems) {
+    let length = 0
+    while (length < prefix.length && prefix[length] === stem[length]) length++
+    prefix = prefix.slice(0, length)
+  }
+  const isWhole = stems.every((stem) => stem.length === prefix.length || /[^A-Za-z0-9]/.test(stem[prefix.length]!))
+  return isWhole ? prefix : prefix.replace(/[A-Za-z0-9]+$/, '')
+}
+
+/**
+ * The role that a Gerber or drill file's name customarily stands for.
+ *
+ * @param prefix what the names of all layers begin with, which is left out
+ */
+export function roleFromName(path: string, prefix = ''): Role | null {
+  const { stem, extension } = nameParts(path)
   const known = byExtension.find(([pattern]) => pattern.test(extension))?.[1]
   if (known && known.function !== 'drill') return known
   const inner = /^(?:g|gl|gp|in|l|ly)(\d{1,2})l?$/.exec(extension)?.[1]
   if (inner !== undefined) return role('copper', 'inner', Number(inner))
-  const words = roleFromWords(stem)
+  const rest = (stem.startsWith(prefix) ? stem.slice(prefix.length) : stem).replace(/^[^A-Za-z0-9]+/, '')
+  const short = byShortName.find(([pattern]) => pattern.test(rest.toLowerCase()))?.[1]
+  const words = short ?? roleFromWords(rest)
   if (!known) return words
   return words && ['drill-plated', 'drill-nonplated'].includes(words.function) ? words : known
 }
@@ -134,9 +142,18 @@ export function decideRoles(files: NamedFile[]): (BundleLayer & { isUndecided: b
     const conflict = file.attribute && file.name && contradicts(file.attribute, file.name) ? file.name : null
     return { file: file.file, ...chosen, evidence, isUndecided: !told, conflict }
   })
+  settleMechanical(decided)
   settleMaskSides(decided)
   numberCopper(decided)
   return decided
+}
+
+/** The second and further mechanical layers carry dimensions and titles where something else says that it is the outline. */
+function settleMechanical(layers: BundleLayer[]): void {
+  const isFurther = ({ file, evidence }: BundleLayer) => evidence === 'name' && /\.gm(?:[2-9]|1\d)$/i.test(file)
+  const outlines = layers.filter((layer) => layer.function === 'outline')
+  if (outlines.every(isFurther)) return
+  for (const layer of outlines) if (isFurther(layer)) layer.function = 'fabrication'
 }
 
 function contradicts(attribute: Role, name: Role): boolean {
@@ -144,7 +161,7 @@ function contradicts(attribute: Role, name: Role): boolean {
   if (isDrill(attribute) && isDrill(name)) {
     return attribute.function !== 'drill' && name.function !== 'drill' && attribute.function !== name.function
   }
-  if (attribute.function === 'other' || name.function === 'fabrication') return false
+  if (attribute.function === 'other' || ['fabrication', 'other'].includes(name.function)) return false
   if (attribute.function !== name.function) return true
   return attribute.side !== null && name.side !== null && attribute.side !== name.side
 }

@@ -3,20 +3,10 @@ import { BoardArea } from './board-area'
 import type { BundleFinding, CheckStep, DeclaredDetails } from './bundle-check.types'
 import type { BundleReading, FileReading } from './bundle-reading.types'
 import { EdgeWatch } from './edge-watch'
-import { kindOf, roleOfOtherFile, roleOfSupposedLayer } from './file-kind'
 import { finding } from './finding'
-import { readFileAttributes, textOf } from './gerber-attributes'
 import { holesOfGerber } from './gerber-drill'
 import type { CheckLimits } from './limits'
-import {
-  decideRoles,
-  roleFromAttribute,
-  roleFromName,
-  roleFromWords,
-  spanFromAttribute,
-  type NamedFile,
-  type Role
-} from './name-layer'
+import { listOrNull } from './list-or-null'
 import { findOutline } from './outline-contours'
 import { settleDrillFormat } from './drill-format'
 import { readBom } from './read-bom'
@@ -24,84 +14,11 @@ import { readExcellon } from './read-excellon'
 import { noImage, readGerber } from './read-gerber'
 import { readJob } from './read-job'
 import { readPlacement, type Placement } from './read-placement'
-import type { ZipEntry } from './scan-zip'
-import { shownName } from './zip-names'
-
-export type BundleSource = { entries: ZipEntry[]; read(entry: ZipEntry): Promise<Uint8Array> }
+import type { BundleSource } from './tell-layers'
 
 const isLayerRole = (fn: string) =>
   ['copper', 'soldermask', 'paste', 'legend', 'outline', 'fabrication', 'assembly', 'other'].includes(fn) ||
   fn.startsWith('drill')
-
-/** Tells what each file is for: by its attributes, its name, its content. */
-export async function tellLayers(source: BundleSource, limits: CheckLimits): Promise<FileReading[]> {
-  const named: (NamedFile & Pick<FileReading, 'kind' | 'size' | 'path' | 'span'>)[] = []
-  for (const entry of source.entries) {
-    const bytes = await source.read(entry)
-    const kind = kindOf(bytes)
-    const base = { path: entry.path, file: shownName(entry.path), kind, size: bytes.length, span: null }
-    const none = { attribute: null, name: null, content: null }
-    if (kind === 'gerber' || kind === 'drill') {
-      const fileFunction = readFileAttributes(bytes).get('.FileFunction')
-      const attribute = roleFromAttribute(fileFunction)
-      const span = spanFromAttribute(fileFunction)
-      const name = roleFromName(entry.path)
-      if (kind === 'gerber') named.push({ ...base, attribute, span, name, content: titleRole(bytes) })
-      else {
-        // The content says that it drills, whatever the name; the name may still say whether the holes are plated.
-        const drill: Role = { function: 'drill', side: null, index: null }
-        named.push({ ...base, attribute, span, name: name?.function.startsWith('drill') ? name : null, content: drill })
-      }
-      continue
-    }
-    const name = roleOfSupposedLayer(entry.path) ?? roleOfOtherFile(entry.path)
-    named.push({ ...base, ...none, name, content: name === null && kind === 'text' ? listRole(bytes, limits) : null })
-  }
-  const roles = decideRoles(named)
-  return named.map(({ path, kind, size, span }, i) => {
-    const { isUndecided, conflict, ...layer } = roles[i]!
-    return {
-      layer,
-      path,
-      kind,
-      size,
-      conflict,
-      isUndecided,
-      image: null,
-      holes: null,
-      drillFormat: null,
-      excess: null,
-      span,
-      isBroken: false
-    }
-  })
-}
-
-/** What older tools write into comments and layer names at the start of a Gerber file. */
-function titleRole(bytes: Uint8Array): Role | null {
-  const head = textOf(bytes.subarray(0, 4096))
-  const title = /G0?4\s*Title:[^*]*?,\s*([^*,]+)\*/i.exec(head)?.[1] ?? /%LN([^*%]+)\*/.exec(head)?.[1]
-  return title ? roleFromWords(title.trim().toLowerCase()) : null
-}
-
-/** Lists past this size are none that a person made. */
-const largestList = 8 * 1024 * 1024
-
-/** A list, or null where it cannot be read; a defect of ours in its reader counts as that, too, and must not end the check. */
-function listOrNull<T>(bytes: Uint8Array, read: () => T | null): T | null {
-  if (bytes.length > largestList) return null
-  try {
-    return read()
-  } catch {
-    return null
-  }
-}
-
-/** Whether a text file is a list by its headings. */
-function listRole(bytes: Uint8Array, limits: CheckLimits): Role | null {
-  if (listOrNull(bytes, () => readPlacement(bytes, limits))) return { function: 'placement', side: null, index: null }
-  return listOrNull(bytes, () => readBom(bytes, limits))?.lines.length ? { function: 'bom', side: null, index: null } : null
-}
 
 /** Reads layers, drill files and lists; what is wrong with a list as a whole becomes a finding here. */
 export async function readBundle(
