@@ -11,6 +11,7 @@ const statements = [
   'create index releases_by_thumb_top on releases (thumb_top_sha256)',
   'create index releases_by_thumb_bottom on releases (thumb_bottom_sha256)',
   'alter table releases add column outline_json text',
+  'create index releases_by_board_revision on releases (board_id, board_revision)',
   `create table bom_lines (
     release_id text not null references releases (id) on delete cascade,
     position integer not null,

@@ -1,6 +1,7 @@
 import type { Insertable } from 'kysely'
-import type { BundleCheck, BundlePictures, DeclaredDetails } from '~/domain/bundle/bundle-check.types'
+import type { BundleCheck, BundlePictures, BundleRecord, DeclaredDetails } from '~/domain/bundle/bundle-check.types'
 import { runBundleCheckWithPictures } from '~/domain/bundle/run-bundle-check.server'
+import { outlineJson, placeColumns, recordRows } from '~/domain/releases/record-rows'
 import { keepLayerPictures, objectsOfRelease, storePictures, type StoredPictures } from '~/domain/releases/store-pictures.server'
 import { mustReadVersion, precedenceKey } from '~/domain/releases/version'
 import { addDays } from '~/lib/dates'
@@ -18,7 +19,9 @@ import { fixedId, releaseId, releaseRow, revisionId, worldRows } from './world-r
 
 export type SeedOptions = {
   /** The bundle check; by default the real one, two at a time in child processes. */
-  check?: (input: { path: string } & DeclaredDetails) => Promise<{ check: BundleCheck; pictures: BundlePictures | null }>
+  check?: (
+    input: { path: string } & DeclaredDetails
+  ) => Promise<{ check: BundleCheck; record: BundleRecord | null; pictures: BundlePictures | null }>
   seed?: number
   /** Told what is going on, a line at a time. */
   say?: (line: string) => void
@@ -28,7 +31,7 @@ export type SeedOptions = {
 export const realCheck: NonNullable<SeedOptions['check']> = runBundleCheckWithPictures
 
 type Rows<T extends keyof Schema> = Insertable<Schema[T]>[]
-type Checked = { manifest: Manifest; check: BundleCheck; pictures: StoredPictures }
+type Checked = { manifest: Manifest; check: BundleCheck; record: BundleRecord; pictures: StoredPictures }
 
 /**
  * Fills a migrated database and an object storage with the demo world: everything or nothing, the same rows every time. Run again it
@@ -64,10 +67,11 @@ export async function seedDemo(
   await db.transaction().execute(async (tx) => {
     for (const table of ['users', 'consoles', 'console_revisions', 'boards', 'board_maintainers', 'fit_claims'] as const)
       await insertRows(tx, table, world[table])
-    for (const { release, files, findings, pictures, audit } of releases) {
+    for (const { release, files, findings, record, pictures, audit } of releases) {
       await insertRows(tx, 'releases', [release])
       await insertRows(tx, 'release_files', files)
       await insertRows(tx, 'findings', findings)
+      for (const table of ['bom_lines', 'placements', 'layer_fingerprints'] as const) await insertRows(tx, table, record[table])
       await keepLayerPictures(tx, release.id, pictures)
       await insertRows(tx, 'audit_log', audit)
     }
@@ -100,9 +104,10 @@ async function checkAndStore(storage: Storage, options: SeedOptions): Promise<Ch
     readManifests().map(async (manifest) => {
       const path = bundlePath(manifest)
       const { copperLayers, thicknessMm } = manifest.declared
-      const { check: found, pictures } = await check({ path, declaredLayers: copperLayers, thicknessMm })
+      const { check: found, record, pictures } = await check({ path, declaredLayers: copperLayers, thicknessMm })
       const stops = found.findings.filter((f) => f.severity === 'stop').map((f) => `${f.code} ${f.file ?? ''}: ${f.message}`)
-      if (!found.ok) throw new Error(`The demo bundle ${bundleName(manifest)} does not pass its check: ${stops.join('; ')}`)
+      if (!found.ok || !record)
+        throw new Error(`The demo bundle ${bundleName(manifest)} does not pass its check: ${stops.join('; ')}`)
       const { sha256, bytes } = manifest.bundle
       await storage.putFile({
         key: objectKey('bundle', sha256),
@@ -115,17 +120,22 @@ async function checkAndStore(storage: Storage, options: SeedOptions): Promise<Ch
       const put = async (key: string, sum: string, content: { body: Buffer; contentType: string }) => {
         await storage.putFile({ key, ...content, bytes: content.body.length, sha256: sum, ifAbsent: true })
       }
-      return { manifest, check: found, pictures: await storePictures(put, pictures) }
+      return { manifest, check: found, record, pictures: await storePictures(put, pictures) }
     })
   )
 }
 
 /** A release with what its check found, every caution answered by the board's owner the evening before it was published. */
-function releaseRows(seed: number, { manifest, check, pictures }: Checked) {
+function releaseRows(seed: number, { manifest, check, record, pictures }: Checked) {
   const { board, version, date } = manifest
   const id = releaseId(seed, board, version)
   const key = precedenceKey(mustReadVersion(version))
-  const stored = { isOk: check.ok, factsJson: JSON.stringify(check.facts), pictures: pictures.columns }
+  const stored = {
+    isOk: check.ok,
+    factsJson: JSON.stringify(check.facts),
+    outlineJson: outlineJson(record),
+    pictures: pictures.columns
+  }
   const release = releaseRow(seed, manifest, key, bundleName(manifest), stored)
   const owner = personByLogin(demoBoards.find((b) => b.slug === board)!.owner).id
   const files: Rows<'release_files'> = check.layers.map((layer, position) => ({
@@ -151,6 +161,7 @@ function releaseRows(seed: number, { manifest, check, pictures }: Checked) {
       message: f.message,
       expected: f.expected,
       found: f.found,
+      ...placeColumns(f),
       answer,
       answered_at: isCaution ? `${addDays(date, -1)}T19:00:00.000Z` : null,
       answered_by: isCaution ? owner : null
@@ -167,7 +178,7 @@ function releaseRows(seed: number, { manifest, check, pictures }: Checked) {
   })
   const audit = [entry('release.publish', release.published_at!, owner)]
   if (release.withdrawn_at) audit.push(entry('release.withdraw', release.withdrawn_at, release.withdrawn_by!))
-  return { release, files, findings, pictures, audit }
+  return { release, files, findings, record: recordRows(id, record), pictures, audit }
 }
 
 const exclusionAudit = (seed: number, reports: Rows<'install_reports'>): Rows<'audit_log'> =>

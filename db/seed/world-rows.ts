@@ -87,7 +87,12 @@ export function worldRows(seed: number) {
 
 type PictureColumns =
   'picture_top_sha256' | 'picture_bottom_sha256' | 'thumb_top_sha256' | 'thumb_bottom_sha256' | 'picture_box_json'
-export type StoredCheck = { isOk: boolean; factsJson: string; pictures: Pick<Insertable<Schema['releases']>, PictureColumns> }
+export type StoredCheck = {
+  isOk: boolean
+  factsJson: string
+  outlineJson: string | null
+  pictures: Pick<Insertable<Schema['releases']>, PictureColumns>
+}
 
 /** A published release as it stands after publishing (and withdrawing, where it was). */
 export function releaseRow(seed: number, manifest: Manifest, precedenceKey: string, name: string, check: StoredCheck) {
@@ -118,6 +123,7 @@ export function releaseRow(seed: number, manifest: Manifest, precedenceKey: stri
     check_started_at: `${manifest.date}T09:30:00.000Z`,
     is_check_ok: check.isOk ? 1 : 0,
     facts_json: check.factsJson,
+    outline_json: check.outlineJson,
     ...check.pictures,
     created_at: `${addDays(manifest.date, -9)}T18:00:00.000Z`,
     created_by: owner,

@@ -3,7 +3,13 @@ import { createHash } from 'node:crypto'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import type { Actor } from '~/domain/accounts/can'
-import { unknownFacts, type BundleCheck, type BundlePictures } from '~/domain/bundle/bundle-check.types'
+import {
+  unknownFacts,
+  type BundleCheck,
+  type BundlePictures,
+  type BundleRecord,
+  type DeclaredDetails
+} from '~/domain/bundle/bundle-check.types'
 import type { Draft } from '~/domain/releases/release.schema'
 import type { CheckBundle, IntakeDeps } from '~/domain/releases/take-in-bundle.server'
 import { mustReadVersion } from '~/domain/releases/version'
@@ -23,13 +29,23 @@ export async function openReleaseWorld() {
   await fill(db)
   const clock = { now: new Date('2026-01-01T10:00:00.000Z') }
   /* Stands in for the child process, whose own tests hold it: here its answer is the input. */
-  const check: { next: BundleCheck; pictures: Partial<BundlePictures>; hook: () => Promise<void> } = {
+  const check: {
+    next: BundleCheck
+    record: BundleRecord | null
+    pictures: Partial<BundlePictures>
+    /** What the last check was told about the release. */
+    asked: DeclaredDetails | null
+    hook: () => Promise<void>
+  } = {
     next: answerOf([]),
+    record: null,
+    asked: null,
     pictures: {},
     hook: async () => {}
   }
-  const run: CheckBundle = async ({ path }) => {
-    const answer = check.next
+  const run: CheckBundle = async ({ path, ...asked }) => {
+    const { next: answer, record } = check
+    check.asked = asked
     await check.hook()
     const svg = (side: string) => `<svg xmlns="http://www.w3.org/2000/svg"><title>${side} ${path.length}</title></svg>`
     const layer = { file: 'f.gbr', function: 'copper' as const, side: 'top' as const, index: 1, svg: svg('copper') }
@@ -42,7 +58,7 @@ export async function openReleaseWorld() {
       thumbnails: { top: png('top'), bottom: png('bottom') },
       layers: [layer, holes]
     }
-    return { check: answer, pictures: { ...pictures, ...check.pictures } }
+    return { check: answer, record, pictures: { ...pictures, ...check.pictures } }
   }
   const deps: IntakeDeps = { db, storage, now: () => clock.now, uploadDir, check: run }
   let files = 0

@@ -97,8 +97,9 @@ export function publicAnswer({ layers, facts, findings, ok }: BundleCheck) {
 }
 
 /**
- * The geometry of one layer, or of all drilled holes, as a hash that does not depend on how the file was written: order, comments, dates,
- * attributes, units and where 0, 0 lies do not count. Two releases of one board revision have the same.
+ * What stands for the geometry of one layer, or of all drilled holes, however the file was written: order, comments, dates, attributes, units and
+ * where 0, 0 lies do not count. Two releases of one board revision have the same. To be compared by `compareFingerprints`, not as texts: the
+ * rounding of another unit may leave a trace.
  */
 export type LayerFingerprint = {
   function: 'copper' | 'outline' | 'drill'

@@ -2,6 +2,7 @@ import type { BundleFinding, BundleLayer, DeclaredDetails } from './bundle-check
 import type { BoardArea } from './board-area'
 import type { EdgeExcess } from './edge-watch'
 import type { FileKind } from './file-kind'
+import type { LayerSums } from './layer-sums'
 import type { Role } from './name-layer'
 import type { Outline } from './outline-contours'
 import type { Bom } from './read-bom'
@@ -21,6 +22,8 @@ export type FileReading = {
   conflict: Role | null
   isUndecided: boolean
   image: GerberImage | null
+  /** Of a copper layer: what its fingerprint is made of. */
+  sums: LayerSums | null
   /** Holes of a drill file of either format, in mm. */
   holes: Hole[] | null
   drillFormat: DrillFormat | null

@@ -1,12 +1,22 @@
 import { createHash } from 'node:crypto'
-import { unknownFacts, type BundleCheck, type BundleFinding, type CheckStep, type DeclaredDetails } from './bundle-check.types'
+import {
+  unknownFacts,
+  type BundleCheck,
+  type BundleFinding,
+  type BundleRecord,
+  type CheckStep,
+  type DeclaredDetails
+} from './bundle-check.types'
 import type { BundleReading } from './bundle-reading.types'
+import { bundleRecord } from './bundle-record'
 import { checkAlignment } from './check-alignment'
 import { checkFiles } from './check-files'
 import { checkLists } from './check-lists'
 import { checkPresence } from './check-presence'
 import { checkRelease } from './check-release'
+import { checkRevision } from './check-revision'
 import { finding, mm } from './finding'
+import { fingerprintsOf } from './layer-fingerprint'
 import { inStackOrder } from './layer-order'
 import { defaultLimits, type CheckLimits } from './limits'
 import { measureFacts } from './measure-facts'
@@ -14,7 +24,13 @@ import { readBundle } from './read-bundle.server'
 import { tellLayers, type BundleSource } from './tell-layers'
 import { unpackZip } from './unpack-zip.server'
 
-export type CheckedBundle = { check: BundleCheck; reading: BundleReading | null; source: BundleSource | null }
+/** The answer, what is kept of the bundle, and what was read; all but the answer null where the zip was refused or is no bundle. */
+export type CheckedBundle = {
+  check: BundleCheck
+  record: BundleRecord | null
+  reading: BundleReading | null
+  source: BundleSource | null
+}
 
 /**
  * The bundle check on bytes in memory, without limits of time: METHODS section 3. Runs in a child process; see `run-bundle-check`.
@@ -30,7 +46,8 @@ export async function checkBundle(
   onStep('read-zip')
   const facts = { ...unknownFacts(), bytes: bytes.length, sha256: createHash('sha256').update(bytes).digest('hex') }
   const zip = await unpackZip(bytes, limits)
-  if (zip.entries.length === 0) return { check: answer([], facts, zip.findings, limits), reading: null, source: null }
+  if (zip.entries.length === 0)
+    return { check: answer([], facts, zip.findings, limits), record: null, reading: null, source: null }
 
   onStep('tell-layers')
   const files = await tellLayers(zip, limits)
@@ -55,11 +72,14 @@ export async function checkBundle(
         rest,
         limits
       ),
+      record: null,
       reading: null,
       source: null
     }
   }
   findings.push(...checkAlignment(reading), ...checkLists(reading), ...checkRelease(reading))
+  const fingerprints = fingerprintsOf(reading)
+  findings.push(...checkRevision(files, fingerprints, findings, declared))
   const all = { ...measureFacts(reading), ...sums(facts, files.length) }
   return {
     check: answer(
@@ -68,6 +88,7 @@ export async function checkBundle(
       findings,
       limits
     ),
+    record: bundleRecord(reading, fingerprints),
     reading,
     source: zip
   }

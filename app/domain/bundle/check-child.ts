@@ -16,13 +16,13 @@ function send(message: ChildMessage): Promise<void> {
 
 async function run(order: ChildOrder): Promise<void> {
   const bytes = await readFile(order.path)
-  const { check, reading, source } = await checkBundle(
+  const { check, record, reading, source } = await checkBundle(
     bytes,
     order.declared,
     order.limits,
     (step) => void send({ kind: 'step', step })
   )
-  await send({ kind: 'checked', check })
+  await send({ kind: 'checked', check, record })
   if (!order.withPictures) return
   await send({ kind: 'step', step: 'draw' })
   // Loaded only now: a check without pictures starts faster.

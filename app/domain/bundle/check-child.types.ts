@@ -1,4 +1,4 @@
-import type { BundleCheck, CheckStep, DeclaredDetails } from './bundle-check.types'
+import type { BundleCheck, BundleRecord, CheckStep, DeclaredDetails } from './bundle-check.types'
 import type { DrawnPart } from './drawn-part'
 import type { CheckLimits } from './limits'
 
@@ -11,6 +11,6 @@ export type ChildOrder = { path: string; declared: DeclaredDetails; limits: Chec
  */
 export type ChildMessage =
   | { kind: 'step'; step: CheckStep }
-  | { kind: 'checked'; check: BundleCheck }
+  | { kind: 'checked'; check: BundleCheck; record: BundleRecord | null }
   | { kind: 'drawn'; part: DrawnPart }
   | { kind: 'free'; residentBytes: number }

@@ -36,7 +36,8 @@ const chordDeviation = 0.005
  */
 export function arcPoints(cx: number, cy: number, radius: number, from: number, sweep: number, endX: number, endY: number): Path {
   const step = radius <= chordDeviation ? Math.PI / 2 : 2 * Math.acos(1 - chordDeviation / radius)
-  const count = Math.min(256, Math.max(1, Math.ceil(Math.abs(sweep) / Math.max(step, 1e-3))))
+  // The hair below keeps an exact number of chords from hanging on the last digit of the coordinates.
+  const count = Math.min(256, Math.max(1, Math.ceil(Math.abs(sweep) / Math.max(step, 1e-3) - 1e-6)))
   const points: Path = []
   for (let i = 1; i < count; i++) {
     const angle = from + (sweep * i) / count

@@ -1,5 +1,7 @@
+import { MacroMark, sizedMark } from './aperture-mark'
 import type { Box } from './geometry'
 import { GerberNonsense, macroExtents, TooComplex, type Macro } from './gerber-macro'
+import type { Mark } from './geometry-sums'
 import type { CheckLimits } from './limits'
 
 /** What is drawn inside a block aperture or a step-and-repeat, to be drawn again at other places. */
@@ -21,6 +23,8 @@ export type Aperture = {
   /** The short and long side in mm of circles, rectangles and obrounds. */
   size: [number, number] | null
   aperFunction: string | null
+  /** Tells its form apart in a fingerprint. */
+  mark: Mark
   /** Of a macro: x, y and radius in mm of its corners and rounds. */
   dots?: number[]
   /** Primitives that one flash draws. */
@@ -58,6 +62,7 @@ export function defineAperture(
     throw new GerberNonsense(`aperture D${code} has a size that is no number`)
   }
   const base = { aperFunction, primitives: 1, block: null, objects: 1, diameter: null, size: null }
+  const mm = values.map((value) => value * unit)
   const need = (count: number) => {
     if (values.length < count || values.slice(0, count).some((value) => value < 0 || value * unit > 10_000)) {
       throw new GerberNonsense(`aperture D${code} has an impossible size`)
@@ -66,13 +71,15 @@ export function defineAperture(
   if (name === 'C') {
     need(1)
     const d = values[0]! * unit
-    return { code, aperture: { ...base, shape: 'circle', box: around(d / 2, d / 2), diameter: d, size: [d, d] } }
+    const mark = sizedMark(1, mm)
+    return { code, aperture: { ...base, shape: 'circle', box: around(d / 2, d / 2), diameter: d, size: [d, d], mark } }
   }
   if (name === 'R' || name === 'O') {
     need(2)
     const [w, h] = [values[0]! * unit, values[1]! * unit]
     const size: [number, number] = w < h ? [w, h] : [h, w]
-    return { code, aperture: { ...base, shape: name === 'R' ? 'rectangle' : 'obround', box: around(w / 2, h / 2), size } }
+    const mark = sizedMark(name === 'R' ? 2 : 3, mm)
+    return { code, aperture: { ...base, shape: name === 'R' ? 'rectangle' : 'obround', box: around(w / 2, h / 2), size, mark } }
   }
   if (name === 'P') {
     need(2)
@@ -80,17 +87,20 @@ export function defineAperture(
       throw new GerberNonsense(`aperture D${code} is a polygon of ${values[1]} corners`)
     }
     const r = (values[0]! * unit) / 2
-    return { code, aperture: { ...base, shape: 'polygon', box: around(r, r) } }
+    const mark = sizedMark(4, [mm[0]!, ...mm.slice(3)], [values[1]!, values[2] ?? 0])
+    return { code, aperture: { ...base, shape: 'polygon', box: around(r, r), mark } }
   }
   const macro = macros.get(name)
   if (!macro) throw new GerberNonsense(`aperture D${code} uses the undefined macro ${name.slice(0, 40)}`)
   if (macro.statements.length > limits.macroPrimitives) throw new TooComplex(`aperture macro ${name.slice(0, 40)}`)
-  const { box, primitives, dots } = macroExtents(macro, values)
+  const marks = new MacroMark()
+  const { box, primitives, dots } = macroExtents(macro, values, (code, given) => marks.add(code, given, unit))
   const scaled =
     primitives === 0
       ? around(0, 0)
       : { minX: box.minX * unit, minY: box.minY * unit, maxX: box.maxX * unit, maxY: box.maxY * unit }
-  return { code, aperture: { ...base, shape: 'macro', box: scaled, primitives, dots: dots.map((value) => value * unit) } }
+  const inMm = dots.map((value) => value * unit)
+  return { code, aperture: { ...base, shape: 'macro', box: scaled, primitives, dots: inMm, mark: marks.mark } }
 }
 
 /** Where a point of a flashed aperture comes to lie, relative to the flash. */

@@ -4,6 +4,7 @@ import { gerberArc } from './gerber-arc'
 import { hasMarkup, parseAttribute, parseCommentAttribute, textOf, type Attribute } from './gerber-attributes'
 import { GerberCanvas, type Keeping } from './gerber-canvas'
 import { GerberNonsense, TooComplex, type Macro } from './gerber-macro'
+import { noMark } from './geometry-sums'
 import { excerpt, GerberWord } from './gerber-words'
 import type { CheckLimits } from './limits'
 import type { ReadProblem } from './read-gerber'
@@ -24,6 +25,7 @@ export class GerberInterpreter {
   private readonly macros = new Map<string, Macro>()
   private macroStatements = 0
   private format: { integer: number; decimals: number; isTrailing: boolean } | null = null
+  private mostDecimals = 0
   private isIncremental = false
   private unit: number | null = null
   private aperture: Aperture | null = null
@@ -260,9 +262,15 @@ export class GerberInterpreter {
     if (point >= 0) {
       this.deprecated.add('decimal points in coordinates')
       value = digits / 10 ** (length - point)
+      this.mostDecimals = Math.max(this.mostDecimals, length - point)
     } else if (format.isTrailing) value = digits / 10 ** (length - format.integer)
     else value = digits / 10 ** format.decimals
     return (isNegative ? -value : value) * (this.unit ?? 25.4)
+  }
+
+  /** The step in mm in which the file writes coordinates. */
+  get resolution(): number {
+    return (this.unit ?? 25.4) / 10 ** (this.mostDecimals || (this.format?.decimals ?? 6))
   }
 
   private define(rest: string): void {
@@ -283,7 +291,7 @@ export class GerberInterpreter {
     if (block === undefined) throw new GerberNonsense('a block ends that was never begun')
     const { prims, objects } = this.canvas.takeRecorded()
     const box = { minX: 0, minY: 0, maxX: 0, maxY: 0 }
-    const base = { diameter: null, size: null, aperFunction: null, primitives: 1 }
+    const base = { diameter: null, size: null, aperFunction: null, primitives: 1, mark: noMark }
     this.apertures.set(block, { ...base, shape: 'block', box, block: prims, objects: Math.max(1, objects) })
   }
 

@@ -68,9 +68,14 @@ const required: Record<number, number> = { 1: 4, 2: 7, 20: 7, 21: 6, 22: 6, 4: 5
  * The extents of a macro aperture with its parameters, in the file's unit, how many primitives it draws, and its dots: x, y and radius of
  * the corners and rounds of everything it exposes, whose hull is the shape as far as it bulges outwards.
  *
+ * @param onPrimitive told each primitive's code and values
  * Source: Gerber Layer Format Specification 2024.05, section 4.5; codes 2, 6 and 22 are deprecated there and still read.
  */
-export function macroExtents(macro: Macro, parameters: readonly number[]): { box: Box; primitives: number; dots: number[] } {
+export function macroExtents(
+  macro: Macro,
+  parameters: readonly number[],
+  onPrimitive: (code: number, values: readonly number[]) => void = () => {}
+): { box: Box; primitives: number; dots: number[] } {
   const variables: (number | undefined)[] = [undefined, ...parameters]
   const box = emptyBox()
   const dots: number[] = []
@@ -92,6 +97,7 @@ export function macroExtents(macro: Macro, parameters: readonly number[]): { box
     primitives++
     const isErasing = code !== 6 && code !== 7 && values[0] === 0
     grow(box, code, values, isErasing ? null : dots)
+    onPrimitive(code, values)
   }
   return { box, primitives, dots }
 }

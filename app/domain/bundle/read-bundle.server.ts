@@ -5,6 +5,7 @@ import type { BundleReading, FileReading } from './bundle-reading.types'
 import { EdgeWatch } from './edge-watch'
 import { finding } from './finding'
 import { holesOfGerber } from './gerber-drill'
+import { LayerSums } from './layer-sums'
 import type { CheckLimits } from './limits'
 import { listOrNull } from './list-or-null'
 import { findOutline } from './outline-contours'
@@ -54,11 +55,12 @@ export async function readBundle(
       return
     }
     const edge = fn === 'copper' && reading.area ? new EdgeWatch(reading.area) : null
+    file.sums = fn === 'copper' ? new LayerSums() : null
     file.image = safely(() =>
       readGerber(bytes, limits, {
         strokes: isDrill || fn === 'outline',
         flashes: isDrill || fn === 'copper' || fn === 'soldermask',
-        watches: edge ? [edge] : []
+        watches: [edge, file.sums].filter((watch) => watch !== null)
       })
     )
     file.excess = edge
@@ -87,7 +89,8 @@ export async function readBundle(
       file.drillFormat = settled.file.format
       file.image = {
         ...noImage(settled.file.problem ?? { kind: 'unreadable', message: '', found: null }),
-        problem: settled.file.problem
+        problem: settled.file.problem,
+        resolution: settled.file.resolution
       }
       if (settled.assumed && !settled.file.problem) findings.push(formatFinding(file))
       return file.image

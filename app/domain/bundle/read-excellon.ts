@@ -22,6 +22,8 @@ export type DrillFile = {
   /** The undeclared parts of the format on which some coordinate's meaning hangs. */
   doubts: Set<'unit' | 'digits' | 'zeros'>
   smallestTool: number | null
+  /** The finest step in mm in which it writes coordinates. */
+  resolution: number
 }
 
 type Tool = { diameter: number; plating: Plating }
@@ -54,7 +56,8 @@ export function readExcellon(bytes: Uint8Array, limits: CheckLimits, assume: Par
     format: reader.format(),
     declared: reader.declared,
     doubts: reader.doubts,
-    smallestTool
+    smallestTool,
+    resolution: reader.resolution
   }
 }
 
@@ -77,6 +80,7 @@ class ExcellonReader {
   private originX = 0
   private originY = 0
   private pattern: { from: number; to: number | null; x: number; y: number } | null = null
+  private mostDecimals = 0
   private hasEnded = false
 
   constructor(
@@ -92,6 +96,11 @@ class ExcellonReader {
         ? { integer: this.assume.integer, decimals: this.assume.decimals }
         : customary
     return { unit, ...(this.digits ?? assumed), keeps: this.declared.keeps ?? this.assume.keeps ?? 'trailing' }
+  }
+
+  get resolution(): number {
+    const { unit, decimals } = this.format()
+    return (unit === 'inch' ? 25.4 : 1) / 10 ** (this.mostDecimals || decimals)
   }
 
   run(bytes: Uint8Array): ReadProblem | null {
@@ -305,7 +314,10 @@ class ExcellonReader {
     if (this.declared.unit === null) this.doubts.add('unit')
     const digits = text.replace(/[+-]/g, '')
     let value: number
-    if (digits.includes('.')) value = Number(digits)
+    if (digits.includes('.')) {
+      value = Number(digits)
+      this.mostDecimals = Math.max(this.mostDecimals, digits.length - digits.indexOf('.') - 1)
+    }
     else if (format.keeps === 'leading') value = Number(digits) / 10 ** (digits.length - format.integer)
     else value = Number(digits) / 10 ** format.decimals
     if (!digits.includes('.')) {

@@ -26,6 +26,8 @@ export type GerberImage = {
   regions: Path[]
   /** Component designators that the file names. */
   components: Set<string>
+  /** The step in mm in which the file writes coordinates; 0 where unknown. */
+  resolution: number
 }
 
 /**
@@ -59,7 +61,8 @@ export function readGerber(bytes: Uint8Array, limits: CheckLimits, keep: Keeping
     flashes: canvas.flashes,
     strokes: canvas.strokes,
     regions: canvas.regions,
-    components: interpreter.components
+    components: interpreter.components,
+    resolution: interpreter.resolution
   }
 }
 
@@ -76,5 +79,6 @@ export const noImage = (problem: ReadProblem): GerberImage => ({
   flashes: { x: [], y: [], halfX: [], halfY: [], aperture: [] },
   strokes: [],
   regions: [],
-  components: new Set()
+  components: new Set(),
+  resolution: 0
 })

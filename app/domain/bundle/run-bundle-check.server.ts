@@ -1,6 +1,13 @@
 import { stat } from 'node:fs/promises'
 import { DomainError } from '../../lib/domain-error'
-import { unknownFacts, type BundleCheck, type BundlePictures, type CheckStep, type DeclaredDetails } from './bundle-check.types'
+import {
+  unknownFacts,
+  type BundleCheck,
+  type BundlePictures,
+  type BundleRecord,
+  type CheckStep,
+  type DeclaredDetails
+} from './bundle-check.types'
 import type { ChildMessage, ChildOrder } from './check-child.types'
 import { CheckProcesses, type CheckProcess } from './check-processes.server'
 import { somePictures, withPart } from './drawn-part'
@@ -17,7 +24,8 @@ export type CheckInput = DeclaredDetails & {
   onCrash?: (detail: string) => void
 }
 
-export type CheckWithPictures = { check: BundleCheck; pictures: BundlePictures | null }
+/** The answer, what is kept of the bundle beside it (null where the zip was refused), and the pictures where they could be drawn. */
+export type CheckWithPictures = { check: BundleCheck; record: BundleRecord | null; pictures: BundlePictures | null }
 
 /** At most two checks at once; more than fifty waiting are turned away. */
 const queue = new Queue(2, 50)
@@ -47,10 +55,11 @@ async function runChild(input: CheckInput, limits: CheckLimits, withPictures: bo
   input.signal?.throwIfAborted()
   if (bytes > limits.zipBytes) {
     const details = { expected: `at most ${limits.zipBytes} bytes`, found: `${bytes} bytes` }
-    return { check: failed(bytes, finding('zip-too-large', 'The zip is larger than a bundle may be.', details)), pictures: null }
+    const stop = finding('zip-too-large', 'The zip is larger than a bundle may be.', details)
+    return { check: failed(bytes, stop), record: null, pictures: null }
   }
-  const { path, declaredLayers, thicknessMm } = input
-  const order = { path, declared: { declaredLayers, thicknessMm }, limits, withPictures }
+  const { path, declaredLayers, thicknessMm, boardRevision, earlier } = input
+  const order = { path, declared: { declaredLayers, thicknessMm, boardRevision, earlier }, limits, withPictures }
   for (;;) {
     const outcome = await follow(processes.take(limits.heapMib), order, bytes, input)
     if (outcome) return outcome
@@ -65,6 +74,7 @@ function follow(process: CheckProcess, order: ChildOrder, bytes: number, input: 
   const { child } = process
   return new Promise((resolve, reject) => {
     let check: BundleCheck | null = null
+    let record: BundleRecord | null = null
     let pictures: BundlePictures | null = null
     let isLate = false
     let hasHeard = process.checks === 0
@@ -79,13 +89,13 @@ function follow(process: CheckProcess, order: ChildOrder, bytes: number, input: 
     child.on('message', (message: ChildMessage) => {
       hasHeard = true
       if (message.kind === 'step') input.onProgress?.(message.step)
-      else if (message.kind === 'checked') check = message.check
+      else if (message.kind === 'checked') ({ check, record } = message)
       else if (message.kind === 'drawn') pictures = withPart(pictures, message.part)
       else {
         stopWaiting()
         processes.release(process, message.residentBytes)
         if (input.signal?.aborted) reject(input.signal.reason as Error)
-        else resolve({ check: check!, pictures: somePictures(pictures) })
+        else resolve({ check: check!, record, pictures: somePictures(pictures) })
       }
     })
     const stopWaiting = () => {
@@ -99,6 +109,7 @@ function follow(process: CheckProcess, order: ChildOrder, bytes: number, input: 
       if (!check || code !== 0) input.onCrash?.(`code ${code}, signal ${signal}: ${lastWords}`)
       resolve({
         check: check ?? failed(bytes, cutOff(isLate, order.limits, signal ?? `exit ${code}`)),
+        record,
         pictures: somePictures(pictures)
       })
     }

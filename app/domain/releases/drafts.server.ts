@@ -79,7 +79,8 @@ export const draftGone = () =>
   new DomainError('conflict', 'This draft was published or deleted in the meantime. Open the board to see how it stands.')
 
 /**
- * Changes a draft. When the declared layers or thickness change, what the check said no longer holds and must be run again.
+ * Changes a draft. When the board revision, the declared layers or the thickness change, what the check said no longer holds and must be run
+ * again.
  * @returns the version, and whether the bundle must be checked again
  * @throws DomainError `not-found`, `forbidden`, `conflict` (version used; published meanwhile)
  */
@@ -89,7 +90,9 @@ export async function editDraft({ db, now }: Deps, actor: Actor, slug: string, v
   const at = now().toISOString()
   const needsCheck =
     release.bundle_sha256 !== null &&
-    ((draft.layers ?? null) !== release.declared_layers || (draft.thicknessMm ?? null) !== release.declared_thickness_mm)
+    (draft.boardRevision !== release.board_revision ||
+      (draft.layers ?? null) !== release.declared_layers ||
+      (draft.thicknessMm ?? null) !== release.declared_thickness_mm)
   await db.transaction().execute(async (tx) => {
     await refuseUsedVersion(tx, board.id, draft.version, release.id)
     const isChanged = await repo.updateDraft(tx, release.id, {

@@ -3,6 +3,7 @@ import type { DbOrTx, Tx } from '~db/client.server'
 import type { FindingsTable, ReleaseFilesTable } from '~db/schema'
 import type { BundleCheck } from '~/domain/bundle/bundle-check.types'
 import { newId } from '~/lib/new-id'
+import { placeColumns, placeOf } from './record-rows'
 
 /** Rows of one insert, well below SQLite's limit of bound values. */
 const chunk = 200
@@ -10,8 +11,8 @@ const chunk = 200
 export type FindingRow = Awaited<ReturnType<typeof listFindings>>[number]
 export type FileRow = Awaited<ReturnType<typeof listFiles>>[number]
 
-export const listFindings = (db: DbOrTx, releaseId: string) =>
-  db
+export async function listFindings(db: DbOrTx, releaseId: string) {
+  const rows = await db
     .selectFrom('findings')
     .leftJoin('users', 'users.id', 'findings.answered_by')
     .select([
@@ -26,11 +27,19 @@ export const listFindings = (db: DbOrTx, releaseId: string) =>
       'findings.answer',
       'findings.answered_at',
       'findings.answered_by',
+      'findings.place_x_mm',
+      'findings.place_y_mm',
+      'findings.place_side',
       'users.display_name as answered_by_name'
     ])
     .where('release_id', '=', releaseId)
     .orderBy('position')
     .execute()
+  return rows.map(({ place_x_mm, place_y_mm, place_side, ...row }) => ({
+    ...row,
+    place: placeOf({ place_x_mm, place_y_mm, place_side })
+  }))
+}
 
 export const listFiles = (db: DbOrTx, releaseId: string) =>
   db
@@ -68,6 +77,7 @@ export async function replaceAll(tx: Tx, releaseId: string, check: Pick<BundleCh
       message: f.message,
       expected: f.expected,
       found: f.found,
+      ...placeColumns(f),
       answer: before?.answer ?? null,
       answered_at: before?.answered_at ?? null,
       answered_by: before?.answered_by ?? null

@@ -1,11 +1,14 @@
-import type { Db } from '~db/client.server'
+import type { Db, Tx } from '~db/client.server'
 import { recordAudit } from '~/domain/audit/record.server'
 import type { Actor } from '~/domain/accounts/can'
 import { must } from '~/domain/accounts/must'
 import { DomainError } from '~/lib/domain-error'
 import { draftGone } from './drafts.server'
 import * as findings from './findings.repo.server'
+import { compareFingerprints } from '~/domain/bundle/compare-fingerprints'
+import { sentence } from '~/domain/bundle/check-revision'
 import { obstacles } from './publish-rules'
+import * as records from './record.repo.server'
 import type { PublishWish } from './release.schema'
 import * as repo from './releases.repo.server'
 import { findRelease } from './releases.server'
@@ -44,6 +47,7 @@ export async function publishRelease(
         'It cannot be published yet.',
         standing.map(({ message }) => ({ path: '', message }))
       )
+    await refuseOtherGeometry(tx, row)
     const state = stateWhenPublished(mustReadVersion(row.version))
     await repo.updateDraft(tx, row.id, { state, published_at: at, published_by: actor.userId, updated_at: at })
     await recordAudit(
@@ -58,6 +62,17 @@ export async function publishRelease(
       at
     )
   })
+}
+
+/** Another release of the revision may have been published since the check, so that it is compared once more with what is published by now. */
+async function refuseOtherGeometry(tx: Tx, row: repo.ReleaseRow): Promise<void> {
+  const own = await records.listFingerprints(tx, row.id)
+  for (const { version, fingerprints } of await records.listEarlier(tx, row)) {
+    const differences = fingerprints.length === 0 ? [] : compareFingerprints(fingerprints, own)
+    if (differences.length === 0) continue
+    const message = `${sentence(differences)} from release ${version}, which stands for board revision ${row.board_revision} by now. Give this board another revision and have it checked again.`
+    throw new DomainError('impossible', 'It cannot be published under this board revision.', [{ path: '', message }])
+  }
 }
 
 /**

@@ -7,12 +7,14 @@ import type { Db } from '~db/client.server'
 import { recordAudit } from '~/domain/audit/record.server'
 import type { Actor } from '~/domain/accounts/can'
 import { must } from '~/domain/accounts/must'
-import type { BundleCheck, BundlePictures, CheckStep, DeclaredDetails } from '~/domain/bundle/bundle-check.types'
+import type { BundleCheck, BundlePictures, BundleRecord, CheckStep, DeclaredDetails } from '~/domain/bundle/bundle-check.types'
 import { DomainError } from '~/lib/domain-error'
 import { objectKey, type Storage } from '~/server/storage.server'
 import { beginRun, setRun } from './check-runs.server'
 import { draftGone } from './drafts.server'
 import * as findings from './findings.repo.server'
+import { outlineJson } from './record-rows'
+import * as records from './record.repo.server'
 import * as repo from './releases.repo.server'
 import { findRelease } from './releases.server'
 import * as staged from './staged-objects.repo.server'
@@ -22,7 +24,7 @@ import { putStaged } from './stored-objects.server'
 /** The bundle check as this area needs it. */
 export type CheckBundle = (
   input: { path: string; onProgress?: (step: CheckStep) => void } & DeclaredDetails
-) => Promise<{ check: BundleCheck; pictures: BundlePictures | null }>
+) => Promise<{ check: BundleCheck; record: BundleRecord | null; pictures: BundlePictures | null }>
 
 export type IntakeDeps = { db: Db; storage: Storage; now: () => Date; uploadDir: string; check: CheckBundle }
 type UploadedFile = { path: string; bytes: number; sha256: string; name: string }
@@ -98,27 +100,33 @@ async function checkAndKeep(deps: IntakeDeps, actorId: string | null, releaseId:
   if (!isMarked) throw draftGone()
   try {
     setRun(releaseId, { phase: 'checking', step: null })
-    const { check: result, pictures } = await check({
+    const {
+      check: result,
+      record,
+      pictures
+    } = await check({
       path: file.path,
       declaredLayers: before.declared_layers ?? undefined,
       thicknessMm: before.declared_thickness_mm ?? undefined,
+      boardRevision: before.board_revision,
+      earlier: await records.listEarlier(db, before),
       onProgress: (step) => setRun(releaseId, { phase: 'checking', step })
     })
     const stored = await storePictures((...picture) => putStaged(deps, ...picture), pictures)
-    await keep(deps, actorId, before, file, result, stored)
+    await keep(deps, actorId, before, file, { check: result, record }, stored)
   } catch (error) {
     await repo.updateDraft(db, releaseId, { check_state: before.check_state === 'running' ? 'none' : before.check_state })
     throw error
   }
 }
 
-/** The outcome, whole or not at all: the draft, its files, findings, facts and pictures, and what is in storage for it. */
+/** The outcome, whole or not at all: the draft, its files, findings, facts, record and pictures, and what is in storage for it. */
 async function keep(
   { db, now }: IntakeDeps,
   actorId: string | null,
   before: repo.ReleaseRow,
   file: Content,
-  check: BundleCheck,
+  { check, record }: { check: BundleCheck; record: BundleRecord | null },
   pictures: StoredPictures
 ): Promise<void> {
   const at = now().toISOString()
@@ -127,7 +135,9 @@ async function keep(
     const row = await repo.findById(tx, before.id)
     if (!row || row.state !== 'draft') throw draftGone()
     const isAsDeclared =
-      row.declared_layers === before.declared_layers && row.declared_thickness_mm === before.declared_thickness_mm
+      row.declared_layers === before.declared_layers &&
+      row.declared_thickness_mm === before.declared_thickness_mm &&
+      row.board_revision === before.board_revision
     await repo.updateDraft(tx, row.id, {
       ...refers,
       bundle_bytes: file.bytes,
@@ -135,9 +145,11 @@ async function keep(
       check_state: isAsDeclared ? 'done' : 'none',
       is_check_ok: check.ok ? 1 : 0,
       facts_json: JSON.stringify(check.facts),
+      outline_json: outlineJson(record),
       updated_at: at
     })
     await findings.replaceAll(tx, row.id, check)
+    await records.replaceRecord(tx, row.id, record)
     const kept = objectsOf(refers, pictures.layers)
     const former = await objectsOfRelease(tx, row)
     await keepLayerPictures(tx, row.id, pictures)
