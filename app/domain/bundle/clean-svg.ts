@@ -38,6 +38,9 @@ const attributes: Record<string, RegExp> = {
   'xlink:href': /^#[\w-]+$/
 }
 
+/** Elements in each other: every change to clear polarity wraps what is drawn so far, and each wrap costs whoever looks a whole picture. */
+const deepest = 128
+
 export type SvgPaint = { color: string; opacity?: string }
 
 /**
@@ -46,7 +49,8 @@ export type SvgPaint = { color: string; opacity?: string }
  * written anew in mm.
  *
  * @param box what the picture shows, in mm
- * @returns null when there is anything in it that a picture does not hold: text, scripts, comments, unknown elements
+ * @returns null when there is anything in it that a picture does not hold: text, scripts, comments, unknown elements, too
+ * many in each other
  */
 export function cleanSvg(svg: string, prefix: string, paints: Record<string, SvgPaint>, box: Box): string | null {
   const tag = /<(\/?)([A-Za-z]+)((?:\s+[A-Za-z:-]+="[^"<>&]*")*)\s*(\/?)>/y
@@ -76,7 +80,7 @@ export function cleanSvg(svg: string, prefix: string, paints: Record<string, Svg
       if (head === null || isEmpty) return null
       out.push(head)
     } else out.push(`<${name}${kept}${isEmpty ? '/' : ''}>`)
-    if (!isEmpty) open.push(name)
+    if (!isEmpty && open.push(name) > deepest) return null
   }
   return hasEnded ? out.join('') : null
 }

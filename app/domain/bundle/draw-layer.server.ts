@@ -48,6 +48,16 @@ export async function drawLayer(gerber: string | Buffer, id: string, isOutline =
   return { id, attributes, defs, layer: inMm, viewBox: box, width: width * 25.4, height: height * 25.4, units: 'mm' }
 }
 
+/** Two readers round arcs differently by this much, in mm; a part that is missing or elsewhere is further off. */
+const tolerance = 0.1
+
+/** Whether a drawing reaches as far as our own reader measured (mm): otherwise the library understood the file differently. */
+export function reaches({ viewBox }: LayerDrawing, box: Box): boolean {
+  const [x, y, width, height] = viewBox.map((value) => value / 1000) as [number, number, number, number]
+  const isWide = x - box.minX <= tolerance && box.maxX - (x + width) <= tolerance
+  return isWide && y - box.minY <= tolerance && box.maxY - (y + height) <= tolerance
+}
+
 /** What the ids of a picture begin with: pictures of several releases may stand in one page, so they carry what was drawn. */
 export function markOf(...drawn: string[]): string {
   const hash = createHash('sha256')

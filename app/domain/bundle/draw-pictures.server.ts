@@ -1,6 +1,6 @@
 import type { BundleLayer, LayerPicture } from './bundle-check.types'
 import type { BundleReading, FileReading } from './bundle-reading.types'
-import { drawLayer, isWithinLibrary, layerSvg, type LayerDrawing } from './draw-layer.server'
+import { drawLayer, isWithinLibrary, layerSvg, reaches, type LayerDrawing } from './draw-layer.server'
 import { drawSides, type SideLayer, type Sides } from './draw-sides.server'
 import type { DrawnPart } from './drawn-part'
 import { boxOf, emptyBox, growBox, isEmptyBox, isInside, type Box, type Path } from './geometry'
@@ -94,7 +94,8 @@ function drawerOf(reading: BundleReading, source: BundleSource): Drawer {
     if (!kept.has(file)) {
       const gerber = Buffer.from(await source.read(entries.get(file.path)!))
       const id = `l${reading.files.indexOf(file)}`
-      kept.set(file, isWithinLibrary(gerber, file.image!) ? await orNull(() => drawLayer(gerber, id)) : null)
+      const drawing = isWithinLibrary(gerber, file.image!) ? await orNull(() => drawLayer(gerber, id)) : null
+      kept.set(file, drawing && file.image!.box && reaches(drawing, file.image!.box) ? drawing : null)
     }
     return kept.get(file)!
   }

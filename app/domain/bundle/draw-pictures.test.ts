@@ -1,16 +1,17 @@
 import { readFileSync } from 'node:fs'
 import { fileURLToPath } from 'node:url'
 import { beforeAll, describe, expect, it } from 'vitest'
+import { demoFiles, zipOf } from '../../../tests/factories/demo-bundle'
 import type { BundlePictures } from './bundle-check.types'
 import { checkBundle } from './check-bundle.server'
 import { drawPictures } from './draw-pictures.server'
 import { somePictures, withPart } from './drawn-part'
 import { defaultLimits, type CheckLimits } from './limits'
 
-const read = (path: string) => checkBundle(readFileSync(fileURLToPath(new URL(`../../../${path}`, import.meta.url))))
+const at = (path: string) => fileURLToPath(new URL(`../../../${path}`, import.meta.url))
 
-async function drawn(path: string, limits: Partial<CheckLimits> = {}): Promise<BundlePictures | null> {
-  const { reading, source } = await read(path)
+async function drawn(bundle: string | Buffer, limits: Partial<CheckLimits> = {}): Promise<BundlePictures | null> {
+  const { reading, source } = await checkBundle(typeof bundle === 'string' ? readFileSync(at(bundle)) : bundle)
   let pictures: BundlePictures | null = null
   for await (const part of drawPictures(reading!, source!, { ...defaultLimits, ...limits })) pictures = withPart(pictures, part)
   return somePictures(pictures)
@@ -120,5 +121,56 @@ describe('what cannot be drawn', () => {
     expect([open.top, open.bottom, open.thumbnails]).toEqual([null, null, null])
     expect(open.layers.map((layer) => layer.function)).toContain('copper')
     expect(new Set(open.layers.map((layer) => viewBox(layer.svg))).size).toBe(1)
+  })
+})
+
+/** A demo bundle whose top legend has more in it. */
+async function withLegend(more: string, name = 'gerber/buttress-F_Silkscreen.gbr'): Promise<Buffer> {
+  const files = await demoFiles('buttress-1.1.0')
+  const gerber = files.get(name)!.toString('latin1')
+  files.set(name, Buffer.from(gerber.replace(/M02\*\s*$/, `${more}\nM02*\n`), 'latin1'))
+  return zipOf(files)
+}
+const legend = (pictures: BundlePictures | null) => pictures!.layers.find((l) => l.function === 'legend' && l.side === 'top')
+
+describe('a file that the library reads differently', () => {
+  // Gerber Layer Format Specification 2024.05: 4.9 transformations, 4.11 blocks, 8.1.4 to 8.1.8 deprecated changes of the image.
+  it.each([
+    ['an aperture block', '%ABD90*%%ADD91C,0.2*%D91*X0Y0D03*%AB*%D90*X5000000Y5000000D03*'],
+    ['a mirrored aperture', '%LMX*%%ADD90C,0.2*%D90*X5000000Y5000000D03*'],
+    ['a turned aperture', '%LR45*%%ADD90R,2X0.2*%D90*X5000000Y5000000D03*'],
+    ['a scaled aperture', '%LS2*%%ADD90C,0.2*%D90*X5000000Y5000000D03*'],
+    ['an offset', '%OFA1B0*%']
+  ])('with %s is not drawn, nor its side; the others are', async (_name, gerber) => {
+    const pictures = await drawn(await withLegend(gerber))
+    expect(legend(pictures)).toBeUndefined()
+    expect([pictures!.top, pictures!.thumbnails]).toEqual([null, null])
+    expect(pictures!.layers.length).toBe(10)
+  })
+
+  it.each([
+    ['no mirroring, turning or scaling', '%LMN*%%LR0.0*%%LS1.0*%'],
+    ['an offset of nothing', '%OFA0B0*%%SFA1.0B1.0*%']
+  ])('is told from one with %s', async (_name, gerber) => {
+    expect(legend(await drawn(await withLegend(gerber)))).toBeDefined()
+  })
+})
+
+describe('hostile files', () => {
+  it('put none of their words into a picture', async () => {
+    const words = '%TF.Part,<script>alert(1)</script>*%G04 <script>alert(2)</script>*%LN"><image href=x onerror=alert(3)>*%'
+    const macro = '%AMonload*1,1,0.2,0,0*%%ADD90onload*%D90*X5000000Y5000000D03*'
+    const pictures = await drawn(await withLegend(words + macro))
+    const svg = legend(pictures)!.svg
+    expect(svg).toContain('<use href=')
+    for (const text of [svg, pictures!.top!]) expect(text).not.toMatch(/alert|onload|onerror|image/)
+  })
+
+  it('do not wrap a picture in thousands of masks', async () => {
+    const clear = (n: number) => Array.from({ length: n }, (_, i) => `%LPC*%X${i}000Y0D03*%LPD*%X${i}000Y500000D03*`).join('\n')
+    expect(legend(await drawn(await withLegend(`%ADD90C,0.2*%D90*${clear(40)}`)))).toBeDefined()
+    const pictures = await drawn(await withLegend(`%ADD90C,0.2*%D90*${clear(2000)}`))
+    expect([legend(pictures), pictures!.top]).toEqual([undefined, null])
+    expect(pictures!.layers.length).toBe(10)
   })
 })

@@ -59,10 +59,10 @@ export const defaultLimits: CheckLimits = {
   listCells: 400_000,
   findingsPerCode: 20,
   pictureBytes: 4 * mib,
-  pictureObjects: 200_000,
+  pictureObjects: 100_000,
   layerPictures: 64,
   layerPictureBytes: 24 * mib,
-  layerPictureObjects: 500_000,
+  layerPictureObjects: 300_000,
   wallMs: 20_000,
   heapMib: 512
 }
