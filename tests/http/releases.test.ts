@@ -58,7 +58,15 @@ describe('drafting a release', () => {
     expect(textOf(await owner.page(at('1.1.0')))).toContain('There is no bundle yet.')
     for (const browser of [other, site.browser()]) {
       expect(textOf(await browser.page(at('1.1.0'), 404))).toContain('There is no release 1.1.0 of Buttress. It has none yet.')
-      for (const path of ['/bundle', '/picture/top.svg', '/edit', '/withdraw', '/check'])
+      for (const path of [
+        '/bundle',
+        '/picture/top.svg',
+        '/picture/top.png',
+        '/picture/layer-1.svg',
+        '/edit',
+        '/withdraw',
+        '/check'
+      ])
         expect((await browser.fetch(at('1.1.0') + path)).status, path).toBe(404)
       expect((await browser.fetch(at('1.1.0'), { form: { intent: 'delete' } })).status).toBe(404)
       expect((await upload(browser, at('1.1.0'), zip)).status).toBe(404)
@@ -190,13 +198,38 @@ describe('uploading', () => {
     const text = textOf(html)
     for (const part of ['38.0 × 14.0', 'buttress-F_Cu.gbr', 'L4', 'my bundle.zip']) expect(text).toContain(part)
     expect(html).toMatch(/picture\/top\.svg\?v=[0-9a-f]{12}/)
-    const picture = await owner.fetch(`${at('1.1.0')}/picture/top.svg`)
-    expect(picture.headers.get('Content-Type')).toBe('image/svg+xml')
-    expect(picture.headers.get('Content-Security-Policy')).toContain('sandbox')
-    expect(picture.headers.get('X-Content-Type-Options')).toContain('nosniff')
-    expect(picture.headers.get('Cache-Control')).toContain('private')
-    expect(await picture.text()).toMatch(/^<svg/)
-    expect((await owner.fetch(`${at('1.1.0')}/picture/left.svg`)).status).toBe(404)
+    expect(await row('1.1.0')).toMatchObject({ thumb_top_sha256: expect.any(String), picture_box_json: expect.any(String) })
+  })
+
+  const pictures = ['top.svg', 'bottom.svg', 'top.png', 'bottom.png', 'layer-1.svg', 'layer-11.svg']
+
+  it.each(pictures)('serves %s locked down, as what it is, to its maintainers only', async (file) => {
+    const path = `${at('1.1.0')}/picture/${file}`
+    const picture = await owner.fetch(path)
+    const { headers } = picture
+    expect([picture.status, headers.get('Content-Type')]).toEqual([200, file.endsWith('.png') ? 'image/png' : 'image/svg+xml'])
+    expect(headers.get('Content-Security-Policy')).toMatch(/^default-src 'none'; .*sandbox$/)
+    expect(headers.get('X-Content-Type-Options')).toBe('nosniff')
+    expect(headers.get('Cross-Origin-Resource-Policy')).toBe('same-origin')
+    expect(headers.get('Cache-Control')).toBe('private, no-cache')
+    const bytes = Buffer.from(await picture.arrayBuffer())
+    expect(bytes.subarray(0, 4)).toEqual(Buffer.from(file.endsWith('.png') ? '\x89PNG' : '<svg', 'latin1'))
+    const again = await owner.fetch(path, { headers: { 'If-None-Match': headers.get('ETag')! } })
+    expect(again.status).toBe(304)
+    for (const browser of [site.browser(), other]) expect((await browser.fetch(path)).status).toBe(404)
+  })
+
+  it.each([
+    'left.svg',
+    'top.jpg',
+    'layer-1.png',
+    'layer-0.svg',
+    'layer-12.svg',
+    'layer-01.svg',
+    'layer-99999.svg',
+    'constructor'
+  ])('has no picture %s', async (file) => {
+    expect((await owner.fetch(`${at('1.1.0')}/picture/${file}`)).status).toBe(404)
   })
 
   it('checks again when the declared layers change', async () => {
@@ -243,6 +276,13 @@ describe('publishing', () => {
     for (const part of ['released', 'Download buttress-1.1.0.zip', 'Mains and stored charge', 'Meant so.', 'C15 added .'])
       expect(text).toContain(part)
     expect(text.indexOf('Mains and stored charge')).toBeLessThan(text.indexOf('Download buttress-1.1.0.zip'))
+  })
+
+  it('shows its pictures to everybody from now on, to be kept for good', async () => {
+    for (const file of ['top.svg', 'bottom.png', 'layer-2.svg']) {
+      const picture = await site.browser().fetch(`${at('1.1.0')}/picture/${file}`)
+      expect([picture.status, picture.headers.get('Cache-Control')]).toEqual([200, 'public, max-age=31536000, immutable'])
+    }
   })
 
   it('never changes it again', async () => {
