@@ -8,14 +8,28 @@ const roleName = (fn: string, side: string | null) => [fn, side].filter(Boolean)
 
 /** What is wrong with each layer or drill file by itself. Marks the broken ones. */
 export function checkFiles(files: FileReading[]): BundleFinding[] {
+  const isBare = hasBareSide(files)
   return files.flatMap((file) => {
-    const stop = fileStop(file)
+    const stop = fileStop(file, isBare)
     if (stop) file.isBroken = true
     return [...(stop ? [stop] : []), ...fileRemarks(file)]
   })
 }
 
-function fileStop(file: FileReading): BundleFinding | null {
+/** Whether one side of the board may have no copper at all: there are no plated holes, whose pads would be on both sides. */
+function hasBareSide(files: FileReading[]): boolean {
+  const isPlated = (file: FileReading) =>
+    (file.holes ?? []).some(
+      (hole) => (hole.plating ?? (file.layer.function === 'drill-nonplated' ? 'non-plated' : null)) !== 'non-plated'
+    )
+  const outer = files.filter((file) => file.layer.function === 'copper' && file.layer.side !== 'inner')
+  return (
+    outer.some((file) => (file.image?.objects ?? 0) > 0) &&
+    !files.some((file) => isDrill(file) && (!file.holes || isPlated(file)))
+  )
+}
+
+function fileStop(file: FileReading, isBare: boolean): BundleFinding | null {
   const { file: name, function: fn } = file.layer
   const isLayer = isDrill(file) || ['copper', 'soldermask', 'paste', 'legend', 'outline'].includes(fn)
   if (file.kind === 'empty')
@@ -40,6 +54,7 @@ function fileStop(file: FileReading): BundleFinding | null {
     }
     return finding(drill ? 'drill-unreadable' : 'layer-unreadable', `The file cannot be read: ${problem.message}.`, details)
   }
+  if (fn === 'copper' && file.layer.side !== 'inner' && isBare) return null
   if ((fn === 'copper' || fn === 'outline') && file.image && file.image.objects === 0) {
     return finding('layer-empty', `The file draws nothing, though it stands for ${roleName(fn, file.layer.side)}.`, {
       file: name,

@@ -75,8 +75,10 @@ export function defineAperture(
     return { code, aperture: { ...base, shape: 'circle', box: around(d / 2, d / 2), diameter: d, size: [d, d], mark } }
   }
   if (name === 'R' || name === 'O') {
-    need(2)
-    const [w, h] = [values[0]! * unit, values[1]! * unit]
+    // Older tools leave out the second side of a square.
+    need(1)
+    const [w, h] = [values[0]! * unit, (values[1] ?? values[0]!) * unit]
+    if (h < 0) throw new GerberNonsense(`aperture D${code} has an impossible size`)
     const size: [number, number] = w < h ? [w, h] : [h, w]
     const mark = sizedMark(name === 'R' ? 2 : 3, mm)
     return { code, aperture: { ...base, shape: name === 'R' ? 'rectangle' : 'obround', box: around(w / 2, h / 2), size, mark } }

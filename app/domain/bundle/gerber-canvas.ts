@@ -8,6 +8,8 @@ export type Flashes = { x: number[]; y: number[]; halfX: number[]; halfY: number
 
 /** Areas up to this size in mm may be pads. */
 const largestPad = 8
+/** Strokes from this width in mm may be pads. */
+const leastPadStroke = 1
 
 export type Stroke = { points: Path; aperture: Aperture }
 
@@ -128,6 +130,15 @@ export class GerberCanvas {
       }
     }
     if (this.keep.strokes) this.strokes.push({ points, aperture })
+    else if (this.keep.flashes && points.length === 4 && halfX >= leastPadStroke / 2) this.keepPadStroke(points, halfX, halfY)
+  }
+
+  /** Some tools draw long pads as one short thick stroke: for alignment these count as flashes. */
+  private keepPadStroke(points: Path, halfX: number, halfY: number): void {
+    const [x0, y0, x1, y1] = points as [number, number, number, number]
+    const [reachX, reachY] = [Math.abs(x1 - x0) / 2, Math.abs(y1 - y0) / 2]
+    if (reachX + reachY > 3 * halfX || (reachX > 1e-6 && reachY > 1e-6)) return
+    this.keepFlash((x0 + x1) / 2, (y0 + y1) / 2, reachX + halfX, reachY + halfY, null)
   }
 
   private drawRegion(points: Path, isDark: boolean): void {

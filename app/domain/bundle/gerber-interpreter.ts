@@ -236,7 +236,7 @@ export class GerberInterpreter {
       this.image.scaleY *= number(b ?? '1') || 1
     } else if ((code === 'IR' && number(rest || '0') !== 0) || (code === 'AS' && rest.startsWith('AY'))) {
       throw new GerberNonsense(`the whole image is turned by the deprecated command ${code}, which readers treat differently`)
-    } else if (!['IP', 'IN', 'LN', 'IR', 'AS', 'IF', 'KO', 'PF', 'RO', 'IJ'].includes(code)) {
+    } else if (!['IP', 'IN', 'LN', 'IR', 'AS', 'IC', 'IF', 'KO', 'PF', 'RO', 'IJ'].includes(code)) {
       if (/^[A-Z]{2}/.test(code)) throw new GerberNonsense(`an unknown command ${code}`)
       throw new GerberNonsense('something that is no Gerber command')
     } else if (code === 'KO' || code === 'IF')

@@ -1,5 +1,6 @@
 import { boxArea, boxOf, type Box, type Path } from './geometry'
 import type { Stroke } from './gerber-canvas'
+import { walkOutline } from './outline-walk'
 
 export type Outline = {
   /** The largest closed contour, as a closed polygon; null when none closes. */
@@ -25,6 +26,23 @@ const ends = (points: Path) => [points[0]!, points[1]!, points[points.length - 2
  * more than the largest closed one (then that one is a hole or a cut-out).
  */
 export function findOutline(strokes: readonly Stroke[], regions: readonly Path[]): Outline {
+  const simple = joinOutline(strokes, regions)
+  if (simple.box && !isThin(simple.box)) return simple
+  // Edges that meet in threes, or are drawn twice, do not join one after the other.
+  const walked = walkOutline(strokes)
+  const box = walked && boxOf(walked)
+  const least = Math.max(0, ...strokes.map(({ points }) => boxArea(boxOf(points))))
+  const isEdge = box && !isThin(box) && boxArea(box) >= least && (!simple.open || spans(box, simple.open))
+  return isEdge ? { contour: walked, box, others: simple.others, open: null } : simple
+}
+
+const isThin = (box: Box): boolean => Math.min(box.maxX - box.minX, box.maxY - box.minY) < 0.5
+
+/** Whether the open end lies within a box: a closed contour elsewhere is no answer to an edge that is open here. */
+const spans = (box: Box, { x, y }: { x: number; y: number }): boolean =>
+  x >= box.minX - 0.1 && x <= box.maxX + 0.1 && y >= box.minY - 0.1 && y <= box.maxY + 0.1
+
+function joinOutline(strokes: readonly Stroke[], regions: readonly Path[]): Outline {
   const chains: Chain[] = []
   for (const { points } of strokes) {
     const last = chains.at(-1)

@@ -173,7 +173,7 @@ class ExcellonReader {
       return
     }
     if (this.isInHeader) return
-    if (code === 0) {
+    if (code === 0 && !this.tools.has(0)) {
       this.tool = null
       return
     }
@@ -205,7 +205,7 @@ class ExcellonReader {
     if (/^ICI/.test(text)) this.isIncremental = /ON/.test(text)
     else if (/^[XY]/.test(text)) throw new GerberNonsense('coordinates stand in the header')
     // Machine settings (speeds, tool changer) do not change the holes.
-    else if (!/^[A-Z][A-Z0-9,.+\-/ =;]*$/.test(text))
+    else if (!/^[/A-Z][A-Z0-9,.+\-/ =;]*$/.test(text))
       throw new GerberNonsense(`a header line that cannot be read: ${text.slice(0, 40)}`)
   }
 
