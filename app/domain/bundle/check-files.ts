@@ -16,7 +16,7 @@ export function checkFiles(files: FileReading[]): BundleFinding[] {
   })
 }
 
-/** Whether one side of the board may have no copper at all: there are no plated holes, whose pads would be on both sides. */
+/** Whether a copper layer may be without copper: there are no plated holes, whose pads would be on all of them. */
 function hasBareSide(files: FileReading[]): boolean {
   const isPlated = (file: FileReading) =>
     (file.holes ?? []).some(
@@ -54,7 +54,7 @@ function fileStop(file: FileReading, isBare: boolean): BundleFinding | null {
     }
     return finding(drill ? 'drill-unreadable' : 'layer-unreadable', `The file cannot be read: ${problem.message}.`, details)
   }
-  if (fn === 'copper' && file.layer.side !== 'inner' && isBare) return null
+  if (fn === 'copper' && isBare) return null
   if ((fn === 'copper' || fn === 'outline') && file.image && file.image.objects === 0) {
     return finding('layer-empty', `The file draws nothing, though it stands for ${roleName(fn, file.layer.side)}.`, {
       file: name,

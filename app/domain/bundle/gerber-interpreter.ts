@@ -22,6 +22,8 @@ export class GerberInterpreter {
 
   private readonly word = new GerberWord()
   private readonly apertures = new Map<number, Aperture>()
+  /** Definitions that make no sense: they matter only where they are used. */
+  private readonly badApertures = new Map<number, GerberNonsense>()
   private readonly macros = new Map<string, Macro>()
   private macroStatements = 0
   private format: { integer: number; decimals: number; isTrailing: boolean } | null = null
@@ -123,7 +125,7 @@ export class GerberInterpreter {
 
   private select(code: number): void {
     const aperture = this.apertures.get(code)
-    if (!aperture) throw new GerberNonsense(`aperture D${code} is used but never defined`)
+    if (!aperture) throw this.badApertures.get(code) ?? new GerberNonsense(`aperture D${code} is used but never defined`)
     this.aperture = aperture
   }
 
@@ -274,10 +276,25 @@ export class GerberInterpreter {
   }
 
   private define(rest: string): void {
-    if (this.apertures.size >= this.limits.apertures) throw new TooComplex(`more than ${this.limits.apertures} apertures`)
-    const { code, aperture } = defineAperture(rest, this.unit ?? 25.4, this.macros, this.aperFunction, this.limits)
+    if (this.apertures.size + this.badApertures.size >= this.limits.apertures)
+      throw new TooComplex(`more than ${this.limits.apertures} apertures`)
+    const told = Number(/^D0*(\d{2,9})/.exec(rest)?.[1] ?? Number.NaN)
+    const { code, aperture } = this.defined(rest, told)
+    if (!aperture) return
     if (aperture.shape === 'macro') this.canvas.spend(Math.ceil(aperture.primitives / 10))
+    this.badApertures.delete(code)
     this.apertures.set(code, aperture)
+  }
+
+  private defined(rest: string, told: number): { code: number; aperture: Aperture | null } {
+    try {
+      return defineAperture(rest, this.unit ?? 25.4, this.macros, this.aperFunction, this.limits)
+    } catch (error) {
+      if (!(error instanceof GerberNonsense) || !(told >= 10)) throw error
+      this.badApertures.set(told, error)
+      this.apertures.delete(told)
+      return { code: told, aperture: null }
+    }
   }
 
   private blockStatement(rest: string): void {

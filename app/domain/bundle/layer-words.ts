@@ -28,6 +28,9 @@ const loneLetter = /(?<![a-z])([ftb]|comp|sol)(?![a-z])/
 function sideFromWords(words: string): LayerSide | null {
   const strong = [...words.matchAll(strongSide)].at(-1)
   if (strong) return strong.groups?.bottom ? 'bottom' : 'top'
+  // German offices number the sides of a film: 0 for the top, 1 for the bottom.
+  const film = /(?:^| )(?:stp|sieb|paste?) ?([01])(?: |$)/.exec(words)?.[1]
+  if (film) return film === '0' ? 'top' : 'bottom'
   const letter = (letterBefore.exec(words) ?? loneLetter.exec(words))?.[1]
   return letter ? (letter.startsWith('b') || letter === 'sol' ? 'bottom' : 'top') : null
 }
@@ -46,9 +49,9 @@ const kinds: [RegExp, (side: LayerSide | null) => Role][] = [
   ],
   [/(^| |top|bottom)(assy|assembly|asm)|bestueckungsplan/, (side) => role('assembly', side)],
   [/paste|stencil|cream/, (side) => role('paste', side)],
-  [/mask|resist|stopp?(lack)?( |$)|loetstop|(^| )[tb]?stop/, (side) => role('soldermask', side)],
+  [/mask|resist|stopp?(lack)?( |$)|loetstop|(^| )[tb]?stop|(^| )stp ?\d( |$)/, (side) => role('soldermask', side)],
   [
-    /silk|legend|overlay|bestueckung|siebdruck|serigra|screen ?print|nomenclature|(^| )[tb]?place( |$)/,
+    /silk|legend|overlay|bestueckung|siebdruck|serigra|screen ?print|(^| )sieb ?\d( |$)|nomenclature|(^| )[tb]?place( |$)/,
     (side) => role('legend', side)
   ],
   [/(^| )npth|non ?plated|unplated|not ?plated|(bohr|drill)[a-z]* ndk( |$)|^ndk /, () => role('drill-nonplated')],

@@ -151,7 +151,6 @@ async function readLists(
   bytesOf: (file: FileReading) => Promise<Uint8Array>,
   limits: CheckLimits
 ): Promise<BundleFinding[]> {
-  const findings: BundleFinding[] = []
   const boms = reading.files.filter((file) => file.layer.function === 'bom')
   for (const file of boms) {
     const bytes = await bytesOf(file)
@@ -161,41 +160,51 @@ async function readLists(
       reading.bomFile = file.layer.file
     }
   }
-  if (boms.length === 0) {
-    const message = 'There is no bill of materials.'
-    findings.push(finding('bom-missing', message, { expected: 'a list of parts as CSV' }))
-  } else if (!reading.bom || reading.bom.lines.length === 0) {
-    reading.bom = null
-    const message = 'The bill of materials cannot be read: no heading names the designators and the parts.'
-    findings.push(
-      finding('bom-unreadable', message, {
-        file: boms[0]!.layer.file,
-        expected: 'columns such as Reference, Value, Footprint, Quantity'
-      })
-    )
-  }
   const lists = reading.files.filter((file) => file.layer.function === 'placement')
+  const unreadable: FileReading[] = []
+  const read = new Set<string>()
   for (const file of lists) {
     const base = file.path.toLowerCase()
     const fallback = /bot(tom)?|back/.test(base) && !/top|front/.test(base) ? 'bottom' : 'top'
     const bytes = await bytesOf(file)
     const placement = file.kind === 'text' ? listOrNull(bytes, () => readPlacement(bytes, limits, fallback)) : null
     if (!placement) {
-      const message = 'The placement list cannot be read: no heading names designator, X and Y.'
-      findings.push(
-        finding('placement-unreadable', message, {
-          file: file.layer.file,
-          expected: 'columns such as Designator, Mid X, Mid Y, Rotation, Layer'
-        })
-      )
+      unreadable.push(file)
       continue
     }
+    read.add(withoutExtension(file.path))
     reading.placement = merged(reading.placement, placement)
     reading.placementFile ??= file.layer.file
   }
+  // The same list once more in another form, as some tools write it beside, need not be read twice.
+  return [
+    ...bomFindings(reading, boms),
+    ...placementFindings(
+      lists,
+      unreadable.filter((file) => !read.has(withoutExtension(file.path)))
+    )
+  ]
+}
+
+const withoutExtension = (path: string) => path.replace(/\.\w+$/, '').toLowerCase()
+
+function bomFindings(reading: BundleReading, boms: FileReading[]): BundleFinding[] {
+  if (boms.length === 0) return [finding('bom-missing', 'There is no bill of materials.', { expected: 'a list of parts as CSV' })]
+  // Headings alone are a right list only for a board without parts, which places none either.
+  const isWithoutParts = reading.placement?.parts.length === 0
+  if (reading.bom && (reading.bom.lines.length > 0 || isWithoutParts)) return []
+  reading.bom = null
+  const message = 'The bill of materials cannot be read: no heading names the designators and the parts.'
+  const expected = 'columns such as Reference, Value, Footprint, Quantity'
+  return [finding('bom-unreadable', message, { file: boms[0]!.layer.file, expected })]
+}
+
+function placementFindings(lists: FileReading[], unreadable: FileReading[]): BundleFinding[] {
   if (lists.length === 0)
-    findings.push(finding('placement-missing', 'There is no placement list.', { expected: 'a list of places as CSV' }))
-  return findings
+    return [finding('placement-missing', 'There is no placement list.', { expected: 'a list of places as CSV' })]
+  const message = 'The placement list cannot be read: no heading names designator, X and Y.'
+  const expected = 'columns such as Designator, Mid X, Mid Y, Rotation, Layer'
+  return unreadable.map((file) => finding('placement-unreadable', message, { file: file.layer.file, expected }))
 }
 
 /** Lists by side are one list; a list that only repeats another (whole board beside one side) adds nothing. */
