@@ -44,6 +44,9 @@ export const holeCentre = (hole: Hole): [number, number] => [
   hole.toY === null ? hole.y : (hole.y + hole.toY) / 2
 ]
 
+/** Whether a hole is plated, by itself or by its file's function. */
+export const isPlated = (hole: Hole, fn: string) => (hole.plating === null ? fn !== 'drill-nonplated' : hole.plating === 'plated')
+
 /** The share (0 to 1) of holes whose middle, scaled about the origin, falls on a flash. 1 where there are no holes. */
 export function shareOnFlashes(index: FlashIndex, holes: readonly Hole[], scale = 1): number {
   if (holes.length === 0) return 1
@@ -62,19 +65,48 @@ export function isCentred(index: FlashIndex, x: number, y: number, by = 0.15): b
   return (index.cells.get(key(Math.floor(x / cellSize), Math.floor(y / cellSize))) ?? []).some(isAt) || index.large.some(isAt)
 }
 
-/** The share (0 to 1) of one layer's flashes that lie over the middle of another's. */
-export function shareCentred(index: FlashIndex, flashes: Flashes): number {
-  if (flashes.x.length === 0) return 1
-  let hits = 0
-  for (let i = 0; i < flashes.x.length; i++) if (isCentred(index, flashes.x[i]!, flashes.y[i]!)) hits++
-  return hits / flashes.x.length
+/**
+ * Which of a mask's or stencil's openings lie over something of the board: over the middle of a pad, over a part of a much larger pad (as
+ * the panes of a heat pad's stencil do), or over the middle of a drilled hole.
+ */
+export function openingsOver(pads: FlashIndex, holes: FlashIndex, openings: Flashes): boolean[] {
+  return openings.x.map((x, i) => {
+    const y = openings.y[i]!
+    return isCentred(pads, x, y) || isCentred(holes, x, y) || isOnLarger(pads, x, y, openings.halfX[i]!, openings.halfY[i]!)
+  })
+}
+
+/** Drilled holes as flashes of their size, to ask what lies over them. */
+export function indexHoles(holes: readonly Hole[]): FlashIndex {
+  const flashes: Flashes = { x: [], y: [], halfX: [], halfY: [], aperture: [] }
+  for (const hole of holes) {
+    const [x, y] = holeCentre(hole)
+    flashes.x.push(x)
+    flashes.y.push(y)
+    flashes.halfX.push(hole.diameter / 2)
+    flashes.halfY.push(hole.diameter / 2)
+    flashes.aperture.push(null)
+  }
+  return indexFlashes(flashes)
+}
+
+/** Whether a small opening lies within a flash at least half as large again both ways. */
+function isOnLarger({ cells, large, flashes }: FlashIndex, x: number, y: number, halfX: number, halfY: number): boolean {
+  const covers = (i: number) =>
+    flashes.halfX[i]! >= 1.5 * halfX &&
+    flashes.halfY[i]! >= 1.5 * halfY &&
+    Math.abs(x - flashes.x[i]!) + halfX <= flashes.halfX[i]! + slack &&
+    Math.abs(y - flashes.y[i]!) + halfY <= flashes.halfY[i]! + slack
+  return (cells.get(key(Math.floor(x / cellSize), Math.floor(y / cellSize))) ?? []).some(covers) || large.some(covers)
 }
 
 /**
  * The shift that most holes share against the middles of their pads, in mm; null when they sit in the middle, or each is off its own way
  * (as the half-holes of opposite edges are). Median of the offsets, shared by at least 70 % of five or more holes.
+ *
+ * @param isSparse only some holes have a pad on the layer: 90 % of those that have one must share the shift
  */
-export function commonShift(index: FlashIndex, holes: readonly Hole[]): [number, number] | null {
+export function commonShift(index: FlashIndex, holes: readonly Hole[], isSparse = false): [number, number] | null {
   const offsets: [number, number][] = []
   for (const hole of holes) {
     const [x, y] = holeCentre(hole)
@@ -86,7 +118,7 @@ export function commonShift(index: FlashIndex, holes: readonly Hole[]): [number,
   const [dx, dy] = [median(0), median(1)]
   if (Math.hypot(dx, dy) < 0.15) return null
   const sharing = offsets.filter((offset) => Math.hypot(offset[0] - dx, offset[1] - dy) < 0.05)
-  return sharing.length >= 0.7 * holes.length ? [dx, dy] : null
+  return sharing.length >= (isSparse ? 0.9 * offsets.length : 0.7 * holes.length) ? [dx, dy] : null
 }
 
 /** How far a place is from the middle of the nearest flash that covers it. */

@@ -3,6 +3,7 @@ import type { BoardArea } from './board-area'
 import type { EdgeExcess } from './edge-watch'
 import type { FileKind } from './file-kind'
 import type { LayerSums } from './layer-sums'
+import type { HoleWatch } from './hole-watch'
 import type { Role } from './name-layer'
 import type { Outline } from './outline-contours'
 import type { Bom } from './read-bom'
@@ -29,6 +30,8 @@ export type FileReading = {
   drillFormat: DrillFormat | null
   /** Of a copper layer: what it draws past the board's edge; null where there is no closed outline. */
   excess: EdgeExcess | null
+  /** Of a copper layer: what lies at the rims of the drilled holes; null where there are none. */
+  rims: HoleWatch | null
   /** The copper layers that a drill file's holes run between, as its attribute says; null for all. */
   span: [number, number] | null
   /** Set once something was found wrong with the file itself, so that checks resting on it are left out. */

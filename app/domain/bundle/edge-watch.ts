@@ -7,6 +7,8 @@ import type { DrawingWatch } from './gerber-canvas'
 export const edgeSlack = 0.05
 /** Strokes up to this width in mm that run on the edge itself are the board's edge drawn on every layer, as older tools do (common practice, no source). */
 const edgePen = 0.3
+/** How far such strokes may stray from the contour, whose ends were joined over as much, in mm. */
+const edgePenOff = 0.3
 /** How finely the worst place along a line is looked for, in mm. */
 const finest = 0.02
 const mostSpots = 2000
@@ -190,12 +192,19 @@ export class EdgeWatch implements DrawingWatch {
   }
 
   private runsOnEdge(points: Path): boolean {
-    const isOn = (x: number, y: number) => this.area.nearest(x, y, finest).segment >= 0
-    for (let i = 0; i < points.length; i += 2) {
-      if (!isOn(points[i]!, points[i + 1]!)) return false
-      if (i > 0 && !isOn((points[i]! + points[i - 2]!) / 2, (points[i + 1]! + points[i - 1]!) / 2)) return false
+    let near = 0
+    let all = 0
+    const look = (x: number, y: number) => {
+      const { segment, distance } = this.area.nearest(x, y, edgePenOff)
+      all++
+      if (segment >= 0 && distance <= edgeSlack) near++
+      return segment >= 0
     }
-    return true
+    for (let i = 0; i < points.length; i += 2) {
+      if (!look(points[i]!, points[i + 1]!)) return false
+      if (i > 0 && !look((points[i]! + points[i - 2]!) / 2, (points[i + 1]! + points[i - 1]!) / 2)) return false
+    }
+    return near * 3 >= all
   }
 }
 

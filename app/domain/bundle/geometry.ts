@@ -89,3 +89,13 @@ export function isFarOutside(contour: Path, box: Box, x: number, y: number, by: 
   if (x < box.minX - by || x > box.maxX + by || y < box.minY - by || y > box.maxY + by) return true
   return !isInside(contour, x, y) && distanceToEdge(contour, x, y) > by
 }
+
+/** How much of the smaller one's width and height two boxes share, the lesser of both (0 to 1); a side below 0.01 mm counts as that. */
+export function overlapShare(a: Box, b: Box): number {
+  const along = (a0: number, a1: number, b0: number, b1: number) => {
+    const least = Math.max(0.01, Math.min(a1 - a0, b1 - b0))
+    const middle = a1 - a0 < 0.01 ? a0 >= b0 && a0 <= b1 : b1 - b0 < 0.01 && b0 >= a0 && b0 <= a1
+    return middle ? 1 : Math.max(0, Math.min(a1, b1) - Math.max(a0, b0)) / least
+  }
+  return Math.min(along(a.minX, a.maxX, b.minX, b.maxX), along(a.minY, a.maxY, b.minY, b.maxY))
+}

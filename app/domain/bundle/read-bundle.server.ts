@@ -1,4 +1,4 @@
-import { indexFlashes } from './alignment'
+import { holeCentre, indexFlashes, isPlated } from './alignment'
 import { BoardArea } from './board-area'
 import type { BundleFinding, CheckStep, DeclaredDetails } from './bundle-check.types'
 import type { BundleReading, FileReading } from './bundle-reading.types'
@@ -6,13 +6,14 @@ import { EdgeWatch } from './edge-watch'
 import { finding } from './finding'
 import { holesOfGerber } from './gerber-drill'
 import { LayerSums } from './layer-sums'
+import { HoleRims, HoleWatch } from './hole-watch'
 import type { CheckLimits } from './limits'
 import { listOrNull } from './list-or-null'
 import { findOutline } from './outline-contours'
 import { settleDrillFormat } from './drill-format'
 import { readBom } from './read-bom'
-import { readExcellon } from './read-excellon'
-import { noImage, readGerber } from './read-gerber'
+import { readExcellon, type DrillFile } from './read-excellon'
+import { noImage, readGerber, type GerberImage } from './read-gerber'
 import { readJob } from './read-job'
 import { readPlacement, type Placement } from './read-placement'
 import type { BundleSource } from './tell-layers'
@@ -46,7 +47,7 @@ export async function readBundle(
   const bytesOf = (file: FileReading) => source.read(byPath.get(file.path)!)
 
   onStep('measure')
-  const readLayer = async (file: FileReading) => {
+  const readLayer = async (file: FileReading, rims: HoleRims | null = null) => {
     const bytes = await bytesOf(file)
     const fn = file.layer.function
     const isDrill = fn.startsWith('drill')
@@ -55,15 +56,17 @@ export async function readBundle(
       return
     }
     const edge = fn === 'copper' && reading.area ? new EdgeWatch(reading.area) : null
+    const holes = fn === 'copper' && rims ? new HoleWatch(rims) : null
     file.sums = fn === 'copper' ? new LayerSums() : null
     file.image = safely(() =>
       readGerber(bytes, limits, {
         strokes: isDrill || fn === 'outline',
-        flashes: isDrill || fn === 'copper' || fn === 'soldermask',
-        watches: [edge, file.sums].filter((watch) => watch !== null)
+        flashes: isDrill || fn === 'copper' || fn === 'soldermask' || fn === 'paste',
+        watches: [edge, holes, file.sums].filter((watch) => watch !== null)
       })
     )
     file.excess = edge
+    file.rims = holes
     if (isDrill && !file.image.problem) file.holes = holesOfGerber(file.image)
   }
   const layers = files.filter(
@@ -73,29 +76,46 @@ export async function readBundle(
       isLayerRole(file.layer.function) &&
       (file.layer.function !== 'other' || file.kind === 'gerber')
   )
-  // The outline goes first: copper is compared with it while it is drawn.
+  // The outline goes first, then the holes: copper is compared with both while it is drawn.
+  const isCopper = (file: FileReading) => file.layer.function === 'copper'
   for (const file of layers) if (file.layer.function === 'outline') await readLayer(file)
   chooseOutline(reading, limits)
-  for (const file of layers) if (file.layer.function !== 'outline') await readLayer(file)
-  const pads = files
-    .filter((file) => file.layer.function === 'copper' && file.image && !file.image.problem && file.image.flashes.x.length > 0)
-    .map((file) => indexFlashes(file.image!.flashes))
+  for (const file of layers) if (file.layer.function !== 'outline' && !isCopper(file)) await readLayer(file)
+  const drills: { file: FileReading; bytes: Uint8Array; first: DrillFile | null }[] = []
   for (const file of files) {
     if (file.kind !== 'drill') continue
     const bytes = await bytesOf(file)
-    const read = () => {
-      const settled = settleDrillFormat(bytes, readExcellon(bytes, limits), pads, limits)
-      file.holes = settled.file.holes
-      file.drillFormat = settled.file.format
-      file.image = {
-        ...noImage(settled.file.problem ?? { kind: 'unreadable', message: '', found: null }),
-        problem: settled.file.problem,
-        resolution: settled.file.resolution
+    let first: DrillFile | null = null
+    file.image = safely(() => {
+      first = readExcellon(bytes, limits)
+      return takeDrill(file, first)
+    })
+    drills.push({ file, bytes, first })
+  }
+  const unsettled = drills.filter(({ first }) => first && first.doubts.size > 0 && first.holes.length > 0 && !first.problem)
+  const rims = unsettled.length === 0 ? holeRims(reading) : null
+  for (const file of layers) if (isCopper(file)) await readLayer(file, rims)
+  if (unsettled.length > 0) {
+    const pads = files
+      .filter((file) => isCopper(file) && file.image && !file.image.problem && file.image.flashes.x.length > 0)
+      .map((file) => indexFlashes(file.image!.flashes))
+    for (const { file, bytes, first } of unsettled) {
+      const settle = () => {
+        const settled = settleDrillFormat(bytes, first!, pads, limits)
+        const image = takeDrill(file, settled.file)
+        if (settled.assumed && !settled.file.problem) findings.push(formatFinding(file))
+        return image
       }
-      if (settled.assumed && !settled.file.problem) findings.push(formatFinding(file))
-      return file.image
+      file.image = safely(settle)
     }
-    file.image = safely(read)
+    const settledRims = holeRims(reading)
+    for (const file of layers) {
+      if (!settledRims || !isCopper(file) || file.image?.problem) continue
+      const holes = new HoleWatch(settledRims)
+      const bytes = await bytesOf(file)
+      const image = safely(() => readGerber(bytes, limits, { strokes: false, flashes: false, watches: [holes] }))
+      if (!image.problem) file.rims = holes
+    }
   }
   for (const file of files) {
     if (file.layer.function === 'job' && !reading.job) reading.job = readJob(await bytesOf(file))
@@ -103,6 +123,33 @@ export async function readBundle(
   onStep('compare-lists')
   findings.push(...(await readLists(reading, bytesOf, limits)))
   return { reading, findings }
+}
+
+function takeDrill(file: FileReading, drill: DrillFile): GerberImage {
+  file.holes = drill.holes
+  file.drillFormat = drill.format
+  return {
+    ...noImage(drill.problem ?? { kind: 'unreadable', message: '', found: null }),
+    problem: drill.problem,
+    resolution: drill.resolution
+  }
+}
+
+/** The rims of all drilled holes but those that the board's edge cuts, where copper ends on purpose. */
+function holeRims({ files, area }: BundleReading): HoleRims | null {
+  const holes = files.flatMap((file) =>
+    file.image?.problem || !file.layer.function.startsWith('drill')
+      ? []
+      : (file.holes ?? []).map((hole) => {
+          const [x, y] = holeCentre(hole)
+          const isOwn = isPlated(hole, file.layer.function)
+          return { x, y, radius: hole.diameter / 2, path: file.path, isPlated: isOwn, span: file.span }
+        })
+  )
+  return HoleRims.of(
+    holes.filter(({ x, y, radius }) => radius > 0 && (!area || area.nearest(x, y, radius + 0.1).segment < 0)),
+    area
+  )
 }
 
 /** A defect of ours in one file's reader must not take the whole check along: the file counts as unreadable. */

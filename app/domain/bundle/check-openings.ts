@@ -1,0 +1,46 @@
+import { indexFlashes, indexHoles, openingsOver, shareOnFlashes } from './alignment'
+import type { BundleFinding } from './bundle-check.types'
+import type { BundleReading } from './bundle-reading.types'
+import { drillFiles, percent, platedHoles, type Indexed } from './aligned-files'
+import { finding } from './finding'
+
+/** Below this share of openings over something of the board the layer is not this board's; masks of 17 real boards lie above 0.88, stencils above 0.99. */
+const poor = { soldermask: 0.5, paste: 0.7 }
+const leastOpenings = { soldermask: 8, paste: 4 }
+
+/** Solder masks and stencils whose openings do not lie over the copper of their side. */
+export function checkOpenings(reading: BundleReading, indices: Indexed[]): BundleFinding[] {
+  const drills = drillFiles(reading)
+  const holes = indexHoles(drills.flatMap((file) => file.holes!))
+  return reading.files.flatMap((file) => {
+    const fn = file.layer.function
+    if ((fn !== 'soldermask' && fn !== 'paste') || file.isBroken || file.conflict || !file.image) return []
+    const copper = indices.find((other) => other.file.layer.side === file.layer.side)
+    const { flashes } = file.image
+    if (!copper || copper.file.isBroken || copper.index.count < leastOpenings[fn] || flashes.x.length < leastOpenings[fn])
+      return []
+    const over = openingsOver(copper.index, holes, flashes)
+    const share = over.filter(Boolean).length / over.length
+    if (share >= poor[fn]) return []
+    const first = over.indexOf(false)
+    const side = file.layer.side === 'inner' ? null : file.layer.side
+    const place = { x: flashes.x[first]!, y: flashes.y[first]!, side }
+    // Where the mask fits the holes better than the copper does, the copper is the foreign layer.
+    const plated = drills.flatMap(platedHoles)
+    const ofMask = shareOnFlashes(indexFlashes(flashes), plated)
+    const isCopper = fn === 'soldermask' && plated.length >= 5 && ofMask > shareOnFlashes(copper.index, plated) + 0.2
+    const guilty = isCopper ? copper.file : file
+    guilty.isBroken = true
+    const message = isCopper
+      ? "The copper's pads lie neither under the openings of its mask nor on the holes: it is shifted, mirrored or of another board."
+      : `The ${fn === 'paste' ? "stencil's" : "mask's"} openings do not lie over the pads of its side: it is shifted, mirrored or of another board.`
+    return [
+      finding('layer-misaligned', message, {
+        file: guilty.layer.file,
+        expected: 'openings over pads',
+        found: `${percent(share)} over pads`,
+        place
+      })
+    ]
+  })
+}
