@@ -20,8 +20,8 @@ function isLength(code: number, position: number, count: number): boolean {
   return position >= 1 && position <= 5
 }
 
-/** Lengths of a macro turn its mark by at most one turn in this many nm, so that rounding to inches barely shows and a change does. */
-const macroWave = 700_000
+/** Lengths of a macro turn its mark by at most one turn in this many nm: all its flashes share the rounding, which must barely show. */
+export const macroWave = 2_000_000
 
 /** Builds the mark of a macro aperture from its primitives with their values, in their order. */
 export class MacroMark {

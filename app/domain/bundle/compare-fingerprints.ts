@@ -1,26 +1,36 @@
 import type { LayerFingerprint } from './bundle-check.types'
+import { macroWave } from './aperture-mark'
 import { waveCount, waveNumbers } from './geometry-sums'
 
 type Kind = { objects: number; points: number; waves: number[] }
 type Print = { step: number; middle: [number, number] | null; kinds: Map<string, Kind> }
 
-/** What an unchanged layer's waves may differ by: the rounding of the sums themselves. A lost object differs by 1, one moved by 0.05 mm by 0.5. */
-const slack = 0.2
+/**
+ * What an unchanged layer's waves may differ by: the rounding of the sums themselves, in all and for each root of the points. A lost object
+ * differs by 1, one moved by 0.05 mm by 0.5 and more.
+ */
+const slack = 0.06
+const tableSlack = 5e-4
 
 /** An outline's ends may be joined in another order, each by a few µm. */
 const outlineSlack = 0.3
 
-/** How far, in units of its standard deviation, rounding may carry a sum: about one in 10,000 goes farther. */
+/**
+ * How far, in units of its standard deviation, rounding may carry a sum: about one in 10,000 goes farther. Corners of regions stand in rows and
+ * circles, and are rounded alike in many places.
+ */
 const sureness = 3.2
+const regionSureness = 6
 
-/** Steps of coordinates up to this, in mm, are told apart from nothing: they are what tools write today (a millionth of an inch, 1 or 10 nm). */
-const fineStep = 1e-4
+/** Files in the same step above this, in mm, were rounded alike: nobody puts 0, 0 between the steps of so coarse a grid. */
+const coarseStep = 1.5e-3
 
 /**
  * Whether two layers have the same geometry, to within what rounding does.
  *
  * Two exports of one layer in units of different fineness differ by up to half a step in each coordinate, which adds up as a random walk over
- * the points; so much is allowed for, and no more. Where both were written in the same coarse step they were rounded alike.
+ * the points; so much is allowed for, and no more: with 1 µm that hides a hole moved by 0.05 mm among 500, with 1 nm nothing. The number of
+ * objects is always compared.
  */
 export function isSameGeometry(a: LayerFingerprint, b: LayerFingerprint, { withPlace = true } = {}): boolean {
   if (a.function !== b.function) return false
@@ -31,9 +41,8 @@ export function isSameGeometry(a: LayerFingerprint, b: LayerFingerprint, { withP
     const allowed = 0.003 + one.step + other.step
     if (Math.abs(one.middle[0] - other.middle[0]) > allowed || Math.abs(one.middle[1] - other.middle[1]) > allowed) return false
   }
-  const isCoarse = Math.max(one.step, other.step) > fineStep
-  const isAlike = Math.abs(one.step - other.step) < 1e-7
-  const rounding = isCoarse && isAlike ? 0 : (one.step ** 2 + other.step ** 2) / 12
+  const isAlike = Math.abs(one.step - other.step) < 1e-7 && one.step > coarseStep
+  const rounding = isAlike ? 0 : Math.sqrt((one.step ** 2 + other.step ** 2) / 12)
   const base = a.function === 'outline' ? outlineSlack : slack
   return pairs(one, other).every(([p, q]) => isSameKind(p, q, base, rounding))
 }
@@ -60,10 +69,13 @@ function total({ kinds }: Print): Kind {
 
 function isSameKind(p: Kind, q: Kind, base: number, rounding: number): boolean {
   if (p.objects !== q.objects) return false
-  const walk = Math.sqrt(Math.max(p.points, q.points) * rounding)
+  const root = Math.sqrt(Math.max(p.points, q.points))
+  const sure = p.points > 4 * p.objects ? regionSureness : sureness
+  // The flashes of one macro share the rounding of its eight or so lengths.
+  const shared = p.points === p.objects ? p.objects * Math.sqrt(8) * ((2 * Math.PI * 1e6) / macroWave) * 0.75 : 0
   for (let k = 0; k < waveCount; k++) {
     const off = Math.hypot(p.waves[2 * k]! - q.waves[2 * k]!, p.waves[2 * k + 1]! - q.waves[2 * k + 1]!)
-    if (off > base + sureness * waveNumbers[k]! * walk) return false
+    if (off > base + tableSlack * root + (sure * waveNumbers[k]! * root + shared) * rounding) return false
   }
   return true
 }

@@ -272,7 +272,7 @@ export class GerberInterpreter {
 
   /** The step in mm in which the file writes coordinates. */
   get resolution(): number {
-    return (this.unit ?? 25.4) / 10 ** (this.mostDecimals || (this.format?.decimals ?? 6))
+    return (this.unit ?? 25.4) / 10 ** Math.max(this.mostDecimals, this.format?.decimals ?? 6)
   }
 
   private define(rest: string): void {

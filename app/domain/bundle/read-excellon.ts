@@ -100,7 +100,9 @@ class ExcellonReader {
 
   get resolution(): number {
     const { unit, decimals } = this.format()
-    return (unit === 'inch' ? 25.4 : 1) / 10 ** (this.mostDecimals || decimals)
+    // Zeros at the end are left out with decimal points: fewer digits than are customary tell nothing.
+    const written = this.mostDecimals === 0 ? decimals : Math.max(this.mostDecimals, unit === 'inch' ? 4 : 3)
+    return (unit === 'inch' ? 25.4 : 1) / 10 ** written
   }
 
   run(bytes: Uint8Array): ReadProblem | null {
@@ -317,8 +319,7 @@ class ExcellonReader {
     if (digits.includes('.')) {
       value = Number(digits)
       this.mostDecimals = Math.max(this.mostDecimals, digits.length - digits.indexOf('.') - 1)
-    }
-    else if (format.keeps === 'leading') value = Number(digits) / 10 ** (digits.length - format.integer)
+    } else if (format.keeps === 'leading') value = Number(digits) / 10 ** (digits.length - format.integer)
     else value = Number(digits) / 10 ** format.decimals
     if (!digits.includes('.')) {
       if (!this.declared.digits) this.doubts.add('digits')
