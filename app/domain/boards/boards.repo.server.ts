@@ -108,7 +108,16 @@ export function listNewestReleases(db: DbOrTx, boardIds: string[]) {
   if (boardIds.length === 0) return Promise.resolve([])
   const ranked = db
     .selectFrom('releases')
-    .select(['board_id', 'version', 'state', 'board_revision', 'published_at', 'facts_json', 'picture_top_sha256'])
+    .select([
+      'board_id',
+      'version',
+      'state',
+      'board_revision',
+      'published_at',
+      'facts_json',
+      'picture_top_sha256',
+      'thumb_top_sha256'
+    ])
     .select(
       sql<number>`row_number() over (partition by board_id order by state = 'released' desc, precedence_key desc)`.as('place')
     )

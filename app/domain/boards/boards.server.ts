@@ -3,6 +3,7 @@ import type { BundleFacts } from '~/domain/bundle/bundle-check.types'
 import { recordAudit } from '~/domain/audit/record.server'
 import type { Actor } from '~/domain/accounts/can'
 import { must } from '~/domain/accounts/must'
+import { picturePath, thumbnailPath } from '~/domain/releases/release-path'
 import { DomainError } from '~/lib/domain-error'
 import { newId } from '~/lib/new-id'
 import type { BoardEdit, BoardOpening } from './board.schema'
@@ -122,7 +123,8 @@ export type ListedBoard = {
     publishedAt: string
     widthMm: number | null
     heightMm: number | null
-    hasPicture: boolean
+    /** The address of its top side, small; null where it was not drawn. */
+    thumbnail: string | null
   } | null
 }
 
@@ -182,9 +184,19 @@ async function withNewest(db: Db, boards: repo.BoardRow[]): Promise<ListedBoard[
             publishedAt: r.published_at!,
             widthMm: facts?.width ?? null,
             heightMm: facts?.height ?? null,
-            hasPicture: r.picture_top_sha256 !== null
+            thumbnail: thumbnailOf(b.slug, r)
           }
         : null
     }
   })
+}
+
+/** The thumbnail, or the picture itself where only that could be drawn. */
+function thumbnailOf(
+  slug: string,
+  release: { version: string; picture_top_sha256: string | null; thumb_top_sha256: string | null }
+): string | null {
+  const { version, picture_top_sha256: picture, thumb_top_sha256: thumbnail } = release
+  if (thumbnail !== null) return thumbnailPath(slug, version, 'top', thumbnail)
+  return picture === null ? null : picturePath(slug, version, 'top', picture)
 }

@@ -75,12 +75,12 @@ describe('the pictures of a board of four layers', () => {
     expect(await drawn(four)).toEqual(pictures)
   })
 
-  it('have thumbnails of the board’s proportion with a transparent ground', () => {
+  it('have thumbnails of the board’s proportion', () => {
     for (const png of [pictures.thumbnails!.top, pictures.thumbnails!.bottom]) {
-      // PNG (W3C), 11.2.1: signature, then IHDR with width, height, bit depth and colour type; 6 is RGB with alpha.
+      // PNG (W3C), 11.2.1: signature, then IHDR with width, height, bit depth and colour type; 3 is indexed.
       const view = Buffer.from(png)
       expect(view.subarray(0, 8)).toEqual(Buffer.from([0x89, 0x50, 0x4e, 0x47, 0x0d, 0x0a, 0x1a, 0x0a]))
-      expect([view.readUInt32BE(16), view.readUInt32BE(20), view[25]]).toEqual([480, 177, 6])
+      expect([view.readUInt32BE(16), view.readUInt32BE(20), view[25]]).toEqual([720, 265, 3])
     }
     expect(pictures.thumbnails!.top).not.toEqual(pictures.thumbnails!.bottom)
   })

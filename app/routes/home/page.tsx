@@ -121,9 +121,9 @@ function Boards({ boards }: { boards: Shown[] }) {
         return (
           <article className="brd" key={board.id}>
             <div>
-              {board.newest?.hasPicture && size ? (
+              {board.newest?.thumbnail && size ? (
                 <BoardAtScale
-                  src={`/boards/${board.slug}/releases/${board.newest.version}/picture/top.svg`}
+                  src={board.newest.thumbnail}
                   alt={`Top side of ${board.name} ${board.newest.version}`}
                   {...size}
                   columns={columns}

@@ -33,13 +33,24 @@ export function loader({ url }: Route.LoaderArgs) {
         name,
         summary,
         consoleName,
-        newest: newest && { version: newest.version, state: newest.state, on: dayOf(newest.publishedAt) }
+        newest: newest && {
+          version: newest.version,
+          state: newest.state,
+          on: dayOf(newest.publishedAt),
+          thumbnail: newest.thumbnail,
+          width: newest.widthMm,
+          height: newest.heightMm
+        }
       }))
     }
   })
 }
 
+/** Pixels a millimetre at which the widest of the boards is this wide. */
+const widest = 120
+
 export default function Boards({ loaderData: { q, isFirst, first, next, boards } }: Route.ComponentProps) {
+  const scale = widest / Math.max(1, ...boards.map((b) => b.newest?.width ?? 0))
   return (
     <SiteSheet current="Boards" trail={[{ label: 'Boards', href: '/' }, { label: 'All boards' }]}>
       <Title
@@ -89,9 +100,11 @@ export default function Boards({ loaderData: { q, isFirst, first, next, boards }
               {
                 key: 'newest',
                 head: 'Newest release',
+                className: 'nw',
                 cell: (b) =>
                   b.newest ? `${b.newest.version}, ${b.newest.state} ${b.newest.on}` : <span className="soft">none yet</span>
-              }
+              },
+              { key: 'picture', head: 'Top side, at one scale', cell: (b) => <Thumbnail board={b} scale={scale} /> }
             ]}
           />
         )}
@@ -103,5 +116,22 @@ export default function Boards({ loaderData: { q, isFirst, first, next, boards }
         )}
       </Section>
     </SiteSheet>
+  )
+}
+
+type Listed = Route.ComponentProps['loaderData']['boards'][number]
+
+function Thumbnail({ board: { name, newest }, scale }: { board: Listed; scale: number }) {
+  if (!newest?.thumbnail || newest.width === null || newest.height === null) return <span className="soft">not drawn</span>
+  return (
+    <img
+      className="max-w-none align-top"
+      src={newest.thumbnail}
+      alt={`Top side of ${name} ${newest.version}`}
+      width={Math.round(newest.width * scale)}
+      height={Math.round(newest.height * scale)}
+      loading="lazy"
+      decoding="async"
+    />
   )
 }
