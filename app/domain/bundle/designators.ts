@@ -1,9 +1,9 @@
 /** Largest number of designators that one range may stand for. */
 const largestRange = 5000
 
-/** `R1-R4` as R1, R2, R3, R4: only letters and a number to the same letters and a larger number; anything else stays as it is. */
+/** `R1-R4` (also `R1…R4`, `R1..R4`) as R1, R2, R3, R4: only letters and a number to the same letters and a larger number; anything else stays as it is. */
 export function expandRange(text: string): string[] {
-  const match = /^([A-Za-z_]+)(\d{1,6})[-–—]([A-Za-z_]+)(\d{1,6})$/.exec(text)
+  const match = /^([A-Za-z_]+)(\d{1,6})(?:[-–—…~]|\.{2,3})([A-Za-z_]+)(\d{1,6})$/.exec(text)
   if (!match || match[1] !== match[3]) return [text]
   const from = Number(match[2])
   const to = Number(match[4])
@@ -14,8 +14,8 @@ export function expandRange(text: string): string[] {
 /** The designators in a cell of a parts list, which may be separated by commas, semicolons or blanks and hold ranges. */
 export function readDesignators(cell: string): string[] {
   return cell
-    .replace(/([A-Za-z_]+\d+)\s+[-–—]\s+([A-Za-z_]+\d+)/g, '$1-$2')
-    .split(/[,;/\s]+/)
+    .replace(/([A-Za-z_]{1,20}\d{1,6})\s{0,3}(?:[-–—…~]|\.{2,3})\s{0,3}([A-Za-z_]{1,20}\d{1,6})/g, '$1-$2')
+    .split(/[,;/&|，、；\s]+/)
     .filter((part) => part !== '')
     .flatMap(expandRange)
 }

@@ -1,3 +1,4 @@
+import { wideOrder } from './read-table'
 import type { Role } from './name-layer'
 import { roleFromName } from './name-layer'
 
@@ -37,7 +38,7 @@ export function kindOf(bytes: Uint8Array): FileKind {
   if (/^\s*M30\s*$/.test(head)) return 'drill'
   if (/^\s*(G0?4\b|G\d\d\*|D\d\d\*|%[A-Z]{2})/.test(head) && head.includes('*')) return 'gerber'
   if (isEia(bytes.subarray(0, 1024))) return 'eia'
-  return head.includes('\0') && !/^(\xff\xfe|\xfe\xff)/.test(head) ? 'binary' : 'text'
+  return head.includes('\0') && !/^(\xff\xfe|\xfe\xff)/.test(head) && !wideOrder(bytes) ? 'binary' : 'text'
 }
 
 const layerExtension =

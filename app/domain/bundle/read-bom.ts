@@ -1,6 +1,7 @@
 import { readDesignators } from './designators'
 import type { CheckLimits } from './limits'
-import { findHeader, readTables, type Columns } from './read-table'
+import { isDescriptionNotFitted, isValueNotFitted } from './not-fitted'
+import { findTable, type Columns } from './read-table'
 
 export type BomLine = {
   designators: string[]
@@ -20,22 +21,39 @@ export type Bom = {
   unsafeCells: string[]
 }
 
+// Headings of the trade's tools in English, German and French; common practice, no source.
 const meanings = {
-  designators:
-    /^(ref|refs|reference|references|referencedesignators?|designators?|refdes|refdesignators?|partreferences?|componentreferences?|parts|locations?|positions?)$/,
-  quantity: /^(qty|quantity|qnty|quant|count|amount|pcs|pieces|qtyperboard|qtypcb|anzahl|menge)$/,
-  value: /^(value|val|values|comment|designation|partvalue)$/,
-  footprint: /^(footprint|package|pattern|case|casesize|pcbfootprint|packagereference)$/,
-  description: /^(description|desc|descr|details|partdescription|name)$/,
-  notFitted:
-    /^(notfitted|dnp|dnf|dni|dnm|donotpopulate|donotplace|donotfit|donotmount|nofit|nopop|unfitted|notmounted|notpopulated|donotinstall)$/,
-  fitted: /^(fitted|populate|populated|mounted|fit|assemble)$/,
-  number: /^(id|item|line|no|nr|number|pos|)$/
+  designators: [
+    /^(refs?|references?|referencedesignators?|designators?|refdes|refdesignators?|refdesig|partreferences?|componentreferences?|componentdesignators?|referenz(en)?|referenzbezeichner|bauteilreferenz(en)?|bezeichner|reperes?|reperetopologique|designateurs?)$/,
+    /^(parts?|components?|bauteile?|composants?|locations?|positions?)$/
+  ],
+  quantity: [
+    /^(qty|quantity|qnty|quant|count|amount|pcs|pieces|partcount|partscount|qtyperboard|quantityperboard|qtypcb|qtyboard|anzahl|menge|stuck|stuckzahl|stk|quantites?|qte|nombre)$/
+  ],
+  value: [
+    /^(value|val|values|partvalue|componentvalue|wert|bauteilwert|valeur)$/,
+    /^(comment|designation|kommentar|commentaire)$/
+  ],
+  footprint: [
+    /^(footprint|footprintname|pcbfootprint|pattern|landpattern|empreinte|footprintref)$/,
+    /^(package|packagereference|packagetype|packagefootprint|case|casesize|gehause|bauform|boitier|housing)$/
+  ],
+  description: [/^(description|desc|descr|details|partdescription|beschreibung|bauteilbeschreibung)$/, /^(name|bezeichnung)$/],
+  notFitted: [
+    /^(notfitted|dnp|dnf|dni|dnm|dns|donotpopulate|donotplace|donotfit|donotmount|donotinstall|donotstuff|donotassemble|nofit|nopop|unfitted|unpopulated|notmounted|notpopulated|notplaced|notassembled|nichtbestuckt|nichtbestucken|nonmontee?s?|nepasmonter)$/
+  ],
+  fitted: [
+    /^(fitted|populate|populated|mounted|mount|fit|assemble|assembled|placed|stuffed|bestuckt|bestucken|bestuckung|montee?s?|amonter)$/
+  ],
+  number: [/^(id|item|line|no|nr|num|number|pos|)$/]
 }
 
-const yes = /^(y|yes|true|1|x|✓|✔|dnp|dnf|dni|dnm|nf|nofit|notfitted|donotpopulate|donotplace|donotfit|excluded|ja)$/
-const no = /^(n|no|false|0|dnp|dnf|notfitted|excluded|nein)$/
-const markedInText = /^(dnp|dnf|dni|not fitted|do not (populate|fit|place|mount))\b/i
+const yes =
+  /^(y|yes|true|1|x|✓|✔|dnp|dnf|dni|dnm|dns|nf|nofit|notfitted|notpopulated|notplaced|notmounted|donotpopulate|donotplace|donotfit|donotmount|excluded|ja|j|oui|nichtbestuckt|nonmontee?)$/
+const no =
+  /^(n|no|false|0|dnp|dnf|dni|dnm|dns|nofit|notfitted|notpopulated|notplaced|notmounted|donotpopulate|donotplace|donotfit|donotmount|excluded|nein|non|nichtbestuckt|nonmontee?)$/
+const isTotal = /^\s*(grand\s*)?(sub)?(total|sum|summe|gesamt|somme)s?\b[\s:=\d]*$/i
+const isNoDesignator = /^\s*(n\/?a|none|keine?|aucune?|[-–—.]+)\s*$/i
 
 // `=` and `@` always start a formula; a sign does with a call or a reference behind it (`+5V` is a value).
 const runsAsFormula = /^\s*(=|@|[+-].*[(!|])/
@@ -45,26 +63,22 @@ export function readBom(bytes: Uint8Array, limits: CheckLimits): Bom | null {
   const isEnough = (c: Columns<keyof typeof meanings>) =>
     c.designators !== undefined &&
     (c.quantity !== undefined || c.value !== undefined || c.footprint !== undefined || c.description !== undefined)
-  let best: { rows: string[][]; header: { row: number; columns: Columns<keyof typeof meanings>; score: number } } | null = null
-  for (const table of readTables(bytes, limits)) {
-    const header = findHeader(table, meanings, isEnough)
-    if (header && (!best || header.score > best.header.score)) best = { rows: table.rows, header }
-  }
-  if (!best) return null
-  const { columns, row } = best.header
+  const table = findTable(bytes, limits, meanings, isEnough)
+  if (!table) return null
+  const { columns, row, rows } = table
   const lines: BomLine[] = []
   const distinct = new Set<string>()
   const unsafeCells: string[] = []
-  for (const cells of best.rows.slice(row + 1)) {
+  for (const cells of rows.slice(row + 1)) {
     const at = (key: keyof typeof meanings) => (columns[key] === undefined ? '' : (cells[columns[key]] ?? ''))
     for (const cell of cells) if (unsafeCells.length < 50 && runsAsFormula.test(cell)) unsafeCells.push(cell.slice(0, 60))
-    if (cells[0]?.startsWith('#') && cells.length < 3) continue
+    if (cells[0]?.startsWith('#') && (cells.length < 3 || table.isAligned)) continue
+    if (isTotal.test(at('designators')) || isNoDesignator.test(at('designators'))) continue
     const designators = readDesignators(at('designators'))
     if (designators.length === 0) continue
-    const quantity = /^\s*\d+([.,]0+)?\s*(x|pcs?|st)?\s*$/i.test(at('quantity')) ? Number.parseInt(at('quantity'), 10) : null
-    const key = (text: string) => text.toLowerCase().replace(/[\s_-]/g, '')
-    const isMarked = yes.test(key(at('notFitted'))) || (columns.fitted !== undefined && no.test(key(at('fitted'))))
-    const isMarkedInText = [at('value'), at('description')].some((text) => markedInText.test(text))
+    const quantity = /^\s*\d+([.,]0+)?\s*(x|pcs?|stk?)?\.?\s*$/i.test(at('quantity')) ? Number.parseInt(at('quantity'), 10) : null
+    const isMarked = yes.test(markKey(at('notFitted'))) || (columns.fitted !== undefined && no.test(markKey(at('fitted'))))
+    const isMarkedInText = isValueNotFitted(at('value')) || isDescriptionNotFitted(at('description'))
     lines.push({
       designators,
       quantity,
@@ -78,3 +92,10 @@ export function readBom(bytes: Uint8Array, limits: CheckLimits): Bom | null {
   }
   return { lines, distinctLines: distinct.size, unsafeCells }
 }
+
+const markKey = (text: string) =>
+  text
+    .slice(0, 60)
+    .toLowerCase()
+    .normalize('NFD')
+    .replace(/[\p{M}\s_-]/gu, '')
