@@ -1,4 +1,4 @@
-import { Balloons, sideOf, type Place } from './balloons'
+import { Balloon, Balloons, sideOf, type Place } from './balloons'
 import { DimensionAcross, DimensionDown, OriginCross } from './dimension'
 import { TwoDrawings } from './figure'
 import { MillimetreGrid } from './mm-grid'
@@ -22,7 +22,9 @@ const fit = (column: number, maxHeight: number, { width, height }: BoardPicture)
 
 export type BoardDrawingProps = BoardPicture & {
   /** Numbered places, clockwise from the top left (see `clockwise`); keys stand beside the figure. */
-  places?: Place[]
+  places?: Pick<Place, 'x' | 'y'>[]
+  /** Where 0, 0 of the layers lies, in millimetres from the lower left corner, from where the grid counts. */
+  origin?: { x: number; y: number }
 }
 
 /**
@@ -62,7 +64,8 @@ function Dimensioned({
   alt,
   width,
   height,
-  places = [],
+  places: given = [],
+  origin = { x: 0, y: 0 },
   left,
   right,
   sheetWidth,
@@ -70,6 +73,8 @@ function Dimensioned({
   dimensionX,
   hasOriginLabel
 }: DimensionedProps) {
+  // Over or under the board is told from the place alone: a side of the board is another matter.
+  const places = given.map(({ x, y }) => ({ x, y }))
   const has = (side: 'top' | 'bottom') => places.some((p) => sideOf(p, height) === side)
   const top = 32
   const x0 = r2(left + scale)
@@ -77,16 +82,27 @@ function Dimensioned({
   const y0 = r2(yTop + height * scale)
   const x1 = r2(x0 + width * scale)
   const bottom = r2(y0 + (has('bottom') ? Math.max(scale, 40) : Math.max(scale, hasOriginLabel ? 20 : 12)))
+  const isAtCorner = Math.abs(origin.x) < 0.01 && Math.abs(origin.y) < 0.01
   const atX = (x: number) => r2(x0 + x * scale)
   const atY = (y: number) => r2(y0 - y * scale)
   const label = `${alt}, ${mm(width)} wide and ${mm(height)} high${places.length > 0 ? `, with ${places.length} numbered places` : ''}`
   return (
     <svg viewBox={`0 0 ${sheetWidth} ${bottom + 1}`} width={sheetWidth} height={bottom + 1} role="img" aria-label={label}>
-      <MillimetreGrid left={left} right={right} top={top} bottom={bottom} originX={x0} originY={y0} scale={scale} />
+      <MillimetreGrid
+        left={left}
+        right={right}
+        top={top}
+        bottom={bottom}
+        originX={atX(origin.x)}
+        originY={atY(origin.y)}
+        scale={scale}
+      />
       <image href={src} x={x0} y={yTop} width={r2(width * scale)} height={r2(height * scale)} preserveAspectRatio="none" />
       <DimensionAcross from={x0} to={x1} y={14} foot={yTop - 4} text={mm(width)} />
       <DimensionDown from={yTop} to={y0} x={dimensionX} foot={x0 - 4} text={mm(height)} />
-      <OriginCross x={x0} y={y0} hasLabel={hasOriginLabel} />
+      {origin.x > -1 && origin.y > -1 && origin.x < width + 1 && origin.y < height + 1 && (
+        <OriginCross x={atX(origin.x)} y={atY(origin.y)} hasLabel={hasOriginLabel && isAtCorner} />
+      )}
       <Balloons places={places} height={height} atX={atX} atY={atY} topY={47} bottomY={bottom - 15} left={left} right={right} />
     </svg>
   )
@@ -97,10 +113,12 @@ export type BoardAtScaleProps = BoardPicture & {
   columns: { wide: number; narrow: number }
   /** Pixels a millimetre; give the same to all that are compared. Without it the board fills its column. */
   scales?: { wide: number; narrow: number }
+  /** Numbered places, in millimetres from the lower left as seen. */
+  marks?: { number: number; x: number; y: number }[]
 }
 
 /** A board on the grid without dimension lines: beside others at one scale, or as a second view. */
-export function BoardAtScale({ columns, scales, ...picture }: BoardAtScaleProps) {
+export function BoardAtScale({ columns, scales, marks = [], ...picture }: BoardAtScaleProps) {
   const drawing = (column: number, scale: number) => {
     const { src, alt, width, height } = picture
     // compared boards keep 2 mm about them, a lone one 1 mm
@@ -124,6 +142,18 @@ export function BoardAtScale({ columns, scales, ...picture }: BoardAtScaleProps)
           height={r2(height * scale)}
           preserveAspectRatio="none"
         />
+        {marks.map(({ number, x, y }) => {
+          const [px, py] = [r2(x0 + x * scale), r2(y0 - y * scale)]
+          const [bx, by] = [px + (px > column - 40 ? -22 : 22), py + (py < 40 ? 22 : -22)]
+          return (
+            <g key={number}>
+              <path className="halo" d={`M${px} ${py}L${bx} ${by}`} />
+              <path className="ln" strokeWidth="1.5" d={`M${px} ${py}L${bx} ${by}`} />
+              <circle cx={px} cy={py} r="3.5" fill="var(--color-ink)" stroke="var(--color-paper)" strokeWidth="1.5" />
+              <Balloon number={number} x={bx} y={by} />
+            </g>
+          )
+        })}
       </svg>
     )
   }

@@ -6,6 +6,8 @@ export type FindingProps = {
   severity: Severity
   heading: ReactNode
   where?: ReactNode
+  /** The place on the board, in mm. */
+  place?: ReactNode
   expected?: ReactNode
   found?: ReactNode
   /** The stable code, as METHODS names it. */
@@ -18,9 +20,10 @@ export type FindingProps = {
 }
 
 /** What the bundle check found: sign and word hang in the number column, then where, expected, found, code. */
-export function Finding({ id, severity, heading, where, expected, found, code, answer, detail, children }: FindingProps) {
+export function Finding({ id, severity, heading, where, place, expected, found, code, answer, detail, children }: FindingProps) {
   const rows: [string, ReactNode][] = [
     ['Where', where],
+    ['Place', place],
     ['Expected', expected],
     ['Found', found],
     ['Code', <code key="code">{code}</code>]

@@ -1,5 +1,5 @@
 /**
- * Follows a link to a place on the same page without a navigation: the place comes into view and takes the focus. To be hung on the
+ * Follows a link to a place on the same page without a navigation: the place comes into view, out of whatever is folded, and takes the focus. To be hung on the
  * document's clicks; every other click goes its way.
  */
 export function jumpWithin(event: MouseEvent): void {
@@ -8,6 +8,7 @@ export function jumpWithin(event: MouseEvent): void {
   const place = link && document.getElementById(decodeURIComponent(link.getAttribute('href')!.slice(1)))
   if (!place) return
   event.preventDefault()
+  for (let fold = place.closest('details'); fold; fold = fold.parentElement?.closest('details') ?? null) fold.open = true
   if (place.tabIndex < 0 && !place.hasAttribute('tabindex')) place.setAttribute('tabindex', '-1')
   place.focus({ preventScroll: true })
   const isField = place.matches('input, select, textarea')

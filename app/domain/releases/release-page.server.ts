@@ -60,6 +60,8 @@ export async function releasePage(db: Db, actor: Actor, slug: string, version: s
       version: release.version,
       state: release.state,
       boardRevision: release.board_revision,
+      thicknessMm: release.declared_thickness_mm,
+      copperUm: release.declared_copper_um,
       publishedOn: day(release.published_at),
       withdrawnOn: day(release.withdrawn_at),
       withdrawnReason: release.withdrawn_reason,

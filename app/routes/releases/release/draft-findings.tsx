@@ -1,9 +1,12 @@
 import { Form, useNavigation } from 'react-router'
-import { FindingEntry, foundInWords } from './release-parts'
+import { FindingsList } from './findings-list'
+import { foundInWords } from './release-parts'
 import { Actions, Button } from '~/components/button'
 import { ErrorSummary } from '~/components/error-summary'
 import { TextArea } from '~/components/field'
 import { Section } from '~/components/section'
+import { describeFinding } from '~/domain/bundle/describe-finding'
+import type { FindingCode } from '~/domain/bundle/finding-codes'
 import type { ReleasePage } from '~/domain/releases/release-page.server'
 import type { FieldError } from '~/lib/domain-error'
 import type { FormValues } from '~/lib/parse-form'
@@ -14,6 +17,7 @@ export function DraftFindings({ page, errors, values }: { page: ReleasePage; err
   const hasCautions = findings.some((f) => f.severity === 'caution')
   const isBusy = useNavigation().formData?.get('intent') === 'answers'
   const error = (id: string) => errors.find((e) => e.path === `answer.${id}`)?.message
+  const labels = Object.fromEntries(findings.map((f) => [`answer.${f.id}`, describeFinding(f.code as FindingCode).title]))
   return (
     <Section
       number={2}
@@ -30,10 +34,13 @@ export function DraftFindings({ page, errors, values }: { page: ReleasePage; err
       }
     >
       <p role="status">The bundle check raised {foundInWords(findings)}.</p>
-      <ErrorSummary errors={errors} before="the answers can be saved" />
-      {findings.map((f, i) => (
-        <FindingEntry key={f.id} finding={f} place={i + 1} isDraft>
-          {f.severity === 'caution' && (
+      <ErrorSummary errors={errors} before="the answers can be saved" labels={labels} />
+      <FindingsList
+        page={page}
+        isDraft
+        mustShow={({ id, severity, answer }) => error(id) !== undefined || (severity === 'caution' && answer === null)}
+        under={(f) =>
+          f.severity === 'caution' && (
             <TextArea
               form="answers"
               name={`answer.${f.id}`}
@@ -49,9 +56,9 @@ export function DraftFindings({ page, errors, values }: { page: ReleasePage; err
               error={error(f.id)}
               isLong
             />
-          )}
-        </FindingEntry>
-      ))}
+          )
+        }
+      />
       {hasCautions && (
         <Form method="post" action="#found" id="answers" className="mt-6" noValidate>
           <input type="hidden" name="intent" value="answers" />

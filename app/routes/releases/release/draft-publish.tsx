@@ -10,7 +10,8 @@ export function PublishDraft({ page, errors }: { page: ReleasePage; errors: Fiel
   const isBusy = useNavigation().formData?.get('intent') === 'publish'
   const isReady = obstacles.length === 0 && bundle !== null
   const [first, ...others] = obstacles
-  const reason = isReady || !first ? undefined : others.length > 0 ? 'Not before that is done.' : <Obstacle {...first} />
+  const reason =
+    isReady || !first ? undefined : others.length > 0 ? 'Not before that is done.' : <Obstacle {...first} page={page} />
   return (
     <>
       <ErrorSummary errors={errors} before="it can be published" />
@@ -26,7 +27,7 @@ export function PublishDraft({ page, errors }: { page: ReleasePage; errors: Fiel
             <ul className="mt-2 list-disc pl-6">
               {obstacles.map((o) => (
                 <li key={o.kind}>
-                  <Obstacle {...o} />
+                  <Obstacle {...o} page={page} />
                 </li>
               ))}
             </ul>
@@ -47,10 +48,15 @@ export function PublishDraft({ page, errors }: { page: ReleasePage; errors: Fiel
   )
 }
 
-function Obstacle({ kind, message }: ReleasePage['obstacles'][number]) {
+/** What stands in the way, with the way to the first of it. */
+function Obstacle({ kind, message, page }: ReleasePage['obstacles'][number] & { page: ReleasePage }) {
+  const { findings } = page
+  const stop = findings.findIndex((f) => f.severity === 'stop')
+  const open = findings.find((f) => f.severity === 'caution' && (f.answer ?? '').trim() === '')
   return (
     <>
-      {message} {(kind === 'stops' || kind === 'cautions') && <a href="#found">See section 2</a>}
+      {message} {kind === 'stops' && <a href={stop < 0 ? '#found' : `#f${stop + 1}`}>To the first</a>}
+      {kind === 'cautions' && open && <a href={`#answer.${open.id}`}>To the first to answer</a>}
     </>
   )
 }

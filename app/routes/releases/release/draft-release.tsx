@@ -1,7 +1,9 @@
 import { DeleteDraft, PublishDraft } from './draft-publish'
 import { DraftFindings } from './draft-findings'
 import { DraftUpload } from './draft-upload'
-import { BoardFigures, Facts, Layers } from './release-parts'
+import { BoardFigures, drawnFigures } from './board-figures'
+import { Layers } from './layers-part'
+import { Facts } from './release-parts'
 import { ButtonLink } from '~/components/button'
 import { DoneLine } from '~/components/done-line'
 import { Prose } from '~/components/prose'
@@ -80,7 +82,7 @@ export function DraftRelease({ page, maxBytes, done, errors, values }: DraftRele
             <Facts page={page} number={1} />
           </Section>
           <Section number={5} heading="Layers">
-            <Layers page={page} number={2} />
+            <Layers page={page} number={2} figure={drawnFigures(page) + 1} />
           </Section>
         </>
       )}

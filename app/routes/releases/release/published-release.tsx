@@ -1,4 +1,8 @@
-import { BoardFigures, drawnFigures, Facts, FindingEntry, foundInWords, Layers } from './release-parts'
+import { BoardFigures, drawnFigures } from './board-figures'
+import { hasViewer } from './board-viewer'
+import { FindingsList } from './findings-list'
+import { Layers } from './layers-part'
+import { Facts, foundInWords } from './release-parts'
 import { TakeFiles } from './take-files'
 import { ButtonLink } from '~/components/button'
 import { DoneLine } from '~/components/done-line'
@@ -139,12 +143,10 @@ export function PublishedRelease({ page, lasting, today, done }: PublishedReleas
       </Section>
       <Section number={5} heading="Findings" id="s5">
         <p id="found">The bundle check raised {foundInWords(findings)}.</p>
-        {findings.map((f, i) => (
-          <FindingEntry key={f.id} finding={f} place={i + 1} />
-        ))}
+        <FindingsList page={page} />
       </Section>
       <Section number={6} heading="Layers">
-        <Layers page={page} number={2} />
+        <Layers page={page} number={2} figure={drawnFigures(page) + 1} />
       </Section>
       <Section number={7} heading="Notes">
         {release.notes ? <Prose html={release.notes} /> : <p className="soft">The maintainer wrote none.</p>}
@@ -153,7 +155,7 @@ export function PublishedRelease({ page, lasting, today, done }: PublishedReleas
         <LastingWords
           lasting={lasting}
           name={`${board.name} ${release.version}`}
-          figure={drawnFigures(page) + 1}
+          figure={drawnFigures(page) + (hasViewer(page) ? 2 : 1)}
           href={`/boards/${board.slug}/reliability?release=${encodeURIComponent(release.version)}`}
           link="Reliability by console revision"
         />
