@@ -139,7 +139,7 @@ describe('the layer viewer', () => {
 
     await page.getByRole('link', { name: /^Show on the board/ }).click()
     await page.waitForFunction(() => document.activeElement?.classList.contains('lv-pane'))
-    expect(await page.getByLabel('from below').isChecked()).toBe(true)
+    expect(await page.getByRole('radio', { name: 'from below' }).isChecked()).toBe(true)
     const there = await seen(page)
     expect(there.wide).toBeGreaterThan(2)
     // 2 mm to the right of the middle on the layers lies to the left of it when seen from below.
