@@ -49,7 +49,7 @@ describe('words', () => {
   it('says from where layers are seen', () => {
     expect(choiceInWords({ from: 'top', layers: [] }, layers)).toBe('Top side')
     expect(choiceInWords({ from: 'bottom', layers: [1, 3] }, layers)).toBe(
-      'L2 copper, bottom and all holes, seen from below, left and right changed over'
+      'L2 copper bottom and all holes, seen from below, left and right changed over'
     )
   })
 })

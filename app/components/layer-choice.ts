@@ -56,6 +56,7 @@ export function layerInk({ function: fn, side }: ViewerLayer): string {
 export function choiceInWords({ from, layers: chosen }: LayerChoice, layers: readonly ViewerLayer[]): string {
   const seen = from === 'bottom' ? 'seen from below, left and right changed over' : 'seen from the top'
   if (chosen.length === 0) return from === 'bottom' ? `Bottom side, ${seen}` : 'Top side'
-  const names = chosen.map((at) => layerName(layers[at]!))
-  return `${names.join(' and ')}, ${seen}`
+  const names = chosen.map((at) => layerName(layers[at]!).replace(',', ''))
+  const listed = names.length > 1 ? `${names.slice(0, -1).join(', ')} and ${names.at(-1)}` : names[0]
+  return `${listed}, ${seen}`
 }

@@ -1,3 +1,4 @@
+import { Actions, Button } from './button'
 import { layerInk, layerName, type LayerChoice, type Pictures, type ViewerLayer } from './layer-choice'
 
 export type LayerChoicesProps = {
@@ -65,18 +66,18 @@ export function LayerChoices({ choice, layers, pictures, id, isLive, onChoice }:
           </div>
         </fieldset>
       )}
-      <div className="acts">
-        {!isLive && (
-          <button type="submit" className="btn alt">
-            Show these
-          </button>
-        )}
-        {isLive && isDrawn && choice.layers.length > 0 && (
-          <button type="button" className="btn alt" onClick={() => onChoice({ ...choice, layers: [] })}>
+      {!isLive && (
+        <Actions>
+          <Button kind="outline">Show these</Button>
+        </Actions>
+      )}
+      {isLive && isDrawn && choice.layers.length > 0 && (
+        <Actions>
+          <Button type="button" kind="outline" onClick={() => onChoice({ ...choice, layers: [] })}>
             Show the finished board
-          </button>
-        )}
-      </div>
+          </Button>
+        </Actions>
+      )}
     </form>
   )
 }

@@ -84,8 +84,10 @@ describe('zooming and panning', () => {
 
   it('stops at the edges of the board, and does not move what is seen whole', () => {
     expect(panBy(whole, 500, 500, above)).toEqual(whole)
-    // At 40 px a millimetre (436 / 2 - 18) / 40 = 5 mm are seen to each side, (236 / 2 - 18) / 40 = 2.5 mm up and down.
-    expect(within({ x: 0, y: 1000, zoom: 4 }, above)).toEqual({ x: 105, y: 67.5, zoom: 4 })
+    // At 40 px a millimetre 5 mm are seen to each side: an edge may stand in the middle.
+    expect(within({ x: 0, y: 1000, zoom: 4 }, above)).toEqual({ x: 100, y: 70, zoom: 4 })
+    // At 12.5 px a millimetre 16 mm are seen to each side of 20: the board fills the pane 4 mm to each side, and may go 4 mm further.
+    expect(within({ x: 0, y: 1000, zoom: 1.25 }, above)).toEqual({ x: 112, y: 64, zoom: 1.25 })
   })
 
   it('looks closely at a place: 12 mm across, never less closely than before', () => {

@@ -51,14 +51,20 @@ export function toPlace({ x, y }: Point, view: View, sight: Sight): Point {
   return { x: sight.isFromBelow ? view.x - right : view.x + right, y: view.y - (y - sight.pane.height / 2) / scale }
 }
 
-/** The nearest view that neither leaves the board nor goes beyond its zooms; where all of a direction is seen it stands in the middle. */
+/**
+ * The nearest view whose middle lies on the board and whose zoom is possible. Where all of a direction is seen it stands in the middle;
+ * close up an edge may come to the middle, so that what lies just past it is seen too.
+ */
 export function within(view: View, sight: Sight): View {
   const zoom = clamp(view.zoom, 1, mostZoom(sight))
   const { extent, pane } = sight
   const scale = fitScale(sight) * zoom
   const along = (at: number, from: number, to: number, px: number) => {
     const half = (px / 2 - margin) / scale
-    return half * 2 >= to - from ? (from + to) / 2 : clamp(at, from + half, to - half)
+    // So far to each side the board fills the pane; from there it may go on until an edge stands in the middle.
+    const room = Math.max(0, (to - from) / 2 - half)
+    const most = room + Math.min(half, room)
+    return clamp(at, (from + to) / 2 - most, (from + to) / 2 + most)
   }
   return {
     x: along(view.x, extent.minX, extent.maxX, pane.width),

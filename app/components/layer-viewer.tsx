@@ -1,4 +1,5 @@
-import { useEffect, useRef, useState } from 'react'
+import { useEffect, useRef, useState, type ReactNode } from 'react'
+import { Figure } from './figure'
 import { askFor, choiceInWords, layerInk, readChoice, type LayerChoice, type Pictures, type ViewerLayer } from './layer-choice'
 import { LayerChoices } from './layer-choices'
 import { LayerPane, type PaneMark, type PanePicture } from './layer-pane'
@@ -12,6 +13,9 @@ export type ViewerMark = PaneMark & { side: 'top' | 'bottom' | null }
 
 export type LayerViewerProps = {
   id: string
+  /** Of the figure. */
+  number: number
+  caption: ReactNode
   /** "Buttress 1.1.0". */
   name: string
   /** What every picture shows, in mm as the layers count. */
@@ -37,7 +41,7 @@ const round = (n: number) => n.toFixed(2)
  * Both sides and every single layer of a board, to look at closely. The server draws what the address asks for, in a wide and a narrow
  * pane; a script then draws one pane as wide as its column and moves it.
  */
-export function LayerViewer({ id, name, extent, pictures, layers, marks, asked }: LayerViewerProps) {
+export function LayerViewer({ id, number, caption, name, extent, pictures, layers, marks, asked }: LayerViewerProps) {
   const box = useRef<HTMLDivElement>(null)
   const [width, setWidth] = useState<number | null>(null)
   const [choice, setChoice] = useState<LayerChoice>(() => readChoice(new URLSearchParams(asked), layers, pictures))
@@ -114,35 +118,37 @@ export function LayerViewer({ id, name, extent, pictures, layers, marks, asked }
   )
   return (
     <div className="lv" id={id}>
-      <div ref={box} className="lv-box">
-        {width !== null ? (
-          pane(width)
-        ) : (
-          <>
-            <div className="on-w">{pane(wideWidth)}</div>
-            <div className="on-n">{pane(narrowWidth)}</div>
-          </>
+      <Figure number={number} caption={caption}>
+        <div ref={box} className="lv-box">
+          {width !== null ? (
+            pane(width)
+          ) : (
+            <>
+              <div className="on-w">{pane(wideWidth)}</div>
+              <div className="on-n">{pane(narrowWidth)}</div>
+            </>
+          )}
+        </div>
+        <p className="lv-read small">
+          <b>{words}.</b> {drawn.length === 0 && 'This side could not be drawn. '}
+          <span className="nw">
+            {point ? `Under the pointer ${placeInWords(point)}` : `In the middle ${placeInWords(current)}`}
+          </span>
+        </p>
+        {width !== null && (
+          <LayerTools
+            canZoomIn={current.zoom < mostZoom(sight)}
+            canZoomOut={current.zoom > 1}
+            onKey={(key) => {
+              const next = afterKey(key, current, sight)
+              if (next) move(next, true)
+            }}
+          />
         )}
-      </div>
-      <p className="lv-read small">
-        <b>{words}.</b> {drawn.length === 0 && 'This side could not be drawn. '}
-        <span className="nw">
-          {point ? `Under the pointer ${placeInWords(point)}` : `In the middle ${placeInWords(current)}`}
-        </span>
-      </p>
+      </Figure>
       <p className="vh" role="status">
         {told}
       </p>
-      {width !== null && (
-        <LayerTools
-          canZoomIn={current.zoom < mostZoom(sight)}
-          canZoomOut={current.zoom > 1}
-          onKey={(key) => {
-            const next = afterKey(key, current, sight)
-            if (next) move(next, true)
-          }}
-        />
-      )}
       <p className="hint no-print" id={`${id}-keys`}>
         {width === null
           ? 'With scripts the board can be zoomed and moved here. A number leads to what the check found there.'

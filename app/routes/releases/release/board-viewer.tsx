@@ -1,5 +1,4 @@
 import { useLocation } from 'react-router'
-import { Figure } from '~/components/figure'
 import { numberPlaces, type NumberedPlace } from '~/components/finding-places'
 import { LayerViewer } from '~/components/layer-viewer'
 import { describeFinding } from '~/domain/bundle/describe-finding'
@@ -40,7 +39,9 @@ export function BoardViewer({ page, number }: { page: ReleasePage; number: numbe
   })
   const isWithoutSides = pictures.top === null && pictures.bottom === null
   return (
-    <Figure
+    <LayerViewer
+      key={`${release.version} ${layerPictures.map(({ src }) => src).join(' ')}`}
+      id={boardViewer}
       number={number}
       caption={
         <>
@@ -48,17 +49,12 @@ export function BoardViewer({ page, number }: { page: ReleasePage; number: numbe
           {marks.length > 0 && 'Numbers are places of findings. '}Places are counted in mm from 0, 0 of the layers.
         </>
       }
-    >
-      <LayerViewer
-        key={`${release.version} ${layerPictures.map(({ src }) => src).join(' ')}`}
-        id={boardViewer}
-        name={`${board.name} ${release.version}`}
-        extent={pictureBox}
-        pictures={pictures}
-        layers={layerPictures}
-        marks={marks}
-        asked={search}
-      />
-    </Figure>
+      name={`${board.name} ${release.version}`}
+      extent={pictureBox}
+      pictures={pictures}
+      layers={layerPictures}
+      marks={marks}
+      asked={search}
+    />
   )
 }
