@@ -4,6 +4,8 @@ import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import { sql } from 'kysely'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { compareFingerprints } from '~/domain/bundle/compare-fingerprints'
+import { listEarlier, listFingerprints, listParts, listPlacements } from '~/domain/releases/record.repo.server'
 import { createStorage, objectKey, type Storage } from '~/server/storage.server'
 import { openDb, type Db } from '~db/client.server'
 import { migrate } from '~db/migrate'
@@ -149,6 +151,23 @@ describe('the seeded world', () => {
     const open = await db.selectFrom('findings').select(['code', 'severity', 'answer']).where('severity', '<>', 'note').execute()
     expect(open.length).toBeGreaterThan(0)
     for (const finding of open) expect(finding).toMatchObject({ severity: 'caution', answer: expect.stringMatching(/\S/) })
+  })
+
+  it('keeps the parts, places and fingerprints of every release, alike within a board revision', async () => {
+    const rows = await db.selectFrom('releases').select(['id', 'board_id', 'board_revision', 'version', 'outline_json']).execute()
+    for (const row of rows) {
+      expect(JSON.parse(row.outline_json!)).toMatchObject({ minX: 0, minY: 0 })
+      expect((await listParts(db, row.id)).length).toBeGreaterThan(3)
+      expect((await listPlacements(db, row.id)).length).toBeGreaterThan(3)
+      const own = await listFingerprints(db, row.id)
+      expect(own.map((print) => print.function)).toEqual(expect.arrayContaining(['copper', 'outline', 'drill']))
+      for (const { fingerprints } of await listEarlier(db, row)) expect(compareFingerprints(fingerprints, own)).toEqual([])
+    }
+    const [first] = rows
+    const others = rows.filter((r) => r.board_id === first!.board_id && r.board_revision !== first!.board_revision)
+    const own = await listFingerprints(db, first!.id)
+    expect(others.length).toBeGreaterThan(0)
+    for (const { id } of others) expect(compareFingerprints(await listFingerprints(db, id), own)).not.toEqual([])
   })
 
   it('puts back what storage lost', async () => {

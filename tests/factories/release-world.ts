@@ -71,7 +71,7 @@ export async function openReleaseWorld() {
     uploadDir,
     tick: (ms = 1000) => (clock.now = new Date(clock.now.getTime() + ms)),
     /** A received file with this content. */
-    file: (content: string) => {
+    file: (content: string | Buffer) => {
       const path = join(uploadDir, `${++files}.part`)
       writeFileSync(path, content)
       return {

@@ -75,7 +75,7 @@ export default function EditRelease({ loaderData: data, actionData }: Route.Comp
     >
       <Title
         heading={`Edit ${data.name} ${data.version}`}
-        lead="A draft can still change. When layers or thickness do, the bundle is checked again."
+        lead="A draft can still change. When board revision, layers or thickness do, the bundle is checked again."
       />
       <DraftForm
         values={actionData?.values ?? data.values}
