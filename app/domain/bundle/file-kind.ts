@@ -36,6 +36,8 @@ export function kindOf(bytes: Uint8Array): FileKind {
   if (/%(FS[LTD]?[AI]?|MO(MM|IN)|ADD\d|TF\.)/.test(head)) return 'gerber'
   if (/^[\s%]*M48\s*$/m.test(head.slice(0, 2000)) || /^\s*T\d+[^\n]*C[\d.]+/m.test(head)) return 'drill'
   if (/^\s*M30\s*$/.test(head)) return 'drill'
+  // Without a header: a tool's number alone on a line, and places.
+  if (!head.includes('*') && /^T\d{1,3}\s*$/m.test(head) && /^X[+-]?[\d.]+Y[+-]?[\d.]+\s*$/m.test(head)) return 'drill'
   if (/^\s*(G0?4\b|G\d\d\*|D\d\d\*|%[A-Z]{2})/.test(head) && head.includes('*')) return 'gerber'
   if (isEia(bytes.subarray(0, 1024))) return 'eia'
   return head.includes('\0') && !/^(\xff\xfe|\xfe\xff)/.test(head) && !wideOrder(bytes) ? 'binary' : 'text'

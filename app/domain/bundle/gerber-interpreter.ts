@@ -5,7 +5,7 @@ import { hasMarkup, parseAttribute, parseCommentAttribute, textOf, type Attribut
 import { GerberCanvas, type Keeping } from './gerber-canvas'
 import { GerberNonsense, TooComplex, type Macro } from './gerber-macro'
 import { noMark } from './geometry-sums'
-import { excerpt, GerberWord } from './gerber-words'
+import { excerpt, GerberWord, number, parseFormat } from './gerber-words'
 import type { CheckLimits } from './limits'
 import type { ReadProblem } from './read-gerber'
 
@@ -227,7 +227,7 @@ export class GerberInterpreter {
   private deprecatedParameter(code: string, rest: string): void {
     const a = /A(-?[\d.]+)/.exec(rest)?.[1]
     const b = /B(-?[\d.]+)/.exec(rest)?.[1]
-    if (code === 'OF') {
+    if (code === 'OF' || code === 'IO') {
       this.image.offsetX = number(a ?? '0') * (this.unit ?? 25.4)
       this.image.offsetY = number(b ?? '0') * (this.unit ?? 25.4)
     } else if (code === 'MI') {
@@ -247,11 +247,8 @@ export class GerberInterpreter {
   }
 
   private formatStatement(rest: string): void {
-    const match = /^([LTD]?)([AI]?)(?:N\d)?(?:G\d)?X(\d)(\d)Y(\d)(\d)/.exec(rest)
-    if (!match) throw new GerberNonsense(`a format statement that cannot be read: FS${rest.slice(0, 20)}`)
-    const [, zeros, mode, integer, decimals, integerY, decimalsY] = match
-    if (integer !== integerY || decimals !== decimalsY) throw new GerberNonsense('a format statement with two formats')
-    this.format = { integer: Number(integer), decimals: Number(decimals), isTrailing: zeros === 'T' }
+    const { integer, decimals, zeros, mode } = parseFormat(rest)
+    this.format = { integer, decimals, isTrailing: zeros === 'T' }
     this.isIncremental = mode === 'I'
     if (zeros !== 'L' || mode !== 'A') this.deprecated.add(`FS${zeros}${mode}`)
   }
@@ -349,10 +346,4 @@ export class GerberInterpreter {
     else if (kind === 'TD' && (name === '' || name === '.AperFunction')) this.aperFunction = null
     else if (kind === 'TO' && name === '.C' && values[0] && this.components.size < 50_000) this.components.add(values[0])
   }
-}
-
-function number(text: string): number {
-  const value = Number(text)
-  if (!Number.isFinite(value)) throw new GerberNonsense(`a value that is no number: ${text.slice(0, 20)}`)
-  return value
 }

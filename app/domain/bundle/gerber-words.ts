@@ -81,3 +81,23 @@ export function excerpt(bytes: Uint8Array, start: number, end: number): string {
   }
   return text.trim()
 }
+
+/**
+ * A format statement without `FS`, for instance `LAX46Y46`; the older forms with `D`, `N` and `G` fields are read, too.
+ *
+ * @throws GerberNonsense where it cannot be read
+ */
+export function parseFormat(text: string): { integer: number; decimals: number; zeros: string; mode: string } {
+  const match = /^([LTD]?)([AI]?)(?:N\d)?(?:G\d)?X(\d)(\d)Y(\d)(\d)/.exec(text)
+  if (!match) throw new GerberNonsense(`a format statement that cannot be read: FS${text.slice(0, 20)}`)
+  const [, zeros, mode, integer, decimals, integerY, decimalsY] = match
+  if (integer !== integerY || decimals !== decimalsY) throw new GerberNonsense('a format statement with two formats')
+  return { integer: Number(integer), decimals: Number(decimals), zeros: zeros!, mode: mode! }
+}
+
+/** A number of a command's field. @throws GerberNonsense where it is none */
+export function number(text: string): number {
+  const value = Number(text)
+  if (!Number.isFinite(value)) throw new GerberNonsense(`a value that is no number: ${text.slice(0, 20)}`)
+  return value
+}

@@ -1,3 +1,4 @@
+import { formatFromComment, listedTools } from './drill-comments'
 import { parseCommentAttribute, textOf } from './gerber-attributes'
 import { GerberNonsense, TooComplex } from './gerber-macro'
 import type { CheckLimits } from './limits'
@@ -82,6 +83,8 @@ class ExcellonReader {
   private pattern: { from: number; to: number | null; x: number; y: number } | null = null
   private mostDecimals = 0
   private hasEnded = false
+  private bytes: Uint8Array = new Uint8Array()
+  private listed: Map<number, number> | null = null
 
   constructor(
     private readonly limits: CheckLimits,
@@ -106,6 +109,7 @@ class ExcellonReader {
   }
 
   run(bytes: Uint8Array): ReadProblem | null {
+    this.bytes = bytes
     let at = 0
     while (at < bytes.length && !this.hasEnded) {
       let end = at
@@ -120,14 +124,14 @@ class ExcellonReader {
 
   private line(line: string): void {
     if (line[0] === ';') return this.comment(line.slice(1))
-    const text = line.toUpperCase()
+    const text = line.split(';', 1)[0]!.trim().toUpperCase()
     if (text === 'M48') this.isInHeader = true
     else if (text === '%' || text === 'M95') this.isInHeader = false
     else if (/^(METRIC|INCH)/.test(text)) this.units(text)
     else if (/^T\d/.test(text)) this.toolLine(text)
     else if (/^M\d/.test(text) && !/^M0?2X/.test(text)) this.miscellaneous(text)
     else if (this.isInHeader) this.headerLine(text)
-    else this.bodyLine(text)
+    else this.bodyLine(text.replaceAll(' ', ''))
   }
 
   private comment(comment: string): void {
@@ -136,16 +140,11 @@ class ExcellonReader {
     else if (attribute?.kind === 'TA' && attribute.name === '.AperFunction') {
       this.toolPlating = attribute.values[0] === 'Plated' ? 'plated' : attribute.values[0] === 'NonPlated' ? 'non-plated' : null
     } else if (attribute?.kind === 'TD') this.toolPlating = null
-    const type = /^\s*TYPE\s*=\s*(NON_?)?PLATED/i.exec(comment)
-    if (type) this.toolPlating = type[1] ? 'non-plated' : 'plated'
-    const format = /FORMAT\s*=\s*\{?(\d):(\d)/i.exec(comment)
-    if (format) this.setDigits(Number(format[1]), Number(format[2]))
-    const words = /FORMAT=\{[^}]*\/\s*(metric|inch)\b[^}]*/i.exec(comment)
-    if (words) {
-      this.declared.unit ??= words[1]!.toLowerCase() === 'inch' ? 'inch' : 'mm'
-      if (/suppress leading/i.test(words[0])) this.declared.keeps ??= 'trailing'
-      if (/suppress trailing/i.test(words[0])) this.declared.keeps ??= 'leading'
-    }
+    const told = formatFromComment(comment)
+    if (told.plating) this.toolPlating = told.plating
+    if (told.digits) this.setDigits(...told.digits)
+    this.declared.unit ??= told.unit
+    this.declared.keeps ??= told.keeps
   }
 
   private units(text: string): void {
@@ -171,7 +170,8 @@ class ExcellonReader {
       if (this.tools.size > 10_000) throw new TooComplex('more than 10000 tools')
       this.tools.set(code, { diameter, plating: this.toolPlating })
     } else if (this.isInHeader) {
-      if (/^T\d+$/.test(text) && code > 0) throw new GerberNonsense(`tool T${code} is listed without its size`)
+      if (/^T\d+$/.test(text) && code > 0 && !this.toolElsewhere(code))
+        throw new GerberNonsense(`tool T${code} is listed without its size`)
       return
     }
     if (this.isInHeader) return
@@ -179,11 +179,18 @@ class ExcellonReader {
       this.tool = null
       return
     }
-    const tool = this.tools.get(code)
+    const tool = this.tools.get(code) ?? this.toolElsewhere(code)
     if (!tool) throw new GerberNonsense(`tool T${code} is used but never defined`)
     this.tool = tool
     const rest = text.replace(/^T\d+([CFSBHZ][+-]?[\d.]+)*/, '')
     if (rest !== '') this.bodyLine(rest)
+  }
+
+  /** A tool that is not defined before it is used, from a list of tools in comments or further down. */
+  private toolElsewhere(code: number): Tool | undefined {
+    this.listed ??= listedTools(this.bytes, this.format().unit === 'inch' ? 25.4 : 1)
+    const diameter = this.listed.get(code)
+    return diameter === undefined ? undefined : { diameter, plating: null }
   }
 
   private miscellaneous(text: string): void {
