@@ -2,10 +2,18 @@ import { CheckSteps } from './progress'
 
 export type CheckStepName = { step: string; name: string }
 
-/** How far storing and checking a bundle has come, step by step. */
-export function BundleChecking({ isStored, step, steps }: { isStored: boolean; step: string | null; steps: CheckStepName[] }) {
+/** How far taking in and checking a bundle has come, step by step. */
+export function BundleChecking({
+  isReceived,
+  step,
+  steps
+}: {
+  isReceived: boolean
+  step: string | null
+  steps: CheckStepName[]
+}) {
   /* The child process takes a moment to begin with the first step. */
-  const at = isStored
+  const at = isReceived
     ? Math.max(
         0,
         steps.findIndex((s) => s.step === step)
@@ -16,7 +24,7 @@ export function BundleChecking({ isStored, step, steps }: { isStored: boolean; s
     <div role="status">
       <CheckSteps
         steps={[
-          { label: 'Store the bundle', state: isStored ? 'done' : 'now' },
+          { label: 'Take in the file', state: isReceived ? 'done' : 'now' },
           ...steps.map(({ name }, i) => ({ label: name, state: state(i) as 'done' | 'now' | 'waiting' }))
         ]}
         hint="20 seconds at most. You can leave; the draft keeps the result."

@@ -8,7 +8,7 @@ import { UploadScale } from './progress'
 type Going =
   | { phase: 'idle'; error?: string }
   | { phase: 'sending'; sent: number; total: number }
-  | { phase: 'checking'; isStored: boolean; step: string | null }
+  | { phase: 'checking'; isReceived: boolean; step: string | null }
   | { phase: 'broken'; sent: number; total: number; error: string }
 
 export type BundleUploadProps = {
@@ -48,7 +48,7 @@ export function BundleUpload({
   onDone
 }: BundleUploadProps) {
   const [going, setGoing] = useState<Going>(
-    isRunning ? { phase: 'checking', isStored: false, step: null } : { phase: 'idle', error: refused }
+    isRunning ? { phase: 'checking', isReceived: false, step: null } : { phase: 'idle', error: refused }
   )
   const [file, setFile] = useState<File | null>(null)
   const request = useRef<XMLHttpRequest | null>(null)
@@ -68,7 +68,7 @@ export function BundleUpload({
       if (!answer?.ok) return
       const { phase, step } = (await answer.json()) as { phase: string; step: string | null }
       if (phase !== 'none')
-        setGoing((now) => (now.phase === 'checking' ? { phase: 'checking', isStored: phase === 'checking', step } : now))
+        setGoing((now) => (now.phase === 'checking' ? { phase: 'checking', isReceived: phase === 'checking', step } : now))
       else if (request.current === null) {
         setGoing({ phase: 'idle' })
         onDone()
@@ -98,7 +98,7 @@ export function BundleUpload({
       sent = Math.min(loaded, file.size)
       setGoing({ phase: 'sending', sent, total: file.size })
     }
-    xhr.upload.onload = () => setGoing({ phase: 'checking', isStored: false, step: null })
+    xhr.upload.onload = () => setGoing({ phase: 'checking', isReceived: false, step: null })
     xhr.onload = () => {
       if (xhr.status >= 200 && xhr.status < 300) {
         end({ phase: 'idle' })
@@ -136,7 +136,7 @@ export function BundleUpload({
         </Actions>
       </>
     )
-  if (going.phase === 'checking') return <BundleChecking isStored={going.isStored} step={going.step} steps={steps} />
+  if (going.phase === 'checking') return <BundleChecking isReceived={going.isReceived} step={going.step} steps={steps} />
   return (
     <form method="post" action={action} encType="multipart/form-data" onSubmit={send} noValidate>
       {going.phase === 'broken' && (

@@ -7,7 +7,7 @@ import {
   type CheckStep,
   type DeclaredDetails
 } from './bundle-check.types'
-import type { BundleReading } from './bundle-reading.types'
+import type { BundleReading, FileReading } from './bundle-reading.types'
 import { bundleRecord } from './bundle-record'
 import { checkAlignment } from './check-alignment'
 import { checkFiles } from './check-files'
@@ -15,7 +15,7 @@ import { checkLists } from './check-lists'
 import { checkPresence } from './check-presence'
 import { checkRelease } from './check-release'
 import { checkRevision } from './check-revision'
-import { finding, mm } from './finding'
+import { finding, listed, mm } from './finding'
 import { fingerprintsOf } from './layer-fingerprint'
 import { inStackOrder } from './layer-order'
 import { defaultLimits, type CheckLimits } from './limits'
@@ -52,19 +52,14 @@ export async function checkBundle(
   onStep('tell-layers')
   const files = await tellLayers(zip, limits)
   const findings: BundleFinding[] = [...zip.findings]
-  for (const file of files) {
-    if (file.kind !== 'archive' || ['bom', 'placement', 'document', 'source'].includes(file.layer.function)) continue
-    const message = 'There is an archive inside the zip; it is not read.'
-    findings.push(finding('zip-nested', message, { file: file.layer.file }))
-  }
+  findings.push(...nestedArchives(files))
   const { reading, findings: fromReading } = await readBundle(zip, files, declared, limits, onStep)
   findings.push(...checkFiles(files))
   const presence = checkPresence(reading)
   findings.push(...presence, ...checkOutline(reading), ...fromReading)
   const isHopeless = presence.some((f) => f.code === 'copper-missing' && f.found === 'none')
   if (isHopeless) {
-    // Without any layer the zip is no bundle: that is one defect, not six.
-    const rest = findings.filter((f) => !['bom-missing', 'placement-missing'].includes(f.code))
+    const rest = onlyDefect(findings)
     return {
       check: answer(
         files.map((f) => f.layer),
@@ -92,6 +87,31 @@ export async function checkBundle(
     reading,
     source: zip
   }
+}
+
+/** Archives inside the zip, all in one finding; those in place of a list or among papers are told there. */
+function nestedArchives(files: FileReading[]): BundleFinding[] {
+  const elsewhere = ['bom', 'placement', 'document', 'source']
+  const names = files.filter((f) => f.kind === 'archive' && !elsewhere.includes(f.layer.function)).map((f) => f.layer.file)
+  if (names.length === 0) return []
+  const message =
+    names.length === 1
+      ? 'There is an archive inside the zip; it is not read.'
+      : 'There are archives inside the zip; they are not read.'
+  return [finding('zip-nested', message, { file: names[0]!, expected: 'the files themselves', found: listed(names) })]
+}
+
+/**
+ * What is said of a zip without any layer: that is one defect, not six. Where the files may well lie in an archive inside, that archive is
+ * the defect, and it stops the release.
+ */
+function onlyDefect(findings: BundleFinding[]): BundleFinding[] {
+  const rest = findings.filter((f) => !['bom-missing', 'placement-missing'].includes(f.code))
+  if (!rest.some((f) => f.code === 'zip-nested')) return rest
+  const message = 'The zip holds no layers itself: they may lie in the archive inside it, which is not read.'
+  return rest
+    .filter((f) => f.code !== 'copper-missing')
+    .map((f) => (f.code === 'zip-nested' ? { ...f, severity: 'stop' as const, message } : f))
 }
 
 const sums = (facts: { bytes: number; sha256: string }, files: number) => ({ files, bytes: facts.bytes, sha256: facts.sha256 })

@@ -12,6 +12,9 @@ import type { ReadProblem } from './read-gerber'
 const star = 0x2a
 const percent = 0x25
 
+/** No panel is as large, and no page of a design tool: coordinates past this, in mm, are nonsense. */
+const farthest = 5000
+
 /** Runs one Gerber file on a canvas. State and commands as in the specification's chapter 2.3 and 4. */
 export class GerberInterpreter {
   readonly canvas: GerberCanvas
@@ -136,7 +139,8 @@ export class GerberInterpreter {
     const { image } = this
     const toX = word.hasX ? base.x + word.x * image.scaleX + (this.isIncremental ? 0 : image.offsetX) : this.x
     const toY = word.hasY ? base.y + word.y * image.scaleY + (this.isIncremental ? 0 : image.offsetY) : this.y
-    if (!(Math.abs(toX) < 1e6 && Math.abs(toY) < 1e6)) throw new GerberNonsense('a coordinate is beyond all reason')
+    if (!(Math.abs(toX) < farthest && Math.abs(toY) < farthest))
+      throw new GerberNonsense(`a coordinate more than ${farthest / 1000} m from the origin`)
     this.lastOperation = operation
     if (operation === 1) this.draw(toX, toY)
     else if (operation === 2 && this.isInRegion) this.closeContour()

@@ -1,7 +1,7 @@
 import type { BundleFinding } from './bundle-check.types'
 import { finding } from './finding'
 import type { CheckLimits } from './limits'
-import { findDirectory, readCentralHeader, readLocalHeader, type CentralHeader } from './zip-headers'
+import { findDirectory, readCentralHeader, readLocalHeader, type CentralHeader, type ZipDirectory } from './zip-headers'
 import { clashKey, isUnsafePath, normalPath, oddName, shownName } from './zip-names'
 
 /** One file of the archive, where its packed bytes lie, and what they should unpack to. */
@@ -65,8 +65,15 @@ export function scanZip(bytes: Uint8Array, limits: CheckLimits): ZipScan {
     at = header.next
   }
 
+  // A digital signature may stand behind the entries; entries that the count leaves out may not.
+  const left = directory.offset + directory.size - at
+  if (left >= 4 && new DataView(bytes.buffer, bytes.byteOffset).getUint32(at, true) === 0x02014b50)
+    return stop(finding('zip-unreadable', "The zip's directory holds more entries than it counts."))
+
   const flagged = flagStops(headers, limits)
   if (flagged.length > 0) return { ...scan, findings: flagged }
+
+  if (new Set(headers.map((header) => header.localOffset)).size < headers.length) return stop(shared())
 
   const ranges: [number, number][] = []
   for (const header of headers) {
@@ -90,21 +97,30 @@ export function scanZip(bytes: Uint8Array, limits: CheckLimits): ZipScan {
     })
   }
   ranges.sort((a, b) => a[0] - b[0])
-  if (ranges.some(([from], i) => i > 0 && from < ranges[i - 1]![1])) {
-    return stop(finding('zip-too-large', 'Files in the zip share the same packed bytes, as archives made to swell do.'))
-  }
+  if (ranges.some(([from], i) => i > 0 && from < ranges[i - 1]![1])) return stop(shared())
   if (scan.entries.length === 0) return stop(finding('zip-unreadable', 'The zip holds folders only, no files.'))
 
-  const before = ranges[0]![0]
-  if (before > 0 || directory.hasStrayRecords) {
-    const message =
-      before > 0
-        ? 'There are bytes in front of the archive, which are ignored.'
-        : 'The comment of the zip looks like a second directory; it is ignored.'
-    scan.findings.push(finding('zip-extra-data', message, before > 0 ? { found: `${before} bytes` } : {}))
-  }
+  const extra = extraData(directory, ranges)
+  if (extra) scan.findings.push(extra)
   scan.findings.push(...nameRemarks(scan.entries, limits))
   return scan
+}
+
+const shared = () => finding('zip-too-large', 'Files in the zip share the same packed bytes, as archives made to swell do.')
+
+/** What belongs to no file: before, between and behind the files, or a comment that looks like a directory. */
+function extraData(directory: ZipDirectory, ranges: readonly [number, number][]): BundleFinding | null {
+  const before = ranges[0]![0]
+  const between = ranges.reduce(
+    (sum, [from], i) => sum + (i === 0 ? 0 : from - ranges[i - 1]![1]),
+    directory.offset - ranges.at(-1)![1]
+  )
+  const note = (message: string, bytes?: number) =>
+    finding('zip-extra-data', message, bytes === undefined ? {} : { found: `${bytes} bytes` })
+  if (before > 0) return note('There are bytes in front of the archive, which are ignored.', before)
+  if (directory.after > 0) return note('There are bytes behind the archive, which are ignored.', directory.after)
+  if (directory.hasStrayRecords) return note('The comment of the zip looks like a second directory; it is ignored.')
+  return between > 0 ? note('There are bytes between the files that belong to none of them; they are ignored.', between) : null
 }
 
 /** The stops that the directory alone tells, one finding a code. */
@@ -113,7 +129,8 @@ function flagStops(headers: CentralHeader[], limits: CheckLimits): BundleFinding
   const add = (f: BundleFinding) => {
     if (!found.has(f.code)) found.set(f.code, f)
   }
-  const seen = new Map<string, string>()
+  const clash = nameClash(headers)
+  if (clash) add(clash)
   let total = 0
   for (const header of headers) {
     const file = shownName(header.name)
@@ -127,7 +144,7 @@ function flagStops(headers: CentralHeader[], limits: CheckLimits): BundleFinding
     }
     if (isUnsafePath(header.name))
       add(finding('zip-path-unsafe', 'A name in the zip leads out of the folder it is unpacked in.', { file }))
-    if (header.isLink) add(finding('zip-link', 'The zip holds a link instead of a file.', { file }))
+    if (header.isLink) add(finding('zip-link', 'The zip holds a link or a device instead of a file.', { file }))
     total += header.size
     if (header.size > limits.fileBytes) {
       const message = 'A file in the zip is larger than allowed.'
@@ -144,19 +161,36 @@ function flagStops(headers: CentralHeader[], limits: CheckLimits): BundleFinding
         })
       )
     }
-    const key = clashKey(normalPath(header.name))
-    const other = seen.get(key)
-    if (other !== undefined && !header.isFolder) {
-      const message = `Two files in the zip would be one when unpacked: ${shownName(other)} and ${file}.`
-      add(finding('zip-name-clash', message, { file }))
-    }
-    seen.set(key, header.name)
+    if (header.isFolder && header.size > 0)
+      add(finding('zip-unreadable', 'A folder in the zip holds bytes as a file does; programs disagree on what it is.', { file }))
   }
   if (total > limits.totalBytes) {
     const message = 'The zip unpacks to more than a bundle may hold.'
     add(finding('zip-too-large', message, { expected: `at most ${limits.totalBytes} bytes`, found: `${total} bytes` }))
   }
   return [...found.values()].filter(isStop)
+}
+
+/** Two names that would be one file when unpacked, or a file where another needs a folder. */
+function nameClash(headers: readonly CentralHeader[]): BundleFinding | null {
+  const seen = new Map<string, CentralHeader>()
+  const between = (a: CentralHeader, b: CentralHeader) => {
+    const message = `Two files in the zip would be one when unpacked: ${shownName(a.name)} and ${shownName(b.name)}.`
+    return finding('zip-name-clash', message, { file: shownName(b.name) })
+  }
+  for (const header of headers) {
+    const key = clashKey(normalPath(header.name))
+    const other = seen.get(key)
+    if (other && !(other.isFolder && header.isFolder)) return between(other, header)
+    seen.set(key, header)
+  }
+  for (const [key, header] of seen) {
+    for (let at = key.lastIndexOf('/'); at > 0; at = key.lastIndexOf('/', at - 1)) {
+      const above = seen.get(key.slice(0, at))
+      if (above && !above.isFolder) return between(above, header)
+    }
+  }
+  return null
 }
 
 /** Remarks on names that do not keep the zip from being read: one for each odd name, one for all backslashes. */

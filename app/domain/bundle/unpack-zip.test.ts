@@ -1,5 +1,6 @@
 import { readFileSync } from 'node:fs'
 import { fileURLToPath } from 'node:url'
+import { crc32 } from 'node:zlib'
 import JSZip from 'jszip'
 import { describe, expect, it } from 'vitest'
 import { rawZip, type RawEntry } from '../../../tests/factories/raw-zip'
@@ -39,8 +40,29 @@ describe('zips that ordinary tools write', () => {
     expect(new TextDecoder().decode(await unpacked.read(unpacked.entries[0]!))).toBe('text')
   })
 
-  it('may have bytes in front, which are noted', async () => {
+  it('may have bytes in front or behind, which are noted', async () => {
     expect(await codes(rawZip([plain], { before: Buffer.alloc(500, 35) }))).toEqual(['zip-extra-data'])
+    expect(await codes(Buffer.concat([rawZip([plain]), Buffer.alloc(500, 35)]))).toEqual(['zip-extra-data'])
+  })
+
+  it('may be streamed, long, or name their code page beside the name', async () => {
+    expect(await codes(rawZip([{ ...plain, flags: 0x808, descriptor: {} }]))).toEqual([])
+    expect(await codes(rawZip([plain], { zip64: {} }))).toEqual([])
+    expect(await codes(rawZip([{ ...plain, extra: unicodePath(plain.name, plain.name) }]))).toEqual([])
+    // The bytes are those of another code page than 437; the field says what is meant.
+    const bytes = Buffer.from([0x62, 0xe4, 0x2e, 0x74]) // bä.t in Windows-1252
+    const head = Buffer.alloc(5, 1)
+    head.writeUInt32LE(crc32(bytes), 1)
+    const extra = field(0x7075, Buffer.concat([head, Buffer.from('bä.t')]))
+    const zip = rawZip([{ name: 'b?.t', data: 'text', flags: 0, extra, localExtra: extra }])
+    for (let at = zip.indexOf('b?.t'); at >= 0; at = zip.indexOf('b?.t')) bytes.copy(zip, at)
+    const unpacked = await unpackZip(zip, defaultLimits)
+    expect(unpacked.entries.map((entry) => entry.path)).toEqual(['bä.t'])
+    expect(new TextDecoder().decode(await unpacked.read(unpacked.entries[0]!))).toBe('text')
+  })
+
+  it('may hold a stored zip near their end, which is no second directory', async () => {
+    expect(await codes(rawZip([{ name: 'inner.zip', data: rawZip([plain]), stored: true }]))).toEqual([])
   })
 })
 
@@ -89,10 +111,45 @@ const hostile: [string, () => Uint8Array | Promise<Uint8Array>, string][] = [
         { name: 'a.gbr', data: 'same' },
         { name: 'a.gbx', data: 'same', sharesRecordOf: 0 }
       ]),
+    'zip-too-large'
+  ],
+  ['a device', () => rawZip([plain, { name: 'tty.gbr', data: 'x', mode: 0o020666 }]), 'zip-link'],
+  ['a parent path behind a blank', () => rawZip([plain, { ...plain, name: 'a/.. /../x.gbr' }]), 'zip-path-unsafe'],
+  ['names equal but for a dot at the end', () => rawZip([plain, { ...plain, name: 'board/top.gbr.' }]), 'zip-name-clash'],
+  ['a file where another needs a folder', () => rawZip([plain, { ...plain, name: 'board' }]), 'zip-name-clash'],
+  ['a file and a folder of one name', () => rawZip([{ ...plain, name: 'a' }, { name: 'a/' }, plain]), 'zip-name-clash'],
+  ['a folder that holds bytes', () => rawZip([plain, { name: 'more/', data: 'hidden' }]), 'zip-unreadable'],
+  ['entries that the count leaves out', () => rawZip([plain, { ...plain, name: 'more.gbr' }], { count: 1 }), 'zip-unreadable'],
+  ['AES told by its extra field', () => rawZip([{ ...plain, extra: field(0x9901, Buffer.alloc(7)) }]), 'zip-encrypted'],
+  [
+    'another name in the Unicode path field',
+    () => rawZip([{ ...plain, extra: unicodePath(plain.name, 'board/bottom.gbr') }]),
     'zip-unreadable'
   ],
+  [
+    'another name in the Unicode path field beside the file only',
+    () => rawZip([{ ...plain, localExtra: unicodePath(plain.name, '../x.gbr') }]),
+    'zip-unreadable'
+  ],
+  ['a record behind the file that lies', () => rawZip([{ ...plain, flags: 0x808, descriptor: { size: 5 } }]), 'zip-unreadable'],
+  ['no record behind a streamed file', () => rawZip([{ ...plain, flags: 0x808, descriptor: null }]), 'zip-unreadable'],
+  ['a long end record that contradicts the short one', () => rawZip([plain], { zip64: { count: 7 } }), 'zip-unreadable'],
   ['two consistent directories', () => twoDirectories(), 'zip-unreadable']
 ]
+
+/** An extra field as the application note lays it out: id, length, content. */
+function field(id: number, content: Buffer): Buffer {
+  const head = Buffer.alloc(4)
+  head.writeUInt16LE(id, 0)
+  head.writeUInt16LE(content.length, 2)
+  return Buffer.concat([head, content])
+}
+
+function unicodePath(name: string, told: string): Buffer {
+  const head = Buffer.alloc(5, 1)
+  head.writeUInt32LE(crc32(Buffer.from(name)), 1)
+  return field(0x7075, Buffer.concat([head, Buffer.from(told)]))
+}
 
 function twoDirectories(): Buffer {
   const inner = rawZip([{ name: 'other.gbr', data: 'decoy' }])
@@ -125,8 +182,11 @@ describe('names', () => {
     ['a right-to-left override', 'rebreg\u202erbg.exe'],
     ['a line break', 'line\nbreak.gbr'],
     ['markup', '<img src=x onerror=alert(1)>.gbr'],
+    ['a device', 'board/con.gbr'],
+    ['a blank at its end', 'board/x.gbr '],
+    ['a colon', 'board/x.gbr:hidden'],
     ['eleven folders', `${'d/'.repeat(11)}x.gbr`],
-    ['300 characters', `${'n'.repeat(300)}.gbr`]
+    ['241 characters', `${'n'.repeat(237)}.gbr`]
   ])('with %s are a caution', async (_name, name) => {
     const unpacked = await unpackZip(rawZip([plain, { ...plain, name }]), defaultLimits)
     expect(unpacked.findings).toMatchObject([{ code: 'zip-name-odd', severity: 'caution' }])

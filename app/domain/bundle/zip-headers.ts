@@ -1,3 +1,4 @@
+import { crc32 } from 'node:zlib'
 import { decodeZipName } from './zip-names'
 
 export type ZipDirectory = {
@@ -8,8 +9,10 @@ export type ZipDirectory = {
   count: number
   end: number
   commentLength: number
-  /** End records elsewhere in the comment, which another unzipper might follow. */
+  /** End records in the comment, which another unzipper might follow. */
   hasStrayRecords: boolean
+  /** Bytes behind the archive. */
+  after: number
 }
 
 export type CentralHeader = {
@@ -18,7 +21,10 @@ export type CentralHeader = {
   nameLength: number
   isFolder: boolean
   isEncrypted: boolean
+  /** A link, a device or a pipe. */
   isLink: boolean
+  /** A second name in an extra field, which some programs take instead, is another one. */
+  hasOtherName: boolean
   hasDescriptor: boolean
   flags: number
   method: number
@@ -44,19 +50,28 @@ export function findDirectory(bytes: Uint8Array): ZipDirectory | { problem: stri
   if (bytes.length < 22) return { problem: 'This is no zip.' }
   const looksLikeZip = v.getUint32(0, true) === 0x04034b50
   const found: ZipDirectory[] = []
+  const loose: ZipDirectory[] = []
   let records = 0
+  let stray = 0
   for (let at = bytes.length - 22; at >= Math.max(0, bytes.length - 22 - 0xffff); at--) {
     if (bytes[at] !== 0x50 || v.getUint32(at, true) !== 0x06054b50) continue
     records++
     const directory = readEnd(bytes, v, at)
-    if (directory && at + 22 + directory.commentLength === bytes.length) found.push(directory)
+    // Records behind the right one lie in its comment; those in front of it lie in a file.
+    if (!directory) stray += found.length === 0 ? 1 : 0
+    else if (directory.after === 0) found.push(directory)
+    else if (directory.after > 0) loose.push(directory)
   }
-  if (found.length === 0) {
+  const [first, ...more] = found.length > 0 ? found : loose
+  if (!first) {
     if (records > 0) return { problem: 'The end record of the zip does not fit the file.' }
     return { problem: looksLikeZip ? 'The zip is cut off: its directory is missing.' : 'This is no zip.' }
   }
-  if (found.length > 1) return { problem: 'The zip has two directories, and programs would disagree on its content.' }
-  return { ...found[0]!, hasStrayRecords: records > 1 }
+  if (more.length > 0) return { problem: 'The zip has two directories, and programs would disagree on its content.' }
+  return {
+    ...first,
+    hasStrayRecords: stray > 0 || (found.length > 0 && loose.some((other) => other.end > first.end - first.commentLength))
+  }
 }
 
 function readEnd(bytes: Uint8Array, v: DataView, at: number): ZipDirectory | null {
@@ -73,17 +88,23 @@ function readEnd(bytes: Uint8Array, v: DataView, at: number): ZipDirectory | nul
       (p) => p !== null && p >= 0 && p + 56 <= at - 20 && v.getUint32(p, true) === 0x06064b50
     )
     if (at64 === undefined || at64 === null) return null
+    const short = { count, size, offset }
     count = count64(v, at64 + 32)
     size = count64(v, at64 + 40)
     offset = count64(v, at64 + 48)
     directoryEnd = at64
+    // Programs that do not know the long record follow the short one: it must not say something else.
+    if (count64(v, at64 + 24) !== count || (short.count !== 0xffff && short.count !== count)) return null
+    if ((short.size !== full32 && short.size !== size) || (short.offset !== full32 && short.offset !== offset)) return null
   } else if (v.getUint16(at + 8, true) !== count || v.getUint16(at + 4, true) !== 0) return null
   if (count === null || size === null || offset === null) return null
   const base = directoryEnd - size - offset
   if (base < 0) return null
   const start = base + offset
   if (count > 0 && (start + 46 > bytes.length || v.getUint32(start, true) !== 0x02014b50)) return null
-  return { base, offset: start, size, count, end: at + 22 + commentLength, commentLength, hasStrayRecords: false }
+  const end = at + 22 + commentLength
+  if (end > bytes.length) return null
+  return { base, offset: start, size, count, end, commentLength, hasStrayRecords: false, after: bytes.length - end }
 }
 
 /** One entry of the directory; null when it is damaged. Offsets in the answer count from the start of the file. */
@@ -95,7 +116,11 @@ export function readCentralHeader(bytes: Uint8Array, at: number, end: number, ba
   const extraLength = v.getUint16(at + 30, true)
   const next = at + 46 + nameLength + extraLength + v.getUint16(at + 32, true)
   if (next > end) return null
-  const name = decodeZipName(bytes.subarray(at + 46, at + 46 + nameLength))
+  const nameBytes = bytes.subarray(at + 46, at + 46 + nameLength)
+  const told = nameFromExtra(bytes, at + 46 + nameLength, extraLength, nameBytes)
+  const isAscii = nameBytes.every((byte) => byte < 128)
+  // Tools that write names in a code page of their own put the true one beside it.
+  const name = told !== null && !isAscii && (flags & 0x800) === 0 ? told : decodeZipName(nameBytes)
   let packed: number | null = v.getUint32(at + 20, true)
   let size: number | null = v.getUint32(at + 24, true)
   let localOffset: number | null = v.getUint32(at + 42, true)
@@ -112,15 +137,16 @@ export function readCentralHeader(bytes: Uint8Array, at: number, end: number, ba
     if (localOffset === full32) localOffset = take()
   }
   if (packed === null || size === null || localOffset === null) return null
-  const mode = v.getUint32(at + 38, true) >>> 16
+  const attributes = v.getUint32(at + 38, true)
   const method = v.getUint16(at + 10, true)
   return {
     name,
     nameStart: at + 46,
     nameLength,
-    isFolder: /[\\/]$/.test(name),
-    isEncrypted: (flags & 0x2041) !== 0 || method === 99,
-    isLink: (mode & 0xf000) === 0xa000,
+    isFolder: /[\\/]$/.test(name) || ((attributes & 0x10) !== 0 && size === 0),
+    isEncrypted: (flags & 0x2041) !== 0 || method === 99 || findExtra(v, at + 46 + nameLength, extraLength, 0x9901) !== null,
+    isLink: [0xa000, 0x1000, 0x2000, 0x6000, 0xc000].includes((attributes >>> 28) << 12),
+    hasOtherName: told !== null && told !== name,
     hasDescriptor: (flags & 8) !== 0,
     flags,
     method,
@@ -146,7 +172,12 @@ export function readLocalHeader(bytes: Uint8Array, central: CentralHeader): { da
     if (bytes[at + 30 + i] !== bytes[central.nameStart + i]) return 'the name beside a file is not the one in the directory'
   }
   if (v.getUint16(at + 8, true) !== central.method) return 'two compression methods are given for one file'
-  if (((v.getUint16(at + 6, true) ^ central.flags) & 0x2049) !== 0) return 'two sets of flags are given for one file'
+  const nameBytes = bytes.subarray(at + 30, at + 30 + nameLength)
+  const isAscii = nameBytes.every((byte) => byte < 128)
+  const told = nameFromExtra(bytes, at + 30 + nameLength, extraLength, nameBytes)
+  if (central.hasOtherName || (told !== null && told !== central.name)) return 'two names are given for one file'
+  const weighed = isAscii ? 0x2049 : 0x2849
+  if (((v.getUint16(at + 6, true) ^ central.flags) & weighed) !== 0) return 'two sets of flags are given for one file'
   let packed: number | null = v.getUint32(at + 18, true)
   let size: number | null = v.getUint32(at + 22, true)
   const crc = v.getUint32(at + 14, true)
@@ -158,7 +189,33 @@ export function readLocalHeader(bytes: Uint8Array, central: CentralHeader): { da
   const isLater = central.hasDescriptor && (packed === 0 || packed === full32) && (size === 0 || size === full32)
   if (!isLater && (packed !== central.packed || size !== central.size)) return 'two sizes are given for one file'
   if (!(central.hasDescriptor && crc === 0) && crc !== central.crc) return 'two checksums are given for one file'
-  return { dataStart, dataEnd: dataStart + central.packed }
+  if (!isLater) return { dataStart, dataEnd: dataStart + central.packed }
+  const dataEnd = descriptorEnd(v, dataStart + central.packed, central)
+  return dataEnd === null ? 'what stands behind a file is not what the directory says of it' : { dataStart, dataEnd }
+}
+
+/** Where the record behind a streamed file ends, with or without its signature, in short or long form; null when it says something else. */
+function descriptorEnd(v: DataView, at: number, { crc, packed, size }: CentralHeader): number | null {
+  const isAt = (p: number, isLong: boolean) => {
+    if (p + (isLong ? 20 : 12) > v.byteLength || v.getUint32(p, true) !== crc) return false
+    if (isLong) return count64(v, p + 4) === packed && count64(v, p + 12) === size
+    return v.getUint32(p + 4, true) === packed && v.getUint32(p + 8, true) === size
+  }
+  const starts = at + 4 <= v.byteLength && v.getUint32(at, true) === 0x08074b50 ? [at + 4, at] : [at]
+  for (const start of starts) {
+    if (isAt(start, true)) return start + 20
+    if (isAt(start, false)) return start + 12
+  }
+  return null
+}
+
+/** The name in the Unicode path field (0x7075), which counts only while its checksum fits the name in the header; else null. */
+function nameFromExtra(bytes: Uint8Array, from: number, length: number, name: Uint8Array): string | null {
+  const v = view(bytes)
+  const field = findExtra(v, from, length, 0x7075)
+  if (!field || field.end - field.start < 5 || bytes[field.start] !== 1) return null
+  if (v.getUint32(field.start + 1, true) !== crc32(name)) return null
+  return decodeZipName(bytes.subarray(field.start + 5, field.end))
 }
 
 function findExtra(v: DataView, from: number, length: number, id: number): { start: number; end: number } | null {

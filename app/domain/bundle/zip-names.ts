@@ -15,10 +15,13 @@ export function decodeZipName(bytes: Uint8Array): string {
   }
 }
 
-/** Whether unpacking the name could write outside its folder: absolute, parent or drive paths, with either slash, or a NUL. */
+/**
+ * Whether unpacking the name could write outside its folder: absolute, parent or drive paths, with either slash, or a NUL. Some systems drop
+ * dots and blanks at the end of a part, so that `.. ` is the parent as well.
+ */
 export function isUnsafePath(name: string): boolean {
   if (name.includes('\0') || /^[\\/]/.test(name) || /^[A-Za-z]:/.test(name)) return true
-  return name.split(/[\\/]/).some((part) => part === '..')
+  return name.split(/[\\/]/).some((part) => /^\.\.[. ]*$/.test(part))
 }
 
 /** The path with forward slashes and without empty and `.` parts. */
@@ -28,17 +31,28 @@ export const normalPath = (name: string): string =>
     .filter((part) => part !== '' && part !== '.')
     .join('/')
 
-/** Two names with equal keys would be one file on some system: equal but for case or Unicode form. */
-export const clashKey = (path: string): string => path.normalize('NFC').toLowerCase().normalize('NFC')
+/** Two names with equal keys would be one file on some system: equal but for case, Unicode form, or dots and blanks at the end of a part. */
+export const clashKey = (path: string): string =>
+  path
+    .normalize('NFC')
+    .toLowerCase()
+    .normalize('NFC')
+    .replace(/[. ]+(?=\/|$)/g, '')
 
 // Control characters, direction and zero-width marks, and what markup and shells are made of.
-const oddCharacters = /[\u0000-\u001f\u007f-\u009f\u200b-\u200f\u2028-\u202e\u2060-\u2069\ufeff<>"|?*&]/
+const oddCharacters = /[\u0000-\u001f\u007f-\u009f\u200b-\u200f\u2028-\u202e\u2060-\u2069\ufeff<>"|?*&:]/
+
+/** Names that some systems keep for devices, whatever extension stands behind them. */
+const deviceName = /^(con|prn|aux|nul|com\d|lpt\d)(\.|$)/i
 
 /** What is odd about a path, in words; null when nothing is. */
 export function oddName(path: string, limits: { pathLength: number; pathDepth: number }): string | null {
   if (oddCharacters.test(path)) return 'control, direction or markup characters in the name'
+  const parts = path.split('/')
+  if (parts.some((part) => deviceName.test(part))) return 'a name that some systems keep for a device'
+  if (parts.some((part) => /[. ]$/.test(part))) return 'a dot or blank at the end of a name'
   if (path.length > limits.pathLength) return `a path of ${path.length} characters`
-  const depth = path.split('/').length - 1
+  const depth = parts.length - 1
   return depth > limits.pathDepth ? `a file ${depth} folders deep` : null
 }
 

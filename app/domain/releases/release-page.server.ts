@@ -79,6 +79,11 @@ export async function releasePage(db: Db, actor: Actor, slug: string, version: s
             sentAs: release.bundle_name,
             fileName: bundleFileName(board.slug, release.version)
           },
+    /** What was sent last, where the check refused it: only its findings are kept. */
+    refused:
+      release.bundle_sha256 === null && release.bundle_name !== null
+        ? { sentAs: release.bundle_name, bytes: release.bundle_bytes! }
+        : null,
     checkState,
     facts,
     factRows: declaredBesideMeasured(

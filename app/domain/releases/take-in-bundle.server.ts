@@ -8,6 +8,7 @@ import { recordAudit } from '~/domain/audit/record.server'
 import type { Actor } from '~/domain/accounts/can'
 import { must } from '~/domain/accounts/must'
 import type { BundleCheck, BundlePictures, BundleRecord, CheckStep, DeclaredDetails } from '~/domain/bundle/bundle-check.types'
+import { isRefused } from '~/domain/bundle/is-refused'
 import { DomainError } from '~/lib/domain-error'
 import { objectKey, type Storage } from '~/server/storage.server'
 import { beginRun, setRun } from './check-runs.server'
@@ -40,8 +41,11 @@ const busy = () =>
 const waitMs = 3_000
 
 /**
- * Takes a bundle into a draft: receives it, stores it under its hash, has it checked, and writes the outcome down in one transaction. One at a
+ * Takes a bundle into a draft: receives it, has it checked, stores it under its hash, and writes the outcome down in one transaction. One at a
  * time for each draft. Whatever fails leaves the draft as it was; what was stored by then is swept.
+ *
+ * A zip that the check refuses is not stored: the draft then has the findings, and the name and size of what was sent, but no bundle. It takes
+ * the former bundle's place all the same, for nobody who sent a newer file means to publish the older one.
  * @param receive takes the file from the request, and throws when it does not come whole
  * @throws DomainError `not-found`, `forbidden`, `conflict`, and what `receive` throws
  */
@@ -59,9 +63,7 @@ export async function takeInBundle(
   let file: UploadedFile | null = null
   try {
     file = await receive()
-    setRun(release.id, { phase: 'storing', step: null })
-    await putStaged(deps, objectKey('bundle', file.sha256), file.sha256, { ...file, contentType: 'application/zip' })
-    await checkAndKeep(deps, actor.userId, release.id, file)
+    await checkAndKeep(deps, actor.userId, release.id, file, { isStored: false })
   } finally {
     if (file) await rm(file.path, { force: true })
     end()
@@ -85,14 +87,20 @@ export async function recheckBundle(deps: IntakeDeps, actor: Actor, slug: string
     if (!object) throw new Error(`storage lacks the bundle ${row.bundle_sha256} of release ${release.id}`)
     await pipeline(object.stream, createWriteStream(path, { flags: 'wx', mode: 0o600 }))
     const content = { path, sha256: row.bundle_sha256, bytes: row.bundle_bytes!, name: row.bundle_name! }
-    await checkAndKeep(deps, actor.userId, release.id, content)
+    await checkAndKeep(deps, actor.userId, release.id, content, { isStored: true })
   } finally {
     await rm(path, { force: true })
     end()
   }
 }
 
-async function checkAndKeep(deps: IntakeDeps, actorId: string | null, releaseId: string, file: UploadedFile): Promise<void> {
+async function checkAndKeep(
+  deps: IntakeDeps,
+  actorId: string | null,
+  releaseId: string,
+  file: UploadedFile,
+  { isStored }: { isStored: boolean }
+): Promise<void> {
   const { db, now, check } = deps
   const before = await repo.findById(db, releaseId)
   if (!before) throw draftGone()
@@ -112,8 +120,12 @@ async function checkAndKeep(deps: IntakeDeps, actorId: string | null, releaseId:
       earlier: await records.listEarlier(db, before),
       onProgress: (step) => setRun(releaseId, { phase: 'checking', step })
     })
-    const stored = await storePictures((...picture) => putStaged(deps, ...picture), pictures)
-    await keep(deps, actorId, before, file, { check: result, record }, stored)
+    // A bundle that was taken in before stays, though its check be cut off this time.
+    const isKept = isStored || !isRefused(result)
+    if (!isStored && isKept)
+      await putStaged(deps, objectKey('bundle', file.sha256), file.sha256, { ...file, contentType: 'application/zip' })
+    const stored = await storePictures((...picture) => putStaged(deps, ...picture), isKept ? pictures : null)
+    await keep(deps, actorId, before, { ...file, isKept }, { check: result, record: isKept ? record : null }, stored)
   } catch (error) {
     await repo.updateDraft(db, releaseId, { check_state: before.check_state === 'running' ? 'none' : before.check_state })
     throw error
@@ -125,12 +137,12 @@ async function keep(
   { db, now }: IntakeDeps,
   actorId: string | null,
   before: repo.ReleaseRow,
-  file: Content,
+  file: Content & { isKept: boolean },
   { check, record }: { check: BundleCheck; record: BundleRecord | null },
   pictures: StoredPictures
 ): Promise<void> {
   const at = now().toISOString()
-  const refers = { bundle_sha256: file.sha256, ...pictures.columns }
+  const refers = { bundle_sha256: file.isKept ? file.sha256 : null, ...pictures.columns }
   await db.transaction().execute(async (tx) => {
     const row = await repo.findById(tx, before.id)
     if (!row || row.state !== 'draft') throw draftGone()

@@ -26,7 +26,8 @@ export type DraftReleaseProps = {
 
 /** A draft as its maintainers see it: upload, what was found, answers, publish. */
 export function DraftRelease({ page, maxBytes, done, errors, values }: DraftReleaseProps) {
-  const { board, release, bundle } = page
+  const { board, release, bundle, refused } = page
+  const hasFindings = bundle !== null || refused !== null
   const path = releasePath(board.slug, release.version)
   const of = (intent: string) => (values.intent === intent ? errors : [])
   return (
@@ -72,7 +73,7 @@ export function DraftRelease({ page, maxBytes, done, errors, values }: DraftRele
       >
         <DraftUpload page={page} path={path} maxBytes={maxBytes} refused={of('bundle')[0]?.message} errors={of('recheck')} />
       </Section>
-      {bundle && <DraftFindings page={page} errors={of('answers')} values={values} />}
+      {hasFindings && <DraftFindings page={page} errors={of('answers')} values={values} />}
       {bundle && page.files.length > 0 && (
         <>
           <Section number={3} heading="The board">
@@ -86,14 +87,14 @@ export function DraftRelease({ page, maxBytes, done, errors, values }: DraftRele
           </Section>
         </>
       )}
-      <Section number={bundle && page.files.length > 0 ? 6 : bundle ? 3 : 2} heading="Notes">
+      <Section number={bundle && page.files.length > 0 ? 6 : hasFindings ? 3 : 2} heading="Notes">
         {release.notes ? (
           <Prose html={release.notes} />
         ) : (
           <p className="soft">None yet. Say what changed and what to look out for.</p>
         )}
       </Section>
-      <Section number={bundle && page.files.length > 0 ? 7 : bundle ? 4 : 3} heading="Publish" id="publish">
+      <Section number={bundle && page.files.length > 0 ? 7 : hasFindings ? 4 : 3} heading="Publish" id="publish">
         <PublishDraft page={page} errors={of('publish')} />
         <DeleteDraft errors={of('delete')} />
       </Section>

@@ -25,7 +25,7 @@ export type DraftUploadProps = {
 
 /** The bundle of a draft: the upload, what lies there, and the check once more where it was cut short. */
 export function DraftUpload({ page, path, maxBytes, refused, errors }: DraftUploadProps) {
-  const { bundle, checkState } = page
+  const { bundle, refused: refusedFile, checkState } = page
   const { revalidate } = useRevalidator()
   const navigate = useNavigate()
   const showFound = useCallback(async () => {
@@ -46,6 +46,12 @@ export function DraftUpload({ page, path, maxBytes, refused, errors }: DraftUplo
         onDone={showFound}
       />
       <ErrorSummary errors={errors} before="it can be checked" />
+      {refusedFile && (
+        <Warning severity="stop" heading="The file was refused">
+          {refusedFile.sentAs}, {exactBytes(refusedFile.bytes)}, could not be taken: what is wrong stands below. Nothing of it is
+          kept, and the draft has no bundle until you upload another file.
+        </Warning>
+      )}
       {bundle && (
         <div className="mt-6">
           <Definitions

@@ -26,6 +26,7 @@ const done = {
   saved: 'The draft is saved.',
   rechecked: 'The draft is saved and its bundle checked again.',
   checked: 'The bundle is stored and checked.',
+  refused: 'The file was checked and refused.',
   answered: 'Your answers are saved.',
   published: 'It is published.',
   withdrawn: 'It is withdrawn.'
@@ -47,8 +48,9 @@ export function loader({ url, params, context }: Route.LoaderArgs) {
   return answerPage(url, async () => {
     const s = services()
     const { db, config, now } = s
-    const asked = url.searchParams.get('done')
     const page = await releasePage(db, context.get(actorContext), params.board, params.version)
+    const told = url.searchParams.get('done')
+    const asked = told === 'checked' && page.refused ? 'refused' : told
     return {
       page,
       lasting: page.release.state === 'draft' ? null : await lastingOf(s, params.board, params.version),
