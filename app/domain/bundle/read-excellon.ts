@@ -44,7 +44,8 @@ export function readExcellon(bytes: Uint8Array, limits: CheckLimits, assume: Par
   try {
     problem = reader.run(bytes)
   } catch (error) {
-    if (error instanceof GerberNonsense) problem = { kind: 'unreadable', message: error.message, found: null }
+    if (error instanceof GerberNonsense)
+      problem = { kind: reader.isCut ? 'truncated' : 'unreadable', message: error.message, found: null }
     else if (error instanceof TooComplex) problem = { kind: 'too-complex', message: error.message, found: null }
     else throw error
   }
@@ -108,6 +109,9 @@ class ExcellonReader {
     return (unit === 'inch' ? 25.4 : 1) / 10 ** written
   }
 
+  /** Whether the line at hand is the last and has no line end: what cannot be read of it was cut off. */
+  isCut = false
+
   run(bytes: Uint8Array): ReadProblem | null {
     this.bytes = bytes
     let at = 0
@@ -116,6 +120,7 @@ class ExcellonReader {
       while (end < bytes.length && bytes[end] !== 10 && bytes[end] !== 13) end++
       if (end - at > this.limits.statementBytes) throw new TooComplex(`a line of ${end - at} bytes`)
       const line = textOf(bytes.subarray(at, end)).trim()
+      this.isCut = end === bytes.length
       if (line !== '') this.line(line)
       at = end + 1
     }

@@ -1,4 +1,4 @@
-import { crc32 } from 'node:zlib'
+import { crc32 } from './crc32'
 import { decodeZipName } from './zip-names'
 
 export type ZipDirectory = {
