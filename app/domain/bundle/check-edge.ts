@@ -96,6 +96,20 @@ function notMilled(reading: BundleReading, area: BoardArea, layers: FileReading[
   return passed
 }
 
+/**
+ * Whether a place lies off the board by more than `by` mm: outside the outline, in a notch of it, or in a cut-out that copper keeps clear
+ * of. What copper runs through, too, may be a drawing.
+ */
+export function offBoard(reading: BundleReading): ((x: number, y: number, by: number) => boolean) | null {
+  const { area } = reading
+  if (!area || reading.outlineFile?.isBroken) return null
+  const layers = reading.files.filter((file) => file.excess)
+  const passed = notMilled(reading, area, layers)
+  for (const file of layers) for (const { contour, side } of file.excess!.spots) if (side === 'cut-out') passed.add(contour)
+  return (x, y, by) =>
+    !area.contains(x, y) && area.nearest(x, y, by).segment < 0 && !passed.has(area.nearest(x, y, Infinity).contour)
+}
+
 /** Plated holes that the edge cuts. */
 function halfHoles(reading: BundleReading, area: BoardArea): Hole[] {
   return drilled(reading).flatMap((file) =>
@@ -111,15 +125,31 @@ function distanceToHole({ x, y, toX, toY }: Hole, px: number, py: number): numbe
   return distanceToEdge([x, y, toX, toY], px, py)
 }
 
-/** Holes that the outline cuts through. */
+/** Holes that the outline or a cut-out cuts through, and single ones beside the board: whole files of them are misaligned. */
 function checkHolesOnOutline(reading: BundleReading): BundleFinding[] {
-  const { contour, box } = reading.outline ?? {}
-  if (!contour || !box || reading.outlineFile?.isBroken) return []
+  const { area } = reading
+  if (!area || reading.outlineFile?.isBroken) return []
+  const passed = notMilled(reading, area, [])
+  const isEdge = (contour: number) => !passed.has(contour)
   return drilled(reading).flatMap((file) => {
-    const cut = file.holes!.filter((hole) => distanceToEdge(contour, ...holeCentre(hole)) < hole.diameter / 2 - 0.01)
-    if (cut.length === 0) return []
-    const [x, y] = holeCentre(cut[0]!)
-    const message = `${cut.length} ${cut.length === 1 ? 'hole is' : 'holes are'} cut by the outline, as plated half-holes are; the first at ${mm(x)}, ${mm(y)}.`
-    return [finding('hole-on-outline', message, { file: file.layer.file, found: cut.length, place: { x, y, side: null } })]
+    const cut: Hole[] = []
+    const beside: Hole[] = []
+    for (const hole of file.holes!) {
+      const [x, y] = holeCentre(hole)
+      const near = area.nearest(x, y, hole.diameter / 2 - 0.01)
+      if (near.segment >= 0) {
+        if (isEdge(near.contour)) cut.push(hole)
+      } else if (!area.contains(x, y) && isEdge(area.nearest(x, y, Infinity).contour)) beside.push(hole)
+    }
+    if (cut.length + beside.length === 0) return []
+    const [x, y] = holeCentre(cut[0] ?? beside[0]!)
+    const words = [
+      cut.length > 0 &&
+        `${cut.length} ${cut.length === 1 ? 'hole is' : 'holes are'} cut by the outline, as plated half-holes are`,
+      beside.length > 0 && `${beside.length} ${beside.length === 1 ? 'hole lies' : 'holes lie'} outside the board or in a cut-out`
+    ].filter(Boolean)
+    const message = `${words.join('; ')}; the first at ${mm(x)}, ${mm(y)}.`
+    const found = cut.length + beside.length
+    return [finding('hole-on-outline', message, { file: file.layer.file, found, place: { x, y, side: null } })]
   })
 }

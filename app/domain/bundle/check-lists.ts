@@ -1,7 +1,7 @@
 import type { BundleFinding } from './bundle-check.types'
 import type { BundleReading } from './bundle-reading.types'
+import { offBoard } from './check-edge'
 import { finding, listed, mm } from './finding'
-import { isFarOutside } from './geometry'
 import type { Bom } from './read-bom'
 import type { Placed } from './read-placement'
 
@@ -60,17 +60,20 @@ function checkPlacement(reading: BundleReading): BundleFinding[] {
 }
 
 /** Parts against the outline: all of them off by a unit, the bottom side with X turned round, or single parts beside the board. */
-function checkPlaces({ placement, placementFile: file, outline, outlineFile }: BundleReading): BundleFinding[] {
-  const { contour, box } = outline ?? {}
+function checkPlaces(reading: BundleReading): BundleFinding[] {
+  const { placement, placementFile: file, outline } = reading
+  const box = outline?.box
   const parts = placement?.parts ?? []
-  if (!contour || !box || outlineFile?.isBroken || parts.length === 0) return []
-  const isOut = (x: number, y: number) => isFarOutside(contour, box, x, y, overhang)
+  const isOff = offBoard(reading)
+  if (!isOff || !box || parts.length === 0) return []
+  const isOut = (x: number, y: number) => isOff(x, y, overhang)
   let outside = parts.filter((part) => isOut(part.x, part.y))
   if (outside.length === 0) return []
 
   // Lists may count from the board's lower left corner while the layers count from the page.
   const fromCorner = parts.filter((part) => isOut(part.x + box.minX, part.y + box.minY))
-  if (outside.length * 2 > parts.length && fromCorner.length * 10 <= parts.length) outside = fromCorner
+  const countsFromCorner = outside.length * 2 > parts.length && fromCorner.length * 10 <= parts.length
+  if (countsFromCorner) outside = fromCorner
   if (outside.length === 0) return []
 
   const findings: BundleFinding[] = []
@@ -99,15 +102,16 @@ function checkPlaces({ placement, placementFile: file, outline, outlineFile }: B
       return findings
     }
   }
-  if (outside.length > 0) findings.push(outsideFinding(outside, file))
+  const origin = countsFromCorner ? { x: box.minX, y: box.minY } : { x: 0, y: 0 }
+  if (outside.length > 0) findings.push(outsideFinding(outside, file, origin))
   return findings
 }
 
-function outsideFinding(outside: Placed[], file: string | null): BundleFinding {
+function outsideFinding(outside: Placed[], file: string | null, origin: { x: number; y: number }): BundleFinding {
   const [first] = outside
   const names = listed(outside.map((part) => part.designator))
   const message = `${names} ${outside.length === 1 ? 'is' : 'are'} placed outside the board; the first at ${mm(first!.x)}, ${mm(first!.y)}.`
-  const place = { x: first!.x, y: first!.y, side: first!.side }
+  const place = { x: first!.x + origin.x, y: first!.y + origin.y, side: first!.side }
   return finding('placement-outside', message, { file, expected: 'inside the outline', found: names, place })
 }
 

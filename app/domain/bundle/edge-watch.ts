@@ -115,7 +115,8 @@ export class EdgeWatch implements DrawingWatch {
   private line(x0: number, y0: number, x1: number, y1: number, half: number): void {
     const { area } = this
     const parts = [x0, y0, x1, y1]
-    let best = edgeSlack
+    // Most lines reach farthest with an end.
+    let best = Math.max(edgeSlack, this.look(x0, y0, half, 0), this.look(x1, y1, half, 0))
     while (parts.length > 0) {
       const [ax, ay, bx, by] = parts.splice(-4) as [number, number, number, number]
       const [left, right] = ax < bx ? [ax, bx] : [bx, ax]
@@ -123,15 +124,20 @@ export class EdgeWatch implements DrawingWatch {
       if (area.isWithin(left - half, low - half, right + half, high + half)) continue
       const [x, y] = [(ax + bx) / 2, (ay + by) / 2]
       const length = Math.hypot(bx - ax, by - ay) / 2
-      const near = area.outsideness(x, y, length + half + edgeSlack)
-      const reach = near.distance + half
-      if (reach > edgeSlack) {
-        this.add({ ...this.named(near.segment, near.contour, x, y), by: reach, x, y })
-        best = Math.max(best, reach)
-      }
+      const reach = this.look(x, y, half, length)
+      best = Math.max(best, reach)
       if (length < finest || reach + length <= best * 1.02 + 0.01 || area.work - this.workBefore > mostWork) continue
       parts.push(ax, ay, x, y, x, y, bx, by)
     }
+  }
+
+  /** How far a round place reaches past the edge; exact from `length` inside it on. */
+  private look(x: number, y: number, half: number, length: number): number {
+    if (this.area.isWithin(x - half - length, y - half - length, x + half + length, y + half + length)) return edgeSlack
+    const near = this.area.outsideness(x, y, length + half + edgeSlack)
+    const reach = near.distance + half
+    if (reach > edgeSlack) this.add({ ...this.named(near.segment, near.contour, x, y), by: reach, x, y })
+    return reach
   }
 
   /** Which side of the board an edge's segment is, or that of a place far from it. */

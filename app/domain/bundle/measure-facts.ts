@@ -25,6 +25,7 @@ export function measureFacts(reading: BundleReading): BundleFacts {
   const readable = copper.filter((file) => file.image && !file.image.problem)
   if (readable.length === copper.length) {
     facts.minTrack = least(readable.map((file) => file.image!.smallestConductor))
+    // Strokes of text on copper count among the strokes: they are etched like tracks, and nothing but an attribute tells them apart.
     // Attributes that name no conductor at all (planes only) leave nothing to measure; files without attributes leave strokes.
     const hasAttributes = readable.some((file) => file.image!.attributes.size > 0)
     if (facts.minTrack === null && !hasAttributes)
