@@ -45,7 +45,7 @@ export function readExcellon(bytes: Uint8Array, limits: CheckLimits, assume: Par
     problem = reader.run(bytes)
   } catch (error) {
     if (error instanceof GerberNonsense)
-      problem = { kind: reader.isCut ? 'truncated' : 'unreadable', message: error.message, found: null }
+      problem = reader.isCut ? cutOff(error.message) : { kind: 'unreadable', message: error.message, found: null }
     else if (error instanceof TooComplex) problem = { kind: 'too-complex', message: error.message, found: null }
     else throw error
   }
@@ -62,6 +62,8 @@ export function readExcellon(bytes: Uint8Array, limits: CheckLimits, assume: Par
     resolution: reader.resolution
   }
 }
+
+const cutOff = (why: string) => ({ kind: 'truncated' as const, message: `Its last line breaks off (${why}).`, found: null })
 
 class ExcellonReader {
   readonly attributes = new Map<string, string[]>()
@@ -111,7 +113,6 @@ class ExcellonReader {
 
   /** Whether the line at hand is the last and has no line end: what cannot be read of it was cut off. */
   isCut = false
-
   run(bytes: Uint8Array): ReadProblem | null {
     this.bytes = bytes
     let at = 0
