@@ -436,6 +436,23 @@ describe('a trial and a withdrawn release', () => {
     expect(api.newest.version).toBe('1.2.0-beta.1')
   })
 
+  it('keeps other copper from going out under the same board revision, until it has a letter of its own', async () => {
+    const form = { ...draft, version: '2.0.0' }
+    await owner.fetch(`${board}/releases/new`, { form })
+    await upload(owner, at('2.0.0'), demoBundle('buttress-2.0.0'))
+    await answerAll(owner, at('2.0.0'))
+    const words = textOf(await owner.page(at('2.0.0')))
+    expect(words).toContain('Changed copper under the same revision')
+    expect(words).toContain('differ from release 1.2.0-beta.1 of the same board revision B.')
+    expect((await publish(owner, at('2.0.0'))).status).toBe(422)
+    expect((await row('2.0.0'))?.state).toBe('draft')
+    const edited = await owner.fetch(`${at('2.0.0')}/edit`, { form: { ...form, boardRevision: 'C' } })
+    expect([edited.status, edited.headers.get('Location')]).toEqual([303, `${at('2.0.0')}?done=rechecked`])
+    expect(textOf(await owner.page(at('2.0.0')))).not.toContain('Changed copper under the same revision')
+    await answerAll(owner, at('2.0.0'))
+    expect((await publish(owner, at('2.0.0'))).status).toBe(303)
+  })
+
   it('deletes a draft', async () => {
     await owner.fetch(`${board}/releases/new`, { form: { ...draft, version: '3.0.0' } })
     const answer = await owner.fetch(at('3.0.0'), { form: { intent: 'delete' } })
