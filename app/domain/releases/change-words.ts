@@ -1,6 +1,7 @@
 import { layerName } from '~/domain/bundle/compare-fingerprints'
 import type {
   HoleCounts,
+  LayerChange,
   LayerId,
   MovedGroup,
   NotCompared,
@@ -136,3 +137,34 @@ export const joined = (items: readonly string[]): string =>
 /** "C1, C2, C3 and 5 more": the first of a long list. */
 export const shortened = (items: readonly string[], most: number): string =>
   items.length <= most ? joined(items) : `${items.slice(0, most).join(', ')} and ${items.length - most} more`
+
+/** Designators or layers named in one sentence. */
+export const mostNames = 12
+
+/** Which layers are new, gone, or differ: a sentence each. */
+export function layerSentences(changes: readonly LayerChange[]): string[] {
+  const of = (change: LayerChange['change']) => changes.filter((c) => c.change === change).map((c) => layerWords(c.layer))
+  const sentence = (words: string[], one: string, several: string) =>
+    words.length === 0 ? [] : [`${capital(shortened(words, mostNames))} ${words.length === 1 ? one : several}.`]
+  return [
+    ...sentence(of('added'), 'is new', 'are new'),
+    ...sentence(of('removed'), 'is gone', 'are gone'),
+    ...sentence(of('changed'), 'differs', 'differ')
+  ]
+}
+
+/** That the drilled holes differ, with how many there are. */
+export function drillSentence({ before, after }: NonNullable<WhatChanged['drill']>): string {
+  const [was, is] = [holeWords(before), holeWords(after)]
+  return was === is
+    ? `The drilled holes differ in place or size; their number is the same: ${is}.`
+    : `The drilled holes differ: ${is} (before ${was}).`
+}
+
+/** That the outline differs, with its size where that is what differs. */
+export function outlineSentence(outline: NonNullable<WhatChanged['outline']>): string {
+  const { before, after } = sizeWords(outline)
+  return outline.isSameSize || !before || !after
+    ? 'The outline has another shape.'
+    : `The outline differs: ${after} (before ${before}).`
+}

@@ -1,24 +1,23 @@
 import { escapeMarkdown } from '~/lib/escape-markdown'
 import {
-  capital,
   declaredNames,
   factNames,
   fieldNames,
-  holeWords,
-  layerWords,
+  drillSentence,
+  layerSentences,
   moveWords,
+  mostNames,
   notComparedWords,
+  outlineSentence,
   partWords,
   shiftWords,
   shortened,
-  sizeWords,
   valueWords
 } from './change-words'
 import { isUnchanged } from './what-changed'
-import type { AlteredGroup, LayerChange, WhatChanged } from './what-changed.types'
+import type { AlteredGroup, WhatChanged } from './what-changed.types'
 
-/** Designators named in a line, lines of one kind, characters of one value that comes from a file, and characters in all. */
-const mostNames = 12
+/** Lines of one kind, characters of one value that comes from a file, and characters in all. */
 const mostLines = 12
 const longestValue = 90
 const longestNotes = 6000
@@ -37,17 +36,6 @@ function few(lines: string[]): string[] {
 }
 
 const isOne = (list: readonly unknown[]) => list.length === 1
-
-function layerLines(changes: readonly LayerChange[]): string[] {
-  const of = (change: LayerChange['change']) => changes.filter((c) => c.change === change).map((c) => layerWords(c.layer))
-  const line = (words: string[], one: string, several: string) =>
-    words.length === 0 ? [] : [`${capital(shortened(words, mostNames))} ${isOne(words) ? one : several}.`]
-  return [
-    ...line(of('added'), 'is new', 'are new'),
-    ...line(of('removed'), 'is gone', 'are gone'),
-    ...line(of('changed'), 'differs', 'differ')
-  ]
-}
 
 function alteredLine({ designators, changes }: AlteredGroup): string {
   const said = changes.map(({ name, before, after }) => {
@@ -73,23 +61,9 @@ export function whatChangedNotes(c: WhatChanged): string | null {
   if (isUnchanged(c)) return null
   const lines: string[] = []
   if (c.revision) lines.push(`New board revision: ${from(String(c.revision.before), String(c.revision.after))}.`)
-  if (c.outline) {
-    const { before, after } = sizeWords(c.outline)
-    lines.push(
-      c.outline.isSameSize || !before || !after
-        ? 'The outline has another shape.'
-        : `The outline differs: ${from(before, after)}.`
-    )
-  }
-  lines.push(...layerLines(c.layers))
-  if (c.drill) {
-    const [before, after] = [holeWords(c.drill.before), holeWords(c.drill.after)]
-    lines.push(
-      before === after
-        ? `The drilled holes differ in place or size; their number is the same: ${after}.`
-        : `The drilled holes differ: ${from(before, after)}.`
-    )
-  }
+  if (c.outline) lines.push(outlineSentence(c.outline))
+  lines.push(...layerSentences(c.layers))
+  if (c.drill) lines.push(drillSentence(c.drill))
   for (const { name, before, after } of c.facts)
     lines.push(`${factNames[name].name}: ${from(valueWords(before, factNames[name]), valueWords(after, factNames[name]))}.`)
   for (const { name, before, after } of c.declared)
