@@ -15,6 +15,7 @@ import * as repo from './releases.repo.server'
 import { bundleFileName, layerPicturePath, picturePath, releasePath, thumbnailPath } from './release-path'
 import { findRelease } from './releases.server'
 import { mustReadVersion, newestOf, stateWhenPublished } from './version'
+import { changesShown } from './what-changed.server'
 
 export type ReleasePage = Awaited<ReturnType<typeof releasePage>>
 
@@ -32,13 +33,14 @@ function checkStateOf(release: repo.ReleaseRow): 'none' | 'running' | 'interrupt
  */
 export async function releasePage(db: Db, actor: Actor, slug: string, version: string) {
   const { board, release } = await findRelease(db, actor, slug, version)
-  const [files, layers, findings, siblings, fit, downloaded] = await Promise.all([
+  const [files, layers, findings, siblings, fit, downloaded, changes] = await Promise.all([
     findingsRepo.listFiles(db, release.id),
     layerPicturesRepo.listByRelease(db, release.id),
     findingsRepo.listFindings(db, release.id),
     repo.listByBoard(db, board.id),
     claimsOf(db, board),
-    downloads.total(db, release.id)
+    downloads.total(db, release.id),
+    changesShown(db, release)
   ])
   const subject = { boardId: board.id, state: release.state }
   const published = siblings.filter((r) => r.state !== 'draft')
@@ -118,6 +120,7 @@ export async function releasePage(db: Db, actor: Actor, slug: string, version: s
       index: layer_index
     })),
     files,
+    changes,
     findings: findings.map((f) => ({ ...f, answeredOn: day(f.answered_at) })),
     obstacles: obstacles(
       {

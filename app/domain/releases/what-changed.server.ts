@@ -1,4 +1,4 @@
-import type { DbOrTx } from '~db/client.server'
+import type { Db } from '~db/client.server'
 import type { BundleFacts, BundleRecord } from '~/domain/bundle/bundle-check.types'
 import type { Box } from '~/domain/bundle/geometry'
 import type { Actor } from '~/domain/accounts/can'
@@ -30,7 +30,7 @@ type Row = Pick<
   | 'declared_stencil'
 >
 
-async function recordOf(db: DbOrTx, release: Row): Promise<BundleRecord | null> {
+async function recordOf(db: Db, release: Row): Promise<BundleRecord | null> {
   const [parts, placements, fingerprints] = await Promise.all([
     record.listParts(db, release.id),
     record.listPlacements(db, release.id),
@@ -41,7 +41,7 @@ async function recordOf(db: DbOrTx, release: Row): Promise<BundleRecord | null> 
   return isKept ? { outline, parts, placements, fingerprints } : null
 }
 
-async function sideOf(db: DbOrTx, release: Row): Promise<ReleaseSide> {
+async function sideOf(db: Db, release: Row): Promise<ReleaseSide> {
   const [kept, files] = await Promise.all([recordOf(db, release), findings.listFiles(db, release.id)])
   return {
     version: release.version,
@@ -66,7 +66,7 @@ async function sideOf(db: DbOrTx, release: Row): Promise<ReleaseSide> {
 }
 
 /** The published release before this version of a board, or undefined when it is the first. */
-async function previousRow(db: DbOrTx, boardId: string, version: string): Promise<repo.ReleaseRow | undefined> {
+async function previousRow(db: Db, boardId: string, version: string): Promise<repo.ReleaseRow | undefined> {
   const previous = previousOf(await repo.listByBoard(db, boardId), version)
   return previous ? repo.findById(db, previous.id) : undefined
 }
@@ -75,7 +75,7 @@ async function previousRow(db: DbOrTx, boardId: string, version: string): Promis
  * What a release changed since the one before it (`previousOf`).
  * @returns null when there is none before it, or when its bundle is not checked
  */
-export async function whatChanged(db: DbOrTx, release: Row): Promise<WhatChanged | null> {
+export async function whatChanged(db: Db, release: Row): Promise<WhatChanged | null> {
   if (release.facts_json === null) return null
   const previous = await previousRow(db, release.board_id, release.version)
   if (!previous) return null
@@ -84,7 +84,7 @@ export async function whatChanged(db: DbOrTx, release: Row): Promise<WhatChanged
 }
 
 /** As `whatChanged`, in the words of the release's page. */
-export async function changesShown(db: DbOrTx, release: Row): Promise<ChangesShown | null> {
+export async function changesShown(db: Db, release: Row): Promise<ChangesShown | null> {
   const changed = await whatChanged(db, release)
   return changed && changeRows(changed)
 }
@@ -92,7 +92,7 @@ export async function changesShown(db: DbOrTx, release: Row): Promise<ChangesSho
 /** What the form of a draft can offer: to start the notes with what changed since `since`, once the bundle is checked. */
 export type NotesOffer = { since: string; isReady: boolean }
 
-export async function notesOffer(db: DbOrTx, release: Row): Promise<NotesOffer | null> {
+export async function notesOffer(db: Db, release: Row): Promise<NotesOffer | null> {
   const previous = await previousRow(db, release.board_id, release.version)
   return previous ? { since: previous.version, isReady: release.facts_json !== null } : null
 }
@@ -104,7 +104,7 @@ export async function notesOffer(db: DbOrTx, release: Row): Promise<NotesOffer |
  * @throws DomainError `not-found`, `forbidden`
  */
 export async function startNotesOf(
-  db: DbOrTx,
+  db: Db,
   actor: Actor,
   slug: string,
   version: string,

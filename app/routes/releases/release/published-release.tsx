@@ -4,6 +4,7 @@ import { FindingsList } from './findings-list'
 import { Layers } from './layers-part'
 import { Facts, foundInWords } from './release-parts'
 import { TakeFiles } from './take-files'
+import { changeFigures, WhatChangedSection } from './what-changed-section'
 import { ButtonLink } from '~/components/button'
 import { DoneLine } from '~/components/done-line'
 import { FitStrip } from '~/components/fit-strip'
@@ -97,10 +98,12 @@ export function PublishedRelease({ page, lasting, today, done }: PublishedReleas
       </Title>
       <ReleaseLine board={board.name} releases={page.line} shown={release.version} today={today} />
       <IndexLine
-        entries={['Board', 'Fit', 'Files', 'Facts', 'Findings', 'Layers', 'Notes', 'How long it lasts'].map((word, i) => ({
-          number: i + 1,
-          word
-        }))}
+        entries={['Board', 'Fit', 'Files', 'Facts', 'Findings', 'Layers', 'Changes', 'Notes', 'How long it lasts'].map(
+          (word, i) => ({
+            number: i + 1,
+            word
+          })
+        )}
       />
       <Section number={1} heading="The board">
         <BoardFigures page={page} />
@@ -148,14 +151,15 @@ export function PublishedRelease({ page, lasting, today, done }: PublishedReleas
       <Section number={6} heading="Layers">
         <Layers page={page} number={2} figure={drawnFigures(page) + 1} />
       </Section>
-      <Section number={7} heading="Notes">
+      <WhatChangedSection page={page} number={7} figure={drawnFigures(page) + (hasViewer(page) ? 2 : 1)} table={3} />
+      <Section number={8} heading="Notes">
         {release.notes ? <Prose html={release.notes} /> : <p className="soft">The maintainer wrote none.</p>}
       </Section>
-      <Section number={8} heading="How long it lasts">
+      <Section number={9} heading="How long it lasts">
         <LastingWords
           lasting={lasting}
           name={`${board.name} ${release.version}`}
-          figure={drawnFigures(page) + (hasViewer(page) ? 2 : 1)}
+          figure={drawnFigures(page) + changeFigures(page) + (hasViewer(page) ? 2 : 1)}
           href={`/boards/${board.slug}/reliability?release=${encodeURIComponent(release.version)}`}
           link="Reliability by console revision"
         />
