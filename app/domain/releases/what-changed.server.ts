@@ -98,9 +98,8 @@ export async function notesOffer(db: Db, release: Row): Promise<NotesOffer | nul
 }
 
 /**
- * The notes of a draft with what changed before them. Nothing is saved. What is entered in the form counts, as far as it can be read, in place
- * of what was saved.
- * @param entered the form's readable fields
+ * The notes of a draft with what changed before them. Nothing is saved. What is entered in the form counts in place of what was saved.
+ * @param notes as they were typed, which `entered` has trimmed
  * @throws DomainError `not-found`, `forbidden`
  */
 export async function startNotesOf(
@@ -108,14 +107,14 @@ export async function startNotesOf(
   actor: Actor,
   slug: string,
   version: string,
-  entered: Partial<Draft>,
+  entered: Draft,
   notes: string
 ): Promise<(StartedNotes & { since: string }) | null> {
   const { release } = await draftToEdit(db, actor, slug, version)
   const changed = await whatChanged(db, {
     ...release,
-    version: entered.version?.text ?? release.version,
-    board_revision: entered.boardRevision ?? release.board_revision,
+    version: entered.version.text,
+    board_revision: entered.boardRevision,
     declared_layers: entered.layers ?? null,
     declared_thickness_mm: entered.thicknessMm ?? null,
     declared_copper_um: entered.copperUm ?? null,

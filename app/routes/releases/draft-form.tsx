@@ -1,5 +1,6 @@
 import { Form, useNavigation } from 'react-router'
 import { Actions, Button, ButtonLink } from '~/components/button'
+import { DoneLine } from '~/components/done-line'
 import { ErrorSummary } from '~/components/error-summary'
 import { SelectField, TextArea, TextField } from '~/components/field'
 import { MarginNote, Section } from '~/components/section'
@@ -7,7 +8,15 @@ import { stencils } from '~/domain/releases/stencils'
 import type { FieldError } from '~/lib/domain-error'
 import type { FormValues } from '~/lib/parse-form'
 
-export type DraftFormProps = { values: FormValues; errors: FieldError[]; action: string; back: string }
+/** What the notes can be started with; `told` says what came of it. */
+export type NotesStart = { since: string; isReady: boolean; address: string; told: string | null }
+export type DraftFormProps = {
+  values: FormValues
+  errors: FieldError[]
+  action: string
+  back: string
+  notesStart?: NotesStart | null
+}
 
 const labels = {
   version: 'Version',
@@ -25,8 +34,9 @@ const labels = {
 const stencilWords = { none: 'none needed', top: 'top', bottom: 'bottom', both: 'both sides' }
 
 /** The form of a draft, in three numbered sections with one button. */
-export function DraftForm({ values, errors, action, back }: DraftFormProps) {
-  const isBusy = useNavigation().state === 'submitting'
+export function DraftForm({ values, errors, action, back, notesStart }: DraftFormProps) {
+  const navigation = useNavigation()
+  const intent = navigation.state === 'submitting' ? navigation.formData?.get('intent') : undefined
   const field = (name: keyof typeof labels) => ({
     name,
     label: labels[name],
@@ -100,21 +110,60 @@ export function DraftForm({ values, errors, action, back }: DraftFormProps) {
           isOptional
         />
       </Section>
-      <Section number={3} heading="What to say about it">
+      <Section
+        number={3}
+        heading="What to say about it"
+        margin={notesStart && <StartNotes {...notesStart} isBusy={intent === startNotesIntent} />}
+      >
+        {notesStart?.told && <DoneLine what={notesStart.told} />}
         <TextArea
           {...field('notes')}
+          // started notes replace what the field holds; they contain it
+          key={values.notes}
           hint="Markdown: what changed, what to look out for when fitting."
           rows={8}
           isLong
           isOptional
         />
         <Actions>
-          <Button busy={isBusy ? 'Saving' : undefined}>{action}</Button>
+          <Button busy={intent === null ? 'Saving' : undefined}>{action}</Button>
           <ButtonLink kind="outline" href={back}>
             Not now
           </ButtonLink>
         </Actions>
       </Section>
     </Form>
+  )
+}
+
+/** What the second button of the form says it is for. */
+export const startNotesIntent = 'start-notes'
+
+/** Stands behind the button that saves, which the Enter key presses. */
+function StartNotes({ since, isReady, address, isBusy }: NotesStart & { isBusy: boolean }) {
+  if (!isReady)
+    return (
+      <p>
+        <b>Once the bundle is checked,</b> the notes can start with what changed since {since}.
+      </p>
+    )
+  return (
+    <>
+      <p>
+        <b>What changed since {since}</b> was read from the files: parts, places, layers, holes and details. It is put before what
+        stands in the notes; nothing is saved yet.
+      </p>
+      <p className="mt-3">
+        <Button
+          kind="outline"
+          name="intent"
+          value={startNotesIntent}
+          formAction={address}
+          busy={isBusy ? 'Comparing' : undefined}
+        >
+          Start the notes with what changed
+        </Button>
+      </p>
+    </>
   )
 }
