@@ -2,6 +2,7 @@ import {
   declaredNames,
   drillSentence,
   factNames,
+  factsToSay,
   fieldWords,
   layerSentences,
   moveWords,
@@ -59,7 +60,7 @@ function altered({ designators, changes }: AlteredGroup): ChangeRow {
 /** What changed, as the page of a release shows it. */
 export function changeRows(c: WhatChanged): ChangesShown {
   const details = [
-    ...c.facts.map((f) => ({ ...f, format: factNames[f.name], what: `${factNames[f.name].name}, measured` })),
+    ...factsToSay(c).map((f) => ({ ...f, format: factNames[f.name], what: `${factNames[f.name].name}, measured` })),
     ...c.declared.map((d) => ({ ...d, format: declaredNames[d.name], what: `${declaredNames[d.name].name}, declared` }))
   ]
   return {

@@ -75,6 +75,10 @@ export const factNames: Record<WhatChanged['facts'][number]['name'], { name: str
   minHole: { name: 'Smallest hole', unit: ' mm', digits: 3 }
 }
 
+/** The facts that differ, without the number of layers where the declared one says the same. */
+export const factsToSay = ({ facts, declared }: Pick<WhatChanged, 'facts' | 'declared'>): WhatChanged['facts'] =>
+  facts.filter(({ name, after }) => name !== 'copperLayers' || !declared.some((d) => d.name === 'layers' && d.after === after))
+
 export const declaredNames: Record<WhatChanged['declared'][number]['name'], { name: string; unit: string }> = {
   layers: { name: 'Copper layers', unit: '' },
   thicknessMm: { name: 'Thickness', unit: ' mm' },

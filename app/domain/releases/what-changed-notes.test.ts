@@ -85,6 +85,15 @@ describe('whatChangedNotes', () => {
 - The drilled holes could not be read in 1.0.0, and so not compared.`)
   })
 
+  it('does not say twice how many layers there are', () => {
+    const layers = (before: number, after: number) => ({
+      facts: [{ name: 'copperLayers' as const, before, after }],
+      declared: [{ name: 'layers' as const, before: 2, after: 4 }]
+    })
+    expect(notes(layers(2, 4))).not.toContain('- Copper layers: ')
+    expect(notes(layers(2, 6))).toContain('- Copper layers: 6 (before 2).')
+  })
+
   it('has nothing to say where nothing changed', () => expect(notes({})).toBeNull())
 
   it('keeps long lists short and says how many there are', () => {

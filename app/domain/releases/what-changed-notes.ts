@@ -2,6 +2,7 @@ import { escapeMarkdown } from '~/lib/escape-markdown'
 import {
   declaredNames,
   factNames,
+  factsToSay,
   fieldNames,
   drillSentence,
   layerSentences,
@@ -64,7 +65,7 @@ export function whatChangedNotes(c: WhatChanged): string | null {
   if (c.outline) lines.push(outlineSentence(c.outline))
   lines.push(...layerSentences(c.layers))
   if (c.drill) lines.push(drillSentence(c.drill))
-  for (const { name, before, after } of c.facts)
+  for (const { name, before, after } of factsToSay(c))
     lines.push(`${factNames[name].name}: ${from(valueWords(before, factNames[name]), valueWords(after, factNames[name]))}.`)
   for (const { name, before, after } of c.declared)
     lines.push(

@@ -39,7 +39,7 @@ export function whatChanged(before: ReleaseSide, after: ReleaseSide): WhatChange
         : { name: 'boardRevision', before: before.boardRevision, after: after.boardRevision },
     outline: outlineChange(before.facts, after.facts, isOtherShape),
     layers: [
-      ...geometry.layers.filter(({ layer }) => layer.function === 'copper'),
+      ...geometry.layers.filter(({ layer }) => layer.function === 'copper').sort((a, b) => depth(a.layer) - depth(b.layer)),
       ...layersCameOrWent(before.layers, after.layers)
     ],
     drill: drillChange(before.facts, after.facts, isOtherDrill),
@@ -61,6 +61,9 @@ export const isUnchanged = (c: WhatChanged): boolean =>
   !c.drill &&
   !c.shift &&
   [c.layers, c.facts, c.declared, c.added, c.removed, c.altered, c.moved].every((list) => list.length === 0)
+
+/** Copper from the top down. */
+const depth = ({ side, index }: LayerId) => (side === 'top' ? 0 : side === 'bottom' ? Infinity : (index ?? 0) + 1)
 
 const missingIn = (before: unknown, after: unknown): NotCompared['missingIn'] => (before ? 'after' : after ? 'before' : 'both')
 
