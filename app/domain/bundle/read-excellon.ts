@@ -181,10 +181,9 @@ class ExcellonReader {
       return
     }
     if (this.isInHeader) return
-    if (code === 0 && !this.tools.has(0)) {
-      this.tool = null
-      return
-    }
+    // T0 puts the tool away, unless the file has a tool of that number.
+    const isPutAway = code === 0 && !this.tools.has(0)
+    if (isPutAway) return void (this.tool = null)
     const tool = this.tools.get(code) ?? this.toolElsewhere(code)
     if (!tool) throw new GerberNonsense(`tool T${code} is used but never defined`)
     this.tool = tool
@@ -194,8 +193,7 @@ class ExcellonReader {
 
   /** A tool that is not defined before it is used, from a list of tools in comments or further down. */
   private toolElsewhere(code: number): Tool | undefined {
-    this.listed ??= listedTools(this.bytes, this.format().unit === 'inch' ? 25.4 : 1)
-    const diameter = this.listed.get(code)
+    const diameter = (this.listed ??= listedTools(this.bytes, this.format().unit === 'inch' ? 25.4 : 1)).get(code)
     return diameter === undefined ? undefined : { diameter, plating: null }
   }
 
