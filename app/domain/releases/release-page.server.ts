@@ -11,6 +11,8 @@ import * as downloads from './downloads.repo.server'
 import * as findingsRepo from './findings.repo.server'
 import * as layerPicturesRepo from './layer-pictures.repo.server'
 import { obstacles } from './publish-rules'
+import { partsTable } from './part-rows'
+import { listParts } from './record.repo.server'
 import * as repo from './releases.repo.server'
 import { bundleFileName, layerPicturePath, picturePath, releasePath, thumbnailPath } from './release-path'
 import { findRelease } from './releases.server'
@@ -33,14 +35,15 @@ function checkStateOf(release: repo.ReleaseRow): 'none' | 'running' | 'interrupt
  */
 export async function releasePage(db: Db, actor: Actor, slug: string, version: string) {
   const { board, release } = await findRelease(db, actor, slug, version)
-  const [files, layers, findings, siblings, fit, downloaded, changes] = await Promise.all([
+  const [files, layers, findings, siblings, fit, downloaded, changes, parts] = await Promise.all([
     findingsRepo.listFiles(db, release.id),
     layerPicturesRepo.listByRelease(db, release.id),
     findingsRepo.listFindings(db, release.id),
     repo.listByBoard(db, board.id),
     claimsOf(db, board),
     downloads.total(db, release.id),
-    changesShown(db, release)
+    changesShown(db, release),
+    listParts(db, release.id)
   ])
   const subject = { boardId: board.id, state: release.state }
   const published = siblings.filter((r) => r.state !== 'draft')
@@ -121,6 +124,7 @@ export async function releasePage(db: Db, actor: Actor, slug: string, version: s
     })),
     files,
     changes,
+    parts: partsTable(parts),
     findings: findings.map((f) => ({ ...f, answeredOn: day(f.answered_at) })),
     obstacles: obstacles(
       {

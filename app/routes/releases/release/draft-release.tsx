@@ -5,6 +5,7 @@ import { BoardFigures, drawnFigures } from './board-figures'
 import { hasViewer } from './board-viewer'
 import { Layers } from './layers-part'
 import { Facts } from './release-parts'
+import { Parts } from './parts-section'
 import { WhatChangedSection } from './what-changed-section'
 import { ButtonLink } from '~/components/button'
 import { DoneLine } from '~/components/done-line'
@@ -87,17 +88,20 @@ export function DraftRelease({ page, maxBytes, done, errors, values }: DraftRele
           <Section number={5} heading="Layers">
             <Layers page={page} number={2} figure={drawnFigures(page) + 1} />
           </Section>
-          <WhatChangedSection page={page} number={6} figure={drawnFigures(page) + (hasViewer(page) ? 2 : 1)} table={3} />
+          <Section number={6} heading="Parts">
+            <Parts page={page} number={3} />
+          </Section>
+          <WhatChangedSection page={page} number={7} figure={drawnFigures(page) + (hasViewer(page) ? 2 : 1)} table={4} />
         </>
       )}
-      <Section number={bundle && page.files.length > 0 ? 7 : hasFindings ? 3 : 2} heading="Notes">
+      <Section number={bundle && page.files.length > 0 ? 8 : hasFindings ? 3 : 2} heading="Notes">
         {release.notes ? (
           <Prose html={release.notes} />
         ) : (
           <p className="soft">None yet. Say what changed and what to look out for.</p>
         )}
       </Section>
-      <Section number={bundle && page.files.length > 0 ? 8 : hasFindings ? 4 : 3} heading="Publish" id="publish">
+      <Section number={bundle && page.files.length > 0 ? 9 : hasFindings ? 4 : 3} heading="Publish" id="publish">
         <PublishDraft page={page} errors={of('publish')} />
         <DeleteDraft errors={of('delete')} />
       </Section>

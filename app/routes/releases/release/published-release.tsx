@@ -3,6 +3,7 @@ import { hasViewer } from './board-viewer'
 import { FindingsList } from './findings-list'
 import { Layers } from './layers-part'
 import { Facts, foundInWords } from './release-parts'
+import { Parts } from './parts-section'
 import { TakeFiles } from './take-files'
 import { changeFigures, WhatChangedSection } from './what-changed-section'
 import { ButtonLink } from '~/components/button'
@@ -98,7 +99,7 @@ export function PublishedRelease({ page, lasting, today, done }: PublishedReleas
       </Title>
       <ReleaseLine board={board.name} releases={page.line} shown={release.version} today={today} />
       <IndexLine
-        entries={['Board', 'Fit', 'Files', 'Facts', 'Findings', 'Layers', 'Changes', 'Notes', 'How long it lasts'].map(
+        entries={['Board', 'Fit', 'Files', 'Facts', 'Findings', 'Layers', 'Parts', 'Changes', 'Notes', 'How long it lasts'].map(
           (word, i) => ({
             number: i + 1,
             word
@@ -151,11 +152,14 @@ export function PublishedRelease({ page, lasting, today, done }: PublishedReleas
       <Section number={6} heading="Layers">
         <Layers page={page} number={2} figure={drawnFigures(page) + 1} />
       </Section>
-      <WhatChangedSection page={page} number={7} figure={drawnFigures(page) + (hasViewer(page) ? 2 : 1)} table={3} />
-      <Section number={8} heading="Notes">
+      <Section number={7} heading="Parts">
+        <Parts page={page} number={3} />
+      </Section>
+      <WhatChangedSection page={page} number={8} figure={drawnFigures(page) + (hasViewer(page) ? 2 : 1)} table={4} />
+      <Section number={9} heading="Notes">
         {release.notes ? <Prose html={release.notes} /> : <p className="soft">The maintainer wrote none.</p>}
       </Section>
-      <Section number={9} heading="How long it lasts">
+      <Section number={10} heading="How long it lasts">
         <LastingWords
           lasting={lasting}
           name={`${board.name} ${release.version}`}
