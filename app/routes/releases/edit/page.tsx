@@ -115,7 +115,7 @@ export default function EditRelease({ loaderData: data, actionData }: Route.Comp
         notesStart={
           data.offer && {
             ...data.offer,
-            address: `${path}/edit#notes`,
+            address: `${path}/edit#s3`,
             told: actionData && 'told' in actionData ? actionData.told : null
           }
         }

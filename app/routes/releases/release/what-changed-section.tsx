@@ -125,10 +125,9 @@ export function WhatChangedSection({ page, number, figure, table }: WhatChangedS
           caption="Parts moved, as seen from the top"
           rows={moved.rows}
           rowKey={(row) => `${row.what} ${row.how}`}
-          isFolded
           columns={[
             { key: 'what', head: 'Part', cell: (row) => row.what, isRowHead: true },
-            { key: 'how', head: 'How', cell: (row) => row.how, label: '', className: 'long' }
+            { key: 'how', head: 'How', cell: (row) => row.how }
           ]}
         />
       )}
