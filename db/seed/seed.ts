@@ -28,7 +28,8 @@ export type SeedOptions = {
 }
 
 /** The check as a maintainer's upload gets it, two at a time in child processes, but with time enough on a busy machine: these bundles are known. */
-export const realCheck: NonNullable<SeedOptions['check']> = (input) => runBundleCheckWithPictures(input, { wallMs: 180_000 })
+export const realCheck: NonNullable<SeedOptions['check']> = (input) =>
+  runBundleCheckWithPictures(input, { wallMs: 180_000, drawMs: 180_000 })
 
 type Rows<T extends keyof Schema> = Insertable<Schema[T]>[]
 type Checked = { manifest: Manifest; check: BundleCheck; record: BundleRecord; pictures: StoredPictures }

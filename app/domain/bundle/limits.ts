@@ -34,7 +34,9 @@ export type CheckLimits = {
   layerPictures: number
   layerPictureBytes: number
   layerPictureObjects: number
+  /** From the order to the answer; and from the answer to the last picture. */
   wallMs: number
+  drawMs: number
   heapMib: number
 }
 
@@ -64,5 +66,6 @@ export const defaultLimits: CheckLimits = {
   layerPictureBytes: 24 * mib,
   layerPictureObjects: 300_000,
   wallMs: 20_000,
+  drawMs: 20_000,
   heapMib: 512
 }

@@ -43,8 +43,8 @@ export async function runBundleCheck(input: CheckInput, limits: Partial<CheckLim
 }
 
 /**
- * The same check, and both sides and every layer drawn where that is possible. A failure to draw never fails the check; what was drawn
- * until the time was up stands.
+ * The same check, and both sides and every layer drawn where that is possible. A failure to draw never fails the check, nor does drawing
+ * take of its time; what was drawn until the time for drawing was up stands.
  */
 export function runBundleCheckWithPictures(input: CheckInput, limits: Partial<CheckLimits> = {}): Promise<CheckWithPictures> {
   return queue.add(() => runChild(input, { ...defaultLimits, ...limits }, true), input.signal)
@@ -80,17 +80,22 @@ function follow(process: CheckProcess, order: ChildOrder, bytes: number, input: 
     let hasHeard = process.checks === 0
     let lastWords = ''
     const kill = () => child.kill('SIGKILL')
-    const timer = setTimeout(() => {
+    const killLate = () => {
       isLate = true
       kill()
-    }, order.limits.wallMs)
+    }
+    let timer = setTimeout(killLate, order.limits.wallMs)
     input.signal?.addEventListener('abort', kill, { once: true })
     child.stderr?.on('data', (chunk: Buffer) => (lastWords += chunk.toString().slice(0, Math.max(0, 4000 - lastWords.length))))
     child.on('message', (message: ChildMessage) => {
       hasHeard = true
       if (message.kind === 'step') input.onProgress?.(message.step)
-      else if (message.kind === 'checked') ({ check, record } = message)
-      else if (message.kind === 'drawn') pictures = withPart(pictures, message.part)
+      else if (message.kind === 'checked') {
+        ;({ check, record } = message)
+        // Drawing has a time of its own: neither takes the other's.
+        clearTimeout(timer)
+        timer = setTimeout(killLate, order.limits.drawMs)
+      } else if (message.kind === 'drawn') pictures = withPart(pictures, message.part)
       else {
         stopWaiting()
         processes.release(process, message.residentBytes)
