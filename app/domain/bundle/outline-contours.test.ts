@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest'
 import { findOutline } from './outline-contours'
 import type { Stroke } from './gerber-canvas'
 
-const stroke = (...points: number[]): Stroke => ({ points, aperture: null as unknown as Stroke['aperture'] })
+const stroke = (...points: number[]): Stroke => ({ points, aperture: { diameter: 0.1 } as Stroke['aperture'] })
 const size = (strokes: Stroke[]) => {
   const { box } = findOutline(strokes, [])
   return box ? [box.maxX - box.minX, box.maxY - box.minY] : null
@@ -36,6 +36,33 @@ describe('the outline', () => {
     const outline = findOutline([stroke(0, 0, 29.5, 0), stroke(30, 0, 30, 20), stroke(30, 20, 0, 20), stroke(0, 20, 0, 0)], [])
     expect(outline).toMatchObject({ contour: null, box: null })
     expect(outline.open!.gap).toBeCloseTo(0.5, 9)
+  })
+
+  it('is open over a single small gap where all other joints are exact', () => {
+    const outline = findOutline([...sides(0, 0, 30, 20).slice(0, 3), stroke(0, 0, 0, 19.75)], [])
+    expect(outline).toMatchObject({ contour: null, open: { gap: expect.closeTo(0.25, 9) } })
+    expect(Math.hypot(outline.open!.x, outline.open!.y - 19.9)).toBeLessThan(0.2)
+  })
+
+  it('passes over a step of a coarse grid', () => {
+    expect(size([...sides(0, 0, 30, 20).slice(0, 3), stroke(0, 0, 0, 20 - 0.0254)])).toEqual([30, 20])
+  })
+
+  it('is open where a single opening inside it is, by a side or by a little', () => {
+    const edge = sides(0, 0, 30, 20)
+    const side = findOutline([...edge, ...sides(10, 5, 4, 4), ...sides(20, 5, 2, 4).slice(0, 3)], [])
+    expect(size(edge)).toEqual([30, 20])
+    expect(side.open!.gap).toBeCloseTo(4, 9)
+    const little = [...sides(10, 5, 4, 4).slice(0, 3), stroke(10, 5, 10, 8.9)]
+    expect(findOutline([...edge, ...little], []).open!.gap).toBeCloseTo(0.1, 9)
+  })
+
+  it('is not open where a drawing of a part touches its edge, nor where there are letters', () => {
+    const edge = sides(0, 0, 30, 20)
+    const part = [stroke(10, 0, 10, 5), stroke(10, 5, 14, 5), stroke(14, 5, 14, 0)]
+    expect(findOutline([...edge, ...part], []).open).toBeNull()
+    const letters = [3, 6].flatMap((x) => [stroke(x, 8, x, 5), stroke(x, 5, x + 2, 5), stroke(x + 2, 5, x + 2, 8)])
+    expect(findOutline([...edge, ...letters], []).open).toBeNull()
   })
 
   it('is the largest closed contour, beside cut-outs, titles and dimensions', () => {
