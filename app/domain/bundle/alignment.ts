@@ -30,13 +30,16 @@ export function indexFlashes(flashes: Flashes): FlashIndex {
   return { cells, large, flashes, count: flashes.x.length }
 }
 
-/** Whether a place falls on a flash. */
-export function isOnFlash(index: FlashIndex, x: number, y: number): boolean {
+/** The flash that a place falls on; undefined where there is none. */
+function flashUnder(index: FlashIndex, x: number, y: number): number | undefined {
   const { flashes } = index
   const covers = (i: number) =>
     Math.abs(x - flashes.x[i]!) <= flashes.halfX[i]! + slack && Math.abs(y - flashes.y[i]!) <= flashes.halfY[i]! + slack
-  return (index.cells.get(key(Math.floor(x / cellSize), Math.floor(y / cellSize))) ?? []).some(covers) || index.large.some(covers)
+  return index.cells.get(key(Math.floor(x / cellSize), Math.floor(y / cellSize)))?.find(covers) ?? index.large.find(covers)
 }
+
+/** Whether a place falls on a flash. */
+export const isOnFlash = (index: FlashIndex, x: number, y: number): boolean => flashUnder(index, x, y) !== undefined
 
 /** The middle of a hole or slot. */
 export const holeCentre = (hole: Hole): [number, number] => [
@@ -56,6 +59,20 @@ export function shareOnFlashes(index: FlashIndex, holes: readonly Hole[], scale 
     if (isOnFlash(index, x * scale, y * scale)) hits++
   }
   return hits / holes.length
+}
+
+/** On how many different flashes the holes fall that fall on any, as a share of these (0 to 1). */
+export function spreadOnFlashes(index: FlashIndex, holes: readonly Hole[], scale = 1): number {
+  const hit = new Set<number>()
+  let hits = 0
+  for (const hole of holes) {
+    const [x, y] = holeCentre(hole)
+    const flash = flashUnder(index, x * scale, y * scale)
+    if (flash === undefined) continue
+    hits++
+    hit.add(flash)
+  }
+  return hits === 0 ? 0 : hit.size / hits
 }
 
 /** Whether a flash's middle lies at a place, to within `by` mm. */

@@ -1,21 +1,24 @@
 import { commonShift, holeCentre, indexFlashes, isOnFlash, shareOnFlashes } from './alignment'
-import { drillFiles, percent, platedHoles, type Indexed } from './aligned-files'
-import type { BundleFinding, FindingPlace } from './bundle-check.types'
+import {
+  drillFiles,
+  insideHoles,
+  leastHoles,
+  misfitWords,
+  percent,
+  placeOf,
+  platedHoles,
+  poor,
+  type Indexed
+} from './aligned-files'
+import { checkDrills } from './check-drills'
+import type { BundleFinding } from './bundle-check.types'
 import type { BundleReading, FileReading } from './bundle-reading.types'
 import { checkEdge } from './check-edge'
 import { checkOpenings } from './check-openings'
 import { finding, mm } from './finding'
 import { isMisfit, type RimCounts } from './hole-watch'
 import type { Hole } from './read-excellon'
-import { boxArea, distanceToEdge, isFarOutside, overlapShare } from './geometry'
-
-/**
- * Below this share of holes on pads a layer or drill file is not this board's. Real sets lie above 0.84; a shift by nearly the pitch of a
- * connector leaves half of the holes on pads.
- */
-const poor = 0.65
-
-const leastHoles = 3
+import { boxArea, overlapShare } from './geometry'
 
 /** Layers whose extents share less than this with the board's, both ways, lie beside it. */
 const leastOverlap = 0.1
@@ -38,102 +41,6 @@ export function checkAlignment(reading: BundleReading): BundleFinding[] {
   findings.push(...checkOpenings(reading, indices))
   findings.push(...checkEdge(reading, copper))
   return findings
-}
-
-/** Half-holes on the edge sit off the middle of their pads on purpose. */
-function insideHoles(reading: BundleReading, holes: Hole[]): Hole[] {
-  const contour = reading.outline?.contour
-  if (!contour) return holes
-  return holes.filter((hole) => distanceToEdge(contour, ...holeCentre(hole)) > hole.diameter / 2)
-}
-
-const placeOf = (hole: Hole | undefined, side: FileReading['layer']['side'] = null): FindingPlace | null => {
-  if (!hole) return null
-  const [x, y] = holeCentre(hole)
-  return { x, y, side: side === 'inner' ? null : side }
-}
-
-/** Drill files that miss the pads of every copper layer: wrong units when a scale brings them onto the pads, else misaligned. */
-function checkDrills(reading: BundleReading, indices: Indexed[]): BundleFinding[] {
-  return drillFiles(reading).flatMap((file) => {
-    const found =
-      checkPads(reading, indices, file) ?? checkWalls(reading, indices, file) ?? checkHolesOutside(reading, file) ?? null
-    if (!found) return []
-    file.isBroken = true
-    return [found]
-  })
-}
-
-/** Plated holes against the pads of the outer layers. */
-function checkPads(reading: BundleReading, indices: Indexed[], file: FileReading): BundleFinding | null {
-  const outer = indices.filter(({ file: layer, index }) => layer.layer.side !== 'inner' && index.count >= leastHoles)
-  const holes = platedHoles(file)
-  if (holes.length < leastHoles || outer.length === 0) return null
-  const shares = outer.map(({ index }) => shareOnFlashes(index, holes))
-  const best = Math.max(0, ...shares)
-  const name = file.layer.file
-  if (best >= poor) {
-    const shifts = outer.map(({ index }) => commonShift(index, insideHoles(reading, holes)))
-    if (!shifts.every((shift) => shift !== null)) return null
-    const found = shifts[0]!.map((by) => mm(by)).join(', ')
-    const message = 'All holes are off the middle of their pads by the same way: the drill file is shifted.'
-    const details = { file: name, expected: 'holes in the middle of their pads', found, place: placeOf(holes[0]) }
-    return finding('drill-misaligned', message, details)
-  }
-  const scale = [25.4, 1 / 25.4, 10, 0.1, 1000, 0.001].find((s) =>
-    outer.some(({ index }) => shareOnFlashes(index, holes, s) >= 0.6)
-  )
-  const found = `${percent(best)} on pads`
-  if (scale !== undefined) {
-    const message = `The holes only fall on their pads when the coordinates are read ${scale > 1 ? 'larger' : 'smaller'} by ${scale > 1 ? scale : 1 / scale}: the file states the wrong unit or format.`
-    return finding('drill-units', message, { file: name, expected: 'holes on pads', found })
-  }
-  const { index } = outer[shares.indexOf(best)]!
-  const off = holes.find((hole) => !isOnFlash(index, ...holeCentre(hole)))
-  const message = 'The holes do not fall on the copper pads: the drill file is shifted, mirrored or of another board.'
-  const details = { file: name, expected: 'plated holes on pads', found, place: placeOf(off) }
-  return finding('drill-misaligned', message, details)
-}
-
-const misfitWords = ({ at }: RimCounts) => `${at.mixed} of ${at.full + at.none + at.mixed} holes half in copper`
-
-/** Holes whose walls run half in copper: plated ones on every layer, others on one whose plated holes fit. */
-function checkWalls(reading: BundleReading, indices: Indexed[], file: FileReading): BundleFinding | null {
-  const told = indices.flatMap(({ file: layer }) => {
-    const counts = layer.rims?.counts(layer.layer.index, ({ path }) => path === file.path)
-    if (!counts || counts.at.full + counts.at.none + counts.at.mixed === 0) return []
-    const others = layer.rims!.counts(layer.layer.index, ({ path }) => path !== file.path)
-    return [{ counts, fitsOthers: !!others && others.at.full >= leastHoles && others.at.mixed * 50 <= others.at.full }]
-  })
-  const misfits = told.filter(({ counts }) => isMisfit(counts))
-  const isPlatedFile = platedHoles(file).length * 2 > file.holes!.length
-  const isGuilty = isPlatedFile
-    ? misfits.length > 0 &&
-      (misfits.length === told.length || (misfits.every(({ fitsOthers }) => fitsOthers) && misfits.length * 2 > told.length))
-    : misfits.some(({ fitsOthers }) => fitsOthers)
-  if (!isGuilty) return null
-  const { counts } = misfits[0]!
-  const message = 'The holes cut through the edges of copper: the drill file is shifted, mirrored or of another board.'
-  return finding('drill-misaligned', message, {
-    file: file.layer.file,
-    expected: 'holes in pads, or clear of copper',
-    found: misfitWords(counts),
-    place: counts.first && { x: counts.first.x, y: counts.first.y, side: null }
-  })
-}
-
-/** Most holes of a file beside the board. */
-function checkHolesOutside(reading: BundleReading, file: FileReading): BundleFinding | null {
-  const { contour, box } = reading.outline ?? {}
-  if (!contour || !box || reading.outlineFile?.isBroken) return null
-  const outside = file.holes!.filter((hole) => isFarOutside(contour, box, ...holeCentre(hole), Math.max(1, hole.diameter)))
-  if (outside.length * 2 <= file.holes!.length) return null
-  return finding('drill-misaligned', 'Most holes of this drill file lie outside the board.', {
-    file: file.layer.file,
-    expected: 'holes on the board',
-    found: `${outside.length} of ${file.holes!.length} outside`,
-    place: placeOf(outside[0])
-  })
 }
 
 /** Whether a layer's extents lie beside the board's. */

@@ -6,11 +6,15 @@ import { finding } from './finding'
 
 /** Below this share of openings over something of the board the layer is not this board's; masks of 17 real boards lie above 0.88, stencils above 0.99. */
 const poor = { soldermask: 0.5, paste: 0.7 }
+/** The same for masks where holes are not known, over which many of their openings may lie (in a real board 56 %). */
+const poorWithoutHoles = 0.2
 const leastOpenings = { soldermask: 8, paste: 4 }
 
 /** Solder masks and stencils whose openings do not lie over the copper of their side. */
 export function checkOpenings(reading: BundleReading, indices: Indexed[]): BundleFinding[] {
   const drills = drillFiles(reading)
+  const all = reading.files.filter((file) => file.layer.function.startsWith('drill'))
+  const knowsHoles = all.length > 0 && all.every((file) => !file.isBroken)
   const holes = indexHoles(drills.flatMap((file) => file.holes!))
   return reading.files.flatMap((file) => {
     const fn = file.layer.function
@@ -21,7 +25,7 @@ export function checkOpenings(reading: BundleReading, indices: Indexed[]): Bundl
       return []
     const over = openingsOver(copper.index, holes, flashes)
     const share = over.filter(Boolean).length / over.length
-    if (share >= poor[fn]) return []
+    if (share >= (fn === 'soldermask' && !knowsHoles ? poorWithoutHoles : poor[fn])) return []
     const first = over.indexOf(false)
     const side = file.layer.side === 'inner' ? null : file.layer.side
     const place = { x: flashes.x[first]!, y: flashes.y[first]!, side }
