@@ -11,7 +11,8 @@ export type Obstacle = 'no-bundle' | 'check-running' | 'not-checked' | 'stops' |
 
 /** What keeps a draft from being published, in the order to mend it; empty when nothing does. */
 export function obstacles(draft: DraftToPublish, findings: readonly FindingToPublish[]): { kind: Obstacle; message: string }[] {
-  if (!draft.hasBundle) return [{ kind: 'no-bundle', message: 'There is no bundle yet.' }]
+  // Findings without a bundle are those of a file that was refused, of which nothing is kept.
+  if (!draft.hasBundle && findings.length === 0) return [{ kind: 'no-bundle', message: 'There is no bundle yet.' }]
   if (draft.checkState === 'running') return [{ kind: 'check-running', message: 'The check is still running.' }]
   if (draft.checkState !== 'done') return [{ kind: 'not-checked', message: 'This bundle has not been checked.' }]
   const list: { kind: Obstacle; message: string }[] = []

@@ -35,10 +35,14 @@ export async function publishRelease(
   await db.transaction().execute(async (tx) => {
     const row = await repo.findById(tx, release.id)
     if (!row || row.state !== 'draft') throw draftGone()
-    if (row.bundle_sha256 !== wish.bundle || row.updated_at !== wish.updatedAt)
+    if ((row.bundle_sha256 ?? '') !== wish.bundle || row.updated_at !== wish.updatedAt)
       throw new DomainError('conflict', 'The draft changed since you opened this page. Look at it again, then publish.')
     const standing = obstacles(
-      { hasBundle: true, checkState: row.check_state, isCheckOk: row.is_check_ok === null ? null : row.is_check_ok === 1 },
+      {
+        hasBundle: row.bundle_sha256 !== null,
+        checkState: row.check_state,
+        isCheckOk: row.is_check_ok === null ? null : row.is_check_ok === 1
+      },
       await findings.listFindings(tx, row.id)
     )
     if (standing.length > 0)

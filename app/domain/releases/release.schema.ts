@@ -51,7 +51,14 @@ export type Draft = z.output<typeof draftSchema>
 export const answerSchema = z.string().trim().max(2000, 'An answer may have 2 000 characters at most.')
 
 /** What the person saw when they pressed the button: it must still be so. */
-export const publishSchema = z.object({ bundle: z.string().regex(/^[0-9a-f]{64}$/), updatedAt: z.string().max(40) })
+/** `bundle` is the hash that the person saw, empty where the draft had none. */
+export const publishSchema = z.object({
+  bundle: z
+    .string()
+    .regex(/^[0-9a-f]{64}$/)
+    .default(''),
+  updatedAt: z.string().max(40)
+})
 export type PublishWish = z.output<typeof publishSchema>
 
 export const withdrawSchema = z.object({
