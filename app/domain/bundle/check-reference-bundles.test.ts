@@ -82,3 +82,11 @@ describe.each(sets.filter((name) => name.startsWith('OB')))('the broken set %s',
     expect(check.ok).toBe(false)
   })
 })
+
+it('says where the format of a drill file had to be found out', async () => {
+  const { check } = await checkBundle(readFileSync(folder + 'OC40-gv-gedaold.zip'))
+  expect(check.findings.find((f) => f.code === 'drill-format-assumed')).toMatchObject({
+    severity: 'caution',
+    expected: 'unit and digits in the header'
+  })
+})
