@@ -6,11 +6,14 @@ export type CheckStepName = { step: string; name: string }
 export function BundleChecking({
   isReceived,
   step,
-  steps
+  steps,
+  again
 }: {
   isReceived: boolean
   step: string | null
   steps: CheckStepName[]
+  /** The page to load again where no script asks how far it is. */
+  again: string
 }) {
   /* The child process takes a moment to begin with the first step. */
   const at = isReceived
@@ -29,6 +32,11 @@ export function BundleChecking({
         ]}
         hint="20 seconds at most. You can leave; the draft keeps the result."
       />
+      <noscript>
+        <p className="mt-3">
+          <a href={again}>Load this page again</a> to see how far it is.
+        </p>
+      </noscript>
     </div>
   )
 }

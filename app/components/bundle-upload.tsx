@@ -5,10 +5,11 @@ import { FileField } from './file-field'
 import { BundleChecking, type CheckStepName } from './bundle-checking'
 import { UploadScale } from './progress'
 
+type Running = { isReceived: boolean; step: string | null }
 type Going =
   | { phase: 'idle'; error?: string }
   | { phase: 'sending'; sent: number; total: number }
-  | { phase: 'checking'; isReceived: boolean; step: string | null }
+  | ({ phase: 'checking' } & Running)
   | { phase: 'broken'; sent: number; total: number; error: string }
 
 export type BundleUploadProps = {
@@ -24,8 +25,10 @@ export type BundleUploadProps = {
   maxBytes: number
   /** A bundle is there already and will be replaced. */
   isReplacing: boolean
-  /** A check is going on already, begun elsewhere. */
-  isRunning: boolean
+  /** How far an upload or check has come that was begun elsewhere. */
+  running: Running | null
+  /** The page itself, to load again without scripts. */
+  again: string
   /** The draft has changed: load it again. */
   onDone: () => void
 }
@@ -44,12 +47,11 @@ export function BundleUpload({
   steps,
   maxBytes,
   isReplacing,
-  isRunning,
+  running,
+  again,
   onDone
 }: BundleUploadProps) {
-  const [going, setGoing] = useState<Going>(
-    isRunning ? { phase: 'checking', isReceived: false, step: null } : { phase: 'idle', error: refused }
-  )
+  const [going, setGoing] = useState<Going>(running ? { phase: 'checking', ...running } : { phase: 'idle', error: refused })
   const [file, setFile] = useState<File | null>(null)
   const request = useRef<XMLHttpRequest | null>(null)
   const isChecking = going.phase === 'checking'
@@ -136,7 +138,8 @@ export function BundleUpload({
         </Actions>
       </>
     )
-  if (going.phase === 'checking') return <BundleChecking isReceived={going.isReceived} step={going.step} steps={steps} />
+  if (going.phase === 'checking')
+    return <BundleChecking isReceived={going.isReceived} step={going.step} steps={steps} again={again} />
   return (
     <form method="post" action={action} encType="multipart/form-data" onSubmit={send} noValidate>
       {going.phase === 'broken' && (

@@ -11,6 +11,7 @@ export type CopperStackProps = {
 
 const copper = '#b98d3c'
 const maskHeight = 7
+const coreHeight = 44
 
 /** A cross-section: which copper layer lies where between the two masks. Not to scale: neither copper nor core could be seen. */
 export function CopperStack(props: CopperStackProps) {
@@ -19,7 +20,7 @@ export function CopperStack(props: CopperStackProps) {
 
 function Stack({ layers, thicknessMm, width, bar }: CopperStackProps & { width: number; bar: number }) {
   const { coppers, gaps, bottom } = rowsOf(layers.length)
-  const core = gaps[Math.floor(gaps.length / 2)]
+  const core = gaps.find(({ height }) => height === coreHeight)
   const height = bottom + maskHeight + 1
   return (
     <svg
@@ -62,8 +63,8 @@ function rowsOf(count: number) {
     y += thick
     if (i === count - 1 && count > 1) break
     const isCore = count === 1 || i === Math.floor((count - 2) / 2)
-    gaps.push({ y, height: isCore ? 44 : gap })
-    y += isCore ? 44 : gap
+    gaps.push({ y, height: isCore ? coreHeight : gap })
+    y += isCore ? coreHeight : gap
   }
   return { coppers, gaps, bottom: y }
 }

@@ -41,7 +41,9 @@ export function FactsTable({ number, caption, rows }: { number?: number; caption
           {rows.map(({ fact, declared, measured, isMeasuredOnly, differs }) => (
             <tr key={fact}>
               <th scope="row">{fact}</th>
-              <td className={declared === undefined ? 'r soft' : 'r'}>{declared ?? (isMeasuredOnly ? null : 'not stated')}</td>
+              <td className={declared === undefined ? 'r soft' : 'r'}>
+                {declared ?? (isMeasuredOnly ? null : 'not\u00a0stated')}
+              </td>
               <td className="eq">
                 {differs ? (
                   <a href={differs.href} aria-label="differs, see the finding">

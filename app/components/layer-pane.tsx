@@ -24,7 +24,7 @@ export type LayerPaneProps = {
 
 const r2 = (n: number) => Math.round(n * 100) / 100
 
-/** The board in its pane: grid, pictures laid over each other, marks, a ruler. */
+/** The board in its pane: grid, pictures laid over each other, marks; a ruler under it, where it hides nothing. */
 export function LayerPane({ view: wanted, sight, pictures, marks, shown, label, describedBy, onView, onPoint }: LayerPaneProps) {
   const svg = useRef<SVGSVGElement>(null)
   const id = useId()
@@ -34,50 +34,52 @@ export function LayerPane({ view: wanted, sight, pictures, marks, shown, label, 
   const inks = [...new Set(pictures.flatMap(({ ink }) => ink ?? []))]
   const box = pictureBox(view, sight)
   return (
-    <svg
-      ref={svg}
-      className="lv-pane"
-      viewBox={`0 0 ${width} ${height}`}
-      width={width}
-      height={height}
-      role="group"
-      aria-label={label}
-      aria-describedby={describedBy}
-      tabIndex={0}
-      data-zoomed={view.zoom > 1 ? '' : undefined}
-      {...gestures}
-    >
-      <defs>
-        {inks.map((ink, i) => (
-          <filter key={ink} id={`${id}-${i}`} x="0" y="0" width="1" height="1">
-            <feFlood floodColor={ink} />
-            <feComposite operator="in" in2="SourceAlpha" />
-          </filter>
+    <>
+      <svg
+        ref={svg}
+        className="lv-pane"
+        viewBox={`0 0 ${width} ${height}`}
+        width={width}
+        height={height}
+        role="group"
+        aria-label={label}
+        aria-describedby={describedBy}
+        tabIndex={0}
+        data-zoomed={view.zoom > 1 ? '' : undefined}
+        {...gestures}
+      >
+        <defs>
+          {inks.map((ink, i) => (
+            <filter key={ink} id={`${id}-${i}`} x="0" y="0" width="1" height="1">
+              <feFlood floodColor={ink} />
+              <feComposite operator="in" in2="SourceAlpha" />
+            </filter>
+          ))}
+        </defs>
+        <Grid view={view} sight={sight} />
+        {pictures.map(({ src, ink, isMirrored }) => (
+          <image
+            key={src}
+            href={src}
+            x={r2(box.x)}
+            y={r2(box.y)}
+            width={r2(box.width)}
+            height={r2(box.height)}
+            preserveAspectRatio="none"
+            filter={ink && `url(#${id}-${inks.indexOf(ink)})`}
+            opacity={ink && pictures.length > 1 ? 0.8 : undefined}
+            transform={isMirrored ? `translate(${r2(2 * box.x + box.width)} 0) scale(-1 1)` : undefined}
+          />
         ))}
-      </defs>
-      <Grid view={view} sight={sight} />
-      {pictures.map(({ src, ink, isMirrored }) => (
-        <image
-          key={src}
-          href={src}
-          x={r2(box.x)}
-          y={r2(box.y)}
-          width={r2(box.width)}
-          height={r2(box.height)}
-          preserveAspectRatio="none"
-          filter={ink && `url(#${id}-${inks.indexOf(ink)})`}
-          opacity={ink && pictures.length > 1 ? 0.8 : undefined}
-          transform={isMirrored ? `translate(${r2(2 * box.x + box.width)} 0) scale(-1 1)` : undefined}
-        />
-      ))}
-      <path className="lv-cross halo" d={cross(width / 2, height / 2)} />
-      <path className="lv-cross ln" strokeWidth="1.5" d={cross(width / 2, height / 2)} />
-      {marks.map((mark) => (
-        <Mark key={mark.number} mark={mark} at={toPane(mark, view, sight)} pane={sight.pane} isShown={mark.number === shown} />
-      ))}
-      <Ruler scale={scaleOf(view, sight)} width={width} height={height} />
-      <path className="ln" strokeWidth="1.5" d={`M0 .75H${width}M0 ${height - 0.75}H${width}`} />
-    </svg>
+        <path className="lv-cross halo" d={cross(width / 2, height / 2)} />
+        <path className="lv-cross ln" strokeWidth="1.5" d={cross(width / 2, height / 2)} />
+        {marks.map((mark) => (
+          <Mark key={mark.number} mark={mark} at={toPane(mark, view, sight)} pane={sight.pane} isShown={mark.number === shown} />
+        ))}
+        <path className="ln" strokeWidth="1.5" d={`M0 .75H${width}M0 ${height - 0.75}H${width}`} />
+      </svg>
+      <Ruler scale={scaleOf(view, sight)} most={Math.min(160, width / 3)} />
+    </>
   )
 }
 
@@ -121,17 +123,22 @@ function Mark({ mark, at, pane, isShown }: { mark: PaneMark; at: Point; pane: Si
   )
 }
 
-function Ruler({ scale, width, height }: { scale: number; width: number; height: number }) {
-  const length = rulerLength(scale, Math.min(160, width / 3))
-  const [x, y, px] = [12, height - 14, r2(length * scale)]
-  const d = `M${x} ${y - 8}V${y}H${r2(x + px)}V${y - 8}`
+function Ruler({ scale, most }: { scale: number; most: number }) {
+  const length = rulerLength(scale, most)
+  const px = r2(length * scale)
   return (
-    <g>
-      <path d={d} fill="none" stroke="var(--color-paper)" strokeWidth="6" />
-      <path className="ln" strokeWidth="1.5" d={d} />
-      <text x={r2(x + px + 8)} y={y} className="lb t-b">
+    <svg
+      className="lv-ruler"
+      viewBox="0 0 240 24"
+      width="240"
+      height="24"
+      role="img"
+      aria-label={`The ruler is ${length} mm long`}
+    >
+      <path className="ln" strokeWidth="1.5" d={`M1 8V16H${1 + px}V8`} />
+      <text x={r2(px + 9)} y="18" className="t-b">
         {length} mm
       </text>
-    </g>
+    </svg>
   )
 }

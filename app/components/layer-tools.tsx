@@ -34,7 +34,7 @@ export function LayerTools({ canZoomIn, canZoomOut, onKey }: LayerToolsProps) {
       {button('+', 'Zoom in', canZoomIn, <Stroke d="M12 4v16M4 12h16" />)}
       {button('-', 'Zoom out', canZoomOut, <Stroke d="M4 12h16" />)}
       {button('0', undefined, canZoomOut, 'Whole board')}
-      {arrows.map(([key, name, d]) => button(key, name, canZoomOut, <Stroke d={d} />))}
+      <div>{arrows.map(([key, name, d]) => button(key, name, canZoomOut, <Stroke d={d} />))}</div>
     </div>
   )
 }

@@ -103,6 +103,7 @@ export function LayerViewer({ id, number, caption, name, extent, pictures, layer
   const drawn = picturesOf(choice, layers, pictures)
   const seen = marks.filter((mark) => mark.side === null || mark.side === choice.from || choice.layers.length > 0)
   const words = choiceInWords(choice, layers)
+  const hint = marks.length > 0 ? ' A number leads to what the check found there.' : ''
   const pane = (px: number) => (
     <LayerPane
       view={view}
@@ -151,8 +152,9 @@ export function LayerViewer({ id, number, caption, name, extent, pictures, layer
       </p>
       <p className="hint no-print" id={`${id}-keys`}>
         {width === null
-          ? 'With scripts the board can be zoomed and moved here. A number leads to what the check found there.'
-          : 'Arrow keys move, + and − zoom, 0 shows the whole board. Drag to move; pinch, or turn the wheel with Ctrl held or after a press on the board, to zoom. A number leads to what the check found there.'}
+          ? 'With scripts the board can be zoomed and moved here.'
+          : 'Arrow keys move, + and − zoom, 0 shows the whole board. Drag to move; pinch, or turn the wheel with Ctrl held or after a press on the board, to zoom.'}
+        {hint}
       </p>
       <LayerChoices choice={choice} layers={layers} pictures={pictures} id={id} isLive={width !== null} onChoice={show} />
     </div>

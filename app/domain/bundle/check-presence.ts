@@ -104,7 +104,7 @@ function checkAssemblyLayers(reading: BundleReading): BundleFinding[] {
   for (const side of sides) {
     const count = parts.filter((part) => part.side === side).length
     if (count === 0 || ofKind(reading, 'paste').some((file) => file.layer.side === side)) continue
-    const message = `${count} parts are placed on the ${side} side, but there is no paste layer for its stencil.`
+    const message = `${count} ${count === 1 ? 'part is' : 'parts are'} placed on the ${side} side, but there is no paste layer for its stencil.`
     findings.push(finding('paste-missing', message, { expected: `paste, ${side}` }))
   }
   const legends = ofKind(reading, 'legend')

@@ -32,7 +32,10 @@ const descriptions: Record<FindingCode, FindingDescription> = {
     title: 'Two files of one name',
     advice: 'Rename or remove one of the two: on some systems one would replace the other.'
   },
-  'zip-name-odd': { title: 'An odd file name', advice: 'Use short names of letters, digits, dots, dashes and underscores.' },
+  'zip-name-odd': {
+    title: 'An odd file name',
+    advice: 'Rename the file with letters, digits, dots, dashes and underscores, few folders deep, and make the zip again.'
+  },
   'zip-nested': {
     title: 'An archive inside the zip',
     advice: 'Put the files themselves into the bundle. What is inside another archive is neither checked nor shown.'
@@ -43,29 +46,37 @@ const descriptions: Record<FindingCode, FindingDescription> = {
   },
   'zip-extra-data': {
     title: 'Bytes that belong to no file',
-    advice: 'Make the zip again with an ordinary program if a board house cannot open it.'
+    advice: 'Nothing need be done as long as programs open it; made again by another program, the zip is free of them.'
   },
 
   'copper-missing': { title: 'A copper layer is missing', advice: 'Plot every copper layer and put the files into the bundle.' },
   'mask-missing': {
     title: 'A solder mask is missing',
-    advice: 'Plot the solder mask of that side. A board without one must say so in its order details.'
+    advice:
+      'Plot the solder mask of that side and add it. A side that is to stay bare needs the file too: one that opens all of it.'
   },
-  'outline-missing': { title: 'The outline is missing', advice: 'Plot the board edge as a layer of its own.' },
+  'outline-missing': {
+    title: 'The outline is missing',
+    advice: 'Plot the board edge as a layer of its own and add it to the bundle.'
+  },
   'outline-open': {
     title: 'The outline does not close',
     advice: 'Join the ends of the board edge in the design, then plot the outline again.'
   },
   'layer-clash': {
     title: 'Two files for one layer',
-    advice: 'Keep the right one and remove the other, or plot it as the layer it is.'
+    advice: 'Open both files. Remove the one that is left over, or name it, and its attribute, after the layer it really is.'
   },
   'layer-gap': { title: 'A layer between others is missing', advice: 'Plot the missing inner layer and add it to the bundle.' },
   'layer-count': {
     title: 'The number of layers differs',
-    advice: 'Compare the copper files with the job file and the release form, and correct what is wrong.'
+    advice:
+      'Count the copper layers of the design. Add the file that is missing, or correct the number in the job file or in the details of this draft.'
   },
-  'layer-empty': { title: 'A layer is empty', advice: 'Plot the layer again; if it is meant to be empty, leave the file out.' },
+  'layer-empty': {
+    title: 'A layer is empty',
+    advice: 'Plot the layer again from the design; a file that is not needed can be left out.'
+  },
   'layer-truncated': { title: 'A file is cut off', advice: 'Plot the file again and make the zip from the complete one.' },
   'layer-unreadable': {
     title: 'A layer cannot be read',
@@ -85,14 +96,19 @@ const descriptions: Record<FindingCode, FindingDescription> = {
   },
   'layer-unknown': {
     title: 'A layer nobody can place',
-    advice: 'Name the file after its layer, or leave it out if it is not needed.'
+    advice: 'Name the file after its layer, or leave it out if it is not needed; or say in your answer what it is for.'
   },
   'copper-past-outline': {
     title: 'Copper past the board edge',
-    advice: 'If these are plated half-holes, say so in the order details. Otherwise pull the copper back from the edge.'
+    advice:
+      'Half-holes on purpose? Say so in your answer and in the note for the order sheet. Otherwise pull the copper back from the edge.'
   },
-  'paste-missing': { title: 'No paste layer', advice: 'Plot the paste layer of that side, from which the stencil is cut.' },
-  'legend-missing': { title: 'No legend', advice: 'Plot the legend, or say in the notes how parts are told apart without it.' },
+  'paste-missing': {
+    title: 'No paste layer',
+    advice:
+      'Plot the paste layer of that side, from which the stencil is cut; or answer that these parts are soldered without one.'
+  },
+  'legend-missing': { title: 'No legend', advice: 'Plot the legend, or say in your answer how parts are told apart without it.' },
   'deprecated-syntax': {
     title: 'Old commands',
     advice: 'Nothing need be done; a newer plot with X2 attributes is read with more certainty.'
@@ -121,9 +137,13 @@ const descriptions: Record<FindingCode, FindingDescription> = {
   },
   'drill-format-assumed': {
     title: 'The drill format had to be guessed',
-    advice: 'Compare the hole sizes below with your design; better, export with unit and decimal points.'
+    advice:
+      'Export the drill file again with its unit and with decimal points. Or compare the holes under Facts with your design, and answer that they are right.'
   },
-  'hole-on-outline': { title: 'Holes on the board edge', advice: 'If these are plated half-holes, say so in the order details.' },
+  'hole-on-outline': {
+    title: 'Holes on the board edge',
+    advice: 'Nothing need be done here. If these are plated half-holes, name them in the note for the order sheet.'
+  },
 
   'bom-missing': { title: 'No bill of materials', advice: 'Export the list of parts as CSV and put it into the bundle.' },
   'bom-unreadable': {
@@ -132,7 +152,7 @@ const descriptions: Record<FindingCode, FindingDescription> = {
   },
   'bom-quantity': {
     title: 'A quantity does not add up',
-    advice: 'Count the designators of the line and correct the one or the other.'
+    advice: 'Count the designators of the line, then correct the quantity or the designators.'
   },
   'bom-designator-repeated': {
     title: 'A part is listed twice',
@@ -140,7 +160,7 @@ const descriptions: Record<FindingCode, FindingDescription> = {
   },
   'bom-not-placed': {
     title: 'Parts without a place',
-    advice: 'Add them to the placement list, mark them as not fitted, or say that they are fitted by hand.'
+    advice: 'Add them to the placement list or mark them as not fitted; or say in your answer that they are fitted by hand.'
   },
   'bom-cell-unsafe': {
     title: 'A cell that would run as a formula',
@@ -170,22 +190,27 @@ const descriptions: Record<FindingCode, FindingDescription> = {
   },
   'placement-mirrored': {
     title: 'The bottom side is mirrored',
-    advice: 'Tell the assembler that the places of the bottom side are as seen from below, or export them as seen from the top.'
+    advice:
+      'Export the bottom side as seen from the top. Or leave it, and say in the note for the order sheet that its places are as seen from below.'
   },
 
   'revision-unchanged': {
     title: 'Changed copper under the same revision',
-    advice: 'Give the board a new revision: copper, drill or outline differ from an earlier release of this one.'
+    advice:
+      'Give the board its next revision in the details of this draft. If nothing was meant to change, upload the earlier copper, drill and outline files.'
   },
   'thickness-conflict': {
     title: 'Two thicknesses',
-    advice: 'Correct the release form or the job file, so that both state the thickness to order.'
+    advice: 'Correct the details of this draft or the job file, so that both state the thickness to order.'
   },
   'thickness-missing': {
     title: 'No thickness',
-    advice: 'State the thickness in the release form: connectors and edges depend on it.'
+    advice: 'State the thickness in the details of this draft: connectors and edges depend on it.'
   },
-  'source-missing': { title: 'No design source', advice: 'Add the design files, so that others can mend and change the board.' },
+  'source-missing': {
+    title: 'No design source',
+    advice: 'Add the design files, so that others can mend and change the board; or say in your answer where they are.'
+  },
   'licence-missing': { title: 'No licence file', advice: 'Add the licence as LICENSE.txt, so that it travels with the files.' },
 
   'check-cut-off': {

@@ -90,6 +90,8 @@ export async function releasePage(db: Db, actor: Actor, slug: string, version: s
         ? { sentAs: release.bundle_name, bytes: release.bundle_bytes! }
         : null,
     checkState,
+    /** What is going on with its bundle now. */
+    run: runOf(release.id),
     facts,
     factRows: declaredBesideMeasured(
       {

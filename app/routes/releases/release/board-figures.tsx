@@ -16,12 +16,14 @@ function drawn({ facts, pictures, files, pictureBox }: ReleasePage) {
   const copper = files
     .filter((f) => f.function === 'copper' && f.layer_index !== null)
     .sort((a, b) => a.layer_index! - b.layer_index!)
+  // Two files for one layer are a finding; a section through them would show a board that nobody can make.
+  const isStack = new Set(copper.map((f) => f.layer_index)).size === copper.length
   return {
     top: isMeasured ? pictures.top : null,
     bottom: isMeasured && pictures.top ? pictures.bottom : null,
     size: isMeasured ? { width: facts.width!, height: facts.height! } : null,
     origin: pictureBox ? { x: -pictureBox.minX, y: -pictureBox.minY } : { x: 0, y: 0 },
-    copper
+    copper: isStack ? copper : []
   }
 }
 

@@ -5,7 +5,7 @@ import { BoardFigures, drawnFigures } from './board-figures'
 import { hasViewer } from './board-viewer'
 import { Layers } from './layers-part'
 import { Facts } from './release-parts'
-import { Parts } from './parts-section'
+import { Parts, partsTables } from './parts-section'
 import { WhatChangedSection } from './what-changed-section'
 import { ButtonLink } from '~/components/button'
 import { DoneLine } from '~/components/done-line'
@@ -18,6 +18,22 @@ import type { ReleasePage } from '~/domain/releases/release-page.server'
 import { releasePath } from '~/domain/releases/release-path'
 import type { FieldError } from '~/lib/domain-error'
 import type { FormValues } from '~/lib/parse-form'
+
+const upload = 'Upload the bundle: one zip with Gerber layers, drill files, bill of materials and placement.'
+
+/** The next step, in one sentence. */
+function leadOf({ bundle, refused, obstacles }: ReleasePage): string {
+  const first = obstacles[0]?.kind
+  if (first === 'stops')
+    return 'Something keeps it from being published: read what the check found, mend the files and upload them again.'
+  if (first === 'cautions') return 'Read what the check found, answer its cautions, then publish.'
+  if (first === 'check-running') return 'The check is running.'
+  if (refused) return 'The last file was refused. Read why, make the zip again and upload it.'
+  if (!bundle) return upload
+  return first === 'not-checked'
+    ? 'Have the bundle checked again, then publish.'
+    : 'Nothing stands in its way. Look it over, then publish.'
+}
 
 export type DraftReleaseProps = {
   page: ReleasePage
@@ -46,11 +62,7 @@ export function DraftRelease({ page, maxBytes, done, errors, values }: DraftRele
         tag={
           <ReleaseTag isHead board={board.name} version={release.version} state="draft" boardRevision={release.boardRevision} />
         }
-        lead={
-          bundle
-            ? 'Read what the check found, answer its cautions, then publish.'
-            : 'Upload the bundle: one zip with Gerber layers, drill files, bill of materials and placement.'
-        }
+        lead={leadOf(page)}
         actions={
           <>
             <ButtonLink href={`${path}/edit`} kind="outline">
@@ -91,7 +103,12 @@ export function DraftRelease({ page, maxBytes, done, errors, values }: DraftRele
           <Section number={6} heading="Parts">
             <Parts page={page} number={3} />
           </Section>
-          <WhatChangedSection page={page} number={7} figure={drawnFigures(page) + (hasViewer(page) ? 2 : 1)} table={4} />
+          <WhatChangedSection
+            page={page}
+            number={7}
+            figure={drawnFigures(page) + (hasViewer(page) ? 2 : 1)}
+            table={3 + partsTables(page)}
+          />
         </>
       )}
       <Section number={bundle && page.files.length > 0 ? 8 : hasFindings ? 3 : 2} heading="Notes">

@@ -25,7 +25,7 @@ export type DraftUploadProps = {
 
 /** The bundle of a draft: the upload, what lies there, and the check once more where it was cut short. */
 export function DraftUpload({ page, path, maxBytes, refused, errors }: DraftUploadProps) {
-  const { bundle, refused: refusedFile, checkState } = page
+  const { bundle, refused: refusedFile, checkState, run } = page
   const { revalidate } = useRevalidator()
   const navigate = useNavigate()
   const showFound = useCallback(async () => {
@@ -42,14 +42,17 @@ export function DraftUpload({ page, path, maxBytes, refused, errors }: DraftUplo
         steps={steps}
         maxBytes={maxBytes}
         isReplacing={bundle !== null}
-        isRunning={checkState === 'running'}
+        again={path}
+        running={run && { isReceived: run.phase === 'checking', step: run.step }}
         onDone={showFound}
       />
       <ErrorSummary errors={errors} before="it can be checked" />
       {refusedFile && (
         <Warning severity="stop" heading="The file was refused">
-          {refusedFile.sentAs}, {exactBytes(refusedFile.bytes)}, could not be taken: what is wrong stands below. Nothing of it is
-          kept, and the draft has no bundle until you upload another file.
+          <p>
+            {refusedFile.sentAs}, {exactBytes(refusedFile.bytes)}, could not be taken. Nothing of it is kept, and the draft has no
+            bundle until you upload another file. <a href="#found">What is wrong with it</a>
+          </p>
         </Warning>
       )}
       {bundle && (
@@ -71,9 +74,11 @@ export function DraftUpload({ page, path, maxBytes, refused, errors }: DraftUplo
       {bundle && (checkState === 'interrupted' || checkState === 'none') && (
         <>
           <Warning severity="note" heading={checkState === 'interrupted' ? 'The check was cut short' : 'To be checked again'}>
-            {checkState === 'interrupted'
-              ? 'Our server restarted while it ran. The bundle is kept; have it checked again.'
-              : 'The declared details changed since the last check.'}
+            <p>
+              {checkState === 'interrupted'
+                ? 'Our server restarted while it ran. The bundle is kept; have it checked again.'
+                : 'The declared details changed since the last check.'}
+            </p>
           </Warning>
           <Form method="post">
             <input type="hidden" name="intent" value="recheck" />

@@ -12,9 +12,9 @@ import type { ReleasePage } from '~/domain/releases/release-page.server'
 export type FindingRow = ReleasePage['findings'][number]
 
 const groups = [
-  ['stop', 'Stop', 'keep it from being published'],
-  ['caution', 'Caution', 'to know before ordering'],
-  ['note', 'Note', 'nothing need be done']
+  ['stop', 'Stop', { published: '', draft: 'to mend before it can be published' }],
+  ['caution', 'Caution', { published: 'to know before ordering', draft: 'to answer before it can be published' }],
+  ['note', 'Note', { published: 'nothing need be done', draft: 'nothing need be done' }]
 ] as const
 
 /** So many of a group stand open; the rest is folded, so that a page with hundreds stays a page. */
@@ -44,7 +44,7 @@ export function FindingsList({ page, isDraft, under, mustShow = () => false }: F
     const folded = group.slice(openOnes)
     return [
       <SubHeading key={severity} id={`found-${severity}`}>
-        {word}: {group.length} <span className="soft font-normal">{meaning}</span>
+        {word}: {group.length} <span className="soft font-normal">{meaning[isDraft ? 'draft' : 'published']}</span>
       </SubHeading>,
       ...group.slice(0, openOnes).map(entry),
       folded.length > 0 && (

@@ -13,10 +13,12 @@ const names: Record<string, [string, string]> = {
   other: ['other part', 'other parts']
 }
 
+const none = <span className="usual">–</span>
+
 const columns: Column<PartRow>[] = [
   { key: 'designators', head: 'Designators', isRowHead: true, cell: (row) => row.designators },
-  { key: 'quantity', head: 'Quantity', isFigure: true, cell: (row) => row.quantity },
-  { key: 'value', head: 'As written', cell: (row) => row.value || '–' },
+  { key: 'quantity', head: 'Quantity', isFigure: true, cell: (row) => <span className="usual">{row.quantity}</span> },
+  { key: 'value', head: 'As written', cell: (row) => row.value || none },
   {
     key: 'read',
     head: 'As read',
@@ -24,13 +26,16 @@ const columns: Column<PartRow>[] = [
       <>
         {row.read}
         {row.unread && <span className="soft">{row.read ? `. ${row.unread}` : row.unread}</span>}
-        {!row.read && !row.unread && '–'}
+        {!row.read && !row.unread && none}
       </>
     )
   },
-  { key: 'footprint', head: 'Footprint', cell: (row) => row.footprint || '–' },
-  { key: 'fitted', head: 'Fitted', cell: (row) => (row.isFitted ? 'yes' : <b>not fitted</b>) }
+  { key: 'footprint', head: 'Footprint', cell: (row) => row.footprint || none },
+  { key: 'fitted', head: 'Fitted', cell: (row) => (row.isFitted ? <span className="usual">yes</span> : <b>not fitted</b>) }
 ]
+
+/** How many tables `Parts` numbers. */
+export const partsTables = (page: ReleasePage) => (page.parts.lines > 0 ? 1 : 0)
 
 /** The bill of materials: what is written in it and what was read out of each value. */
 export function Parts({ page, number }: { page: ReleasePage; number: number }) {
@@ -49,6 +54,8 @@ export function Parts({ page, number }: { page: ReleasePage; number: number }) {
         rows={rows.slice(0, atFirst)}
         rowKey={(row) => String(row.line)}
         columns={columns}
+        className="parts"
+        isDense
         isFolded
       />
       {rows.length > atFirst && (
@@ -59,6 +66,8 @@ export function Parts({ page, number }: { page: ReleasePage; number: number }) {
             rows={rows.slice(atFirst)}
             rowKey={(row) => String(row.line)}
             columns={columns}
+            className="parts"
+            isDense
             isFolded
           />
         </details>

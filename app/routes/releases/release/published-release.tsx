@@ -3,7 +3,7 @@ import { hasViewer } from './board-viewer'
 import { FindingsList } from './findings-list'
 import { Layers } from './layers-part'
 import { Facts, foundInWords } from './release-parts'
-import { Parts } from './parts-section'
+import { Parts, partsTables } from './parts-section'
 import { TakeFiles } from './take-files'
 import { changeFigures, WhatChangedSection } from './what-changed-section'
 import { ButtonLink } from '~/components/button'
@@ -155,7 +155,12 @@ export function PublishedRelease({ page, lasting, today, done }: PublishedReleas
       <Section number={7} heading="Parts">
         <Parts page={page} number={3} />
       </Section>
-      <WhatChangedSection page={page} number={8} figure={drawnFigures(page) + (hasViewer(page) ? 2 : 1)} table={4} />
+      <WhatChangedSection
+        page={page}
+        number={8}
+        figure={drawnFigures(page) + (hasViewer(page) ? 2 : 1)}
+        table={3 + partsTables(page)}
+      />
       <Section number={9} heading="Notes">
         {release.notes ? <Prose html={release.notes} /> : <p className="soft">The maintainer wrote none.</p>}
       </Section>

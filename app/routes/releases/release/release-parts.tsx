@@ -22,7 +22,7 @@ const many = (n: number, one: string) => `${words[n] ?? n} ${n === 1 ? one : `${
 export function foundInWords(findings: ReleasePage['findings']): string {
   const count = (severity: string) => findings.filter((f) => f.severity === severity).length
   const [stops, cautions, notes] = [count('stop'), count('caution'), count('note')]
-  if (findings.length === 0) return 'nothing to remark'
+  if (findings.length === 0) return 'nothing'
   const softer = [cautions > 0 && many(cautions, 'caution'), notes > 0 && many(notes, 'note')].filter(Boolean).join(' and ')
   if (stops === 0) return `${softer}, and nothing that stops a board house`
   return `${many(stops, 'stop')}${softer ? `, besides ${softer}` : ''}`
