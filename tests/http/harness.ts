@@ -63,6 +63,8 @@ export type Site = {
   signInByMail(address: string, displayName?: string, browser?: Browser): Promise<Browser>
   /** Waits for the next mail to an address, newest first. */
   mailTo(address: string, count?: number): Promise<SentMail>
+  /** The keys of everything in storage. */
+  storedKeys(): Promise<string[]>
   /** Runs something on the server's database file; the connection is closed afterwards. */
   query<T>(work: (db: Db) => Promise<T>): Promise<T>
   close(): Promise<void>
@@ -144,6 +146,7 @@ export async function startSite(options: SiteOptions = {}, tries = 3): Promise<S
     signInByMail: (address, displayName = 'Test Member', browser = new Browser(url)) =>
       signInByMail(site, browser, address, displayName),
     mailTo: (address, count = 1) => waitForMail(mail, address, count),
+    storedKeys: () => storedKeys(storage.url),
     query: async (work) => {
       const db = openDb(join(dataDir, 'fettle.sqlite'))
       try {
@@ -169,6 +172,17 @@ async function prepareWorld(dataDir: string, endpoint: string, prepare: NonNulla
   } finally {
     storage.close()
     await db.destroy()
+  }
+}
+
+async function storedKeys(endpoint: string): Promise<string[]> {
+  const storage = createStorage({ ...storageAccount, endpoint })
+  try {
+    const { objects, next } = await storage.list('', 1000)
+    if (next !== null) throw new Error('There is more in storage than a test looks at')
+    return objects.map((object) => object.key)
+  } finally {
+    storage.close()
   }
 }
 
