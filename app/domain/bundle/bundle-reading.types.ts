@@ -6,6 +6,7 @@ import type { LayerSums } from './layer-sums'
 import type { HoleWatch } from './hole-watch'
 import type { Role } from './name-layer'
 import type { Outline } from './outline-contours'
+import type { PadNames } from './pad-names'
 import type { Bom } from './read-bom'
 import type { DrillFormat, Hole } from './read-excellon'
 import type { GerberImage } from './read-gerber'
@@ -32,6 +33,8 @@ export type FileReading = {
   excess: EdgeExcess | null
   /** Of a copper layer: what lies at the rims of the drilled holes; null where there are none. */
   rims: HoleWatch | null
+  /** Of an outer copper layer: which component's pads stand where, as far as the file says. */
+  names: PadNames | null
   /** The copper layers that a drill file's holes run between, as its attribute says; null for all. */
   span: [number, number] | null
   /** Set once something was found wrong with the file itself, so that checks resting on it are left out. */
@@ -46,6 +49,8 @@ export type BundleReading = {
   bomFile: string | null
   placement: Placement | null
   placementFile: string | null
+  /** The files that the placement was put together from, and whom each of them places. */
+  placementLists: { file: string; designators: Set<string> }[]
   outline: Outline | null
   outlineFile: FileReading | null
   /** The board's area by the outline, ready to be asked; null without a closed one. */

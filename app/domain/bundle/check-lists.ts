@@ -1,16 +1,33 @@
 import type { BundleFinding } from './bundle-check.types'
 import type { BundleReading } from './bundle-reading.types'
 import { offBoard } from './check-edge'
+import { readCopperNames, whyNotInBom, whyNotPlaced, type CopperNames } from './check-names'
 import { finding, listed, mm } from './finding'
+import { nameKey } from './pad-names'
+import { otherUnits, type PlacesVerdict } from './pad-places'
 import type { Bom } from './read-bom'
 import type { Placed } from './read-placement'
 
 /** How far a part's origin may lie past the outline, in mm: connectors hang over the edge. */
 const overhang = 2
 
-/** The bill of materials and the placement list: each by itself, then against each other and the board. */
+/** The bill of materials and the placement list: each by itself, then against each other, the board and the names on its copper. */
 export function checkLists(reading: BundleReading): BundleFinding[] {
-  return [...checkBom(reading), ...checkPlacement(reading), ...compareLists(reading)]
+  const copper = readCopperNames(reading)
+  return [...checkBom(reading), ...checkPlacement(reading, copper?.places ?? null), ...compareLists(reading, copper)]
+}
+
+/** The named parts by the placement file that has them. */
+function byFile({ placementLists, placementFile }: BundleReading, names: string[]): [file: string | null, names: string[]][] {
+  if (placementLists.length < 2) return [[placementFile, names]]
+  const groups = new Map<string | null, string[]>()
+  for (const name of names) {
+    const file = placementLists.findLast(({ designators }) => designators.has(name))?.file ?? placementFile
+    const group = groups.get(file)
+    if (group) group.push(name)
+    else groups.set(file, [name])
+  }
+  return [...groups]
 }
 
 function repeated(names: string[]): string[] {
@@ -41,69 +58,87 @@ function checkBom({ bom, bomFile: file }: BundleReading): BundleFinding[] {
   return findings
 }
 
-function checkPlacement(reading: BundleReading): BundleFinding[] {
-  const { placement, placementFile: file } = reading
+function checkPlacement(reading: BundleReading, verdict: PlacesVerdict): BundleFinding[] {
+  const { placement } = reading
   if (!placement) return []
   const findings: BundleFinding[] = []
-  if (placement.unreadable.length > 0) {
-    const message = `Place or side of ${listed(placement.unreadable)} cannot be read.`
-    findings.push(finding('placement-unreadable', message, { file, found: `${placement.unreadable.length} rows` }))
+  for (const [file, names] of byFile(reading, placement.unreadable)) {
+    if (names.length === 0) continue
+    const message = `Place or side of ${listed(names)} cannot be read.`
+    findings.push(finding('placement-unreadable', message, { file, found: `${names.length} rows` }))
   }
-  const twice = repeated(placement.parts.map((part) => part.designator))
-  if (twice.length > 0) {
+  for (const [file, twice] of byFile(reading, repeated(placement.parts.map((part) => part.designator)))) {
+    if (twice.length === 0) continue
     const message = `${listed(twice)} ${twice.length === 1 ? 'is' : 'are'} placed more than once.`
     findings.push(
       finding('placement-designator-repeated', message, { file, expected: 'each designator once', found: listed(twice) })
     )
   }
-  return [...findings, ...checkPlaces(reading)]
+  if (verdict?.kind === 'unit')
+    return [...findings, unitFinding(reading, verdict.is, 'The parts only lie on their pads when the places')]
+  return [...findings, ...checkPlaces(reading, verdict)]
+}
+
+function unitFinding(reading: BundleReading, is: string, lie: string): BundleFinding {
+  const message = `${lie} are read as ${is}.`
+  return finding('placement-units', message, {
+    file: reading.placementFile,
+    expected: 'millimetres, or the unit stated',
+    found: is
+  })
+}
+
+function mirroredFinding(reading: BundleReading, mirrored: Placed[], where: string): BundleFinding {
+  const names = mirrored.map((part) => part.designator)
+  const isOne = names.length === 1
+  const message = `${names.length} ${isOne ? 'part' : 'parts'} of the bottom side only ${isOne ? 'lies' : 'lie'} ${where}: the list was written as seen from below.`
+  const [[file]] = byFile(reading, names) as [[string | null, string[]]]
+  return finding('placement-mirrored', message, { file, expected: 'both sides seen from the top', found: listed(names) })
 }
 
 /** Parts against the outline: all of them off by a unit, the bottom side with X turned round, or single parts beside the board. */
-function checkPlaces(reading: BundleReading): BundleFinding[] {
-  const { placement, placementFile: file, outline } = reading
-  const box = outline?.box
-  const parts = placement?.parts ?? []
-  const isOff = offBoard(reading)
-  if (!isOff || !box || parts.length === 0) return []
-  const isOut = (x: number, y: number) => isOff(x, y, overhang)
-  let outside = parts.filter((part) => isOut(part.x, part.y))
-  if (outside.length === 0) return []
-
-  // Lists may count from the board's lower left corner while the layers count from the page.
-  const fromCorner = parts.filter((part) => isOut(part.x + box.minX, part.y + box.minY))
-  const countsFromCorner = outside.length * 2 > parts.length && fromCorner.length * 10 <= parts.length
-  if (countsFromCorner) outside = fromCorner
-  if (outside.length === 0) return []
-
+function checkPlaces(reading: BundleReading, verdict: PlacesVerdict): BundleFinding[] {
+  const box = reading.outline?.box
+  const all = reading.placement?.parts ?? []
   const findings: BundleFinding[] = []
-  const mirrored = parts.filter((part) => part.side === 'bottom' && isOut(part.x, part.y) && !isOut(-part.x, part.y))
-  if (mirrored.length > 0 && mirrored.length === parts.filter((part) => part.side === 'bottom' && isOut(part.x, part.y)).length) {
-    const message = `${mirrored.length} ${mirrored.length === 1 ? 'part' : 'parts'} of the bottom side only ${mirrored.length === 1 ? 'lies' : 'lie'} on the board with X negated: the list was written as seen from below.`
-    findings.push(
-      finding('placement-mirrored', message, {
-        file,
-        expected: 'both sides seen from the top',
-        found: listed(mirrored.map((p) => p.designator))
-      })
-    )
+  if (verdict?.kind === 'mirrored') {
+    const pads = verdict.parts.length === 1 ? 'its pads' : 'their pads'
+    findings.push(mirroredFinding(reading, verdict.parts, `on ${pads} ${verdict.by}`))
+  }
+  const parts = verdict?.kind === 'mirrored' ? all.filter((part) => part.side === 'top') : all
+  const isOff = offBoard(reading)
+  if (!isOff || !box || parts.length === 0) return findings
+  const isOut = (x: number, y: number) => isOff(x, y, overhang)
+  const outsideFrom = (from: { x: number; y: number }) => parts.filter((part) => isOut(part.x + from.x, part.y + from.y))
+  // Lists may count from the board's lower left corner, or from an origin that only the pads tell, while the layers count from the page.
+  let origin = verdict && verdict.kind !== 'unit' ? verdict : { x: 0, y: 0 }
+  let outside = outsideFrom(origin)
+  if (!verdict && outside.length * 2 > parts.length) {
+    const corner = { x: box.minX, y: box.minY }
+    const fromCorner = outsideFrom(corner)
+    if (fromCorner.length * 10 <= parts.length) {
+      outside = fromCorner
+      origin = corner
+    }
+  }
+  if (outside.length === 0) return findings
+
+  const isBottomOut = (part: Placed) => part.side === 'bottom' && isOut(part.x + origin.x, part.y + origin.y)
+  const mirrored = parts.filter((part) => isBottomOut(part) && !isOut(origin.x - part.x, part.y + origin.y))
+  if (mirrored.length > 0 && mirrored.length === parts.filter(isBottomOut).length) {
+    findings.push(mirroredFinding(reading, mirrored, 'on the board with X negated'))
     outside = outside.filter((part) => !mirrored.includes(part))
   }
   if (outside.length * 2 > parts.length) {
-    const unit = [
-      { scale: 0.0254, is: 'mils' },
-      { scale: 25.4, is: 'inches' },
-      { scale: 1 / 0.0254, is: 'millimetres, though it says mils' },
-      { scale: 1 / 25.4, is: 'millimetres, though it says inches' }
-    ].find(({ scale }) => parts.filter((part) => isOut(part.x * scale, part.y * scale)).length * 5 <= parts.length)
-    if (unit) {
-      const message = `The places only lie on the board when they are read as ${unit.is}.`
-      findings.push(finding('placement-units', message, { file, expected: 'millimetres, or the unit stated', found: unit.is }))
-      return findings
-    }
+    const unit = otherUnits.find(
+      ({ scale }) => parts.filter((part) => isOut(part.x * scale, part.y * scale)).length * 5 <= parts.length
+    )
+    if (unit) return [...findings, unitFinding(reading, unit.is, 'The places only lie on the board when they')]
   }
-  const origin = countsFromCorner ? { x: box.minX, y: box.minY } : { x: 0, y: 0 }
-  if (outside.length > 0) findings.push(outsideFinding(outside, file, origin))
+  for (const [file, names] of byFile(reading, [...new Set(outside.map((part) => part.designator))])) {
+    const here = outside.filter((part) => names.includes(part.designator))
+    if (here.length > 0) findings.push(outsideFinding(here, file, origin))
+  }
   return findings
 }
 
@@ -115,25 +150,24 @@ function outsideFinding(outside: Placed[], file: string | null, origin: { x: num
   return finding('placement-outside', message, { file, expected: 'inside the outline', found: names, place })
 }
 
-function compareLists({ bom, bomFile, placement, placementFile }: BundleReading): BundleFinding[] {
+function compareLists(reading: BundleReading, copper: CopperNames | null): BundleFinding[] {
+  const { bom, bomFile, placement } = reading
   if (!bom || !placement) return []
   const findings: BundleFinding[] = []
-  const inBom = new Set(bom.lines.flatMap((line) => line.designators))
-  const placed = new Set([...placement.parts.map((part) => part.designator), ...placement.unreadable])
-  const unknown = [...placed].filter((designator) => !inBom.has(designator))
-  if (unknown.length > 0) {
-    const message = `${listed(unknown)} ${unknown.length === 1 ? 'is' : 'are'} placed but not in the bill of materials.`
+  const inBom = new Set(bom.lines.flatMap((line) => line.designators).map(nameKey))
+  const placed = [...new Set([...placement.parts.map((part) => part.designator), ...placement.unreadable])]
+  const unlisted = placed.filter((designator) => !inBom.has(nameKey(designator)))
+  for (const [file, unknown] of byFile(reading, unlisted)) {
+    if (unknown.length === 0) continue
+    const message = `${listed(unknown)} ${unknown.length === 1 ? 'is' : 'are'} placed but not in the bill of materials.${whyNotInBom(unknown, copper)}`
     findings.push(
-      finding('placement-not-in-bom', message, {
-        file: placementFile,
-        expected: 'a line in the bill of materials',
-        found: listed(unknown)
-      })
+      finding('placement-not-in-bom', message, { file, expected: 'a line in the bill of materials', found: listed(unknown) })
     )
   }
-  const missing = fittedDesignators(bom).filter((designator) => !placed.has(designator))
+  const isPlaced = new Set(placed.map(nameKey))
+  const missing = fittedDesignators(bom).filter((designator) => !isPlaced.has(nameKey(designator)))
   if (missing.length > 0) {
-    const message = `${listed(missing)} ${missing.length === 1 ? 'is' : 'are'} in the bill of materials but not placed: fitted by hand, or forgotten.`
+    const message = `${listed(missing)} ${missing.length === 1 ? 'is' : 'are'} in the bill of materials but not placed${whyNotPlaced(missing, copper)}`
     findings.push(
       finding('bom-not-placed', message, { file: bomFile, expected: 'a place, or a not-fitted mark', found: listed(missing) })
     )

@@ -11,11 +11,19 @@ export function expandRange(text: string): string[] {
   return Array.from({ length: to - from + 1 }, (_, i) => `${match[1]}${from + i}`)
 }
 
-/** The designators in a cell of a parts list, which may be separated by commas, semicolons or blanks and hold ranges. */
-export function readDesignators(cell: string): string[] {
-  return cell
+/**
+ * The designators in a cell of a parts list, which may be separated by commas, semicolons or blanks and hold ranges. Reading ends soon after
+ * `most` of them, so that a longer answer means too many.
+ */
+export function readDesignators(cell: string, most = 20_000): string[] {
+  const names: string[] = []
+  const parts = cell
     .replace(/([A-Za-z_]{1,20}\d{1,6})\s{0,3}(?:[-–—…~]|\.{2,3})\s{0,3}([A-Za-z_]{1,20}\d{1,6})/g, '$1-$2')
     .split(/[,;/&|，、；\s]+/)
     .filter((part) => part !== '')
-    .flatMap(expandRange)
+  for (const part of parts) {
+    for (const name of expandRange(part)) names.push(name)
+    if (names.length > most) break
+  }
+  return names
 }

@@ -18,6 +18,8 @@ export type DrawingWatch = {
   stroke(points: Path, aperture: Aperture, isDark: boolean): void
   region(points: Path, isDark: boolean): void
   flash(x: number, y: number, aperture: Aperture, placing: Placing, isDark: boolean): void
+  /** The component that the objects from here on belong to; null for none. */
+  component?(name: string | null): void
 }
 
 /** Which objects to keep besides counting them, and who looks on. */
@@ -78,10 +80,17 @@ export class GerberCanvas {
     } else this.drawFlash(x, y, aperture, placing, isDark)
   }
 
+  /** The component that the objects from here on belong to; what is recorded belongs to none. */
+  component(name: string | null): void {
+    if (this.recorders.length > 0) return
+    for (const watch of this.keep.watches ?? []) watch.component?.(name)
+  }
+
   /** From here on drawing is recorded, until `takeRecorded`. */
   record(): void {
     if (this.recorders.length >= this.limits.blockDepth)
       throw new TooComplex(`blocks nested deeper than ${this.limits.blockDepth}`)
+    this.component(null)
     this.recorders.push({ prims: [], objects: 0 })
   }
 

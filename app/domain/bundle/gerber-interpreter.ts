@@ -1,7 +1,8 @@
 import type { Path } from './geometry'
 import { defineAperture, upright, type Aperture, type Placing } from './gerber-apertures'
 import { gerberArc } from './gerber-arc'
-import { hasMarkup, parseAttribute, parseCommentAttribute, textOf, type Attribute } from './gerber-attributes'
+import { AttributeState } from './gerber-attribute-state'
+import { parseAttribute, parseCommentAttribute, textOf, type Attribute } from './gerber-attributes'
 import { GerberCanvas, type Keeping } from './gerber-canvas'
 import { GerberNonsense, TooComplex, type Macro } from './gerber-macro'
 import { noMark } from './geometry-sums'
@@ -18,10 +19,8 @@ const farthest = 5000
 /** Runs one Gerber file on a canvas. State and commands as in the specification's chapter 2.3 and 4. */
 export class GerberInterpreter {
   readonly canvas: GerberCanvas
-  readonly fileAttributes = new Map<string, string[]>()
-  readonly components = new Set<string>()
+  readonly attributes = new AttributeState()
   readonly deprecated = new Set<string>()
-  markup: string | null = null
 
   private readonly word = new GerberWord()
   private readonly apertures = new Map<number, Aperture>()
@@ -34,7 +33,6 @@ export class GerberInterpreter {
   private isIncremental = false
   private unit: number | null = null
   private aperture: Aperture | null = null
-  private aperFunction: string | null = null
   private isDark = true
   private placing: Placing = upright
   private x = 0
@@ -289,7 +287,7 @@ export class GerberInterpreter {
 
   private defined(rest: string, told: number): { code: number; aperture: Aperture | null } {
     try {
-      return defineAperture(rest, this.unit ?? 25.4, this.macros, this.aperFunction, this.limits)
+      return defineAperture(rest, this.unit ?? 25.4, this.macros, this.attributes.aperFunction, this.limits)
     } catch (error) {
       if (!(error instanceof GerberNonsense) || !(told >= 10)) throw error
       this.badApertures.set(told, error)
@@ -324,6 +322,7 @@ export class GerberInterpreter {
     const unit = this.unit ?? 25.4
     const [nx, ny] = [Number(match[1]), Number(match[2])]
     if (nx < 1 || ny < 1) throw new GerberNonsense('a step-and-repeat of no steps')
+    if (nx === 1 && ny === 1) return
     this.step = { nx, ny, dx: number(match[3]!) * unit, dy: number(match[4]!) * unit }
     this.canvas.record()
   }
@@ -343,11 +342,9 @@ export class GerberInterpreter {
     }
   }
 
-  private attribute({ kind, name, values }: Attribute): void {
-    if (this.markup === null && (hasMarkup(name) || values.some(hasMarkup))) this.markup = `${kind}.${name}`.slice(0, 40)
-    if (kind === 'TF' && this.fileAttributes.size < 200) this.fileAttributes.set(name, values)
-    else if (kind === 'TA' && name === '.AperFunction') this.aperFunction = values[0] ?? null
-    else if (kind === 'TD' && (name === '' || name === '.AperFunction')) this.aperFunction = null
-    else if (kind === 'TO' && name === '.C' && values[0] && this.components.size < 50_000) this.components.add(values[0])
+  private attribute(attribute: Attribute): void {
+    const before = this.attributes.component
+    this.attributes.take(attribute)
+    if (this.attributes.component !== before) this.canvas.component(this.attributes.component)
   }
 }

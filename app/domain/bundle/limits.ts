@@ -24,6 +24,8 @@ export type CheckLimits = {
   outlinePaths: number
   listRows: number
   listCells: number
+  /** Designators of one bill of materials, ranges counted out. */
+  designators: number
   /** Findings of one code; what is past it is counted in the last one's message. */
   findingsPerCode: number
   /** Of one picture. */
@@ -59,6 +61,7 @@ export const defaultLimits: CheckLimits = {
   outlinePaths: 100_000,
   listRows: 20_000,
   listCells: 400_000,
+  designators: 50_000,
   findingsPerCode: 20,
   pictureBytes: 4 * mib,
   pictureObjects: 100_000,

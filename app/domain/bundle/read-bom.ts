@@ -58,7 +58,7 @@ const isNoDesignator = /^\s*(n\/?a|none|keine?|aucune?|[-–—.]+)\s*$/i
 // `=` and `@` always start a formula; a sign does with a call or a reference behind it (`+5V` is a value).
 const runsAsFormula = /^\s*(=|@|[+-].*[(!|])/
 
-/** A bill of materials from its bytes; null when no row heads it by meaning. */
+/** A bill of materials from its bytes; null when no row heads it by meaning, or it names more parts than the limits allow. */
 export function readBom(bytes: Uint8Array, limits: CheckLimits): Bom | null {
   const isEnough = (c: Columns<keyof typeof meanings>) =>
     c.designators !== undefined &&
@@ -67,6 +67,7 @@ export function readBom(bytes: Uint8Array, limits: CheckLimits): Bom | null {
   if (!table) return null
   const { columns, row, rows } = table
   const lines: BomLine[] = []
+  let all = 0
   const distinct = new Set<string>()
   const unsafeCells: string[] = []
   for (const cells of rows.slice(row + 1)) {
@@ -74,8 +75,10 @@ export function readBom(bytes: Uint8Array, limits: CheckLimits): Bom | null {
     for (const cell of cells) if (unsafeCells.length < 50 && runsAsFormula.test(cell)) unsafeCells.push(cell.slice(0, 60))
     if (cells[0]?.startsWith('#') && (cells.length < 3 || table.isAligned)) continue
     if (isTotal.test(at('designators')) || isNoDesignator.test(at('designators'))) continue
-    const designators = readDesignators(at('designators'))
+    const designators = readDesignators(at('designators'), limits.designators - all)
     if (designators.length === 0) continue
+    all += designators.length
+    if (all > limits.designators) return null
     const quantity = /^\s*\d+([.,]0+)?\s*(x|pcs?|stk?)?\.?\s*$/i.test(at('quantity')) ? Number.parseInt(at('quantity'), 10) : null
     const isMarked = yes.test(markKey(at('notFitted'))) || (columns.fitted !== undefined && no.test(markKey(at('fitted'))))
     const isMarkedInText = isValueNotFitted(at('value')) || isDescriptionNotFitted(at('description'))

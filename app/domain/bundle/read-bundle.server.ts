@@ -11,6 +11,7 @@ import type { CheckLimits } from './limits'
 import { listOrNull } from './list-or-null'
 import { findOutline } from './outline-contours'
 import { settleDrillFormat } from './drill-format'
+import { PadNames } from './pad-names'
 import { readBom } from './read-bom'
 import { readExcellon, type DrillFile } from './read-excellon'
 import { noImage, readGerber, type GerberImage } from './read-gerber'
@@ -37,6 +38,7 @@ export async function readBundle(
     bomFile: null,
     placement: null,
     placementFile: null,
+    placementLists: [],
     outline: null,
     outlineFile: null,
     area: null,
@@ -58,11 +60,12 @@ export async function readBundle(
     const edge = fn === 'copper' && reading.area ? new EdgeWatch(reading.area) : null
     const holes = fn === 'copper' && rims ? new HoleWatch(rims) : null
     file.sums = fn === 'copper' ? new LayerSums() : null
+    file.names = fn === 'copper' && file.layer.side !== 'inner' ? new PadNames() : null
     file.image = safely(() =>
       readGerber(bytes, limits, {
         strokes: isDrill || fn === 'outline',
         flashes: isDrill || fn === 'copper' || fn === 'soldermask' || fn === 'paste',
-        watches: [edge, holes, file.sums].filter((watch) => watch !== null)
+        watches: [edge, holes, file.sums, file.names].filter((watch) => watch !== null)
       })
     )
     file.excess = edge
@@ -222,6 +225,8 @@ async function readLists(
     read.add(withoutExtension(file.path))
     reading.placement = merged(reading.placement, placement)
     reading.placementFile ??= file.layer.file
+    const designators = new Set([...placement.parts.map((part) => part.designator), ...placement.unreadable])
+    reading.placementLists.push({ file: file.layer.file, designators })
   }
   // The same list once more in another form, as some tools write it beside, need not be read twice.
   return [

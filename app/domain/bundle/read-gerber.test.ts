@@ -92,7 +92,6 @@ describe('a Gerber file', () => {
     expect(x2.attributes.get('.Part')).toEqual(['Single,Array'])
     const comment = read('G04 #@! TF.FileFunction,Legend,Bot*\nG04 #@! TO.C,R7*\nM02*')
     expect(comment.attributes.get('.FileFunction')).toEqual(['Legend', 'Bot'])
-    expect([...comment.components]).toEqual(['R7'])
   })
 
   it('notes deprecated commands and markup', () => {

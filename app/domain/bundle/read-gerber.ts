@@ -24,8 +24,6 @@ export type GerberImage = {
   flashes: Flashes
   strokes: Stroke[]
   regions: Path[]
-  /** Component designators that the file names. */
-  components: Set<string>
   /** The step in mm in which the file writes coordinates; 0 where unknown. */
   resolution: number
 }
@@ -50,10 +48,10 @@ export function readGerber(bytes: Uint8Array, limits: CheckLimits, keep: Keeping
   }
   const { canvas } = interpreter
   return {
-    attributes: interpreter.fileAttributes,
+    attributes: interpreter.attributes.file,
     problem,
     deprecated: [...interpreter.deprecated],
-    markup: interpreter.markup,
+    markup: interpreter.attributes.markup,
     objects: canvas.objects,
     box: canvas.objects > 0 && canvas.box.minX <= canvas.box.maxX ? canvas.box : null,
     smallestConductor: canvas.smallestConductor,
@@ -61,7 +59,6 @@ export function readGerber(bytes: Uint8Array, limits: CheckLimits, keep: Keeping
     flashes: canvas.flashes,
     strokes: canvas.strokes,
     regions: canvas.regions,
-    components: interpreter.components,
     resolution: interpreter.resolution
   }
 }
@@ -79,6 +76,5 @@ export const noImage = (problem: ReadProblem): GerberImage => ({
   flashes: { x: [], y: [], halfX: [], halfY: [], aperture: [] },
   strokes: [],
   regions: [],
-  components: new Set(),
   resolution: 0
 })

@@ -42,7 +42,16 @@ export async function tellLayers(source: BundleSource, limits: CheckLimits): Pro
   return opened.map(({ path, kind, size, fileFunction }, i) => {
     const { isUndecided, conflict, ...layer } = roles[i]!
     const span = spanFromAttribute(fileFunction)
-    const unread = { image: null, sums: null, holes: null, drillFormat: null, excess: null, rims: null, isBroken: false }
+    const unread = {
+      image: null,
+      sums: null,
+      holes: null,
+      drillFormat: null,
+      excess: null,
+      rims: null,
+      names: null,
+      isBroken: false
+    }
     return { layer, path, kind, size, conflict, isUndecided, span, ...unread }
   })
 }
