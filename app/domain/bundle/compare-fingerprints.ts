@@ -3,7 +3,7 @@ import { macroWave } from './aperture-mark'
 import { waveCount, waveNumbers } from './geometry-sums'
 
 type Kind = { objects: number; points: number; waves: number[] }
-type Print = { step: number; middle: [number, number] | null; kinds: Map<string, Kind> }
+type Print = { step: number; corner: string; middle: [number, number] | null; kinds: Map<string, Kind> }
 
 /**
  * What an unchanged layer's waves may differ by: the rounding of the sums themselves, in all and for each root of the points. A lost object
@@ -22,15 +22,18 @@ const outlineSlack = 0.3
 const sureness = 3.2
 const regionSureness = 6
 
-/** Files in the same step above this, in mm, were rounded alike: nobody puts 0, 0 between the steps of so coarse a grid. */
+/**
+ * Files in the same step were rounded alike where 0, 0 lies at the same place of the board, and above this step, in mm, wherever it lies: nobody
+ * puts it between the steps of so coarse a grid.
+ */
 const coarseStep = 1.5e-3
 
 /**
  * Whether two layers have the same geometry, to within what rounding does.
  *
  * Two exports of one layer in units of different fineness differ by up to half a step in each coordinate, which adds up as a random walk over
- * the points; so much is allowed for, and no more: with 1 µm that hides a hole moved by 0.05 mm among 500, with 1 nm nothing. The number of
- * objects is always compared.
+ * the points; so much is allowed for, and no more: with 1 µm that hides a hole moved by 0.05 mm among 500, with 1 nm nothing. Two in the same
+ * step and with the same 0, 0 are rounded alike, and nothing is allowed for. The number of objects is always compared.
  */
 export function isSameGeometry(a: LayerFingerprint, b: LayerFingerprint, { withPlace = true } = {}): boolean {
   if (a.function !== b.function) return false
@@ -41,7 +44,8 @@ export function isSameGeometry(a: LayerFingerprint, b: LayerFingerprint, { withP
     const allowed = 0.003 + one.step + other.step
     if (Math.abs(one.middle[0] - other.middle[0]) > allowed || Math.abs(one.middle[1] - other.middle[1]) > allowed) return false
   }
-  const isAlike = Math.abs(one.step - other.step) < 1e-7 && one.step > coarseStep
+  const hasSameOrigin = one.corner !== '-' && one.corner === other.corner
+  const isAlike = Math.abs(one.step - other.step) < 1e-7 && (one.step > coarseStep || hasSameOrigin)
   const rounding = isAlike ? 0 : Math.sqrt((one.step ** 2 + other.step ** 2) / 12)
   const base = a.function === 'outline' ? outlineSlack : slack
   return pairs(one, other).every(([p, q]) => isSameKind(p, q, base, rounding))
@@ -82,8 +86,8 @@ function isSameKind(p: Kind, q: Kind, base: number, rounding: number): boolean {
 
 /** Reads a fingerprint's text; null where it is none of this version. */
 function parse(text: string): Print | null {
-  const [version, step, middle, ...rest] = text.split(' ')
-  if (version !== '1' || step === undefined || middle === undefined) return null
+  const [version, step, corner, middle, ...rest] = text.split(' ')
+  if (version !== '1' || step === undefined || corner === undefined || middle === undefined) return null
   const place = middle === '-' ? null : middle.split(',').map((value) => Number(value) / 1000)
   const kinds = new Map<string, Kind>()
   for (const part of rest) {
@@ -92,7 +96,7 @@ function parse(text: string): Print | null {
     kinds.set(name, { objects: Number(objects), points: Number(points), waves: waves.split(',').map(Number) })
     if (kinds.get(name)!.waves.length !== 2 * waveCount) return null
   }
-  return { step: Number(step) / 1e6, middle: place && [place[0]!, place[1]!], kinds }
+  return { step: Number(step) / 1e6, corner, middle: place && [place[0]!, place[1]!], kinds }
 }
 
 /** A layer that two bundles do not have alike: `changed`, or in one of them only (`added` to the later, `removed` from the earlier). */

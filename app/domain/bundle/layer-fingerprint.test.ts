@@ -5,7 +5,9 @@ import { edit, type Files } from '../../../tests/factories/defect'
 import { respellDrill, respellGerber, type Spelling } from '../../../tests/factories/respell-gerber'
 import type { LayerFingerprint } from './bundle-check.types'
 import { checkBundle } from './check-bundle.server'
+import type { BundleReading } from './bundle-reading.types'
 import { compareFingerprints, isSameGeometry, layerName } from './compare-fingerprints'
+import { fingerprintsOf } from './layer-fingerprint'
 
 const printsOf = async (files: ReadonlyMap<string, Buffer | string>) =>
   (await checkBundle(await zipOf(files))).record!.fingerprints
@@ -280,5 +282,39 @@ describe('any layer', () => {
       ),
       { numRuns: 60 }
     )
+  })
+})
+
+describe('a drill file with a step of 1 µm and 900 holes', () => {
+  const holes = Array.from({ length: 900 }, (_, i) => ({ x: 1 + (i % 30), y: 1 + Math.floor(i / 30), diameter: 0.3 }))
+  const print = (list: { x: number; y: number; diameter: number }[], shift = 0) => {
+    const [low, high] = [shift, 32 + shift]
+    const reading = {
+      outline: {
+        box: { minX: low, minY: 0, maxX: high, maxY: 32 },
+        contour: [low, 0, high, 0, high, 32, low, 32],
+        others: []
+      },
+      outlineFile: { isBroken: false, image: { resolution: 1e-6, problem: null }, layer: { file: 'edge.gbr' } },
+      files: [
+        {
+          layer: { function: 'drill-plated', file: 'board.drl' },
+          isBroken: false,
+          image: { resolution: 1e-3, problem: null },
+          holes: list.map((hole) => ({ ...hole, x: Number((hole.x + shift).toFixed(3)), toX: null, toY: null, plating: null }))
+        }
+      ]
+    }
+    return fingerprintsOf(reading as unknown as BundleReading).find((each) => each.function === 'drill')!
+  }
+  const moved = holes.map((hole, i) => (i === 444 ? { ...hole, x: hole.x + 0.05 } : hole))
+
+  it('shows one hole moved by 0.05 mm where 0, 0 stayed', () => {
+    expect(isSameGeometry(print(holes), print(holes))).toBe(true)
+    expect(isSameGeometry(print(holes), print(moved))).toBe(false)
+  })
+
+  it('is known again where 0, 0 went between two steps', () => {
+    expect(isSameGeometry(print(holes), print(holes, 0.0004))).toBe(true)
   })
 })

@@ -73,7 +73,7 @@ function addHole(sum: WaveSum, { x, y, toX, toY, diameter }: Hole): void {
   else addStroke(sum, [x, y, toX, toY], sizedMark(6, [diameter]))
 }
 
-/** Version, step of the coordinates in nm, middle in µm from the outline's corner, then per kind its name, objects, points and waves. */
+/** Version, step of the coordinates in nm, where the outline's corner lies in nm, middle in µm from it, then per kind its name, objects, points and waves. */
 function textOf(sums: Record<string, WaveSum>, origin: Origin | null, resolution: number): string | null {
   const all = Object.entries(sums)
   const points = all.reduce((sum, [, { points: n }]) => sum + n, 0)
@@ -85,5 +85,6 @@ function textOf(sums: Record<string, WaveSum>, origin: Origin | null, resolution
     const waves = seenFrom(sum, x, y).map((value) => value.toFixed(2).replace(/^-?0\.00$/, '0'))
     return `${name}:${sum.objects}:${sum.points}:${waves.join(',')}`
   })
-  return ['1', (resolution * 1e6).toFixed(1), middle, ...kinds].join(' ')
+  const corner = origin ? `${Math.round(origin.x * 1e6)},${Math.round(origin.y * 1e6)}` : '-'
+  return ['1', (resolution * 1e6).toFixed(1), corner, middle, ...kinds].join(' ')
 }
