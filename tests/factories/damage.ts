@@ -16,7 +16,7 @@ export function damaged(bytes: Buffer, changes: Damage): Buffer {
   let result = Buffer.from(bytes)
   for (const { at, kind, byte, length } of changes) {
     const from = Math.floor(at * result.length)
-    if (kind === 'set') result.fill(byte, from, from + 1)
+    if (kind === 'set') result.fill(byte, from, Math.min(from + 1, result.length))
     else {
       const parts = [result.subarray(0, from), result.subarray(from, from + length), result.subarray(from + length)]
       result = Buffer.concat(kind === 'cut' ? [parts[0]!, parts[2]!] : [parts[0]!, parts[1]!, parts[1]!, parts[2]!])
