@@ -54,6 +54,8 @@ export function BundleUpload({
   const [going, setGoing] = useState<Going>(running ? { phase: 'checking', ...running } : { phase: 'idle', error: refused })
   const [file, setFile] = useState<File | null>(null)
   const request = useRef<XMLHttpRequest | null>(null)
+  const box = useRef<HTMLDivElement>(null)
+  const isUnderWay = going.phase === 'sending' || going.phase === 'checking'
   const isChecking = going.phase === 'checking'
 
   const error = going.phase === 'idle' || going.phase === 'broken' ? going.error : undefined
@@ -63,6 +65,10 @@ export function BundleUpload({
   useEffect(() => {
     if (error !== undefined) document.getElementById('bundle')?.focus()
   }, [error])
+  /* The button that was pressed is gone: the focus goes to what stands in its place. */
+  useEffect(() => {
+    if (isUnderWay && request.current) box.current?.focus({ preventScroll: true })
+  }, [isUnderWay])
   useEffect(() => {
     if (!isChecking) return
     const timer = setInterval(async () => {
@@ -123,23 +129,27 @@ export function BundleUpload({
     xhr.send(form)
   }
 
-  if (going.phase === 'sending')
+  if (going.phase === 'sending' || going.phase === 'checking')
     return (
-      <>
-        <UploadScale
-          label={`Uploading ${file?.name ?? 'the bundle'}`}
-          detail={shareOfBytes(going.sent, going.total)}
-          share={going.total === 0 ? 1 : going.sent / going.total}
-        />
-        <Actions>
-          <Button type="button" kind="outline" onClick={() => request.current?.abort()}>
-            Stop the upload
-          </Button>
-        </Actions>
-      </>
+      <div className="going" tabIndex={-1} ref={box} role="group" aria-label="Upload and check">
+        {going.phase === 'checking' ? (
+          <BundleChecking isReceived={going.isReceived} step={going.step} steps={steps} again={again} />
+        ) : (
+          <>
+            <UploadScale
+              label={`Uploading ${file?.name ?? 'the bundle'}`}
+              detail={shareOfBytes(going.sent, going.total)}
+              share={going.total === 0 ? 1 : going.sent / going.total}
+            />
+            <Actions>
+              <Button type="button" kind="outline" onClick={() => request.current?.abort()}>
+                Stop the upload
+              </Button>
+            </Actions>
+          </>
+        )}
+      </div>
     )
-  if (going.phase === 'checking')
-    return <BundleChecking isReceived={going.isReceived} step={going.step} steps={steps} again={again} />
   return (
     <form method="post" action={action} encType="multipart/form-data" onSubmit={send} noValidate>
       {going.phase === 'broken' && (

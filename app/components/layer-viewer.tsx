@@ -132,7 +132,7 @@ export function LayerViewer({ id, number, caption, name, extent, pictures, layer
         </div>
         <p className="lv-read small">
           <b>{words}.</b> {drawn.length === 0 && 'This side could not be drawn. '}
-          <span className="nw">
+          <span className="nw no-print">
             {point ? `Under the pointer ${placeInWords(point)}` : `In the middle ${placeInWords(current)}`}
           </span>
         </p>

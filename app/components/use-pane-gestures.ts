@@ -29,6 +29,11 @@ export function usePaneGestures({ svg, view, sight, onView, onPoint }: PaneGestu
   useEffect(() => {
     now.current = { view, sight, onView }
   })
+  /** Two fingers' events come in one go: the second must go on from where the first has led, before anything is drawn anew. */
+  const lead = (next: View) => {
+    now.current = { ...now.current, view: next }
+    onView(next, false)
+  }
   const pointers = useRef(new Map<number, { at: Point; from: Point; isDrag: boolean }>())
 
   /** The event's place in px of the pane, which may be shown smaller than it is. */
@@ -74,6 +79,7 @@ export function usePaneGestures({ svg, view, sight, onView, onPoint }: PaneGestu
 
   function onPointerMove(event: PointerEvent) {
     const at = inPane(event)
+    const { view } = now.current
     onPoint(toPlace(at, view, sight))
     const held = pointers.current.get(event.pointerId)
     if (!held) return
@@ -83,11 +89,11 @@ export function usePaneGestures({ svg, view, sight, onView, onPoint }: PaneGestu
     const before = held.at
     pointers.current.set(event.pointerId, { ...held, at, isDrag: true })
     const other = [...pointers.current].find(([id]) => id !== event.pointerId)?.[1].at
-    if (!other) return onView(panBy(view, before.x - at.x, before.y - at.y, sight), false)
+    if (!other) return lead(panBy(view, before.x - at.x, before.y - at.y, sight))
     const apart = (point: Point) => Math.max(1, Math.hypot(point.x - other.x, point.y - other.y))
     const middle = (point: Point) => ({ x: (point.x + other.x) / 2, y: (point.y + other.y) / 2 })
     const zoomed = zoomAbout(view, apart(at) / apart(before), toPlace(middle(before), view, sight), sight)
-    onView(panBy(zoomed, middle(before).x - middle(at).x, middle(before).y - middle(at).y, sight), false)
+    lead(panBy(zoomed, middle(before).x - middle(at).x, middle(before).y - middle(at).y, sight))
   }
 
   function end(event: PointerEvent) {

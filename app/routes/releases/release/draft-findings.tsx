@@ -2,6 +2,7 @@ import { Form, useNavigation } from 'react-router'
 import { FindingsList } from './findings-list'
 import { foundInWords } from './release-parts'
 import { Actions, Button } from '~/components/button'
+import { DoneLine } from '~/components/done-line'
 import { ErrorSummary } from '~/components/error-summary'
 import { TextArea } from '~/components/field'
 import { Section } from '~/components/section'
@@ -11,8 +12,16 @@ import type { ReleasePage } from '~/domain/releases/release-page.server'
 import type { FieldError } from '~/lib/domain-error'
 import type { FormValues } from '~/lib/parse-form'
 
+type DraftFindingsProps = {
+  page: ReleasePage
+  /** What was just done about them. */
+  done: string | null
+  errors: FieldError[]
+  values: FormValues
+}
+
 /** What the check found on a draft, with room for an answer under each caution. */
-export function DraftFindings({ page, errors, values }: { page: ReleasePage; errors: FieldError[]; values: FormValues }) {
+export function DraftFindings({ page, done, errors, values }: DraftFindingsProps) {
   const { findings } = page
   const hasCautions = findings.some((f) => f.severity === 'caution')
   const isBusy = useNavigation().formData?.get('intent') === 'answers'
@@ -33,7 +42,8 @@ export function DraftFindings({ page, errors, values }: { page: ReleasePage; err
         </>
       }
     >
-      <p role="status">The bundle check raised {foundInWords(findings)}.</p>
+      {done && <DoneLine what={done} />}
+      <p role={done ? undefined : 'status'}>The bundle check raised {foundInWords(findings)}.</p>
       <ErrorSummary errors={errors} before="the answers can be saved" labels={labels} />
       <FindingsList
         page={page}

@@ -39,14 +39,17 @@ export type DraftReleaseProps = {
   page: ReleasePage
   maxBytes: number
   done: string | null
+  /** What was done is about the findings, and is said there. */
+  isAboutFindings: boolean
   errors: FieldError[]
   values: FormValues
 }
 
 /** A draft as its maintainers see it: upload, what was found, answers, publish. */
-export function DraftRelease({ page, maxBytes, done, errors, values }: DraftReleaseProps) {
+export function DraftRelease({ page, maxBytes, done, isAboutFindings, errors, values }: DraftReleaseProps) {
   const { board, release, bundle, refused } = page
   const hasFindings = bundle !== null || refused !== null
+  const isSaidBelow = isAboutFindings && hasFindings
   const path = releasePath(board.slug, release.version)
   const of = (intent: string) => (values.intent === intent ? errors : [])
   return (
@@ -74,7 +77,7 @@ export function DraftRelease({ page, maxBytes, done, errors, values }: DraftRele
           </>
         }
       >
-        {done && <DoneLine what={done} />}
+        {done && !isSaidBelow && <DoneLine what={done} />}
       </Title>
       <Section
         number={1}
@@ -88,7 +91,7 @@ export function DraftRelease({ page, maxBytes, done, errors, values }: DraftRele
       >
         <DraftUpload page={page} path={path} maxBytes={maxBytes} refused={of('bundle')[0]?.message} errors={of('recheck')} />
       </Section>
-      {hasFindings && <DraftFindings page={page} errors={of('answers')} values={values} />}
+      {hasFindings && <DraftFindings page={page} done={isSaidBelow ? done : null} errors={of('answers')} values={values} />}
       {bundle && page.files.length > 0 && (
         <>
           <Section number={3} heading="The board">

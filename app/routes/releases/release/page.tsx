@@ -32,6 +32,9 @@ const done = {
   withdrawn: 'It is withdrawn.'
 }
 
+/** Said where the page then stands: over what the check found. */
+const saidAtFindings = ['checked', 'refused', 'answered']
+
 export const meta: Route.MetaFunction = ({ loaderData }) => {
   const page = (
     loaderData as { page?: { board: { name: string; summary: string }; release: { version: string; state: string } } } | undefined
@@ -56,7 +59,8 @@ export function loader({ url, params, context }: Route.LoaderArgs) {
       lasting: page.release.state === 'draft' ? null : await lastingOf(s, params.board, params.version),
       maxBytes: config.uploadMaxBytes,
       today: dayOf(now()),
-      done: asked !== null && Object.hasOwn(done, asked) ? done[asked as keyof typeof done] : null
+      done: asked !== null && Object.hasOwn(done, asked) ? done[asked as keyof typeof done] : null,
+      isAboutFindings: asked !== null && saidAtFindings.includes(asked)
     }
   })
 }
@@ -136,6 +140,7 @@ export default function Release({ loaderData, actionData }: Route.ComponentProps
       page={page}
       maxBytes={maxBytes}
       done={loaderData.done}
+      isAboutFindings={loaderData.isAboutFindings}
       errors={actionData?.errors ?? []}
       values={actionData?.values ?? {}}
     />
