@@ -4,12 +4,14 @@ import { offBoard } from './check-edge'
 import { readCopperNames, whyNotInBom, whyNotPlaced, type CopperNames } from './check-names'
 import { finding, listed, mm } from './finding'
 import { nameKey } from './pad-names'
-import { otherUnits, type PlacesVerdict } from './pad-places'
+import { otherUnits, spreadOf, type PlacesVerdict } from './pad-places'
 import type { Bom } from './read-bom'
 import type { Placed } from './read-placement'
 
 /** How far a part's origin may lie past the outline, in mm: connectors hang over the edge. */
 const overhang = 2
+/** How much of the board's diagonal three parts and more take up: places that shrink to less lie on any board. */
+const leastSpread = 0.05
 
 /** The bill of materials and the placement list: each by itself, then against each other, the board and the names on its copper. */
 export function checkLists(reading: BundleReading): BundleFinding[] {
@@ -130,8 +132,11 @@ function checkPlaces(reading: BundleReading, verdict: PlacesVerdict): BundleFind
     outside = outside.filter((part) => !mirrored.includes(part))
   }
   if (outside.length * 2 > parts.length) {
+    const spread = spreadOf(parts.map(({ x, y }) => [x, y]))
+    const least = parts.length < 3 ? 0 : leastSpread * Math.hypot(box.maxX - box.minX, box.maxY - box.minY)
     const unit = otherUnits.find(
-      ({ scale }) => parts.filter((part) => isOut(part.x * scale, part.y * scale)).length * 5 <= parts.length
+      ({ scale }) =>
+        spread * scale >= least && parts.filter((part) => isOut(part.x * scale, part.y * scale)).length * 5 <= parts.length
     )
     if (unit) return [...findings, unitFinding(reading, unit.is, 'The places only lie on the board when they')]
   }

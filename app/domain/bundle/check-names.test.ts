@@ -139,6 +139,13 @@ describe('places against the pads', () => {
     expect(await findingsOf((f) => edit(f, places, (c) => c.replace(/^R5,8.100,/m, 'R5,16.000,')))).toEqual([])
   })
 
+  it('takes places that count Y downwards for no other unit, with names on the copper or without', async () => {
+    const down = (f: Files) => move(f, (x, y) => [x, -y])
+    for (const release of [down, (f: Files) => (forgetNames(f), down(f))]) {
+      expect(codes(await findingsOf(release))).toEqual(['placement-outside'])
+    }
+  })
+
   it('finds a part outside the board behind another origin', async () => {
     const found = await findingsOf((f) => {
       move(f, (x, y) => [x + 87.3, y - 41.9])

@@ -1,4 +1,4 @@
-import { growBox, type Box } from './geometry'
+import { emptyBox, growBox, type Box } from './geometry'
 import type { Placed } from './read-placement'
 
 /** How far past the box of its pads, in mm, a part's place still counts as on them: lists name the middle, the first pin or the body. */
@@ -36,6 +36,13 @@ const otherInches = [
 
 const middleX = ({ minX, maxX }: Box) => (minX + maxX) / 2
 const middleY = ({ minY, maxY }: Box) => (minY + maxY) / 2
+
+/** The diagonal of the box around some places, in mm. */
+export function spreadOf(places: [number, number][]): number {
+  const box = emptyBox()
+  for (const [x, y] of places) growBox(box, x, y)
+  return Math.hypot(box.maxX - box.minX, box.maxY - box.minY)
+}
 
 function median(values: number[]): number {
   const sorted = [...values].sort((a, b) => a - b)
@@ -104,11 +111,6 @@ function judgeBottom(top: PlacedPads[], bottom: PlacedPads[], shift: { x: number
 
 function judgeUnit(all: PlacedPads[]): PlacesVerdict {
   if (all.length < leastParts) return null
-  const spreadOf = (places: [number, number][]) => {
-    const box = { minX: Infinity, minY: Infinity, maxX: -Infinity, maxY: -Infinity }
-    for (const [x, y] of places) growBox(box, x, y)
-    return Math.hypot(box.maxX - box.minX, box.maxY - box.minY)
-  }
   const pads = spreadOf(all.map(({ box }) => [middleX(box), middleY(box)]))
   for (const { scale, is } of [...otherUnits, ...otherInches]) {
     const scaled = all.map(({ part, box }) => ({ part: { ...part, x: part.x * scale, y: part.y * scale }, box }))
