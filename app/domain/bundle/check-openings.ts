@@ -23,12 +23,10 @@ export function checkOpenings(reading: BundleReading, indices: Indexed[]): Bundl
     const { flashes } = file.image
     if (!copper || copper.file.isBroken || copper.index.count < leastOpenings[fn] || flashes.x.length < leastOpenings[fn])
       return []
-    const over = openingsOver(copper.index, holes, flashes)
-    const share = over.filter(Boolean).length / over.length
-    if (share >= (fn === 'soldermask' && !knowsHoles ? poorWithoutHoles : poor[fn])) return []
-    const first = over.indexOf(false)
+    const { share, firstOff } = openingsOver(copper.index, holes, flashes)
+    if (firstOff === null || share >= (fn === 'soldermask' && !knowsHoles ? poorWithoutHoles : poor[fn])) return []
     const side = file.layer.side === 'inner' ? null : file.layer.side
-    const place = { x: flashes.x[first]!, y: flashes.y[first]!, side }
+    const place = { x: flashes.x[firstOff]!, y: flashes.y[firstOff]!, side }
     // Where the mask fits the holes better than the copper does, the copper is the foreign layer.
     const plated = drills.flatMap(platedHoles)
     const ofMask = shareOnFlashes(indexFlashes(flashes), plated)
