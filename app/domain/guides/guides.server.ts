@@ -15,7 +15,7 @@ export type Guide = {
 }
 
 /** What a reader needs first stands first; guides that are not named here follow by their address. */
-const order = ['safety', 'reporting', 'figures', 'releasing', 'api', 'problems']
+const order = ['safety', 'reporting', 'figures', 'worked-examples', 'releasing', 'api', 'problems']
 const place = (page: string) => (order.includes(page) ? order.indexOf(page) : order.length)
 
 const guides: ReadonlyMap<string, Guide> = new Map(

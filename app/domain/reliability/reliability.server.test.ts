@@ -5,6 +5,7 @@ import type { Services } from '~/server/services.server'
 import type { Db } from '~db/client.server'
 import { fillReportWorld, openTestDb } from '../../../tests/factories/report-world'
 import type { ReliabilityFilters } from './reliability-filters'
+import { listLives } from './reliability.repo.server'
 import { reliabilityOf } from './reliability.server'
 import { closeWorkers } from './worker-client.server'
 
@@ -179,6 +180,50 @@ describe('reliabilityOf', () => {
     expect(await refusal('nothing', {})).toEqual(['not-found'])
     expect(await refusal('buttress', { release: '2.0.0' })).toEqual(['invalid', 'release'])
     expect(await refusal('buttress', { revision: 'TP-1' })).toEqual(['invalid', 'revision'])
+  })
+})
+
+describe('a unit that is taken out and fitted anew', () => {
+  it('has a life for each of its reports, on the revision of each', async () => {
+    const undone = new Error('undone')
+    const read = db.transaction().execute(async (tx) => {
+      for (const [id, revision, on] of [
+        ['again1', 'tm-1', '2026-01-10'],
+        ['again2', 'tm-2', '2026-06-01']
+      ] as const)
+        await tx
+          .insertInto('install_reports')
+          .values({
+            id,
+            release_id: 'v1',
+            unit_tag: 'BT-1',
+            console_revision_id: revision,
+            reporter_id: 'ann',
+            installed_on: on,
+            filed_on: on,
+            filed_at: `${on}T10:00:00.000Z`,
+            evidence: 'measured',
+            first_power: 'works'
+          })
+          .execute()
+      await tx
+        .insertInto('check_ins')
+        .values({
+          id: 'out',
+          report_id: 'again1',
+          statement: 'parted',
+          stated_on: '2026-05-30',
+          filed_at: '2026-05-30T10:00:00.000Z'
+        })
+        .execute()
+      const found = (await listLives(tx, 'v1', null, everything.asOf)).filter((life) => life.reportId.startsWith('again'))
+      expect(found).toMatchObject([
+        { reportId: 'again1', revisionId: 'tm-1', installedOn: '2026-01-10', statements: [{ statedOn: '2026-05-30' }] },
+        { reportId: 'again2', revisionId: 'tm-2', installedOn: '2026-06-01', statements: [] }
+      ])
+      throw undone
+    })
+    await expect(read).rejects.toBe(undone)
   })
 })
 

@@ -61,7 +61,8 @@ export const promptDays = 14
  * 1. Time runs in whole days from the installation. A first-power result other than `works` (`partly`, `no-change`, `worse`) is a
  *    unit that never did its work: it fails on day 0, whatever the cause.
  * 2. A unit runs up to its last statement and is censored there. Statements are check-ins, and the report itself: whoever files
- *    `works` says so on the day of filing. `parted` ends the following on its day, without a failure.
+ *    `works` says so on the day of filing. `parted` ends the following on its day, without a failure; what is found later is not
+ *    counted, since only the failures of parted units would come to light.
  * 3. A report filed more than 14 days after installing enters on its filing day. What failed up to that day is listed apart; what was not
  *    heard of after it was never at risk.
  * 4. A failure found at a check-in lies in (last running, found]. Known to within 14 days it counts as exact on the day found; else
@@ -105,18 +106,29 @@ export const countsAgainstBoard = (cause: Cause): boolean => cause === 'board' |
 
 function failureKnown(life: LifeHistory, asOf: Day) {
   const { failure } = life
-  return failure !== null && failure.filedOn <= asOf && failure.foundOn <= asOf ? failure : null
+  if (failure === null || failure.filedOn > asOf || failure.foundOn > asOf) return null
+  const parted = partedOn(life, asOf)
+  return parted === null || failure.foundOn <= parted ? failure : null
 }
 
-function* daysHeardOf(life: LifeHistory, asOf: Day, kinds: readonly string[]) {
+/** The day on which it was parted with, the first should it be told twice. */
+function partedOn(life: LifeHistory, asOf: Day): Day | null {
+  let first: Day | null = null
+  for (const { statement, statedOn, filedOn } of life.statements)
+    if (statement === 'parted' && filedOn <= asOf && statedOn <= asOf && (first === null || statedOn < first)) first = statedOn
+  return first
+}
+
+function* daysRunning(life: LifeHistory, asOf: Day) {
   // A filing day before the installation (time zones) says no more than the installation itself.
   yield Math.max(0, daysBetween(life.installedOn, life.filedOn))
   for (const { statement, statedOn, filedOn } of life.statements)
-    if (kinds.includes(statement) && filedOn <= asOf && statedOn <= asOf) yield daysBetween(life.installedOn, statedOn)
+    if (statement === 'running' && filedOn <= asOf && statedOn <= asOf) yield daysBetween(life.installedOn, statedOn)
 }
 
 function lastHeardDay(life: LifeHistory, asOf: Day): number {
-  return Math.max(...daysHeardOf(life, asOf, ['running', 'parted']))
+  const parted = partedOn(life, asOf)
+  return parted === null ? Math.max(...daysRunning(life, asOf)) : daysBetween(life.installedOn, parted)
 }
 
 /** The last day up to `upper` on which it is known to have run; day 0 at least, as it worked at first power. */
@@ -124,6 +136,6 @@ function lastRunningDay(life: LifeHistory, asOf: Day, upper: number): number {
   let last = 0
   const told = life.failure?.lastRunningOn
   if (told) last = Math.min(upper, Math.max(0, daysBetween(life.installedOn, told)))
-  for (const day of daysHeardOf(life, asOf, ['running'])) if (day <= upper && day > last) last = day
+  for (const day of daysRunning(life, asOf)) if (day <= upper && day > last) last = day
   return last
 }
