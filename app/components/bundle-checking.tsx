@@ -30,7 +30,7 @@ export function BundleChecking({
           { label: 'Take in the file', state: isReceived ? 'done' : 'now' },
           ...steps.map(({ name }, i) => ({ label: name, state: state(i) as 'done' | 'now' | 'waiting' }))
         ]}
-        hint="20 seconds at most. You can leave; the draft keeps the result."
+        hint="Mostly a few seconds. You can leave; the draft keeps the result."
       />
       <noscript>
         <p className="mt-3">

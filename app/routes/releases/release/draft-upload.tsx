@@ -47,7 +47,7 @@ export function DraftUpload({ page, path, maxBytes, refused, errors }: DraftUplo
         onDone={showFound}
       />
       <ErrorSummary errors={errors} before="it can be checked" />
-      {refusedFile && (
+      {refusedFile && !run && (
         <Warning severity="stop" heading="The file was refused">
           <p>
             {refusedFile.sentAs}, {exactBytes(refusedFile.bytes)}, could not be taken. Nothing of it is kept, and the draft has no
