@@ -130,12 +130,19 @@ export class BoardArea {
     return found
   }
 
-  /** How far a place is outside the board in mm, negative inside; exact up to `within` inside and `farthest` outside. */
+  /** How far a place is outside the board in mm, negative inside; exact up to `within` inside and `farthest` outside, from the board's box past it. */
   outsideness(x: number, y: number, within: number): Nearest {
+    this.work++
     const isOn = this.contains(x, y)
     const nearest = this.nearest(x, y, isOn ? within : farthest)
     if (isOn) nearest.distance = -nearest.distance
+    else if (nearest.segment < 0) nearest.distance = Math.max(farthest, this.fromBox(x, y))
     return nearest
+  }
+
+  private fromBox(x: number, y: number): number {
+    const { box } = this
+    return Math.hypot(Math.max(0, box.minX - x, x - box.maxX), Math.max(0, box.minY - y, y - box.maxY))
   }
 
   /** The distance of a place from the edge, however far it is. */

@@ -56,10 +56,10 @@ export async function checkBundle(
   const { reading, findings: fromReading } = await readBundle(zip, files, declared, limits, onStep)
   findings.push(...checkFiles(files))
   const presence = checkPresence(reading)
-  findings.push(...presence, ...checkOutline(reading), ...fromReading)
+  const outline = checkOutline(reading)
   const isHopeless = presence.some((f) => f.code === 'copper-missing' && f.found === 'none')
   if (isHopeless) {
-    const rest = onlyDefect(findings)
+    const rest = onlyDefect([...findings, ...presence, ...outline, ...fromReading])
     return {
       check: answer(
         files.map((f) => f.layer),
@@ -72,7 +72,10 @@ export async function checkBundle(
       source: null
     }
   }
-  findings.push(...checkAlignment(reading), ...checkLists(reading), ...checkRelease(reading))
+  const alignment = checkAlignment(reading)
+  const foreign = foreignCopper(files, alignment)
+  findings.push(...(foreign.size > 0 ? checkPresence(reading, foreign) : presence), ...outline, ...fromReading)
+  findings.push(...alignment, ...checkLists(reading), ...checkRelease(reading))
   const fingerprints = fingerprintsOf(reading)
   findings.push(...checkRevision(files, fingerprints, findings, declared))
   const all = { ...measureFacts(reading), ...sums(facts, files.length) }
@@ -87,6 +90,12 @@ export async function checkBundle(
     reading,
     source: zip
   }
+}
+
+/** Copper layers of another board, whose own word about their place in this one is not to be counted with. */
+function foreignCopper(files: FileReading[], alignment: BundleFinding[]): Set<FileReading> {
+  const misaligned = new Set(alignment.filter((f) => f.code === 'layer-misaligned').map((f) => f.file))
+  return new Set(files.filter(({ layer }) => layer.function === 'copper' && misaligned.has(layer.file)))
 }
 
 /** Archives inside the zip, all in one finding; those in place of a list or among papers are told there. */

@@ -1,6 +1,6 @@
-import { indexFlashes, indexHoles, openingsOver, shareOnFlashes } from './alignment'
+import { indexFlashes, indexHoles, openingsOver, shareOnFlashes, type FlashIndex } from './alignment'
 import type { BundleFinding } from './bundle-check.types'
-import type { BundleReading } from './bundle-reading.types'
+import type { BundleReading, FileReading } from './bundle-reading.types'
 import { drillFiles, percent, platedHoles, type Indexed } from './aligned-files'
 import { finding } from './finding'
 
@@ -8,6 +8,8 @@ import { finding } from './finding'
 const poor = { soldermask: 0.5, paste: 0.7 }
 /** The same for masks where holes are not known, over which many of their openings may lie (in a real board 56 %). */
 const poorWithoutHoles = 0.2
+/** From this share of a stencil's openings over its mask's on the two belong together. */
+const agreeing = 0.9
 const leastOpenings = { soldermask: 8, paste: 4 }
 
 /** Solder masks and stencils whose openings do not lie over the copper of their side. */
@@ -27,14 +29,14 @@ export function checkOpenings(reading: BundleReading, indices: Indexed[]): Bundl
     if (firstOff === null || share >= (fn === 'soldermask' && !knowsHoles ? poorWithoutHoles : poor[fn])) return []
     const side = file.layer.side === 'inner' ? null : file.layer.side
     const place = { x: flashes.x[firstOff]!, y: flashes.y[firstOff]!, side }
-    // Where the mask fits the holes better than the copper does, the copper is the foreign layer.
+    // Where the mask fits the holes better than the copper does, or mask and stencil fit each other, the copper is the foreign layer.
     const plated = drills.flatMap(platedHoles)
-    const ofMask = shareOnFlashes(indexFlashes(flashes), plated)
-    const isCopper = fn === 'soldermask' && plated.length >= 5 && ofMask > shareOnFlashes(copper.index, plated) + 0.2
+    const fitsHoles = () => shareOnFlashes(indexFlashes(flashes), plated) > shareOnFlashes(copper.index, plated) + 0.2
+    const isCopper = (fn === 'soldermask' && plated.length >= 5 && fitsHoles()) || agreesWithOther(reading, file, holes)
     const guilty = isCopper ? copper.file : file
     guilty.isBroken = true
     const message = isCopper
-      ? "The copper's pads lie neither under the openings of its mask nor on the holes: it is shifted, mirrored or of another board."
+      ? "The copper's pads lie neither under the openings of its mask or stencil nor on the holes: it is shifted, mirrored or of another board."
       : `The ${fn === 'paste' ? "stencil's" : "mask's"} openings do not lie over the pads of its side: it is shifted, mirrored or of another board.`
     return [
       finding('layer-misaligned', message, {
@@ -45,4 +47,17 @@ export function checkOpenings(reading: BundleReading, indices: Indexed[]): Bundl
       })
     ]
   })
+}
+
+/** Whether the stencil's openings lie over those of the mask on its side, asked for either of them. */
+function agreesWithOther(reading: BundleReading, file: FileReading, holes: FlashIndex): boolean {
+  const other = file.layer.function === 'paste' ? 'soldermask' : 'paste'
+  const second = reading.files.find(
+    ({ layer, isBroken, image }) => layer.function === other && layer.side === file.layer.side && !isBroken && image
+  )
+  if (!second) return false
+  const [paste, mask] = file.layer.function === 'paste' ? [file, second] : [second, file]
+  const { flashes } = paste.image!
+  if (flashes.x.length < leastOpenings.paste) return false
+  return openingsOver(indexFlashes(mask.image!.flashes), holes, flashes).share >= agreeing
 }

@@ -11,9 +11,10 @@ const isFabrication = (file: FileReading) =>
   ['copper', 'soldermask', 'paste', 'legend', 'outline', 'drill', 'drill-plated', 'drill-nonplated'].includes(file.layer.function)
 
 /** Copper layers that stand for different layers of the board. */
-export function distinctCopper(reading: BundleReading): FileReading[] {
+export function distinctCopper(reading: BundleReading, foreign: ReadonlySet<FileReading> = new Set()): FileReading[] {
   const seen = new Set<string>()
   return ofKind(reading, 'copper').filter((file) => {
+    if (foreign.has(file)) return true
     const key = file.layer.index === null ? `file ${file.layer.file}` : `layer ${file.layer.index}`
     if (seen.has(key)) return false
     seen.add(key)
@@ -21,14 +22,18 @@ export function distinctCopper(reading: BundleReading): FileReading[] {
   })
 }
 
-/** Layers that are missing, told twice, or numbered with gaps, and a layer count that differs from what is stated. */
-export function checkPresence(reading: BundleReading): BundleFinding[] {
+/**
+ * Layers that are missing, told twice, or numbered with gaps, and a layer count that differs from what is stated.
+ *
+ * @param foreign copper layers found to be of another board: their numbers tell nothing, each may stand for any layer
+ */
+export function checkPresence(reading: BundleReading, foreign: ReadonlySet<FileReading> = new Set()): BundleFinding[] {
   if (!reading.files.some(isFabrication)) {
     const expected = 'Gerber layers and drill files'
     return [finding('copper-missing', 'The zip holds no fabrication files that can be read.', { expected, found: 'none' })]
   }
-  const clashes = checkClashes(reading)
-  const findings = [...clashes, ...checkCopper(reading, clashes)]
+  const clashes = checkClashes(reading, foreign)
+  const findings = [...clashes, ...checkCopper(reading, clashes, foreign)]
   const hasCopperOn = (side: LayerSide) => ofKind(reading, 'copper').some((file) => file.layer.side === side)
   for (const side of sides) {
     const hasMask = ofKind(reading, 'soldermask').some((file) => file.layer.side === side)
@@ -48,9 +53,10 @@ export function checkPresence(reading: BundleReading): BundleFinding[] {
   return findings
 }
 
-function checkClashes(reading: BundleReading): BundleFinding[] {
+function checkClashes(reading: BundleReading, foreign: ReadonlySet<FileReading>): BundleFinding[] {
   const groups = new Map<string, FileReading[]>()
   for (const file of reading.files) {
+    if (foreign.has(file)) continue
     const { function: fn, side, index, evidence } = file.layer
     if (!['copper', 'soldermask', 'paste', 'legend', 'outline'].includes(fn)) continue
     if (fn !== 'outline' && side === null && index === null) continue
@@ -67,24 +73,26 @@ function checkClashes(reading: BundleReading): BundleFinding[] {
   })
 }
 
-function checkCopper(reading: BundleReading, clashes: BundleFinding[]): BundleFinding[] {
-  const copper = distinctCopper(reading)
+function checkCopper(reading: BundleReading, clashes: BundleFinding[], foreign: ReadonlySet<FileReading>): BundleFinding[] {
+  const copper = distinctCopper(reading, foreign)
+  const own = copper.filter((file) => !foreign.has(file))
   const stated = [
     { by: 'the job file', count: reading.job?.copperLayers ?? null },
     { by: 'the release form', count: reading.declared.declaredLayers ?? null }
   ].filter((s): s is { by: string; count: number } => s.count !== null)
   const isSingle = stated.some((s) => s.count === 1)
-  const missing = sides.filter((side) => !copper.some((file) => file.layer.side === side))
+  const absent = sides.filter((side) => !own.some((file) => file.layer.side === side))
+  const missing = absent.length <= copper.length - own.length ? [] : absent
   if (missing.length === 2 || (missing.length === 1 && !isSingle)) {
     const message =
       missing.length === 2 ? 'There is no copper layer for either side.' : `There is no copper layer for the ${missing[0]} side.`
     return [finding('copper-missing', message, { expected: missing.map((side) => `copper, ${side}`).join('; ') })]
   }
   if (clashes.some((clash) => clash.message.includes('copper'))) return []
-  const indices = copper.map((file) => file.layer.index).filter((index): index is number => index !== null)
+  const indices = own.map((file) => file.layer.index).filter((index): index is number => index !== null)
   const highest = Math.max(0, ...indices)
   const gaps = Array.from({ length: highest }, (_, i) => i + 1).filter((index) => !indices.includes(index))
-  if (gaps.length > 0 && gaps.length < 100 && indices.length === copper.length) {
+  if (gaps.length > copper.length - own.length && gaps.length < 100 && indices.length === own.length) {
     const message = `The copper layers are not numbered through: ${gaps.map((index) => `L${index}`).join(', ')} is missing.`
     return [finding('layer-gap', message, { expected: `layers 1 to ${highest}`, found: `${copper.length} layers` })]
   }
