@@ -3,7 +3,7 @@ import type { FindingPlace } from './bundle-check.types'
 import type { BundleReading, FileReading } from './bundle-reading.types'
 import { distanceToEdge } from './geometry'
 import type { RimCounts } from './hole-watch'
-import type { Hole } from './read-excellon'
+import type { Hole } from './drill-file.types'
 
 /** A copper layer with its flashes, ready to be asked what they cover. */
 export type Indexed = { file: FileReading; index: FlashIndex }

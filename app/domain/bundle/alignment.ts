@@ -1,5 +1,5 @@
 import type { Flashes } from './gerber-canvas'
-import type { Hole } from './read-excellon'
+import type { Hole } from './drill-file.types'
 
 /** Slack in mm when asking whether a hole falls on a pad: rounding of the drill file's coordinates. */
 const slack = 0.05

@@ -17,7 +17,7 @@ import { checkEdge } from './check-edge'
 import { checkOpenings } from './check-openings'
 import { finding, mm } from './finding'
 import { isMisfit, type RimCounts } from './hole-watch'
-import type { Hole } from './read-excellon'
+import type { Hole } from './drill-file.types'
 import { boxArea, overlapShare } from './geometry'
 
 /** Layers whose extents share less than this with the board's, both ways, lie beside it. */

@@ -15,7 +15,7 @@ import type { BundleReading, FileReading } from './bundle-reading.types'
 import { finding, mm } from './finding'
 import { boxOf, isFarOutside } from './geometry'
 import { isMisfit } from './hole-watch'
-import type { Hole } from './read-excellon'
+import type { Hole } from './drill-file.types'
 
 /** What coordinates are off by when the unit is wrong, the digits are, or both (2.4 in inches read as 3.3 in millimetres: 2.54). */
 const scales = [1, 25.4, 1 / 25.4]

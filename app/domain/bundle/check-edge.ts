@@ -5,7 +5,7 @@ import type { BundleReading, FileReading } from './bundle-reading.types'
 import type { EdgeSpot } from './edge-watch'
 import { finding, listed, mm } from './finding'
 import { distanceToEdge, isInside } from './geometry'
-import type { Hole } from './read-excellon'
+import type { Hole } from './drill-file.types'
 
 /** A pad of a half-hole reaches this far past its hole, in mm. */
 const halfHolePad = 1.2

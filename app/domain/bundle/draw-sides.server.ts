@@ -2,7 +2,7 @@ import pcbStackup from 'pcb-stackup'
 import { cleanSvg, type SvgPaint } from './clean-svg'
 import { drawLayer, markOf, type LayerDrawing } from './draw-layer.server'
 import type { Box, Path } from './geometry'
-import type { Hole } from './read-excellon'
+import type { Hole } from './drill-file.types'
 import { gerberOfContours, gerberOfHoles } from './write-gerber'
 
 /** Mask in petrol at 80 %, finish and legend as every board picture of Fettle's has them. */

@@ -1,6 +1,7 @@
 import { shareOnFlashes, type FlashIndex } from './alignment'
 import type { CheckLimits } from './limits'
-import { readExcellon, type DrillFile, type DrillFormat } from './read-excellon'
+import type { DrillFile, DrillFormat } from './drill-file.types'
+import { readExcellon } from './read-excellon'
 
 const inchDigits = [
   [2, 4],

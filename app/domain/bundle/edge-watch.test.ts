@@ -61,6 +61,17 @@ describe('copper at the edge', () => {
     expect(w.spots).toEqual([])
   })
 
+  it('is told without looking along the whole of strokes that run for metres', () => {
+    const area = BoardArea.of(findOutline([box(0, 0, 30, 20)], []))!
+    const w = new EdgeWatch(area)
+    for (let i = 0; i < 200; i++) {
+      const [x, y] = [4900 * Math.cos(i), 4900 * Math.sin(i)]
+      w.stroke([-x, -y, x, y], round(0.1), true)
+    }
+    expect(Math.max(...w.spots.map((spot) => spot.by))).toBeGreaterThan(4800)
+    expect(area.work).toBeLessThan(200 * 20_000)
+  })
+
   it('does not mean the thin line of the edge itself', () => {
     const w = watch(box(0, 0, 30, 20))
     w.stroke([0, 0, 30, 0], round(0.2), true)

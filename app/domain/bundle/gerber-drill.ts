@@ -1,5 +1,5 @@
 import type { GerberImage } from './read-gerber'
-import type { Hole } from './read-excellon'
+import type { Hole } from './drill-file.types'
 
 /** The holes of a drill file in Gerber form: round flashes are holes, obround ones and strokes slots of their aperture's width. */
 export function holesOfGerber(image: GerberImage): Hole[] {

@@ -2,7 +2,7 @@ import { sizedMark } from './aperture-mark'
 import type { LayerFingerprint } from './bundle-check.types'
 import type { BundleReading, FileReading } from './bundle-reading.types'
 import { addContour, addPoint, addStroke, seenFrom, WaveSum } from './geometry-sums'
-import type { Hole } from './read-excellon'
+import type { Hole } from './drill-file.types'
 
 /** Where positions are counted from, in mm. */
 type Origin = { x: number; y: number }

@@ -6,7 +6,8 @@ import { demoFiles, zipOf } from '../../../tests/factories/demo-bundle'
 import type { BundleCheck } from './bundle-check.types'
 import { checkBundle } from './check-bundle.server'
 import { defaultLimits } from './limits'
-import { readExcellon, type Hole } from './read-excellon'
+import type { Hole } from './drill-file.types'
+import { readExcellon } from './read-excellon'
 
 /**
  * One real board (its source stands in `LICENCES.md` beside it) written in other dialects and under other names: what is measured must stay

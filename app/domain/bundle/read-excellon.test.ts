@@ -2,7 +2,8 @@ import { describe, expect, it } from 'vitest'
 import { indexFlashes } from './alignment'
 import { settleDrillFormat } from './drill-format'
 import { defaultLimits } from './limits'
-import { readExcellon, type DrillFormat } from './read-excellon'
+import type { DrillFormat } from './drill-file.types'
+import { readExcellon } from './read-excellon'
 
 const read = (text: string, assume: Partial<DrillFormat> = {}) => readExcellon(Buffer.from(text), defaultLimits, assume)
 const places = (text: string) =>

@@ -1,5 +1,5 @@
 import type { Path } from './geometry'
-import type { Hole } from './read-excellon'
+import type { Hole } from './drill-file.types'
 
 const head = '%FSLAX46Y46*%\n%MOMM*%\nG01*\n'
 const at = (x: number, y: number) => `X${Math.round(x * 1e6)}Y${Math.round(y * 1e6)}`
