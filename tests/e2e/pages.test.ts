@@ -55,6 +55,7 @@ const pages: [name: string, path: string, who: string | null][] = [
   ['fit-answer', '/fit?console=talvi-16&revision=TM-1', null],
   ['guides', '/guides', null],
   ['guide-figures', '/guides/figures', null],
+  ['guide-worked', '/guides/worked-examples', null],
   ['guide-safety', '/guides/safety', null],
   ['guide-api', '/guides/api', null],
   ['sign-in', '/sign-in', null],
