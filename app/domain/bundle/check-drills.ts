@@ -22,7 +22,7 @@ const scales = [1, 25.4, 1 / 25.4]
   .flatMap((unit) => [1, 10, 0.1, 100, 0.01, 1000, 0.001].map((digits) => unit * digits))
   .filter((scale) => scale !== 1)
 /** A scale is believed when it brings this share of the holes onto pads, more than lie there unscaled by `muchBetter`. */
-const wellOnPads = 0.75
+const wellOnPads = 0.6
 const muchBetter = 0.3
 /** Scaled holes must fall on pads of their own: on this many different ones, as a share of the holes that fall on any. */
 const leastSpread = 0.5
