@@ -33,6 +33,7 @@ export default [
   route('report', 'routes/reports/file/page.tsx'),
   route('reports', 'routes/reports/mine/page.tsx'),
   route('reports/:id', 'routes/reports/one/page.tsx'),
+  route('calculators/survival', 'routes/calculators/survival/page.tsx'),
   route('boards/:board/reliability', 'routes/reliability/page.tsx'),
   route('boards/:board/reliability.csv', 'routes/reliability/csv/endpoint.ts'),
 

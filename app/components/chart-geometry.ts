@@ -174,3 +174,9 @@ export function timeAxis(lastDay: number, unit: TimeUnit): TimeAxis {
   const ticks = Array.from({ length: count + 1 }, (_, i) => ({ label: String(i * step), days: i * step * daysPer[unit] }))
   return { days: count * step * daysPer[unit], ticks }
 }
+
+/** An axis in the data's own unit of time, whatever that is: it holds `last`, with about five ticks on round numbers. */
+export function plainAxis(last: number): TimeAxis {
+  const ticks = roundTicks(last > 0 ? last : 1, 5)
+  return { days: ticks.at(-1)!, ticks: ticks.map((at) => ({ label: at >= 1e6 ? at.toExponential() : String(at), days: at })) }
+}

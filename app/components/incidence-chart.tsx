@@ -1,28 +1,30 @@
 import { ChartFrame } from './chart-frame'
-import { linear, roundTicks, spreadLabels, stepPath, timeAxis, type TimeUnit } from './chart-geometry'
+import { linear, plainAxis, roundTicks, spreadLabels, stepPath, timeAxis, type TimeUnit } from './chart-geometry'
 import { curveInks } from './curve-ink'
 import { TwoDrawings } from './figure'
 
 /** Share failed from one cause, over days. */
 export type CauseCurve = { name: string; points: { time: number; estimate: number }[] }
 
-export type IncidenceChartProps = { causes: CauseCurve[]; unit: TimeUnit }
+/** `plainUnit` as in the survival chart. */
+export type IncidenceChartProps = { causes: CauseCurve[]; unit: TimeUnit; plainUnit?: string }
 
 const unitWords: Record<TimeUnit, string> = { year: 'years', month: 'months', day: 'days' }
 const shareText = (share: number) => (share * 100).toFixed(1)
 const lastOf = (cause: CauseCurve) => cause.points.at(-1)?.estimate ?? 0
 
 /** Cumulative incidence by cause; causes compete, so the lines add up to the share that failed. At most four. */
-export function IncidenceChart({ causes, unit }: IncidenceChartProps) {
+export function IncidenceChart({ causes, ...rest }: IncidenceChartProps) {
   const drawn = causes.slice(0, 4)
-  return <TwoDrawings wide={<Drawing causes={drawn} unit={unit} />} narrow={<Drawing causes={drawn} unit={unit} isNarrow />} />
+  return <TwoDrawings wide={<Drawing causes={drawn} {...rest} />} narrow={<Drawing causes={drawn} {...rest} isNarrow />} />
 }
 
-function Drawing({ causes, unit, isNarrow }: IncidenceChartProps & { isNarrow?: boolean }) {
+function Drawing({ causes, unit, plainUnit, isNarrow }: IncidenceChartProps & { isNarrow?: boolean }) {
   const [width, plot] = isNarrow
     ? [328, { left: 44, right: 196, top: 26, bottom: 250 }]
     : [804, { left: 44, right: 614, top: 26, bottom: 270 }]
-  const axis = timeAxis(Math.max(1, ...causes.flatMap((c) => c.points.map((p) => p.time))), unit)
+  const last = Math.max(plainUnit === undefined ? 1 : 0, ...causes.map((c) => c.points.at(-1)?.time ?? 0))
+  const axis = plainUnit === undefined ? timeAxis(last, unit) : plainAxis(last)
   const yTicks = roundTicks(Math.max(1, ...causes.map((c) => lastOf(c) * 100)), 3)
   const x = linear(0, axis.days, plot.left, plot.right)
   const y = linear(0, yTicks.at(-1)!, plot.bottom, plot.top)
@@ -40,7 +42,7 @@ function Drawing({ causes, unit, isNarrow }: IncidenceChartProps & { isNarrow?: 
         yTicks={yTicks}
         xTicks={axis.ticks}
         yTitle="% failed from this cause"
-        xTitle={isNarrow ? unitWords[unit] : `${unitWords[unit]} after fitting`}
+        xTitle={plainUnit ?? (isNarrow ? unitWords[unit] : `${unitWords[unit]} after fitting`)}
       />
       {causes.map((cause, i) => {
         const ink = curveInks[i]!

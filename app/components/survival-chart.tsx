@@ -1,6 +1,15 @@
 import { useId } from 'react'
 import { ChartFrame } from './chart-frame'
-import { axisFloor, linear, percentTicks, timeAxis, visibleRuns, type SurvivalPoint, type TimeUnit } from './chart-geometry'
+import {
+  axisFloor,
+  linear,
+  percentTicks,
+  plainAxis,
+  timeAxis,
+  visibleRuns,
+  type SurvivalPoint,
+  type TimeUnit
+} from './chart-geometry'
 import { curveInks } from './curve-ink'
 import { TwoDrawings } from './figure'
 import { readingText } from './percent-text'
@@ -14,8 +23,10 @@ export type SurvivalChartProps = {
   series: SurvivalSeries[]
   /** In what the time axis is read; see `unitFor`. */
   unit: TimeUnit
+  /** Times of anybody's own data are counted in this unit ("weeks"), from wherever that data starts; `unit` and `asOf` then say nothing. */
+  plainUnit?: string
   /** The day up to which reports are counted. */
-  asOf: string
+  asOf?: string
   /** Where the figure at a line's end is read. */
   reading?: { days: number; words: string }
   /** One curve in a small figure: no label, no rows below. */
@@ -41,12 +52,13 @@ const inWords = (drawn: DrawnSeries[], props: SurvivalChartProps) => {
   const parts = [...drawn]
     .reverse()
     .map((s) => `${s.name}${s.isMarked && drawn.length > 1 ? ' (marked)' : ''} ${readingText(s.points, days, words)}`)
+  if (props.plainUnit !== undefined) return `Share still working by ${props.plainUnit}: ${parts.join('; ')}.`
   return `Share still working by ${unitWords[props.unit]} after fitting, as of ${props.asOf}: ${parts.join('; ')}.`
 }
 
 /** How far down (the marked band included) and how far to the right the drawn runs go. */
-function drawnExtent(drawn: DrawnSeries[]) {
-  let [lowest, lastDay] = [1, 1]
+function drawnExtent(drawn: DrawnSeries[], isPlain: boolean) {
+  let [lowest, lastDay] = [1, isPlain ? 0 : 1]
   for (const { points, isMarked } of drawn)
     for (const { weight, steps } of visibleRuns(points))
       for (const step of steps) {
@@ -81,12 +93,12 @@ function layout(drawn: DrawnSeries[], isNarrow: boolean, isSmall: boolean) {
 type DrawingProps = SurvivalChartProps & { drawn: DrawnSeries[]; isNarrow?: boolean }
 
 function Drawing({ drawn, isNarrow, ...props }: DrawingProps) {
-  const { isSmall, unit, reading = oneYear } = props
+  const { isSmall, unit, plainUnit, reading = oneYear } = props
   const clip = useId()
   const { width, plot, isStacked } = layout(drawn, isNarrow === true, isSmall === true)
-  const extent = drawnExtent(drawn)
+  const extent = drawnExtent(drawn, plainUnit !== undefined)
   const floor = axisFloor(extent.lowest)
-  const axis = timeAxis(extent.lastDay, unit)
+  const axis = plainUnit === undefined ? timeAxis(extent.lastDay, unit) : plainAxis(extent.lastDay)
   const x = linear(0, axis.days, plot.left, plot.right)
   const percent = linear(floor, 100, plot.bottom, plot.top)
   const y = (share: number) => percent(share * 100)
@@ -104,7 +116,7 @@ function Drawing({ drawn, isNarrow, ...props }: DrawingProps) {
         yTicks={percentTicks(floor, isNarrow || isSmall)}
         xTicks={axis.ticks}
         yTitle="% still working"
-        xTitle={isNarrow && !isSmall ? unitWords[unit] : `${unitWords[unit]} after fitting`}
+        xTitle={plainUnit ?? (isNarrow && !isSmall ? unitWords[unit] : `${unitWords[unit]} after fitting`)}
         isCut={floor > 0}
         isTight={isSmall}
       />

@@ -17,6 +17,7 @@ import type { Services } from './services.server'
  */
 export const streamsItsBody = ({ path, headers }: GuardedRequest) =>
   path.startsWith('/api/v1/compute/') ||
+  (path === '/calculators/survival' && isFileForm(headers['content-type'])) ||
   /^\/boards\/[^/]+\/releases\/[^/]+\/bundle(\.data)?$/.test(path) ||
   (/^\/boards\/[^/]+\/releases\/\d[^/]*$/.test(path) && isFileForm(headers['content-type']))
 

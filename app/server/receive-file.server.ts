@@ -199,7 +199,7 @@ const plainName = (name: string) =>
   (name.split(/[\\/]/).at(-1) ?? '').replace(/[\p{C}\p{Zl}\p{Zp}]/gu, '').slice(0, 120) || 'unnamed'
 
 /** Reads and forgets what a refused sender still sends, for a while. */
-function linger(source: Readable): void {
+export function linger(source: Readable): void {
   if (source.destroyed) return
   source.on('error', () => source.destroy())
   const timer = setTimeout(() => source.destroy(), lingerMs)

@@ -78,6 +78,8 @@ describe('refuseLargeBody', () => {
     ['a file where none is taken', 'POST', '/boards/x/releases/new', { 'content-length': '9000000', ...file }, 413],
     ['the same, written otherwise', 'POST', '/boards/x/releases/%6Eew', { 'content-length': '9000000', ...file }, 413],
     ['a computation', 'POST', '/api/v1/compute/survival', { 'content-length': '9000000' }, null],
+    ['a table for the calculator', 'POST', '/calculators/survival', { 'content-length': '9000000', ...file }, null],
+    ['another form of the calculator', 'POST', '/calculators/survival', { 'content-length': '9000000' }, 413],
     ['a path that only looks like it', 'POST', '/boards/x/y/releases/1.0.0/bundle', { 'content-length': '9000000' }, 413]
   ])('%s: %s %s', (_, method, path, headers, expected) => {
     expect(status(method, path, headers as Record<string, string>)).toBe(expected)

@@ -1,6 +1,7 @@
 import { parentPort } from 'node:worker_threads'
 import { DomainError } from '~/lib/domain-error'
 import { openDbReadOnly, type Db } from '~db/client.server'
+import { calculatorFigures } from '../survival/calculator-figures'
 import { survivalAnswer } from '../survival/compute-survival.server'
 import { computeReliability } from './compute-reliability.server'
 import type { WorkerAnswer, WorkerRequest, WorkerTask } from './worker-messages'
@@ -17,6 +18,7 @@ function database(file: string): Db {
 
 async function run(task: WorkerTask) {
   if (task.kind === 'survival') return survivalAnswer(task.body)
+  if (task.kind === 'calculator') return calculatorFigures(task.body, task.options)
   return await computeReliability(database(task.databaseFile), task.board, task.filters)
 }
 

@@ -1,4 +1,5 @@
 import type { ErrorKind, FieldError } from '~/lib/domain-error'
+import type { CalculatorFigures, CalculatorOptions } from '../survival/calculator-figures'
 import type { ReliabilityFigures } from './reliability-figures'
 import type { ReliabilityFilters } from './reliability-filters'
 
@@ -6,9 +7,11 @@ import type { ReliabilityFilters } from './reliability-filters'
 export type WorkerTask =
   | { kind: 'reliability'; databaseFile: string; board: string; filters: ReliabilityFilters }
   | { kind: 'survival'; body: ArrayBuffer }
+  /** A table as it came, for the calculator's page. */
+  | { kind: 'calculator'; body: ArrayBuffer; options: CalculatorOptions }
 
 /** What each task gives; `survival` gives JSON text, so that the server only passes it on. */
-export type WorkerResults = { reliability: ReliabilityFigures; survival: string }
+export type WorkerResults = { reliability: ReliabilityFigures; survival: string; calculator: CalculatorFigures }
 
 export type WorkerRequest = { id: number; task: WorkerTask }
 export type WorkerAnswer =

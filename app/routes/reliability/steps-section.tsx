@@ -69,6 +69,10 @@ export function StepsSection({ number, here, shown }: { number: number; here: st
         hrefOf={hrefOf}
         words={{ back: 'Before', on: 'After' }}
       />
+      <p className="small mt-6">
+        Lives of your own? <TextLink href="/calculators/survival">The survival calculator</TextLink> makes the same figures from
+        any table.
+      </p>
     </Section>
   )
 }
