@@ -53,7 +53,7 @@ export function ChartFrame({ plot, x, y, yTicks, xTicks, yTitle, xTitle, isCut, 
           {xTitle}
         </text>
       ) : (
-        <text x={right + 12} y={bottom + 21} className="t-soft">
+        <text x={right + Math.max(12, 4 + 4 * (xTicks.at(-1)?.label.length ?? 0))} y={bottom + 21} className="t-soft">
           {xTitle}
         </text>
       )}
