@@ -54,6 +54,16 @@ describe('words', () => {
   })
 })
 
+it('incidences end where too few are at risk', () => {
+  // 8 units: causes a at 1, b at 2, a at 5 (4 at risk then). Share by hand: a 1/8, b 7/8 * 1/7 = 1/8.
+  const [group] = figuresOf('time,cause\n1,a\n2,b\n3,0\n4,0\n5,a\n6,0\n7,0\n8,0').groups
+  expect(group!.causes.map(({ name, until }) => [name, until])).toEqual([
+    ['a', 4],
+    ['b', 4]
+  ])
+  for (const { last } of group!.causes) expect(last).toBeCloseTo(1 / 8, 12)
+})
+
 describe('bounds', () => {
   it('a curve of many steps is cut down for the page, and its answer left to the endpoint', () => {
     const figures = figuresOf(Array.from({ length: 6000 }, (_, i) => `${i + 0.5},${i % 3 === 0 ? 1 : 0}`).join('\n'))

@@ -1,5 +1,6 @@
 import { csvFile } from '~/lib/csv'
 import { DomainError } from '~/lib/domain-error'
+import { tooFew } from '../reliability/reliability-words'
 import { allUnits, calculatorSentence, readingTime, shapeLimits, shapeSentence, type Limited } from './calculator-words'
 import { computeSurvival } from './compute-survival'
 import { parseSurvivalRequest } from './compute-survival.schema'
@@ -31,7 +32,14 @@ export type CalculatorGroup = {
   points: CalculatorPoint[] | null
   steps: AnswerRow[]
   stepCount: number
-  causes: { name: string; points: { time: number; estimate: number }[]; last: number; standardError: number }[]
+  /** Incidence by cause up to `until`; null where too few were ever at risk. */
+  causes: {
+    name: string
+    points: { time: number; estimate: number }[]
+    until: number | null
+    last: number | null
+    standardError: number | null
+  }[]
   support: { lower: number; upper: number | null; mass: number }[]
   supportCount: number
 }
@@ -139,15 +147,25 @@ function groupFigures(group: GroupAnswer, isDrawn: boolean, steps: AnswerRow[], 
       : null,
     steps,
     stepCount: group.curve.length,
-    causes: (group.incidence ?? []).map(({ cause, curve }) => ({
-      name: cause,
-      points: isDrawn ? thinPoints(curve.map(({ time, estimate }) => ({ time, estimate, censored: 0 }))) : [],
-      last: curve.at(-1)?.estimate ?? 0,
-      standardError: curve.at(-1)?.standardError ?? 0
-    })),
+    causes: causesOf(group, isDrawn),
     support: (group.support ?? []).slice(0, maxSupport),
     supportCount: group.support?.length ?? 0
   }
+}
+
+/** Incidences up to the last time at which enough were at risk: past it one unit more or less would move them too far. */
+function causesOf({ curve, incidence = [] }: GroupAnswer, isDrawn: boolean): CalculatorGroup['causes'] {
+  const until = curve.findLast(({ atRisk }) => atRisk >= tooFew)?.time ?? -1
+  return incidence.map(({ cause, curve: steps }) => {
+    const told = steps.filter(({ time }) => time <= until)
+    return {
+      name: cause,
+      points: isDrawn ? thinPoints(told.map(({ time, estimate }) => ({ time, estimate, censored: 0 }))) : [],
+      until: told.at(-1)?.time ?? null,
+      last: told.at(-1)?.estimate ?? null,
+      standardError: told.at(-1)?.standardError ?? null
+    }
+  })
 }
 
 /** Normal limits, within what a mean up to tau can be. */

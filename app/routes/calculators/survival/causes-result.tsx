@@ -2,12 +2,14 @@ import { Figure } from '~/components/figure'
 import { IncidenceChart } from '~/components/incidence-chart'
 import { Section, SubHeading } from '~/components/section'
 import { Table } from '~/components/table'
+import { tooFew } from '~/domain/reliability/reliability-words'
 import type { CalculatorFigures } from '~/domain/survival/calculator-figures'
+import { timeText } from '~/domain/survival/calculator-words'
 import { chartName } from './chart-name'
 
 /** Cumulative incidence by cause, a figure for each group that is drawn. */
 export function CausesResult({ number, figures: { groups, options } }: { number: number; figures: CalculatorFigures }) {
-  const drawn = groups.filter((g) => g.points !== null && g.causes.length > 0)
+  const drawn = groups.filter((g) => g.points !== null && g.causes.some((cause) => cause.points.length > 0))
   const rows = groups.flatMap((g) => g.causes.map((cause) => ({ group: g.name, ...cause }))).slice(0, 200)
   return (
     <Section number={number} heading="What failed">
@@ -28,14 +30,20 @@ export function CausesResult({ number, figures: { groups, options } }: { number:
       ))}
       <Table
         number={2}
-        caption="Share failed from each cause by the end of the follow-up, with its standard error."
+        caption={`Share failed from each cause by the last time at which ${tooFew} units were at risk, with its standard error.`}
         rows={rows}
         rowKey={(row) => `${row.group}\n${row.name}`}
         columns={[
           ...(groups.length > 1 ? [{ key: 'group', head: 'Group', cell: (row: (typeof rows)[number]) => row.group }] : []),
           { key: 'cause', head: 'Cause', isRowHead: true, className: 'break-words', cell: (row) => row.name },
-          { key: 'share', head: 'Share failed', isFigure: true, cell: (row) => row.last.toFixed(4) },
-          { key: 'error', head: 'Standard error', isFigure: true, cell: (row) => row.standardError.toFixed(4) }
+          {
+            key: 'until',
+            head: `By, ${options.timeUnit}`,
+            isFigure: true,
+            cell: (row) => (row.until === null ? '' : timeText(row.until))
+          },
+          { key: 'share', head: 'Share failed', isFigure: true, cell: (row) => row.last?.toFixed(4) ?? 'too few' },
+          { key: 'error', head: 'Standard error', isFigure: true, cell: (row) => row.standardError?.toFixed(4) ?? '' }
         ]}
       />
     </Section>
@@ -43,6 +51,6 @@ export function CausesResult({ number, figures: { groups, options } }: { number:
 }
 
 function largest(causes: CalculatorFigures['groups'][number]['causes']) {
-  const most = [...causes].sort((a, b) => b.last - a.last).slice(0, 4)
+  const most = [...causes].sort((a, b) => (b.last ?? 0) - (a.last ?? 0)).slice(0, 4)
   return most.map((cause, i) => ({ name: chartName(most, i), points: cause.points }))
 }

@@ -11,7 +11,7 @@ export function SupportResult({ number, figures: { groups, options } }: { number
     <Section number={number} heading="Where the failures can lie">
       <p className="mb-4 max-w-[66ch]">
         The data place failures only within these intervals, and say nothing about where inside them: there the share still
-        working is not determined. Before the first, between them and after the last it is.
+        working is not determined. Outside them it is.
       </p>
       <Table
         number={2}
