@@ -29,7 +29,7 @@ describe('the empty page and its examples', () => {
     const answer = await site.browser().fetch(path)
     const html = await answer.text()
     expect(answer.status).toBe(200)
-    expect(answer.headers.get('Cache-Control')).toBe('no-store')
+    expect(answer.headers.get('Cache-Control')).toBe('private, no-store')
     expect(html).toMatch(/enctype="multipart\/form-data"/i)
     expect(html.match(/\?example=[a-z-]+/g)).toEqual(['?example=batches', '?example=causes', '?example=check-ins'])
   })
@@ -55,7 +55,7 @@ describe('a table', () => {
   it('pasted: sentence, curve, steps and the answer to copy; the form comes back filled in', async () => {
     const { status, headers, html, text } = await send({ data: twenty, tau: '10,5', confidence: '90', interval: 'plain' })
     expect(status).toBe(200)
-    expect(headers.get('Cache-Control')).toBe('no-store')
+    expect(headers.get('Cache-Control')).toBe('private, no-store')
     expect(curves(html)).toBe(2)
     expect(text).toMatch(
       /Of 20 units followed, 10 failed\. About \d+ of 100 still worked \(90\s% interval \d+ to \d+\) \(10\.5 weeks\)/

@@ -40,7 +40,7 @@ export const meta: Route.MetaFunction = () => [
   }
 ]
 
-export const headers: Route.HeadersFunction = () => ({ 'Cache-Control': 'no-store' })
+export const headers: Route.HeadersFunction = () => ({ 'Cache-Control': 'private, no-store' })
 
 export function loader({ url, context }: Route.LoaderArgs) {
   return answerPage(url, async (): Promise<Answer | null> => {
