@@ -20,6 +20,7 @@ export default defineConfig({
         test: {
           ...common,
           name: 'unit',
+          pool: 'threads',
           root: at('..'),
           include: ['app/**/*.test.{ts,tsx}', 'db/**/*.test.ts', 'storage-fake/**/*.test.ts', 'tests/unit/**/*.test.ts']
         }

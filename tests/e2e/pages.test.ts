@@ -103,12 +103,13 @@ describe.each(pages)('%s', (name, path, who) => {
   it(`${path} is readable at every width, in light and dark`, async () => {
     const { page, close } = await openPage(chromium, { baseURL: site.url }, statusLines)
     if (who) await page.context().addCookies(cookies.get(who)!)
+    // Width and colours change by styles alone: one load serves all views.
+    const answer = await page.goto(path, { waitUntil: 'load' })
+    expect(answer!.status(), path).toBeLessThan(500)
+    await page.locator('h1').waitFor()
     for (const { width, colorScheme, withAxe } of shots ? [...views, ...shotViews] : views) {
       await page.setViewportSize({ width, height: 800 })
       await page.emulateMedia({ colorScheme })
-      const answer = await page.goto(path, { waitUntil: 'load' })
-      expect(answer!.status(), path).toBeLessThan(500)
-      await page.locator('h1').waitFor()
       const sideways = await page.evaluate(() => document.documentElement.scrollWidth - document.documentElement.clientWidth)
       expect(sideways, `scrolls sideways at ${width} px`).toBe(0)
       if (shots) await page.screenshot({ path: join(shots, `${name}-${width}-${colorScheme}.png`), fullPage: true })
