@@ -45,6 +45,7 @@ export default defineConfig({
           include: ['tests/e2e/**/*.test.ts'],
           // Each file has a site and a browser of its own.
           maxWorkers: 2,
+          maxConcurrency: 2,
           testTimeout: 240_000
         }
       }

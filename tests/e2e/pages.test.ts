@@ -99,7 +99,7 @@ afterAll(async () => {
 /** A page that answers 4xx is logged by the browser as a resource that failed. */
 const statusLines = [/Failed to load resource: the server responded with a status of 4\d\d/]
 
-describe.each(pages)('%s', (name, path, who) => {
+describe.concurrent.each(pages)('%s', (name, path, who) => {
   it(`${path} is readable at every width, in light and dark`, async () => {
     const { page, close } = await openPage(chromium, { baseURL: site.url }, statusLines)
     if (who) await page.context().addCookies(cookies.get(who)!)

@@ -1,6 +1,7 @@
 import type { FindingCode, Severity } from './finding-codes'
 import type { Box } from './geometry'
 import type { PartReading } from './part-reading.types'
+import type { BomLine } from './read-bom'
 import type { Placed } from './read-placement'
 
 /** What a file of a bundle is for. The drill kinds say whether the holes are plated; `drill` when the file does not tell. */
@@ -110,15 +111,7 @@ export type LayerFingerprint = {
 }
 
 /** One line of the bill of materials with what could be read out of its value. */
-export type BundlePart = {
-  designators: string[]
-  quantity: number | null
-  value: string
-  footprint: string
-  description: string
-  isFitted: boolean
-  reading: PartReading
-}
+export type BundlePart = BomLine & { reading: PartReading }
 
 /** What is kept of a bundle beside the answer: to compare releases, and for everything that is computed from the parts. */
 export type BundleRecord = {

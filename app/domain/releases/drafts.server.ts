@@ -15,7 +15,8 @@ import { precedenceKey, type Version } from './version'
 
 type Deps = { db: Db; now: () => Date }
 
-const detailColumns = (draft: Draft) => ({
+/** What a draft's form says, as columns of its row. */
+export const detailColumns = (draft: Draft) => ({
   board_revision: draft.boardRevision,
   notes_md: draft.notes,
   declared_layers: draft.layers ?? null,

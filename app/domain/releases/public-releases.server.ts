@@ -3,6 +3,7 @@ import { visitor } from '~/domain/accounts/can'
 import { boardBySlug } from '~/domain/boards/boards.server'
 import type { BundleFacts } from '~/domain/bundle/bundle-check.types'
 import { DomainError } from '~/lib/domain-error'
+import { declaredOf } from './declared-of.server'
 import * as downloads from './downloads.repo.server'
 import * as findings from './findings.repo.server'
 import * as repo from './releases.repo.server'
@@ -49,13 +50,7 @@ export async function releaseDetail(db: Db, slug: string, version: string) {
   return {
     ...summary(release),
     declared: {
-      layers: release.declared_layers,
-      thicknessMm: release.declared_thickness_mm,
-      copperUm: release.declared_copper_um,
-      finish: release.declared_finish,
-      mask: release.declared_mask,
-      legend: release.declared_legend,
-      stencil: release.declared_stencil,
+      ...declaredOf(release),
       note: release.order_note === '' ? null : release.order_note
     },
     notes: release.notes_md,

@@ -7,6 +7,7 @@ import { dayOf } from '~/lib/dates'
 import { renderMarkdown } from '~/server/markdown.server'
 import { runOf } from './check-runs.server'
 import { declaredBesideMeasured } from './declared-beside-measured'
+import { declaredOf } from './declared-of.server'
 import * as downloads from './downloads.repo.server'
 import * as findingsRepo from './findings.repo.server'
 import * as layerPicturesRepo from './layer-pictures.repo.server'
@@ -93,19 +94,7 @@ export async function releasePage(db: Db, actor: Actor, slug: string, version: s
     /** What is going on with its bundle now. */
     run: runOf(release.id),
     facts,
-    factRows: declaredBesideMeasured(
-      {
-        layers: release.declared_layers,
-        thicknessMm: release.declared_thickness_mm,
-        copperUm: release.declared_copper_um,
-        finish: release.declared_finish,
-        mask: release.declared_mask,
-        legend: release.declared_legend,
-        stencil: release.declared_stencil
-      },
-      facts,
-      new Set(findings.map((f) => f.code))
-    ),
+    factRows: declaredBesideMeasured(declaredOf(release), facts, new Set(findings.map((f) => f.code))),
     pictures: {
       top: pictureOf(release.picture_top_sha256, slug, version, 'top'),
       bottom: pictureOf(release.picture_bottom_sha256, slug, version, 'bottom')

@@ -4,6 +4,8 @@ import type { Box } from '~/domain/bundle/geometry'
 import type { Actor } from '~/domain/accounts/can'
 import { draftToEdit } from './board-releases.server'
 import { changeRows, type ChangesShown } from './change-rows'
+import { declaredOf } from './declared-of.server'
+import { detailColumns } from './drafts.server'
 import * as findings from './findings.repo.server'
 import { previousOf } from './previous-release'
 import * as record from './record.repo.server'
@@ -53,15 +55,7 @@ async function sideOf(db: Db, release: Row): Promise<ReleaseSide> {
       side,
       index: layer_index
     })),
-    declared: {
-      layers: release.declared_layers,
-      thicknessMm: release.declared_thickness_mm,
-      copperUm: release.declared_copper_um,
-      finish: release.declared_finish,
-      mask: release.declared_mask,
-      legend: release.declared_legend,
-      stencil: release.declared_stencil
-    }
+    declared: declaredOf(release)
   }
 }
 
@@ -114,14 +108,7 @@ export async function startNotesOf(
   const changed = await whatChanged(db, {
     ...release,
     version: entered.version.text,
-    board_revision: entered.boardRevision,
-    declared_layers: entered.layers ?? null,
-    declared_thickness_mm: entered.thicknessMm ?? null,
-    declared_copper_um: entered.copperUm ?? null,
-    declared_finish: entered.finish ?? null,
-    declared_mask: entered.mask ?? null,
-    declared_legend: entered.legend ?? null,
-    declared_stencil: entered.stencil ?? null
+    ...detailColumns(entered)
   })
   return changed && { ...startNotes(whatChangedNotes(changed), notes), since: changed.since }
 }
