@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { observationOf, type LifeHistory, type UnitObservation } from '~/domain/reports/observations'
+import { allReports, observationOf, type LifeHistory, type UnitObservation } from '~/domain/reports/observations'
 import { clopperPearson } from '~/domain/survival/clopper-pearson'
 import { columnsOf } from '~/domain/survival/columns'
 import { garwood } from '~/domain/survival/garwood'
@@ -33,7 +33,9 @@ const watched: Watched[] = told.flatMap(({ kind, reportId }) => {
     reportId,
     releaseId: r.release_id,
     revisionId: r.console_revision_id,
+    batchId: null,
     evidence: r.evidence,
+    method: r.method ?? null,
     firstPower: r.first_power,
     installedOn: r.installed_on,
     filedOn: r.filed_on,
@@ -50,7 +52,7 @@ const watched: Watched[] = told.flatMap(({ kind, reportId }) => {
         }
       : null
   }
-  const seen = observationOf(life, demoAsOf, { evidence: 'any', worksAtFirstPowerOnly: false })
+  const seen = observationOf(life, demoAsOf, allReports)
   return seen.kind === 'observed' ? [{ kind, seen }] : []
 })
 

@@ -3,7 +3,7 @@ import { lifeOf } from '../../../tests/factories/life-history'
 import { guideSections, numbersIn } from '../../../tests/support/guide-tables'
 import { daysBetween } from '~/lib/dates'
 import { lowerPercent, tooFew } from '../reliability/reliability-words'
-import { observationOf, promptDays, type LifeOutcome } from '../reports/observations'
+import { allReports, observationOf, promptDays, type LifeOutcome } from '../reports/observations'
 import { firstPowerWords } from '../reports/report-words'
 import { aalenJohansen } from '../survival/aalen-johansen'
 import { batchWatch } from '../survival/batch-watch'
@@ -75,7 +75,7 @@ describe('the worked examples', () => {
       })
       const life = lifeOf([`fitted ${installedOn}`, `filed ${filed}: ${power!.replace(' ', '-')}`, ...facts].join('; '))
       expect(firstPowerWords[life.firstPower].label.toLowerCase()).toBe(power)
-      const outcome = observationOf(life, asOf, { evidence: 'any', worksAtFirstPowerOnly: false })
+      const outcome = observationOf(life, asOf, allReports)
       return [
         unit,
         ...outcomeCells(

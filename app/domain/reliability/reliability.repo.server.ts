@@ -3,6 +3,7 @@ import { addDays, dayOf } from '~/lib/dates'
 import { DomainError } from '~/lib/domain-error'
 import type { DbOrTx, Tx } from '~db/client.server'
 import type { LifeHistory } from '../reports/observations'
+import type { FilterChoices } from './reliability-filters'
 
 const published = ['trial', 'released', 'withdrawn'] as const
 /** More than this is refused rather than half read. */
@@ -24,8 +25,34 @@ export const listReleases = (db: DbOrTx, boardId: string) =>
     .where('board_id', '=', boardId)
     .where('state', 'in', published)
     .orderBy('precedence_key', 'desc')
-    .select(['id', 'version', 'state'])
+    .select(['id', 'version', 'state', 'board_revision'])
     .limit(500)
+    .execute()
+
+export const maxBatches = 1_000
+
+/** What the filters of a board's figures can name. */
+export const choicesOf = (
+  releases: readonly { version: string; board_revision: string }[],
+  revisions: readonly { code: string }[],
+  batches: readonly { version: string; code: string }[]
+): FilterChoices => ({
+  releases: releases.map((r) => ({ version: r.version, boardRevision: r.board_revision })),
+  revisions: revisions.map((r) => r.code),
+  batches
+})
+
+/** The newest batches of a board's published releases. */
+export const listBatches = (db: DbOrTx, boardId: string, limit: number) =>
+  db
+    .selectFrom('batches as t')
+    .innerJoin('releases as v', 'v.id', 't.release_id')
+    .where('v.board_id', '=', boardId)
+    .where('v.state', 'in', published)
+    .orderBy('t.made_on', 'desc')
+    .orderBy('t.code', 'desc')
+    .select(['t.id', 't.code', 't.made_on', 't.quantity', 't.release_id', 'v.version'])
+    .limit(limit)
     .execute()
 
 export const listRevisions = (db: DbOrTx, consoleId: string) =>
@@ -47,13 +74,16 @@ export async function listLives(tx: Tx, releaseId: string, revisionId: string | 
   const reports = await tx
     .selectFrom('install_reports as r')
     .leftJoin('failures as f', 'f.report_id', 'r.id')
+    .leftJoin('units as u', 'u.tag', 'r.unit_tag')
     .where('r.release_id', '=', releaseId)
     .$if(revisionId !== null, (q) => q.where('r.console_revision_id', '=', revisionId))
     .where('r.filed_at', '<', before)
     .select([
       'r.id',
       'r.console_revision_id',
+      'u.batch_id',
       'r.evidence',
+      'r.method',
       'r.first_power',
       'r.installed_on',
       'r.filed_on',
@@ -73,7 +103,9 @@ export async function listLives(tx: Tx, releaseId: string, revisionId: string | 
       reportId: r.id,
       releaseId,
       revisionId: r.console_revision_id,
+      batchId: r.batch_id,
       evidence: r.evidence,
+      method: r.method,
       firstPower: r.first_power,
       installedOn: r.installed_on,
       filedOn: r.filed_on,

@@ -4,7 +4,7 @@ import { DomainError } from '~/lib/domain-error'
 import type { Services } from '~/server/services.server'
 import type { Db } from '~db/client.server'
 import { fillReportWorld, openTestDb } from '../../../tests/factories/report-world'
-import type { ReliabilityFilters } from './reliability-filters'
+import { readFilters, type ReliabilityFilters } from './reliability-filters'
 import { listLives } from './reliability.repo.server'
 import { reliabilityOf } from './reliability.server'
 import { closeWorkers } from './worker-client.server'
@@ -13,13 +13,7 @@ let services: Services
 let db: Db
 let close: () => Promise<void>
 const start = dayNumber('2024-01-01')
-const everything: ReliabilityFilters = {
-  release: null,
-  revision: null,
-  evidence: 'any',
-  firstPower: 'counted',
-  asOf: '2026-12-01'
-}
+const everything: ReliabilityFilters = readFilters(new URLSearchParams(), '2026-12-01').filters
 
 type Life = {
   revision: string

@@ -42,14 +42,9 @@ export async function reliabilityQuestion({ db, now }: Services, boardSlug: stri
   const revisions = await repo.listRevisions(db, board.console_id)
   const today = dayOf(now())
   const { filters, errors } = readFilters(query, today)
-  errors.push(
-    ...unknownNames(
-      filters,
-      releases.map((r) => r.version),
-      revisions.map((r) => r.code)
-    )
-  )
-  return { board, releases, revisions, filters, errors, today }
+  const batches = await repo.listBatches(db, board.id, repo.maxBatches)
+  errors.push(...unknownNames(filters, repo.choicesOf(releases, revisions, batches)))
+  return { board, releases, revisions, batches, filters, errors, today }
 }
 
 /**

@@ -1,5 +1,6 @@
 import { Worker } from 'node:worker_threads'
 import { afterEach, describe, expect, it } from 'vitest'
+import { readFilters } from './reliability-filters'
 import { WorkerClient } from './worker-client.server'
 import type { WorkerTask } from './worker-messages'
 
@@ -10,7 +11,7 @@ const task: WorkerTask = {
   kind: 'reliability',
   databaseFile: '',
   board: 'b',
-  filters: { release: null, revision: null, evidence: 'any', firstPower: 'counted', asOf: '2026-12-01' }
+  filters: readFilters(new URLSearchParams(), '2026-12-01').filters
 }
 let client: WorkerClient
 afterEach(() => client.close())

@@ -6,10 +6,10 @@ import { columnsOf } from '../survival/columns'
 import { kaplanMeier } from '../survival/kaplan-meier'
 import { checkObservations } from '../survival/observation'
 import { tallyOf } from '../survival/tally'
-import { observationOf, promptDays, type LifeHistory, type ObservationFilters } from './observations'
+import { allReports, observationOf, promptDays, type LifeHistory } from './observations'
 import { causes, exclusionKinds, firstPowerResults } from './report-words'
 
-const all: ObservationFilters = { evidence: 'any', worksAtFirstPowerOnly: false }
+const all = allReports
 const asOf = '2026-12-01'
 const observe = (life: LifeHistory, on: Day = asOf) => observationOf(life, on, all)
 
@@ -32,7 +32,7 @@ describe('each rule once', () => {
     ['parted', `${inTime}; ran 2025-02-01; parted 2025-03-01`, '0 to 59, running'],
     ['excluded', `${inTime}; ran 2025-07-01; excluded 2025-08-01 duplicate`, 'excluded: duplicate'],
     ['filed after the as-of day', `${fitted}; filed 2026-12-02: works`, 'not-yet'],
-    ['fitted tomorrow, in a zone where it is that day', 'fitted 2026-12-02; filed 2026-12-01: works', 'not-yet']
+    ['fitted tomorrow, in a zone where it is that day', 'fitted 2026-12-02; filed 2026-12-01: works', '0 to 0, running']
   ])('%s', (_what, history, expected) => {
     expect(outcomeText(observe(lifeOf(history)))).toBe(expected)
   })
@@ -145,7 +145,9 @@ describe('disputed reports', () => {
   it('stay counted: a history holds nothing that a maintainer could say', () => {
     const life = lifeOf(`${inTime}; failed 2025-07-01 board, last ran 2025-06-30`)
     expect(Object.keys(life).sort()).toEqual(
-      'evidence exclusion failure filedOn firstPower installedOn releaseId reportId revisionId statements'.split(' ')
+      'batchId evidence exclusion failure filedOn firstPower installedOn method releaseId reportId revisionId statements'.split(
+        ' '
+      )
     )
     const disputed = { ...life, dispute: { by: 'maintainer', on: '2025-07-02', text: 'It was not the board.' } }
     expect(observe(disputed)).toEqual(observe(life))
@@ -185,26 +187,33 @@ describe('a unit that is taken out and fitted anew', () => {
 })
 
 const day = (max: number) => fc.integer({ min: 0, max }).map((n) => addDays('2025-01-01', n))
+const later = (a: Day, b: Day) => (a > b ? a : b)
 const anyLife: fc.Arbitrary<LifeHistory> = fc.record({
   reportId: fc.constant('r'),
   releaseId: fc.constant('v'),
   revisionId: fc.constant('c'),
+  batchId: fc.constant(null),
   evidence: fc.constant('measured'),
+  method: fc.constant(null),
   firstPower: fc.constantFrom('works' as const, ...firstPowerResults),
   installedOn: fc.constant('2025-01-01'),
   filedOn: day(120),
   exclusion: fc.option(fc.record({ kind: fc.constantFrom(...exclusionKinds), on: day(700) }), { freq: 9 }),
   statements: fc.array(
-    fc.record({ statement: fc.constantFrom('running', 'running', 'parted'), statedOn: day(600), filedOn: day(700) }),
+    fc
+      .record({ statement: fc.constantFrom('running', 'running', 'parted'), statedOn: day(600), filedOn: day(700) })
+      .map((said) => ({ ...said, filedOn: later(said.statedOn, said.filedOn) })),
     { maxLength: 5 }
   ),
   failure: fc.option(
-    fc.record({
-      lastRunningOn: fc.option(day(600)),
-      foundOn: day(600),
-      cause: fc.constantFrom(...causes),
-      filedOn: day(700)
-    })
+    fc
+      .record({
+        lastRunningOn: fc.option(day(600)),
+        foundOn: day(600),
+        cause: fc.constantFrom(...causes),
+        filedOn: day(700)
+      })
+      .map((failure) => ({ ...failure, filedOn: later(failure.foundOn, failure.filedOn) }))
   )
 })
 

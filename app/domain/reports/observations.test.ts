@@ -2,9 +2,9 @@ import { describe, expect, it } from 'vitest'
 import { kaplanMeier } from '~/domain/survival/kaplan-meier'
 import { columnsOf } from '~/domain/survival/columns'
 import { tallyOf } from '~/domain/survival/tally'
-import { countsAgainstBoard, observationOf, type LifeHistory, type ObservationFilters } from './observations'
+import { allReports, countsAgainstBoard, observationOf, type LifeHistory } from './observations'
 
-const all: ObservationFilters = { evidence: 'any', worksAtFirstPowerOnly: false }
+const all = allReports
 const asOf = '2026-12-01'
 
 /** Fitted 2025-01-01, filed the day after, nothing said since. */
@@ -12,6 +12,8 @@ const life = (change: Partial<LifeHistory> = {}): LifeHistory => ({
   reportId: 'r',
   releaseId: 'v',
   revisionId: 'c',
+  batchId: null,
+  method: null,
   evidence: 'measured',
   firstPower: 'works',
   installedOn: '2025-01-01',

@@ -1,12 +1,15 @@
 import { daysBetween, type Day } from '~/lib/dates'
-import type { Cause, EvidenceGrade, ExclusionKind, FirstPower } from './report-words'
+import type { Cause, EvidenceGrade, ExclusionKind, FirstPower, InstallMethod } from './report-words'
 
 /** What the database knows of one fitted unit. Days are calendar days; `filedOn` of each row is the day Fettle was told. */
 export type LifeHistory = {
   reportId: string
   releaseId: string
   revisionId: string
+  /** The batch of its unit tag; null for an untagged board. */
+  batchId: string | null
   evidence: EvidenceGrade
+  method: InstallMethod | null
   firstPower: FirstPower
   installedOn: Day
   filedOn: Day
@@ -47,16 +50,23 @@ export type LifeOutcome =
 
 export type ObservationFilters = {
   evidence: readonly EvidenceGrade[] | 'any'
+  /** `untold`: only those whose author did not say. */
+  method: InstallMethod | 'untold' | 'any'
+  /** Only units fitted on this day or later. */
+  since: Day | null
   /** Only units that worked at first power: the question becomes how long a working one lasts. */
   worksAtFirstPowerOnly: boolean
 }
+
+/** All reports are counted. */
+export const allReports: ObservationFilters = { evidence: 'any', method: 'any', since: null, worksAtFirstPowerOnly: false }
 
 /** A report filed later than this many days after installing enters late; a failure known to within as many counts as exact. */
 export const promptDays = 14
 
 /**
- * One unit's life as an observation, as known at the end of the day `asOf`: rows filed, made or found later do not exist yet, so that a
- * figure with an as-of day can always be had again.
+ * One unit's life as an observation, as known at the end of the day `asOf`: rows filed later do not exist yet, so that a figure with an
+ * as-of day can always be had again. A day that somebody states may lie one ahead of the day of filing (which is UTC) and counts with it.
  *
  * 1. Time runs in whole days from the installation. A first-power result other than `works` (`partly`, `no-change`, `worse`) is a
  *    unit that never did its work: it fails on day 0, whatever the cause.
@@ -73,11 +83,10 @@ export const promptDays = 14
  * The share working at first power counts the reports filed in time only, for the reason of rule 3.
  */
 export function observationOf(life: LifeHistory, asOf: Day, filters: ObservationFilters): LifeOutcome {
-  if (life.filedOn > asOf || life.installedOn > asOf) return { kind: 'not-yet' }
-  if (filters.evidence !== 'any' && !filters.evidence.includes(life.evidence)) return { kind: 'filtered' }
+  if (life.filedOn > asOf) return { kind: 'not-yet' }
+  if (!isKept(life, filters)) return { kind: 'filtered' }
   if (life.exclusion !== null && life.exclusion.on <= asOf) return { kind: 'excluded', exclusion: life.exclusion.kind }
   const worksAtFirstPower = life.firstPower === 'works'
-  if (filters.worksAtFirstPowerOnly && !worksAtFirstPower) return { kind: 'filtered' }
 
   const filed = daysBetween(life.installedOn, life.filedOn)
   const isLate = filed > promptDays
@@ -101,12 +110,19 @@ export function observationOf(life: LifeHistory, asOf: Day, filters: Observation
   return { ...known, time, cause: null, interval: null }
 }
 
+function isKept({ evidence, method, firstPower, installedOn }: LifeHistory, filters: ObservationFilters): boolean {
+  if (filters.evidence !== 'any' && !filters.evidence.includes(evidence)) return false
+  if (filters.method !== 'any' && filters.method !== (method ?? 'untold')) return false
+  if (filters.since !== null && installedOn < filters.since) return false
+  return !filters.worksAtFirstPowerOnly || firstPower === 'works'
+}
+
 /** Rule 5: a failure whose cause is not known counts against the board. */
 export const countsAgainstBoard = (cause: Cause): boolean => cause === 'board' || cause === 'unknown'
 
 function failureKnown(life: LifeHistory, asOf: Day) {
   const { failure } = life
-  if (failure === null || failure.filedOn > asOf || failure.foundOn > asOf) return null
+  if (failure === null || failure.filedOn > asOf) return null
   const parted = partedOn(life, asOf)
   return parted === null || failure.foundOn <= parted ? failure : null
 }
@@ -115,7 +131,7 @@ function failureKnown(life: LifeHistory, asOf: Day) {
 function partedOn(life: LifeHistory, asOf: Day): Day | null {
   let first: Day | null = null
   for (const { statement, statedOn, filedOn } of life.statements)
-    if (statement === 'parted' && filedOn <= asOf && statedOn <= asOf && (first === null || statedOn < first)) first = statedOn
+    if (statement === 'parted' && filedOn <= asOf && (first === null || statedOn < first)) first = statedOn
   return first
 }
 
@@ -123,7 +139,7 @@ function* daysRunning(life: LifeHistory, asOf: Day) {
   // A filing day before the installation (time zones) says no more than the installation itself.
   yield Math.max(0, daysBetween(life.installedOn, life.filedOn))
   for (const { statement, statedOn, filedOn } of life.statements)
-    if (statement === 'running' && filedOn <= asOf && statedOn <= asOf) yield daysBetween(life.installedOn, statedOn)
+    if (statement === 'running' && filedOn <= asOf) yield daysBetween(life.installedOn, statedOn)
 }
 
 function lastHeardDay(life: LifeHistory, asOf: Day): number {
