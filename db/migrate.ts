@@ -4,13 +4,15 @@ import * as m0001 from './migrations/0001-ground'
 import * as m0002 from './migrations/0002-report-versions'
 import * as m0003 from './migrations/0003-latest-reports'
 import * as m0004 from './migrations/0004-bundle-record'
+import * as m0005 from './migrations/0005-report-counts'
 
 /** Every migration, in order, listed by hand; they only go forward. */
 const migrations: Record<string, Migration> = {
   '0001-ground': m0001,
   '0002-report-versions': m0002,
   '0003-latest-reports': m0003,
-  '0004-bundle-record': m0004
+  '0004-bundle-record': m0004,
+  '0005-report-counts': m0005
 }
 
 /**

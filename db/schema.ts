@@ -305,6 +305,45 @@ export type ReportVersionsTable = {
   version: number
 }
 
+/** One group of counted reports: a release's or batch's units on a console revision, all of them (`*`) or those of one kind. */
+export type GroupTotalsTable = {
+  id: Generated<number>
+  board_id: string
+  /** A release or a batch. */
+  scope_id: string
+  /** A grade, or `*`. */
+  evidence: string
+  /** A method, `untold`, or `*`. */
+  method: string
+  first_power: 'works' | '*'
+  console_revision_id: string
+  totals_json: string
+}
+
+export type DayCountsTable = {
+  group_id: number
+  block: number
+  counts: Uint8Array
+}
+
+export type LifeCountsTable = {
+  group_id: number
+  grain: 1 | 14
+  entry: number
+  lower: number
+  /** -1: none. */
+  upper: number
+  /** Empty: none. */
+  cause: string
+  count: number
+}
+
+export type CountedBoardsTable = {
+  board_id: string
+  rules: number
+  last_filed_on: string | null
+}
+
 export type Schema = {
   users: UsersTable
   sign_in_tokens: SignInTokensTable
@@ -333,4 +372,8 @@ export type Schema = {
   rate_counts: RateCountsTable
   audit_log: AuditLogTable
   report_versions: ReportVersionsTable
+  group_totals: GroupTotalsTable
+  day_counts: DayCountsTable
+  life_counts: LifeCountsTable
+  counted_boards: CountedBoardsTable
 }
