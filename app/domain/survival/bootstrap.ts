@@ -24,11 +24,8 @@ export type BootstrapLimits = {
  * @param resamples at least 20
  */
 export function bootstrapTurnbull(fit: TurnbullFit, random: () => number, confidence = 0.95, resamples = 200): BootstrapLimits {
-  if (!(confidence > 0 && confidence < 1))
-    throw new RangeError(`bootstrapTurnbull: the confidence must lie between 0 and 1 (${confidence})`)
-  if (!(resamples >= 20)) throw new RangeError(`bootstrapTurnbull: too few resamples (${resamples})`)
   const { cells, problem, falls, spans } = fit.parts
-  const rows = [...fit.mass.keys()].filter((k) => fit.mass[k]! > 0 && fit.right[k] !== Infinity)
+  const rows = limitRows(fit, confidence, resamples)
   const ends = cumulative(spans.weight)
   const values = rows.map(() => new Float64Array(resamples))
   for (let b = 0; b < resamples; b++) {
@@ -37,6 +34,32 @@ export function bootstrapTurnbull(fit: TurnbullFit, random: () => number, confid
     const { survivalAfter } = massesOf(maximise(problem, loadOf(problem, cells, weight), 1e-9, falls).falls)
     rows.forEach((k, r) => (values[r]![b] = survivalAfter[k]!))
   }
+  return limitsOfResamples(fit, rows, values, confidence)
+}
+
+/**
+ * The cells of an estimate that have limits: those with mass that end.
+ *
+ * @throws RangeError for a confidence that is none, and fewer than 20 resamples
+ */
+export function limitRows(fit: TurnbullFit, confidence: number, resamples: number): number[] {
+  if (!(confidence > 0 && confidence < 1))
+    throw new RangeError(`bootstrap: the confidence must lie between 0 and 1 (${confidence})`)
+  if (!(resamples >= 20)) throw new RangeError(`bootstrap: too few resamples (${resamples})`)
+  return [...fit.mass.keys()].filter((k) => fit.mass[k]! > 0 && fit.right[k] !== Infinity)
+}
+
+/**
+ * Percentile limits from resampled values of S.
+ *
+ * @param values for each of `rows`, S after it in every resample; sorted in place
+ */
+export function limitsOfResamples(
+  fit: TurnbullFit,
+  rows: readonly number[],
+  values: Float64Array[],
+  confidence: number
+): BootstrapLimits {
   const tail = (1 - confidence) / 2
   for (const row of values) row.sort()
   return {
@@ -45,7 +68,7 @@ export function bootstrapTurnbull(fit: TurnbullFit, random: () => number, confid
     lower: Float64Array.from(values, (row) => sampleQuantile(row, tail)),
     upper: Float64Array.from(values, (row) => sampleQuantile(row, 1 - tail)),
     standardError: Float64Array.from(values, deviation),
-    resamples
+    resamples: values[0]?.length ?? 0
   }
 }
 

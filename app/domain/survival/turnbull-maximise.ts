@@ -1,4 +1,5 @@
 import { boxQuadratic } from './special/box-quadratic'
+import { curvatureMatrix, termsWithin } from './turnbull-curvature'
 import type { Load, Problem } from './turnbull-problem'
 
 /** A fall of ln S by this much is a fall to 0 in double precision (e^-40 = 4e-18). */
@@ -168,21 +169,9 @@ class Model {
   }
 
   private denseTarget(g: Float64Array, cells: number[]): Float64Array {
-    const k = cells.length
-    const matrix = new Float64Array(k * k)
-    const { from, to } = this.within(cells)
-    for (let t = 0; t < from.length; t++)
-      if (this.bend[t]! > 0 && from[t]! <= to[t]!) matrix[from[t]! * k + to[t]!]! += this.bend[t]!
-    // Element (i, j), i <= j, is the curvature of all terms that begin at or before i and end at or after j.
-    let begun = new Float64Array(k)
-    for (let i = 0; i < k; i++) {
-      for (let j = i; j < k; j++) matrix[i * k + j]! += begun[j]!
-      begun = matrix.slice(i * k, (i + 1) * k)
-      for (let j = k - 2; j >= i; j--) matrix[i * k + j]! += matrix[i * k + j + 1]!
-    }
-    for (let i = 0; i < k; i++) for (let j = 0; j < i; j++) matrix[i * k + j] = matrix[j * k + i]!
+    const { from, to } = termsWithin(this.problem, cells)
     return boxQuadratic(
-      matrix,
+      curvatureMatrix(cells.length, from, to, this.bend),
       cells.map((j) => this.gradient[j]!),
       cells.map((j) => g[j]!)
     )
@@ -208,8 +197,11 @@ class Model {
    * applied without being written out.
    */
   private solveByGradients(g: Float64Array, cells: number[], open: number[]): Float64Array {
-    const all = this.within(cells)
-    const inner = this.within(open.map((k) => cells[k]!))
+    const all = termsWithin(this.problem, cells)
+    const inner = termsWithin(
+      this.problem,
+      open.map((k) => cells[k]!)
+    )
     const n = open.length
     const diagonal = this.spreadWithin(this.bend, inner.from, inner.to, n).map((value) => Math.max(value, 1e-300))
     const apply = (v: ArrayLike<number>, { from, to }: typeof all): Float64Array => {
@@ -241,14 +233,6 @@ class Model {
       rho = next
     }
     return y
-  }
-
-  /** First and last position within `cells` of each term's cells. */
-  private within(cells: number[]): { from: Int32Array; to: Int32Array } {
-    const atOrAfter = new Int32Array(this.problem.size + 1).fill(cells.length)
-    cells.forEach((j, k) => (atOrAfter[j] = k))
-    for (let j = this.problem.size - 1; j >= 0; j--) atOrAfter[j] = Math.min(atOrAfter[j]!, atOrAfter[j + 1]!)
-    return { from: this.problem.first.map((j) => atOrAfter[j]!), to: this.problem.last.map((j) => atOrAfter[j + 1]! - 1) }
   }
 
   private spread = (amount: Float64Array): Float64Array =>
