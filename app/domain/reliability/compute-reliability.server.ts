@@ -1,13 +1,17 @@
 import { DomainError } from '~/lib/domain-error'
-import type { Db } from '~db/client.server'
-import { reliabilityFigures, type ReliabilityFigures } from './reliability-figures'
+import type { Db, Tx } from '~db/client.server'
+import type { LifeHistory } from '../reports/observations'
+import type { BatchCounts } from './batch-figures'
+import { coarseLives, countCells } from './count-cells'
+import type { ReliabilityFigures } from './figures.types'
+import { addCounts, noCounts } from './group-counts'
+import { grainNeeded, reliabilityFigures, type Cell } from './reliability-figures'
 import { batchName, unknownNames, type ReliabilityFilters } from './reliability-filters'
 import * as repo from './reliability.repo.server'
-import type { LifeHistory } from '../reports/observations'
 
 /**
  * Reads what a board's figures need in one snapshot and computes them. Runs in the worker.
- * @throws DomainError `not-found` for the board, `invalid` for a release or revision it does not have
+ * @throws DomainError `not-found` for the board, `invalid` for names in the filters that it does not have
  */
 export function computeReliability(db: Db, boardSlug: string, filters: ReliabilityFilters): Promise<ReliabilityFigures> {
   return db.transaction().execute(async (tx) => {
@@ -15,26 +19,57 @@ export function computeReliability(db: Db, boardSlug: string, filters: Reliabili
     if (!board) throw new DomainError('not-found', 'There is no such board.')
     const releases = await repo.listReleases(tx, board.id)
     const revisions = await repo.listRevisions(tx, board.console_id)
-    const batches = await repo.listBatches(tx, board.id, repo.maxBatches)
-    const errors = unknownNames(filters, repo.choicesOf(releases, revisions, batches))
+    const known = await repo.listBatches(tx, board.id, repo.maxBatches)
+    const errors = unknownNames(filters, repo.choicesOf(releases, revisions, known))
     if (errors.length > 0) throw new DomainError('invalid', 'These figures cannot be computed.', errors)
-    const revision = filters.revision === null ? null : revisions.find((r) => r.code === filters.revision)!
-    const batch = filters.batch === null ? null : batches.find((b) => batchName(b) === filters.batch)!
-    const lives: LifeHistory[] = []
-    for (const release of releases)
-      if (isCounted(release, filters))
-        for (const life of await repo.listLives(tx, release.id, revision?.id ?? null, filters.asOf))
-          if (batch === null || life.batchId === batch.id) lives.push(life)
-    return reliabilityFigures(
-      lives,
-      revisions.map(({ id, code }) => ({ id, name: code })),
-      releases.map(({ id, version }) => ({ id, name: version })),
-      filters
-    )
+    const counted = releases.filter((release) => isCounted(release, filters))
+    const selection: Selection = {
+      filters,
+      releaseIds: counted.map(({ id }) => id),
+      revisionId: revisions.find((r) => r.code === filters.revision)?.id ?? null,
+      batchId: known.find((b) => batchName(b) === filters.batch)?.id ?? null,
+      batches: known
+        .filter((batch) => counted.some(({ id }) => id === batch.release_id))
+        .map(({ id, release_id: releaseId, version, code, made_on: madeOn, quantity }) => ({
+          ...{ id, releaseId, version, code, madeOn, quantity },
+          counts: { ...noCounts(), lives: null }
+        }))
+    }
+    return reliabilityFigures({
+      filters,
+      ...(await countHistories(tx, selection)),
+      batches: selection.batches,
+      revisions: revisions.map(({ id, code }) => ({ id, name: code })),
+      releases: releases.map(({ id, version }) => ({ id, name: version }))
+    })
   })
+}
+
+type Selection = {
+  filters: ReliabilityFilters
+  releaseIds: string[]
+  revisionId: string | null
+  batchId: string | null
+  batches: BatchCounts[]
 }
 
 const isCounted = (
   release: { version: string; board_revision: string },
   { release: version, boardRevision }: ReliabilityFilters
 ) => (version === null || release.version === version) && (boardRevision === null || release.board_revision === boardRevision)
+
+/** From the life histories: any filter, any as-of day. */
+async function countHistories(tx: Tx, { filters, releaseIds, revisionId, batchId, batches }: Selection) {
+  const lives: LifeHistory[] = []
+  for (const id of releaseIds) for (const life of await repo.listLives(tx, id, revisionId, filters.asOf)) lives.push(life)
+  const cells = countCells(lives, filters, batchId, batches)
+  const grain = grainOf(cells, filters) ?? 1
+  if (grain === 14) for (const { counts } of cells) counts.lives = coarseLives(counts.lives!)
+  return { cells, grain }
+}
+
+function grainOf(cells: readonly Cell[], filters: ReliabilityFilters) {
+  const together = { ...noCounts(), lives: null }
+  for (const { counts } of cells) addCounts(together, { ...counts, lives: null })
+  return grainNeeded(together.totals, filters)
+}

@@ -6,7 +6,10 @@ import type { Quantile } from '../survival/quantile'
 import type { Cause, ExclusionKind } from '../reports/report-words'
 import type { ReliabilityFilters } from './reliability-filters'
 
-/** S at a day. Where Turnbull leaves it open between two days it is given at the later one, so that it claims no more than is known. */
+/**
+ * S at a day. Where Turnbull leaves it open between two days, `survival` is that of the later one, so that it claims no more than is known, the limits hold
+ * both, and the number at risk is the smaller; null where it has fallen to 0 by then.
+ */
 export type FigureAt = {
   time: number
   survival: number | null
@@ -15,8 +18,8 @@ export type FigureAt = {
   lower: number | null
   upper: number | null
   bound: Bound | null
-  /** The days between which S is not determined and `time` lies; null where it is known. */
-  open: { from: number; to: number } | null
+  /** The days between which S is not determined and `time` lies, and S `before` them; null where it is known. */
+  open: { from: number; to: number; before: number } | null
 }
 
 /** The share failed by one cause by each day, all causes competing; `at` the end of the row's day. Limits as of the curve; see `incidenceLimits`. */
@@ -94,6 +97,7 @@ export type SilentFigures = {
   heardOf: number
   /** S after one year: all silent units failed the day after their last word; as reported; all still run. Null where unknown. */
   atOneYear: { worst: number | null; reported: number | null; best: number | null }
+  /** The steps of both, from the first failure on. */
   worst: { time: number; survival: number }[]
   best: { time: number; survival: number }[]
 }
@@ -111,10 +115,23 @@ export type Comparison = {
   by: 'revision' | 'release'
   groups: string[]
   logRank: { chiSquare: number; degreesOfFreedom: number; p: number } | null
-  /** Of the marked group (the one with the most units) with each other one; p adjusted by Holm over all pairs of groups. */
+  /** Every pair of groups, as they are ordered; p adjusted by Holm over all of them. */
   pairs: PairFigures[]
-  /** Groups that fewer than five units were ever at risk in a year of: not compared. */
+  /** Groups of which never five units at once were followed on a day of the first year, day 0 aside: not compared. */
   leftOut: string[]
+  /** Beyond the twelve groups with the most units: not compared. */
+  tooMany: string[]
+}
+
+/** `observed` and `expected` up to day `comparedTo`, as far as the other batches were followed; see `batchWatch`. */
+export type BatchWatchFigures = {
+  observed: number
+  expected: number
+  ratio: number
+  lower: number
+  upper: number
+  isFlagged: boolean
+  comparedTo: number
 }
 
 /** A batch's board failures against those of its release's other batches. */
@@ -125,10 +142,11 @@ export type BatchFigures = {
   code: string
   madeOn: string
   quantity: number
+  /** Units in the curve, and board failures among them. */
   n: number
   observed: number
   /** Null where nothing can be expected: no other batch, or none of theirs failed. */
-  watch: { expected: number; ratio: number; lower: number; upper: number; isFlagged: boolean; comparedTo: number } | null
+  watch: BatchWatchFigures | null
 }
 
 export type ReliabilityFigures = {

@@ -1,9 +1,15 @@
 import { describe, expect, it } from 'vitest'
 import { oneYearWords } from './one-year'
 
-const at = { time: 365, survival: 0.921, lower: 0.894, upper: 0.941, bound: null, atRisk: 120 } as never as Parameters<
-  typeof oneYearWords
->[0]
+const at = {
+  time: 365,
+  survival: 0.921,
+  lower: 0.894,
+  upper: 0.941,
+  bound: null,
+  atRisk: 120,
+  open: null
+} as never as Parameters<typeof oneYearWords>[0]
 
 describe('oneYearWords', () => {
   it.each([

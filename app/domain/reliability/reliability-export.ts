@@ -1,5 +1,5 @@
 import { csvFile } from '~/lib/csv'
-import type { GroupFigures, ReliabilityFigures } from './reliability-figures'
+import type { GroupFigures, ReliabilityFigures } from './figures.types'
 
 type By = 'all' | 'revision' | 'release'
 
@@ -53,13 +53,13 @@ export function reliabilityJson(board: string, figures: ReliabilityFigures) {
     board,
     asOf,
     filters,
-    method: 'kaplan-meier',
+    method: figures.all.estimator,
     timeUnit: 'day',
     confidence: 0.95,
     interval: 'log-log',
     excluded: { total: figures.excluded.reduce((sum, e) => sum + e.count, 0), byKind: figures.excluded },
-    followUpCompleteness: figures.followUp,
-    logRank: figures.revisionsDiffer,
+    followUpCompleteness: figures.all.followUp?.ratio ?? null,
+    logRank: figures.revisions?.logRank ?? null,
     groups: groupsBy(figures).map(([by, { group, ...rest }]) => ({ by, group, ...rest }))
   }
 }

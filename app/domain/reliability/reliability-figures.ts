@@ -1,153 +1,91 @@
-import { dayNumber } from '~/lib/dates'
-import { causes, exclusionKinds, type Cause, type ExclusionKind } from '../reports/report-words'
-import { observationOf, type LifeHistory, type LifeOutcome, type UnitObservation } from '../reports/observations'
-import { clopperPearson, type ProportionLimits } from '../survival/clopper-pearson'
-import { columnsOf } from '../survival/columns'
-import { curveLimits } from '../survival/confidence-limits'
-import { curveRows, type CurveRow } from '../survival/curve-rows'
-import { kaplanMeier } from '../survival/kaplan-meier'
-import { logRank } from '../survival/log-rank'
-import { quantile, type Quantile } from '../survival/quantile'
-import { survivalAt, type SurvivalAt } from '../survival/survival-at'
-import { tallyOf, type Tally } from '../survival/tally'
-import { observationFilters, type ReliabilityFilters } from './reliability-filters'
+import { exclusionKinds } from '../reports/report-words'
+import { batchFigures, type BatchCounts } from './batch-figures'
+import { comparison } from './comparison'
+import type { GroupFigures, ReliabilityFigures } from './figures.types'
+import { addCounts, noCounts, type GroupCounts, type GroupTotals } from './group-counts'
+import { groupFigures, oneYear, wideOf, type Counting } from './group-figures'
+import { batchName, countedCauses, type ReliabilityFilters } from './reliability-filters'
+import { addSilent, noSilent, silentFigures, type SilentCounts } from './silent-figures'
 
-/** One curve with everything said beside it. Times are whole days after fitting. */
-export type GroupFigures = {
-  /** `all`, a console revision's code or a version. */
-  group: string
-  /** Reports that count, whether or not they are in the curve. */
-  fitted: number
-  /** Units in the curve, and failures in it. */
-  n: number
-  events: number
-  failuresByCause: Record<Cause, number>
-  /** In the curve from the filing day on, as the report was filed late. */
-  enteredLate: number
-  /** Out of the curve: failed before its late report; filed late and not heard of since. */
-  failedBeforeRegistration: number
-  notFollowed: number
-  /** Failures in the curve known less closely than to 14 days; drawn at the day they were found. */
-  failuresWithinInterval: number
-  /** Of the reports filed in time, how many worked; limits by Clopper and Pearson. */
-  firstPower: (ProportionLimits & { n: number; works: number }) | null
-  atOneYear: SurvivalAt
-  median: Quantile
-  curve: CurveRow[]
+/** The name of a release or revision by its id, in the order in which groups are shown. */
+export type GroupNames = readonly { id: string; name: string }[]
+
+/** The counts of one release's units on one console revision; `silent` where the filters ask for bounds. */
+export type Cell = { releaseId: string; revisionId: string; counts: GroupCounts; silent: SilentCounts | null }
+
+/** Past so many units in the curve, Turnbull's estimate is made from joint observations on the coarse grid. */
+const maxFineUnits = 3000
+
+/** Days between the lines on which the joint observations of a selection are counted; null when none are needed. */
+export function grainNeeded(totals: GroupTotals, filters: ReliabilityFilters): 1 | 14 | null {
+  if (wideOf(totals, countedCauses(filters.cause)) === 0) return null
+  return totals.inCurve > maxFineUnits ? 14 : 1
 }
 
-export type ReliabilityFigures = {
+export type FiguresInput = {
   filters: ReliabilityFilters
-  all: GroupFigures
-  byRevision: GroupFigures[]
-  byRelease: GroupFigures[]
-  /** Log-rank test of the revisions against each other; null with fewer than two that failures were expected of. */
-  revisionsDiffer: { chiSquare: number; degreesOfFreedom: number; p: number } | null
-  excluded: { kind: ExclusionKind; count: number }[]
-  /**
-   * Completeness of follow-up: observed unit-days over those there would be had every unit without a failure been followed to the as-of
-   * day. Null when there are none. Source: T. G. Clark, D. G. Altman, B. L. De Stavola, Lancet 359:1309 (2002).
-   */
-  followUp: number | null
+  /** Those that the filters leave, with joint observations at the `grain` needed. */
+  cells: readonly Cell[]
+  grain: 1 | 14
+  revisions: GroupNames
+  releases: GroupNames
+  /** The batches of the releases counted, the newest first. */
+  batches: readonly BatchCounts[]
 }
-
-/** The name of a release or revision by the id in a life history, in the order in which groups are shown. */
-export type GroupNames = { id: string; name: string }[]
-
-const oneYear = 365
 
 /**
- * Kaplan-Meier curves with log-log limits for all lives together, by console revision and by release. Groups of which nothing is
- * reported are left out. Pure; linear in the lives.
+ * The figures of a board: all counted units together, by console revision and by release, each group the sum of its cells. Groups of which nothing is
+ * reported are left out. Pure.
  */
-export function reliabilityFigures(
-  lives: Iterable<LifeHistory>,
-  revisions: GroupNames,
-  releases: GroupNames,
-  filters: ReliabilityFilters
-): ReliabilityFigures {
-  const kept = observationFilters(filters)
-  const all = newCollection('all')
-  const byRevision = new Map(revisions.map(({ id, name }) => [id, newCollection(name)]))
-  const byRelease = new Map(releases.map(({ id, name }) => [id, newCollection(name)]))
-  const excluded = new Map<ExclusionKind, number>()
-  let observedDays = 0
-  let possibleDays = 0
-  const asOf = dayNumber(filters.asOf)
-  for (const life of lives) {
-    const outcome = observationOf(life, filters.asOf, kept)
-    if (outcome.kind === 'excluded') excluded.set(outcome.exclusion, (excluded.get(outcome.exclusion) ?? 0) + 1)
-    collect(all, outcome)
-    const revision = byRevision.get(life.revisionId)
-    const release = byRelease.get(life.releaseId)
-    if (revision) collect(revision, outcome)
-    if (release) collect(release, outcome)
-    if (outcome.kind === 'observed') {
-      observedDays += outcome.time - outcome.entry
-      possibleDays += (outcome.cause === null ? asOf - dayNumber(life.installedOn) : outcome.time) - outcome.entry
-    }
+export function reliabilityFigures({ filters, cells, grain, ...names }: FiguresInput): ReliabilityFigures {
+  const counting: Counting = {
+    counted: countedCauses(filters.cause),
+    isOneCause: filters.cause !== 'all',
+    asOf: filters.asOf
   }
-  const revisionGroups = [...byRevision.values()].filter((group) => group.fitted > 0)
-  const test = logRank([revisionGroups.map(tallyOfCollection)])
+  const all = sumOf('all', cells)
+  const revisions = groupsOf(names.revisions, cells, (cell) => cell.revisionId)
+  const releases = groupsOf(names.releases, cells, (cell) => cell.releaseId)
+  const figures = ({ name, counts, silent }: Sum): GroupFigures =>
+    groupFigures(name, counts, counting, silent && silentFigures(counts.days, counts.totals, silent, counting.counted, oneYear))
+  const compare = (by: 'revision' | 'release', sums: readonly Sum[]) =>
+    comparison(
+      by,
+      sums.map(({ name, counts }) => ({ name, n: counts.totals.inCurve, days: counts.days })),
+      counting.counted
+    )
   return {
     filters,
-    all: figuresOf(all),
-    byRevision: revisionGroups.map(figuresOf),
-    byRelease: [...byRelease.values()].filter((group) => group.fitted > 0).map(figuresOf),
-    revisionsDiffer: test && { chiSquare: test.chiSquare, degreesOfFreedom: test.degreesOfFreedom, p: test.p },
-    excluded: exclusionKinds.flatMap((kind) => (excluded.has(kind) ? [{ kind, count: excluded.get(kind)! }] : [])),
-    followUp: possibleDays > 0 ? observedDays / possibleDays : null
+    grain,
+    all: figures(all),
+    byRevision: revisions.map(figures),
+    byRelease: releases.map(figures),
+    revisions: compare('revision', revisions),
+    releases: compare('release', releases),
+    excluded: exclusionKinds.flatMap((kind) => {
+      const count = all.counts.totals[`excluded:${kind}`]
+      return count > 0 ? [{ kind, count }] : []
+    }),
+    batches: batchFigures(names.batches, (batch) => filters.batch === null || batchName(batch) === filters.batch)
   }
 }
 
-type Collection = {
-  name: string
-  fitted: number
-  observed: UnitObservation[]
-  failedBeforeRegistration: number
-  notFollowed: number
-}
+type Sum = { name: string; counts: GroupCounts; silent: SilentCounts | null }
 
-const newCollection = (name: string): Collection => ({
-  name,
-  fitted: 0,
-  observed: [],
-  failedBeforeRegistration: 0,
-  notFollowed: 0
-})
-
-function collect(group: Collection, outcome: LifeOutcome): void {
-  if (outcome.kind === 'observed') group.observed.push(outcome)
-  else if (outcome.kind === 'failed-before-registration') group.failedBeforeRegistration++
-  else if (outcome.kind === 'not-followed') group.notFollowed++
-  else return
-  group.fitted++
-}
-
-const tallyOfCollection = ({ observed }: Collection): Tally =>
-  tallyOf(columnsOf(observed.map(({ entry, time, cause }) => ({ entry, time, event: cause === null ? 0 : 1 }))))
-
-function figuresOf(group: Collection): GroupFigures {
-  const curve = kaplanMeier(tallyOfCollection(group))
-  const limits = curveLimits(curve)
-  const failuresByCause = Object.fromEntries(causes.map((cause) => [cause, 0])) as Record<Cause, number>
-  for (const { cause } of group.observed) if (cause !== null) failuresByCause[cause]++
-  const inTime = group.observed.filter((o) => o.isFirstPowerCounted)
-  const works = inTime.filter((o) => o.worksAtFirstPower).length
-  const proportion = clopperPearson(works, inTime.length)
-  return {
-    group: group.name,
-    fitted: group.fitted,
-    n: group.observed.length,
-    events: curve.failures,
-    failuresByCause,
-    enteredLate: group.observed.filter((o) => o.entry > 0).length,
-    failedBeforeRegistration: group.failedBeforeRegistration,
-    notFollowed: group.notFollowed,
-    failuresWithinInterval: group.observed.filter((o) => o.interval !== null).length,
-    firstPower: proportion && { ...proportion, n: inTime.length, works },
-    atOneYear: survivalAt(curve, oneYear),
-    median: quantile(curve, limits, 0.5),
-    curve: curveRows(curve, limits)
+function sumOf(name: string, cells: readonly Cell[]): Sum {
+  const counts = noCounts()
+  const silent = cells.some((cell) => cell.silent !== null) ? noSilent() : null
+  for (const cell of cells) {
+    addCounts(counts, cell.counts)
+    if (silent !== null && cell.silent !== null) addSilent(silent, cell.silent)
   }
+  return { name, counts, silent }
 }
+
+const groupsOf = (names: GroupNames, cells: readonly Cell[], idOf: (cell: Cell) => string): Sum[] =>
+  names.flatMap(({ id, name }) => {
+    const own = cells.filter((cell) => idOf(cell) === id)
+    if (own.length === 0) return []
+    const sum = sumOf(name, own)
+    return sum.counts.totals.fitted > 0 ? [sum] : []
+  })

@@ -9,6 +9,7 @@ const at = (change: object) => ({
   lower: 0.894,
   upper: 0.9401,
   bound: null,
+  open: null,
   ...change
 })
 const said = (change: object, n = 212, events = 17) =>

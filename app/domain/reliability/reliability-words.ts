@@ -1,4 +1,4 @@
-import type { SurvivalAt } from '../survival/survival-at'
+import type { FigureAt } from './figures.types'
 import { exclusionWords, type ExclusionKind } from '../reports/report-words'
 
 /** Under this many at risk a figure is not drawn, nor said. */
@@ -16,7 +16,7 @@ const estimate = (share: number): string =>
 
 const count = (n: number, one: string, many: string) => `${n} ${n === 1 ? one : many}`
 
-export type SaidOf = { n: number; events: number; atOneYear: SurvivalAt; worksAtFirstPowerOnly: boolean }
+export type SaidOf = { n: number; events: number; atOneYear: FigureAt; worksAtFirstPowerOnly: boolean }
 
 /**
  * What the figures say in plain words, never more than the interval: how many were followed, how many failed, and the share working after
@@ -40,7 +40,7 @@ export function plainSentence({ n, events, atOneYear, worksAtFirstPowerOnly }: S
 }
 
 /** Which groups have too few followed for a year; null when all have enough. */
-export function tooFewSentence(groups: readonly { group: string; atOneYear: SurvivalAt }[]): string | null {
+export function tooFewSentence(groups: readonly { group: string; atOneYear: FigureAt }[]): string | null {
   const names = groups.filter((g) => g.atOneYear.atRisk < tooFew).map((g) => g.group)
   if (names.length === 0 || names.length === groups.length) return null
   return `For ${listOf(names)} there are too few to say.`

@@ -163,7 +163,7 @@ describe('reliabilityOf', () => {
     const possible = lives
       .map((l) => (unitOf(l).failed ? unitOf(l).time : daysBetween(dayFromNumber(l.installed), everything.asOf)))
       .reduce((a, b) => a + b, 0)
-    expect(figures.followUp).toBeCloseTo(observed / possible, 12)
+    expect(figures.all.followUp!.ratio).toBeCloseTo(observed / possible, 12)
   })
   it('refuses what the board does not have', async () => {
     const refusal = (board: string, change: Partial<ReliabilityFilters>) =>

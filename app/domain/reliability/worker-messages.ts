@@ -1,6 +1,6 @@
 import type { ErrorKind, FieldError } from '~/lib/domain-error'
 import type { CalculatorFigures, CalculatorOptions } from '../survival/calculator-figures'
-import type { ReliabilityFigures } from './reliability-figures'
+import type { ReliabilityFigures } from './figures.types'
 import type { ReliabilityFilters } from './reliability-filters'
 
 /** What the worker is asked: the figures of a board, or a computation on somebody's own data (the body as it came, UTF-8 JSON). */

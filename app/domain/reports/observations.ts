@@ -127,8 +127,8 @@ function failureKnown(life: LifeHistory, asOf: Day) {
   return parted === null || failure.foundOn <= parted ? failure : null
 }
 
-/** The day on which it was parted with, the first should it be told twice. */
-function partedOn(life: LifeHistory, asOf: Day): Day | null {
+/** The day on which it was parted with, as told by `asOf`; the first should it be told twice. */
+export function partedOn(life: LifeHistory, asOf: Day): Day | null {
   let first: Day | null = null
   for (const { statement, statedOn, filedOn } of life.statements)
     if (statement === 'parted' && filedOn <= asOf && (first === null || statedOn < first)) first = statedOn

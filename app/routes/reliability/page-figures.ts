@@ -1,20 +1,22 @@
 import { visibleRuns } from '~/components/chart-geometry'
 import { curvePoints, type CurvePoint } from '~/domain/reliability/curve-points'
-import type { GroupFigures, ReliabilityFigures } from '~/domain/reliability/reliability-figures'
+import type { GroupFigures, ReliabilityFigures } from '~/domain/reliability/figures.types'
 import { filtersQuery } from '~/domain/reliability/reliability-filters'
 import { excludedSentence, plainSentence, tooFewSentence } from '~/domain/reliability/reliability-words'
 
 export const stepsPageSize = 20
 const besideMost = 3
 
-export type ShownTotal = Omit<GroupFigures, 'curve'>
+export type ShownTotal = Omit<GroupFigures, Series>
+type Series = 'curve' | 'hazard' | 'incidence' | 'support' | 'silent'
 export type ShownGroup = ShownTotal & { points: CurvePoint[] }
 export type ShownFigures = ReturnType<typeof pageFigures>
 
-const shownGroup = ({ curve, ...rest }: GroupFigures): ShownGroup => ({ ...rest, points: curvePoints(curve) })
+const shownGroup = (group: GroupFigures): ShownGroup => ({ ...shownTotal(group), points: curvePoints(group.curve) })
 
 /** All together are said in words and rows; their curve is not drawn, only listed a page at a time. */
-const shownTotal = ({ curve: _, ...rest }: GroupFigures): ShownTotal => rest
+const shownTotal = ({ curve: _, hazard: __, incidence: ___, support: ____, silent: _____, ...rest }: GroupFigures): ShownTotal =>
+  rest
 
 /** What the page prints of the figures, and which curves and steps its address asks to see. */
 export function pageFigures(figures: ReliabilityFigures, query: URLSearchParams) {
@@ -41,10 +43,10 @@ export function pageFigures(figures: ReliabilityFigures, query: URLSearchParams)
     byRelease: byRelease.map(shownGroup),
     ...chosenCurves(byRevision, query),
     markedRelease: most(byRelease),
-    revisionsDiffer: figures.revisionsDiffer,
+    revisionsDiffer: figures.revisions?.logRank ?? null,
     excluded: excludedSentence(figures.excluded),
     excludedByKind: figures.excluded,
-    followUp: figures.followUp,
+    followUp: all.followUp?.ratio ?? null,
     query: filtersQuery(filters).toString(),
     steps: {
       key: steps.key,

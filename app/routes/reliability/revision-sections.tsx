@@ -99,7 +99,8 @@ function CurveNotes({ here, shown }: { here: string; shown: ShownFigures }) {
             {all.failuresWithinInterval === 1 ? 'One failure is' : `${all.failuresWithinInterval} failures are`} known only to an
             interval
           </b>{' '}
-          of more than 14 days. The curve falls on the day they were found, so it may look better than the truth before it.
+          of more than 14 days. Turnbull’s estimate keeps both ends: the curve falls at the end of a stretch in which it is not
+          known.
         </p>
       ) : (
         <p>

@@ -1,0 +1,146 @@
+import { dayNumber, type Day } from '~/lib/dates'
+import { causes, type Cause } from '../reports/report-words'
+import { aalenJohansen, incidenceLimits } from '../survival/aalen-johansen'
+import { clopperPearson } from '../survival/clopper-pearson'
+import { curveLimits, defaultLimits } from '../survival/confidence-limits'
+import { curveRows } from '../survival/curve-rows'
+import { kaplanMeier, type SurvivalCurve } from '../survival/kaplan-meier'
+import { nelsonAalen } from '../survival/nelson-aalen'
+import { quantile } from '../survival/quantile'
+import { restrictedMean } from '../survival/restricted-mean'
+import type { Spans } from '../survival/spans'
+import { survivalAt } from '../survival/survival-at'
+import { fitWeibull, weibullLimits } from '../survival/weibull'
+import { weibullQuantile } from '../survival/weibull-quantities'
+import { outlastingSpans, spansOfLives, spansOfTally } from './counts-spans'
+import { competingTally, tallyOfCounts } from './counts-tally'
+import type { GroupFigures, IncidenceCurve, ShapeFigures, SilentFigures } from './figures.types'
+import type { GroupCounts, GroupTotals } from './group-counts'
+import { turnbullFigures, type TurnbullFigures } from './turnbull-figures'
+
+/** The day at which shares are read, and up to which mean days are counted. */
+export const oneYear = 365
+
+/** What a curve counts: `counted` are the causes whose failures it falls at; `isOneCause` when the filters chose among them. */
+export type Counting = { counted: readonly Cause[]; isOneCause: boolean; asOf: Day }
+
+/** Counted failures known less closely than to 14 days. */
+export const wideOf = (totals: GroupTotals, counted: readonly Cause[]): number =>
+  counted.reduce((sum, cause) => sum + totals[`wide:${cause}`], 0)
+
+/**
+ * Everything said of one group: Kaplan-Meier where every counted failure is known to within 14 days, else Turnbull. Mean days, hazard
+ * and incidences take failures on the day they were found. Pure; linear in the days, apart from Turnbull's maximisation.
+ *
+ * @param silent what the silent could hide, computed beside it; null where nobody asked
+ * @throws RangeError when there are wide failures but no joint observations
+ */
+export function groupFigures(
+  group: string,
+  counts: GroupCounts,
+  { counted, isOneCause, asOf }: Counting,
+  silent: SilentFigures | null
+): GroupFigures {
+  const { days, totals } = counts
+  const tally = tallyOfCounts(days, counted)
+  const curve = kaplanMeier(tally)
+  const hazard = nelsonAalen(curve)
+  const failuresByCause = Object.fromEntries(causes.map((cause) => [cause, sum(days.get(`failed:${cause}`))])) as Record<
+    Cause,
+    number
+  >
+  const failuresWithinInterval = wideOf(totals, counted)
+  let joint: Spans | null = null
+  if (failuresWithinInterval > 0) {
+    if (counts.lives === null) throw new RangeError(`groupFigures: ${group} has wide failures and no joint observations`)
+    joint = spansOfLives(counts.lives, counted)
+  }
+  const firstPower = clopperPearson(totals.worked, totals.promptly)
+  return {
+    group,
+    fitted: totals.fitted,
+    n: totals.inCurve,
+    events: curve.failures,
+    failuresByCause,
+    commonestCause: commonest(failuresByCause),
+    enteredLate: totals.enteredLate,
+    failedBeforeRegistration: causes.reduce((n, cause) => n + totals[`apart:${cause}`], 0),
+    notFollowed: totals.notFollowed,
+    failuresWithinInterval,
+    estimator: joint === null ? 'kaplan-meier' : 'turnbull',
+    firstPower: firstPower && { ...firstPower, n: totals.promptly, works: totals.worked },
+    ...(joint === null ? kaplanMeierFigures(curve) : turnbullFigures(joint, oneYear)),
+    meanInYear: restrictedMean(curve, oneYear),
+    hazard: Array.from(hazard.time, (time, i) => ({ time, cumulative: hazard.cumulative[i]! })),
+    incidence: isOneCause ? [] : incidenceCurves(counts),
+    shape: shapeFigures(joint === null ? spansOfTally(tally) : outlastingSpans(joint)),
+    followUp: followUp(totals, asOf),
+    silent
+  }
+}
+
+function kaplanMeierFigures(curve: SurvivalCurve): TurnbullFigures {
+  const limits = curveLimits(curve)
+  return {
+    atOneYear: { ...survivalAt(curve, oneYear), open: null },
+    median: quantile(curve, limits, 0.5),
+    curve: curveRows(curve, limits),
+    support: null
+  }
+}
+
+const sum = (byDay: ReadonlyMap<number, number> | undefined) => [...(byDay?.values() ?? [])].reduce((a, b) => a + b, 0)
+
+function commonest(failures: Record<Cause, number>): Cause | null {
+  const most = Math.max(...Object.values(failures))
+  const first = causes.filter((cause) => failures[cause] === most)
+  return most > 0 && first.length === 1 ? first[0]! : null
+}
+
+/** Rows where the cause's share grows, and the last day anybody was heard of. */
+function incidenceCurves({ days }: GroupCounts): IncidenceCurve[] {
+  const tally = competingTally(days)
+  if (tally.causes.length === 0) return []
+  const { time, atRisk, incidence, standardError } = aalenJohansen(tally)
+  const curves = tally.causes.map((name, k): IncidenceCurve => {
+    const shares = incidence[k]!
+    const isShown = (i: number) => i === time.length - 1 || shares[i] !== (shares[i - 1] ?? 0)
+    return {
+      cause: name as Cause,
+      failures: tally.failedBy[k]!.reduce((a, b) => a + b, 0),
+      curve: [...time.keys()].filter(isShown).map((i) => {
+        const at = { estimate: shares[i]!, standardError: standardError[k]![i]!, atRisk: atRisk[i]! }
+        return { time: time[i]!, ...at, ...incidenceLimits(at, defaultLimits) }
+      })
+    }
+  })
+  return curves.sort((a, b) => b.failures - a.failures)
+}
+
+function shapeFigures(spans: Spans): ShapeFigures | null {
+  const fit = fitWeibull(spans)
+  if (fit === null) return null
+  const [shape, scale] = [weibullLimits(fit, 'shape'), weibullLimits(fit, 'scale')]
+  const [b10, median] = [weibullQuantile(fit, 0.1), weibullQuantile(fit, 0.5)]
+  // A shape so small that a life overflows says nothing that could be sent.
+  if (![shape, scale, b10, median].every((estimate) => Object.values(estimate).every(Number.isFinite))) return null
+  return {
+    ...shape,
+    scale: scale.estimate,
+    scaleLower: scale.lower,
+    scaleUpper: scale.upper,
+    failures: spans.weight.reduce((n, weight, i) => n + (spans.upper[i] === Infinity ? 0 : weight), 0),
+    b10,
+    median
+  }
+}
+
+/**
+ * Completeness of follow-up from sums, as `completeness` has it of single units. A day that somebody stated may lie one ahead of the as-of day: the
+ * possible days are never fewer than the observed.
+ */
+function followUp({ watchedDays, watchedDaysOfFailed, unfailed, watchBegan }: GroupTotals, asOf: Day): GroupFigures['followUp'] {
+  const possible = watchedDaysOfFailed + unfailed * dayNumber(asOf) - watchBegan
+  const potentialDays = Math.max(watchedDays, possible)
+  return potentialDays > 0 ? { observedDays: watchedDays, potentialDays, ratio: watchedDays / potentialDays } : null
+}

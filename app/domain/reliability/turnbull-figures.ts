@@ -1,0 +1,157 @@
+import { bootstrapTurnbull, type BootstrapLimits } from '../survival/bootstrap'
+import { confidenceLimits, type Limits } from '../survival/confidence-limits'
+import { possiblyAtRisk } from '../survival/possibly-at-risk'
+import { firstCrossing, type Quantile } from '../survival/quantile'
+import { seededRandom } from '../survival/special/seeded-random'
+import type { Spans } from '../survival/spans'
+import type { AnswerRow } from '../survival/survival-answer'
+import { turnbull, type TurnbullFit } from '../survival/turnbull'
+import type { FigureAt, GroupFigures } from './figures.types'
+
+/** Always the same numbers, so that a figure can be had again. */
+const seed = 1976
+const resamples = 200
+/** Up to so many units each resample is refitted in full. */
+const maxRefittedUnits = 500
+/** Less mass than this is rounding, no place where a failure may lie. */
+const someMass = 1e-7
+
+export type TurnbullFigures = Pick<GroupFigures, 'curve' | 'support' | 'median' | 'atOneYear'>
+
+/**
+ * Turnbull's curve of one group with limits. It has a row at each end of the stretches where S is known: at the right end of each cell with mass, where S
+ * is known again, and at its left end, up to which it was; between the two S is not determined. The median is the first such day at which S has
+ * fallen to a half.
+ *
+ * Limits are the percentiles of a seeded bootstrap, widened to at least those which Greenwood's variance would give had every failure a
+ * known day (log-log; with d/n the fall of S over a cell and n all that may have been at risk at its end): not knowing the day cannot make S
+ * better known, while few failures can make resamples agree by accident. While S is 1 the lower limit is the exact one-sided bound of the
+ * units surely still running then; where S is 0 there are none.
+ *
+ * @param spans days; at least one failure
+ */
+export function turnbullFigures(spans: Spans, year: number): TurnbullFigures {
+  const fit = turnbull(spans)
+  const cells = [...fit.mass.keys()].filter((k) => fit.mass[k]! > someMass)
+  const ends = Float64Array.from(
+    cells.filter((k) => fit.right[k] !== Infinity),
+    (k) => fit.right[k]!
+  )
+  const limits = limitsOf(fit, spans, cells, ends)
+  const known = knownStretches(fit, cells)
+  const curve: AnswerRow[] = []
+  known.forEach((stretch, i) => {
+    if (i > 0) curve.push(rowAt(stretch.from, stretch.survival, limits.get(stretch.from)!, spans))
+    if (stretch.isEndKnown && stretch.to > stretch.from)
+      curve.push(rowAt(stretch.to, stretch.survival, limits.get(stretch.from) ?? noLimits, spans))
+  })
+  const falling = curve.filter((row) => row.bound === null)
+  const column = (value: (row: AnswerRow) => number | null) => Float64Array.from(falling, (row) => value(row) ?? NaN)
+  const crossing = (values: Float64Array) =>
+    firstCrossing(
+      column((row) => row.time),
+      values,
+      0.5
+    )
+  const median: Quantile = {
+    estimate: crossing(column((row) => row.survival)),
+    lower: crossing(column((row) => row.lower)),
+    upper: crossing(column((row) => row.upper))
+  }
+  return {
+    curve,
+    median,
+    atOneYear: figureAt(year, known, limits, spans),
+    support: Array.from(cells, (k) => ({
+      lower: fit.left[k]!,
+      upper: fit.right[k] === Infinity ? null : fit.right[k]!,
+      mass: fit.mass[k]!
+    }))
+  }
+}
+
+type RowLimits = { lower: number | null; upper: number | null; standardError: number | null }
+const noLimits: RowLimits = { lower: null, upper: null, standardError: null }
+
+/** S is known from day `from` up to day `to` (Infinity once it is 0), on which it still stands where `isEndKnown` and has just fallen where not. */
+type Stretch = { from: number; to: number; isEndKnown: boolean; survival: number }
+
+function knownStretches({ left, right, survivalAfter }: TurnbullFit, cells: readonly number[]): Stretch[] {
+  const known: Stretch[] = []
+  let current: Stretch = { from: 0, to: Infinity, isEndKnown: false, survival: 1 }
+  for (const k of cells) {
+    known.push({ ...current, to: left[k]!, isEndKnown: left[k]! < right[k]! })
+    if (right[k] === Infinity) return known
+    // Masses that are rounding have been left out, so the last S may be off 0 by as much.
+    current = { ...current, from: right[k]!, survival: survivalAfter[k]! < someMass ? 0 : survivalAfter[k]! }
+  }
+  known.push(current)
+  return known
+}
+
+function limitsOf(fit: TurnbullFit, spans: Spans, cells: readonly number[], ends: Float64Array): Map<number, RowLimits> {
+  const limits = new Map<number, RowLimits>()
+  if (ends.length === 0) return limits
+  const resampled = resampledLimits(fit)
+  const atRisk = possiblyAtRisk(spans, ends)
+  let greenwood = 0
+  ends.forEach((end, r) => {
+    const k = cells[r]!
+    const after = fit.survivalAfter[k]!
+    if (after < someMass) return void limits.set(end, noLimits)
+    const share = fit.mass[k]! / (fit.mass[k]! + after)
+    greenwood += share / ((1 - share) * atRisk[r]!)
+    const exact = confidenceLimits({ survival: after, greenwood, atRisk: atRisk[r]! })
+    const at = resampled.time.indexOf(end)
+    limits.set(end, {
+      lower: Math.min(exact.lower!, resampled.lower[at]!),
+      upper: Math.max(exact.upper!, resampled.upper[at]!),
+      standardError: Math.max(after * Math.sqrt(greenwood), resampled.standardError[at]!)
+    })
+  })
+  return limits
+}
+
+const resampledLimits = (fit: TurnbullFit): BootstrapLimits =>
+  bootstrapTurnbull(fit, seededRandom(seed), 0.95, fit.units <= maxRefittedUnits ? resamples : resamples / 5)
+
+function rowAt(time: number, survival: number, { standardError, ...limits }: RowLimits, spans: Spans): AnswerRow {
+  const row = { time, events: null, censored: null, survival }
+  if (survival === 1) return { ...row, standardError: 0, ...boundAt(time, spans) }
+  return { ...row, atRisk: possiblyAtRisk(spans, Float64Array.of(time))[0]!, standardError, ...limits, bound: null }
+}
+
+/** The exact bound of the units surely running at `time`, and their number. */
+function boundAt(time: number, { entry, lower, weight }: Spans): Limits & { atRisk: number } {
+  let atRisk = 0
+  for (let i = 0; i < entry.length; i++) if ((entry[i]! < time || entry[i] === 0) && lower[i]! >= time) atRisk += weight[i]!
+  return { atRisk, ...confidenceLimits({ survival: 1, greenwood: 0, atRisk }) }
+}
+
+/**
+ * S at a day. Between two known stretches it lies between the S of both: the lower is given, with limits that hold both, and the smaller number at
+ * risk; nothing where the lower is 0.
+ */
+function figureAt(time: number, known: readonly Stretch[], limits: ReadonlyMap<number, RowLimits>, spans: Spans): FigureAt {
+  const at = known.findLastIndex((stretch) => stretch.from <= time)
+  const stretch = known[at]!
+  const rowOf = (day: number, { from, survival }: Stretch) => rowAt(day, survival, limits.get(from) ?? noLimits, spans)
+  const figure = ({ survival, standardError, atRisk, lower, upper, bound }: AnswerRow) => ({
+    time,
+    survival,
+    standardError,
+    atRisk,
+    lower,
+    upper,
+    bound
+  })
+  if (time <= stretch.to) return { ...figure(rowOf(time, stretch)), open: null }
+  const next = known[at + 1]
+  const unknown = { time, survival: null, standardError: null, lower: null, upper: null, bound: null }
+  if (next === undefined) return { ...unknown, atRisk: 0, open: null }
+  const [before, after] = [rowOf(stretch.to, stretch), rowOf(next.from, next)]
+  const atRisk = Math.min(after.atRisk, possiblyAtRisk(spans, Float64Array.of(time))[0]!)
+  const open = { from: stretch.to, to: next.from, before: stretch.survival }
+  if (after.survival === 0) return { ...unknown, atRisk, open }
+  return { ...figure(after), atRisk, upper: before.upper ?? 1, open }
+}
