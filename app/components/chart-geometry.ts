@@ -6,6 +6,10 @@
 export type SurvivalPoint = {
   /** Days since fitting. */
   time: number
+  /** S is not determined after this day and before `time`: the fall lies somewhere between. */
+  from?: number
+  /** Points between this day and `time` were left out; the line is drawn at this point's level from there on. */
+  since?: number
   survival: number
   /** 95 % limits; null where there is none. */
   lower: number | null
@@ -20,19 +24,19 @@ export type SurvivalPoint = {
 export const faintUnder = 10
 export const goneUnder = 5
 
-export type Step = { time: number; survival: number; lower: number | null; upper: number | null }
+export type Step = Pick<SurvivalPoint, 'time' | 'from' | 'since' | 'survival' | 'lower' | 'upper'>
 export type Run = { weight: 'full' | 'faint'; steps: Step[] }
 
 /**
  * Cuts a curve into the runs that may be drawn. The stretch that ends at a point is followed by that point's risk set; late entries can
- * make the set grow again, so runs may alternate. The first step of a run is the level it starts from.
+ * make the set grow again, so runs may alternate. The first step of a run is the level it starts from; the curve starts at `start`.
  */
-export function visibleRuns(points: readonly SurvivalPoint[]): Run[] {
+export function visibleRuns(points: readonly Omit<SurvivalPoint, 'censored'>[], start = 1): Run[] {
   const runs: Run[] = []
   let current = null as Run | null
-  let level: Step = { time: 0, survival: 1, lower: null, upper: null }
-  for (const { time, survival, lower, upper, atRisk } of points) {
-    const step = { time, survival, lower, upper }
+  let level: Step = { time: 0, survival: start, lower: null, upper: null }
+  for (const { time, from, since, survival, lower, upper, atRisk } of points) {
+    const step: Step = { time, from, since, survival, lower, upper }
     const weight = atRisk >= faintUnder ? 'full' : atRisk >= goneUnder ? 'faint' : null
     // a fall on day 0 lies on the axis: the curve starts below it
     if (time > 0) {
@@ -63,7 +67,7 @@ export function pointAt(points: readonly SurvivalPoint[], time: number): Surviva
 }
 
 /** Units at risk at a time: the risk set of the next point; none after the last. */
-export const atRiskAt = (points: readonly SurvivalPoint[], time: number): number =>
+export const atRiskAt = (points: readonly { time: number; atRisk: number }[], time: number): number =>
   points.find((point) => point.time >= time)?.atRisk ?? 0
 
 export type Scale = (value: number) => number

@@ -4,10 +4,31 @@ import { curveInks } from './curve-ink'
 import { TwoDrawings } from './figure'
 
 /** Share failed from one cause, over days. */
-export type CauseCurve = { name: string; points: { time: number; estimate: number }[] }
+export type CauseCurve = {
+  name: string
+  points: {
+    time: number
+    estimate: number
+    standardError?: number
+    lower?: number | null
+    upper?: number | null
+    /** Faint under 10, gone under 5; without it all is drawn. */
+    atRisk?: number
+    since?: number
+  }[]
+}
 
 /** `plainUnit` as in the survival chart. */
-export type IncidenceChartProps = { causes: CauseCurve[]; unit: TimeUnit; plainUnit?: string }
+export type IncidenceChartProps = {
+  /** At most six are drawn, in this order; the first carries its band. */
+  causes: CauseCurve[]
+  unit: TimeUnit
+  plainUnit?: string
+  /** As in the survival chart. */
+  reading?: { days: number; words: string }
+  grain?: number | null
+  sure?: string
+}
 
 const unitWords: Record<TimeUnit, string> = { year: 'years', month: 'months', day: 'days' }
 const shareText = (share: number) => (share * 100).toFixed(1)

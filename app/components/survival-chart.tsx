@@ -16,7 +16,13 @@ import { readingText } from './percent-text'
 import { AtRiskRows, CurveLabels, nameWidths, rowHeight, type DrawnSeries } from './survival-labels'
 import { SurvivalCurve } from './survival-curve'
 
-export type SurvivalSeries = { name: string; points: SurvivalPoint[]; marked: boolean }
+export type SurvivalSeries = {
+  name: string
+  points: SurvivalPoint[]
+  marked: boolean
+  /** What stands under its name, "93 % at 1 year"; else it is read from the points. */
+  says?: string
+}
 
 export type SurvivalChartProps = {
   /** One marked, at most three beside it; further ones are left out. */
@@ -29,6 +35,10 @@ export type SurvivalChartProps = {
   asOf?: string
   /** Where the figure at a line's end is read. */
   reading?: { days: number; words: string }
+  /** The points are thinned: exact at its multiples (`drawnCurves`). */
+  grain?: number | null
+  /** The confidence of the limits in words. */
+  sure?: string
   /** One curve in a small figure: no label, no rows below. */
   isSmall?: boolean
 }

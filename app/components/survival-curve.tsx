@@ -1,22 +1,7 @@
-import { censorTicks, stepArea, stepPath, visibleRuns, type Run, type Scale, type SurvivalPoint } from './chart-geometry'
+import { useId } from 'react'
+import { censorTicks, visibleRuns, type Run, type SurvivalPoint } from './chart-geometry'
 import type { CurveInk } from './curve-ink'
-
-type Places = { x: Scale; y: Scale }
-
-const linePath = (run: Run, { x, y }: Places) => stepPath(run.steps.map((s) => [x(s.time), y(s.survival)]))
-
-/** The stretches of a run that have both limits. */
-function bandPlaces(run: Run, { x, y }: Places) {
-  const stretches: [number, number, number][][] = [[]]
-  for (const { time, lower, upper } of run.steps) {
-    if (lower !== null && upper !== null) stretches.at(-1)!.push([x(time), y(upper), y(lower)])
-    else if (stretches.at(-1)!.length > 0) stretches.push([])
-  }
-  // the limits after the last point belong to no stretch that is drawn
-  return stretches
-    .filter((s) => s.length > 1)
-    .map((s) => [...s.slice(0, -1), [s.at(-1)![0], s.at(-2)![1], s.at(-2)![2]] as [number, number, number]])
-}
+import { bandPaths, boxPath, knownPath, openBoxes, slantPath, type Places } from './curve-paths'
 
 export type CurveProps = Places & {
   points: readonly SurvivalPoint[]
@@ -28,44 +13,35 @@ export type CurveProps = Places & {
   tick?: number
 }
 
-/** One survival curve: faint under 10 at risk, gone under 5; marked it has its 95 % band and ticks for last words. */
+/**
+ * One survival curve: faint under 10 at risk, gone under 5; marked it has its 95 % band and ticks for last words. Where S is not determined it is
+ * a hatched box, a thin slant on those not marked.
+ */
 export function SurvivalCurve({ points, x, y, ink, isMarked, width = isMarked ? 4 : 2, tick = 12 }: CurveProps) {
   const runs = visibleRuns(points)
   const full = runs.filter((run) => run.weight === 'full')
-  const isHeavy = width >= 2.5
+  const places = { x, y }
   return (
     <g fill="none" data-curve={isMarked ? 'marked' : 'other'}>
+      {isMarked && full.map((run, i) => <Band key={i} {...bandPaths(run, places)} stroke={ink.stroke} />)}
       {isMarked &&
-        full
-          .flatMap((run) => bandPlaces(run, { x, y }))
-          .map((places, i) => (
-            <g key={i}>
-              <path data-part="band" d={stepArea(places)} fill={ink.stroke} opacity=".13" />
-              <path
-                d={stepPath(places.map(([at, high]) => [at, high])) + stepPath(places.map(([at, , low]) => [at, low]))}
-                stroke={ink.stroke}
-                strokeWidth=".75"
-                opacity=".55"
-              />
-            </g>
-          ))}
-      {isMarked &&
-        isHeavy &&
+        width >= 2.5 &&
         full.map((run, i) => (
-          <path key={i} d={linePath(run, { x, y })} stroke="var(--color-paper)" strokeWidth={width + 3} opacity=".7" />
+          <path key={i} d={knownPath(run, places)} stroke="var(--color-paper)" strokeWidth={width + 3} opacity=".7" />
         ))}
       {runs.map((run, i) => (
-        <path
-          key={i}
-          data-part={run.weight}
-          d={linePath(run, { x, y })}
-          stroke={ink.stroke}
-          strokeWidth={run.weight === 'full' ? width : isMarked ? 1.75 : 1.1}
-          opacity={run.weight === 'full' ? undefined : '.65'}
-          strokeDasharray={ink.dash}
-        />
+        <g key={i} opacity={run.weight === 'full' ? undefined : '.65'}>
+          <Open run={run} places={places} ink={ink} isMarked={isMarked} />
+          <path
+            data-part={run.weight}
+            d={knownPath(run, places)}
+            stroke={ink.stroke}
+            strokeWidth={run.weight === 'full' ? width : isMarked ? 1.75 : 1.1}
+            strokeDasharray={ink.dash}
+          />
+        </g>
       ))}
-      {isMarked && (
+      {isMarked && tick > 0 && (
         <path
           data-part="ticks"
           d={censorTicks(points, x, y)
@@ -76,5 +52,29 @@ export function SurvivalCurve({ points, x, y, ink, isMarked, width = isMarked ? 
         />
       )}
     </g>
+  )
+}
+
+const Band = ({ area, edges, stroke }: { area: string; edges: string; stroke: string }) => (
+  <g>
+    {area !== '' && <path data-part="band" d={area} fill={stroke} opacity=".13" />}
+    <path d={edges} stroke={stroke} strokeWidth=".75" opacity=".55" />
+  </g>
+)
+
+/** Hatched as everywhere where something lies between two ends and nobody knows where. */
+function Open({ run, places, ink, isMarked }: { run: Run; places: Places; ink: CurveInk; isMarked?: boolean }) {
+  const hatch = useId()
+  const boxes = openBoxes(run, places)
+  if (boxes.length === 0) return null
+  if (!isMarked)
+    return <path data-part="open" d={slantPath(boxes)} stroke={ink.stroke} strokeWidth="1.1" strokeDasharray={ink.dash} />
+  return (
+    <>
+      <pattern id={hatch} width="4" height="4" patternUnits="userSpaceOnUse" patternTransform="rotate(45)">
+        <path d="M0 0V4" stroke={ink.stroke} strokeWidth="1.6" />
+      </pattern>
+      <path data-part="open" d={boxPath(boxes)} fill={`url(#${hatch})`} stroke={ink.stroke} />
+    </>
   )
 }

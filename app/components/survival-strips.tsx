@@ -3,7 +3,6 @@ import {
   axisFloor,
   faintUnder,
   linear,
-  stepPath,
   timeAxis,
   visibleRuns,
   type Scale,
@@ -11,6 +10,7 @@ import {
   type TimeUnit
 } from './chart-geometry'
 import { curveInks } from './curve-ink'
+import { knownPath } from './curve-paths'
 import { TwoDrawings } from './figure'
 import { readingText } from './percent-text'
 import { SurvivalCurve } from './survival-curve'
@@ -28,6 +28,8 @@ export type SurvivalStripsProps = {
   /** Percent at the foot of all strips; without it the tens under the lowest curve, at most 60. */
   floor?: number
   reading?: { days: number; words: string }
+  /** The points are thinned: exact at its multiples (`drawnCurves`). */
+  grain?: number | null
 }
 
 const oneYear = { days: 365, words: '1 year' }
@@ -71,10 +73,15 @@ type Hairs = { id: string; isHere: boolean }
 const hairlines = (strips: readonly Strip[], { x, y }: { x: Scale; y: Scale }) =>
   strips
     .flatMap((strip) => visibleRuns(strip.points))
-    .map((run) => stepPath(run.steps.map((step) => [x(step.time), y(step.survival)])))
+    .map((run) => knownPath(run, { x, y }))
     .join('')
 
-type StripProps = Required<SurvivalStripsProps> & { strip: Strip; lastDay: number; isNarrow?: boolean; hairs: Hairs }
+type StripProps = Required<Omit<SurvivalStripsProps, 'grain'>> & {
+  strip: Strip
+  lastDay: number
+  isNarrow?: boolean
+  hairs: Hairs
+}
 
 function StripDrawing({ strips, strip, unit, floor, reading, lastDay, isNarrow, hairs }: StripProps) {
   const clip = useId()

@@ -2,7 +2,6 @@ import { describe, expect, it } from 'vitest'
 import { expectClose, reference } from '../../../tests/support/survival-reference'
 import { calculatorExamples } from './calculator-examples'
 import { calculatorFigures, type CalculatorOptions } from './calculator-figures'
-import { thinPoints } from './thin-points'
 
 const usual: CalculatorOptions = { confidence: 0.95, interval: 'log-log', tau: null, timeUnit: 'weeks' }
 const bytes = (text: string) => new Uint8Array(new TextEncoder().encode(text)).buffer
@@ -69,18 +68,9 @@ describe('bounds', () => {
     const figures = figuresOf(Array.from({ length: 6000 }, (_, i) => `${i + 0.5},${i % 3 === 0 ? 1 : 0}`).join('\n'))
     expect(figures.groups[0]!.stepCount).toBe(6000)
     expect(figures.groups[0]!.steps).toHaveLength(600)
-    expect(figures.groups[0]!.points!.length).toBeLessThan(2500)
+    expect(figures.groups[0]!.points!.length).toBeLessThan(850)
+    expect(figures.grain).toBe(20)
     expect(figures).toMatchObject({ json: null, csv: null })
-  })
-
-  it('thinning keeps the values at round times and every censored unit', () => {
-    const points = Array.from({ length: 5000 }, (_, i) => ({ time: i / 10, censored: 1, atRisk: 5000 - i }))
-    const thin = thinPoints(points)
-    expect(thin.length).toBeLessThan(1500)
-    expect(thin.reduce((sum, p) => sum + p.censored, 0)).toBe(5000)
-    for (const tick of [100, 200, 300, 400]) {
-      expect(thin.find((p) => p.time >= tick)).toMatchObject({ atRisk: points.find((p) => p.time >= tick)!.atRisk })
-    }
   })
 
   it('errors of values stand at their lines', () => {

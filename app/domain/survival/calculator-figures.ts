@@ -1,5 +1,6 @@
 import { csvFile } from '~/lib/csv'
 import { DomainError } from '~/lib/domain-error'
+import { curvePoints, type CurvePoint } from '../reliability/curve-points'
 import { tooFew } from '../reliability/reliability-words'
 import { allUnits, calculatorSentence, readingTime, shapeLimits, shapeSentence, type Limited } from './calculator-words'
 import { computeSurvival } from './compute-survival'
@@ -12,15 +13,6 @@ import { thinPoints } from './thin-points'
 
 export type CalculatorOptions = { confidence: number; interval: IntervalKind; tau: number | null; timeUnit: string }
 
-export type CalculatorPoint = {
-  time: number
-  survival: number
-  lower: number | null
-  upper: number | null
-  atRisk: number
-  censored: number
-}
-
 export type CalculatorGroup = {
   name: string
   n: number
@@ -29,20 +21,24 @@ export type CalculatorGroup = {
   mean: (Limited & { tau: number }) | null
   shape: { estimate: number; lower: number; upper: number } | null
   /** Null for a group that is not drawn. */
-  points: CalculatorPoint[] | null
+  points: CurvePoint[] | null
   steps: AnswerRow[]
   stepCount: number
   /** Incidence by cause up to `until`; null where too few were ever at risk. */
   causes: {
     name: string
-    points: { time: number; estimate: number }[]
+    points: CausePoint[]
     until: number | null
     last: number | null
     standardError: number | null
   }[]
+  /** As `grain` of all, for the incidences of this group. */
+  causeGrain: number | null
   support: { lower: number; upper: number | null; mass: number }[]
   supportCount: number
 }
+
+export type CausePoint = { time: number; estimate: number; standardError: number; since?: number }
 
 /** What the calculator's page prints; bounded, whatever was sent. */
 export type CalculatorFigures = {
@@ -54,6 +50,8 @@ export type CalculatorFigures = {
   sentence: string
   shapeSentence: string | null
   readAt: number | null
+  /** The curves' points are thinned: exact at its multiples; see `thinPoints`. */
+  grain: number | null
   groups: CalculatorGroup[]
   logRank: SurvivalAnswer['logRank']
   /** The whole answer, as the endpoint gives it, and its curves as CSV; null where they are too large for a page. */
@@ -77,11 +75,17 @@ export function calculatorFigures(body: ArrayBuffer, options: CalculatorOptions)
   const table = readSurvivalCsv(textOf(body))
   const answer = answerOf(table, options)
   const readAt = options.tau !== null && answer.method === 'kaplan-meier' ? options.tau : readingTime(answer)
+  const drawn = drawnIndices(answer)
+  const exactAt = readAt === null ? [] : [readAt]
+  const thin = thinPoints(
+    drawn.map((g) => curvePoints(answer.groups[g]!.curve, answer.groups[g]!.support)),
+    exactAt
+  )
   let left = maxSteps
   const groups = answer.groups.map((group, g): CalculatorGroup => {
     const steps = group.curve.slice(0, Math.max(0, left))
     left -= steps.length
-    return groupFigures(group, drawnIndices(answer).includes(g), steps, options.confidence)
+    return groupFigures(group, { points: thin.curves[drawn.indexOf(g)] ?? null, steps, confidence: options.confidence, exactAt })
   })
   return {
     method: answer.method,
@@ -91,6 +95,7 @@ export function calculatorFigures(body: ArrayBuffer, options: CalculatorOptions)
     sentence: calculatorSentence({ answer, time: readAt, unit: options.timeUnit, confidence: options.confidence }),
     shapeSentence: shapeSentence(groups.flatMap(({ name, shape }) => (shape === null ? [] : [{ name, ...shape }]))),
     readAt,
+    grain: thin.grain,
     groups,
     logRank: answer.logRank,
     ...asText(answer)
@@ -124,7 +129,9 @@ function drawnIndices({ groups }: SurvivalAnswer): number[] {
   return [...groups.keys()].sort((a, b) => groups[b]!.n - groups[a]!.n || a - b).slice(0, maxDrawn)
 }
 
-function groupFigures(group: GroupAnswer, isDrawn: boolean, steps: AnswerRow[], confidence: number): CalculatorGroup {
+type Shown = { points: CurvePoint[] | null; steps: AnswerRow[]; confidence: number; exactAt: number[] }
+
+function groupFigures(group: GroupAnswer, { points, steps, confidence, exactAt }: Shown): CalculatorGroup {
   const { n, events, median, rmst, weibull } = group
   return {
     name: group.group ?? allUnits,
@@ -133,39 +140,35 @@ function groupFigures(group: GroupAnswer, isDrawn: boolean, steps: AnswerRow[], 
     median,
     mean: rmst && { tau: rmst.tau, ...meanLimits(rmst, confidence) },
     shape: weibull && shapeLimits(weibull, confidence),
-    points: isDrawn
-      ? thinPoints(
-          group.curve.map(({ time, survival, lower, upper, atRisk, censored }) => ({
-            time,
-            survival,
-            lower,
-            upper,
-            atRisk,
-            censored: censored ?? 0
-          }))
-        )
-      : null,
+    points,
     steps,
     stepCount: group.curve.length,
-    causes: causesOf(group, isDrawn),
+    ...causesOf(group, points !== null, exactAt),
     support: (group.support ?? []).slice(0, maxSupport),
     supportCount: group.support?.length ?? 0
   }
 }
 
 /** Incidences up to the last time at which enough were at risk: past it one unit more or less would move them too far. */
-function causesOf({ curve, incidence = [] }: GroupAnswer, isDrawn: boolean): CalculatorGroup['causes'] {
+function causesOf(
+  { curve, incidence = [] }: GroupAnswer,
+  isDrawn: boolean,
+  exactAt: number[]
+): Pick<CalculatorGroup, 'causes' | 'causeGrain'> {
   const until = curve.findLast(({ atRisk }) => atRisk >= tooFew)?.time ?? -1
-  return incidence.map(({ cause, curve: steps }) => {
-    const told = steps.filter(({ time }) => time <= until)
+  const told = incidence.map((one) => one.curve.filter(({ time }) => time <= until))
+  const thin = thinPoints<CausePoint>(isDrawn ? told : [], exactAt)
+  const causes = incidence.map(({ cause }, i) => {
+    const last = told[i]!.at(-1)
     return {
       name: cause,
-      points: isDrawn ? thinPoints(told.map(({ time, estimate }) => ({ time, estimate, censored: 0 }))) : [],
-      until: told.at(-1)?.time ?? null,
-      last: told.at(-1)?.estimate ?? null,
-      standardError: told.at(-1)?.standardError ?? null
+      points: thin.curves[i] ?? [],
+      until: last?.time ?? null,
+      last: last?.estimate ?? null,
+      standardError: last?.standardError ?? null
     }
   })
+  return { causes, causeGrain: thin.grain }
 }
 
 /** Normal limits, within what a mean up to tau can be. */
