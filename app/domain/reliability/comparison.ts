@@ -51,7 +51,9 @@ function pairsOf(groups: readonly Compared[]): PairFigures[] {
   return pairwiseLogRank([groups.map(({ tally }) => tally)]).map((pair) => {
     const [first, second] = [groups[pair.first]!, groups[pair.second]!]
     const tau = Math.min(first.lastFollowed, second.lastFollowed)
-    const difference = restrictedMeanDifference(restrictedMean(first.curve, tau), restrictedMean(second.curve, tau))
+    const [mean, otherMean] = [restrictedMean(first.curve, tau), restrictedMean(second.curve, tau)]
+    const isSpreadKnown = mean.standardError !== 0 && otherMean.standardError !== 0
+    const difference = isSpreadKnown ? restrictedMeanDifference(mean, otherMean) : null
     return {
       first: first.name,
       second: second.name,

@@ -1,19 +1,23 @@
 import { DomainError } from '~/lib/domain-error'
-import type { Db, Tx } from '~db/client.server'
-import type { LifeHistory } from '../reports/observations'
-import type { BatchCounts } from './batch-figures'
-import { coarseLives, countCells } from './count-cells'
+import type { Db } from '~db/client.server'
+import { countSelection, type Selection } from './count-selection.server'
 import type { ReliabilityFigures } from './figures.types'
-import { addCounts, noCounts } from './group-counts'
-import { grainNeeded, reliabilityFigures, type Cell } from './reliability-figures'
+import { noCounts } from './group-counts'
+import { reliabilityFigures } from './reliability-figures'
 import { batchName, unknownNames, type ReliabilityFilters } from './reliability-filters'
 import * as repo from './reliability.repo.server'
 
 /**
  * Reads what a board's figures need in one snapshot and computes them. Runs in the worker.
+ * @param count how the units are counted; both ways are held against each other in tests
  * @throws DomainError `not-found` for the board, `invalid` for names in the filters that it does not have
  */
-export function computeReliability(db: Db, boardSlug: string, filters: ReliabilityFilters): Promise<ReliabilityFigures> {
+export function computeReliability(
+  db: Db,
+  boardSlug: string,
+  filters: ReliabilityFilters,
+  count: typeof countSelection = countSelection
+): Promise<ReliabilityFigures> {
   return db.transaction().execute(async (tx) => {
     const board = await repo.findBoard(tx, boardSlug)
     if (!board) throw new DomainError('not-found', 'There is no such board.')
@@ -24,6 +28,7 @@ export function computeReliability(db: Db, boardSlug: string, filters: Reliabili
     if (errors.length > 0) throw new DomainError('invalid', 'These figures cannot be computed.', errors)
     const counted = releases.filter((release) => isCounted(release, filters))
     const selection: Selection = {
+      boardId: board.id,
       filters,
       releaseIds: counted.map(({ id }) => id),
       revisionId: revisions.find((r) => r.code === filters.revision)?.id ?? null,
@@ -37,7 +42,7 @@ export function computeReliability(db: Db, boardSlug: string, filters: Reliabili
     }
     return reliabilityFigures({
       filters,
-      ...(await countHistories(tx, selection)),
+      ...(await count(tx, selection)),
       batches: selection.batches,
       revisions: revisions.map(({ id, code }) => ({ id, name: code })),
       releases: releases.map(({ id, version }) => ({ id, name: version }))
@@ -45,31 +50,7 @@ export function computeReliability(db: Db, boardSlug: string, filters: Reliabili
   })
 }
 
-type Selection = {
-  filters: ReliabilityFilters
-  releaseIds: string[]
-  revisionId: string | null
-  batchId: string | null
-  batches: BatchCounts[]
-}
-
 const isCounted = (
   release: { version: string; board_revision: string },
   { release: version, boardRevision }: ReliabilityFilters
 ) => (version === null || release.version === version) && (boardRevision === null || release.board_revision === boardRevision)
-
-/** From the life histories: any filter, any as-of day. */
-async function countHistories(tx: Tx, { filters, releaseIds, revisionId, batchId, batches }: Selection) {
-  const lives: LifeHistory[] = []
-  for (const id of releaseIds) for (const life of await repo.listLives(tx, id, revisionId, filters.asOf)) lives.push(life)
-  const cells = countCells(lives, filters, batchId, batches)
-  const grain = grainOf(cells, filters) ?? 1
-  if (grain === 14) for (const { counts } of cells) counts.lives = coarseLives(counts.lives!)
-  return { cells, grain }
-}
-
-function grainOf(cells: readonly Cell[], filters: ReliabilityFilters) {
-  const together = { ...noCounts(), lives: null }
-  for (const { counts } of cells) addCounts(together, { ...counts, lives: null })
-  return grainNeeded(together.totals, filters)
-}

@@ -74,8 +74,11 @@ export type GroupFigures = {
   firstPower: (ProportionLimits & { n: number; works: number }) | null
   atOneYear: FigureAt
   median: Quantile
-  /** Mean days without failure within the first year, failures taken on the day they were found. */
-  meanInYear: RestrictedMean
+  /**
+   * Mean days without failure within the first year, failures taken on the day they were found. Without any by then `lower` is the exact one-sided bound, a
+   * year times that of S; no limits where all failed on one day, as their spread cannot be told.
+   */
+  meanInYear: RestrictedMean & { bound: Bound | null }
   curve: AnswerRow[]
   /** Turnbull's masses; null for Kaplan-Meier. */
   support: { lower: number; upper: number | null; mass: number }[] | null
@@ -107,7 +110,7 @@ export type PairFigures = {
   first: string
   second: string
   logRank: { chiSquare: number; degreesOfFreedom: number; p: number; adjustedP: number } | null
-  /** Second minus first: mean days without failure up to `tau`. */
+  /** Second minus first: mean days without failure up to `tau`. Null where one of them tells no spread: none failed by then, or all at once. */
   meanDifference: (MeanDifference & { tau: number }) | null
 }
 

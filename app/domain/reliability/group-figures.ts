@@ -70,7 +70,7 @@ export function groupFigures(
     estimator: joint === null ? 'kaplan-meier' : 'turnbull',
     firstPower: firstPower && { ...firstPower, n: totals.promptly, works: totals.worked },
     ...(joint === null ? kaplanMeierFigures(curve) : turnbullFigures(joint, oneYear)),
-    meanInYear: restrictedMean(curve, oneYear),
+    meanInYear: meanInYear(curve),
     hazard: Array.from(hazard.time, (time, i) => ({ time, cumulative: hazard.cumulative[i]! })),
     incidence: isOneCause ? [] : incidenceCurves(counts),
     shape: shapeFigures(joint === null ? spansOfTally(tally) : outlastingSpans(joint)),
@@ -87,6 +87,16 @@ function kaplanMeierFigures(curve: SurvivalCurve): TurnbullFigures {
     curve: curveRows(curve, limits),
     support: null
   }
+}
+
+/** Greenwood's spread of a mean is 0 where nothing failed, or all at once: nothing to take limits from. */
+function meanInYear(curve: SurvivalCurve): GroupFigures['meanInYear'] {
+  const mean = restrictedMean(curve, oneYear)
+  if (mean.standardError !== 0) return { ...mean, bound: null }
+  // S never rises, so the area up to a year is at least that of a rectangle as high as S then.
+  const { lower, bound } = survivalAt(curve, oneYear)
+  if (bound === null) return { ...mean, lower: null, upper: null, bound }
+  return { ...mean, lower: oneYear * lower!, upper: oneYear, bound }
 }
 
 const sum = (byDay: ReadonlyMap<number, number> | undefined) => [...(byDay?.values() ?? [])].reduce((a, b) => a + b, 0)
