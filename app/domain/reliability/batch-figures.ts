@@ -1,9 +1,9 @@
 import { causes } from '../reports/report-words'
 import { countsAgainstBoard } from '../reports/observations'
-import { batchWatch, type BatchUnit } from '../survival/batch-watch'
+import { batchWatchOfCounts } from '../survival/batch-watch'
 import { kaplanMeier } from '../survival/kaplan-meier'
 import { nelsonAalen } from '../survival/nelson-aalen'
-import { failuresIn, type Tally } from '../survival/tally'
+import { failuresIn } from '../survival/tally'
 import { tallyOfCounts } from './counts-tally'
 import type { BatchFigures } from './figures.types'
 import { addDay, type DayCounts, type GroupCounts } from './group-counts'
@@ -49,7 +49,7 @@ export function batchFigures(
     const hazard = nelsonAalen(kaplanMeier(tallyOfCounts(others, boardCauses)))
     addAll(others, batch.counts.days, 1)
     const tally = tallyOfCounts(batch.counts.days, boardCauses)
-    const watch = batchWatch(unitsOf(tally), hazard)
+    const watch = batchWatchOfCounts(tally, hazard)
     return {
       batch: batchName(batch),
       version: batch.version,
@@ -76,15 +76,4 @@ export function batchFigures(
 
 function addAll(days: DayCounts, more: DayCounts, sign: 1 | -1): void {
   for (const [counter, byDay] of more) for (const [day, count] of byDay) addDay(days, counter, day, sign * count)
-}
-
-/** Units that leave or fail by their days; what was not yet watched of late ones is taken off again by the day they entered. */
-function unitsOf({ time, entered, failed, censored }: Tally): BatchUnit[] {
-  const units: BatchUnit[] = []
-  time.forEach((day, j) => {
-    if (failed[j] !== 0) units.push({ time: day, isFailed: true, weight: failed[j]! })
-    const leaving = censored[j]! - (day > 0 ? entered[j]! : 0)
-    if (leaving !== 0) units.push({ time: day, isFailed: false, weight: leaving })
-  })
-  return units
 }

@@ -1,6 +1,7 @@
 import { lastAtOrBefore } from './columns'
 import { garwood, type RatioLimits } from './garwood'
 import type { CumulativeHazard } from './nelson-aalen'
+import type { Tally } from './tally'
 
 /** One unit of the batch; `isFailed` when its board failed at `time`. */
 export type BatchUnit = { entry?: number; time: number; isFailed: boolean; weight?: number }
@@ -39,6 +40,36 @@ export function batchWatch(batch: readonly BatchUnit[], others: CumulativeHazard
     if (time <= comparedTo) observed += weight
     else laterFailures += weight
   }
+  return watchOf({ observed, expected, comparedTo, laterFailures }, confidence)
+}
+
+/**
+ * `batchWatch` from counts of the batch: the same sum by days instead of units, each step of the others' hazard times the units of the batch at risk
+ * then.
+ *
+ * @param batch counts of the batch's units, failures by the board only
+ */
+export function batchWatchOfCounts(batch: Tally, others: CumulativeHazard, confidence = 0.95): BatchWatch | null {
+  const comparedTo = others.time.at(-1)
+  if (comparedTo === undefined) return null
+  let expected = 0
+  let atRisk = batch.time[0] === 0 ? batch.entered[0]! : 0
+  let next = 0
+  others.time.forEach((time, i) => {
+    for (; next < batch.time.length && batch.time[next]! < time; next++)
+      atRisk += (batch.time[next] === 0 ? 0 : batch.entered[next]!) - batch.failed[next]! - batch.censored[next]!
+    expected += atRisk * (others.cumulative[i]! - (others.cumulative[i - 1] ?? 0))
+  })
+  const failedIn = (isIn: (time: number) => boolean) =>
+    batch.failed.reduce((sum, failed, j) => sum + (isIn(batch.time[j]!) ? failed : 0), 0)
+  const observed = failedIn((time) => time <= comparedTo)
+  const laterFailures = failedIn((time) => time > comparedTo)
+  return watchOf({ observed, expected, comparedTo, laterFailures }, confidence)
+}
+
+type Counted = { observed: number; expected: number; comparedTo: number; laterFailures: number }
+
+function watchOf({ observed, expected, comparedTo, laterFailures }: Counted, confidence: number): BatchWatch | null {
   const ratio = garwood(observed, expected, confidence)
   return ratio && { ...ratio, isFlagged: ratio.lower > 1, comparedTo, laterFailures }
 }
