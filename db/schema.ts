@@ -342,6 +342,8 @@ export type CountedBoardsTable = {
   board_id: string
   rules: number
   last_filed_on: string | null
+  /** The report written since the counts were, `*` for several; set by triggers. */
+  uncounted: string | null
 }
 
 export type Schema = {

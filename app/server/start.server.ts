@@ -2,6 +2,7 @@ import { mkdirSync, rmSync } from 'node:fs'
 import { createServer, type Server } from 'node:http'
 import { fileURLToPath } from 'node:url'
 import type { Handler } from 'express'
+import { countMissing } from '~/domain/reliability/recount-board.server'
 import { holdDataFolder, openDb } from '~db/client.server'
 import { migrate } from '~db/migrate'
 import { ConfigError, readConfig } from './config.server'
@@ -23,6 +24,7 @@ export async function start(env: Record<string, string | undefined>, before: Han
   const releaseFolder = holdDataFolder(config.databaseFile)
   const db = openDb(config.databaseFile)
   for (const name of await migrate(db)) log('info', 'migrated', { name })
+  await countMissing(db, (board, { reports }) => log('info', 'reports-counted', { board, reports }))
   // What a killed process was receiving: nobody else writes here while the data folder is held.
   rmSync(config.uploadDir, { recursive: true, force: true })
   mkdirSync(config.uploadDir, { recursive: true })

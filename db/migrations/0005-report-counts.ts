@@ -5,7 +5,36 @@ import { sql, type Kysely } from 'kysely'
  * a release or batch (`scope_id`) on a console revision, of one evidence grade, method and first-power result or of all (`*`). Days are numbered from
  * the installation; `counts` holds 32 of them (`day-block.ts`). In `life_counts` an `upper` of -1 and an empty `cause` mean none. `last_filed_on` is the
  * last UTC day on which anything was filed, excluded or changed: from then on the counts are what is known.
+ *
+ * Whatever writes to reports is noticed by triggers: `uncounted` names the report that was written since the board was counted, `*` when there
+ * are several. Who writes through `withCounts` counts it and clears that; otherwise the counts are not read until they are rebuilt.
  */
+const mark = (boardId: string, reportId: string) =>
+  `update counted_boards set uncounted = case when ifnull(uncounted, ${reportId}) = ${reportId} then ${reportId} else '*' end
+    where board_id = ${boardId};`
+const markReport = (row: 'old' | 'new') => mark(`(select board_id from releases where id = ${row}.release_id)`, `${row}.id`)
+const markAbout = (row: 'old' | 'new') =>
+  mark(
+    `(select v.board_id from install_reports r join releases v on v.id = r.release_id where r.id = ${row}.report_id)`,
+    `${row}.report_id`
+  )
+const reportColumns =
+  'id, release_id, console_revision_id, unit_tag, installed_on, filed_on, filed_at, evidence, method, first_power, excluded_at, exclusion_kind'
+const triggers = [
+  `create trigger counted_boards_report after insert on install_reports begin ${markReport('new')} end`,
+  `create trigger counted_boards_report_changed after update of ${reportColumns} on install_reports
+    begin ${markReport('old')} ${markReport('new')} end`,
+  `create trigger counted_boards_report_gone after delete on install_reports begin ${markReport('old')} end`,
+  ...(['check_ins', 'failures'] as const).flatMap((table) => [
+    `create trigger counted_boards_${table} after insert on ${table} begin ${markAbout('new')} end`,
+    `create trigger counted_boards_${table}_changed after update on ${table} begin ${markAbout('old')} ${markAbout('new')} end`,
+    `create trigger counted_boards_${table}_gone after delete on ${table} begin ${markAbout('old')} end`
+  ]),
+  `create trigger counted_boards_unit_moved after update of batch_id on units begin
+    update counted_boards set uncounted = '*' where board_id in (select v.board_id from install_reports r
+      join releases v on v.id = r.release_id where r.unit_tag = new.tag); end`
+]
+
 const statements = [
   `create table group_totals (
     id integer primary key,
@@ -38,8 +67,10 @@ const statements = [
   `create table counted_boards (
     board_id text primary key references boards (id),
     rules integer not null,
-    last_filed_on text
-  ) strict, without rowid`
+    last_filed_on text,
+    uncounted text
+  ) strict, without rowid`,
+  ...triggers
 ]
 
 export async function up(db: Kysely<unknown>): Promise<void> {

@@ -1,6 +1,7 @@
 import type { Insertable } from 'kysely'
 import type { BundleCheck, BundlePictures, BundleRecord, DeclaredDetails } from '~/domain/bundle/bundle-check.types'
 import { runBundleCheckWithPictures } from '~/domain/bundle/run-bundle-check.server'
+import { recountBoard } from '~/domain/reliability/recount-board.server'
 import { outlineJson, placeColumns, recordRows } from '~/domain/releases/record-rows'
 import { keepLayerPictures, objectsOfRelease, storePictures, type StoredPictures } from '~/domain/releases/store-pictures.server'
 import { mustReadVersion, precedenceKey } from '~/domain/releases/version'
@@ -79,6 +80,7 @@ export async function seedDemo(
     for (const table of ['batches', 'units', 'install_reports', 'check_ins', 'failures', 'downloads'] as const)
       await insertRows(tx, table, rows[table])
     await insertRows(tx, 'audit_log', exclusionAudit(seed, rows.install_reports))
+    for (const { id } of demoBoards) await recountBoard(tx, id)
   })
   return 'seeded'
 }

@@ -1,6 +1,9 @@
 import { sql } from 'kysely'
-import type { Tx } from '~db/client.server'
-import type { Slice } from './count-slices'
+import type { DbOrTx, Tx } from '~db/client.server'
+import { countingRules, type Slice } from './count-slices'
+
+/** How `life_counts` has it that there is no upper end. */
+export const noUpper = -1
 
 /** Groups of one or more scopes (releases or batches) in one or more slices of the same method and first-power result. */
 export type GroupsAsked = { scopeIds: readonly string[]; revisionId: string | null; slices: readonly Slice[] }
@@ -39,4 +42,21 @@ export const listLifeCounts = (tx: Tx, groupIds: readonly number[], grain: 1 | 1
     .execute()
 
 export const findCountedBoard = (tx: Tx, boardId: string) =>
-  tx.selectFrom('counted_boards').where('board_id', '=', boardId).select(['rules', 'last_filed_on']).executeTakeFirst()
+  tx
+    .selectFrom('counted_boards')
+    .where('board_id', '=', boardId)
+    .select(['rules', 'last_filed_on', 'uncounted'])
+    .executeTakeFirst()
+
+/** Whether a board's counts are of the present rules, with nothing written past them. */
+export const isCounted = (board: { rules: number; uncounted: string | null } | undefined): boolean =>
+  board !== undefined && board.rules === countingRules && board.uncounted === null
+
+/** Every board, with what is known of its counts; `rules` is null where it was never counted. */
+export const listBoards = (db: DbOrTx) =>
+  db
+    .selectFrom('boards as b')
+    .leftJoin('counted_boards as c', 'c.board_id', 'b.id')
+    .orderBy('b.slug')
+    .select(['b.id', 'b.slug', 'c.rules', 'c.last_filed_on', 'c.uncounted'])
+    .execute()

@@ -1,7 +1,7 @@
 import type { Day } from '~/lib/dates'
 import type { Tx } from '~db/client.server'
 import type { Cause } from '../reports/report-words'
-import { countingRules, slicesFor } from './count-slices'
+import { slicesFor } from './count-slices'
 import * as repo from './counts.repo.server'
 import { blockDays, counterOf, dayInBlock, readBlock } from './day-block'
 import { addDay, addLife, noCounts, totalKeys, type GroupCounts, type GroupTotals, type LifeCounts } from './group-counts'
@@ -25,7 +25,7 @@ export type CountsAsked = {
  */
 export async function areCountsCurrent(tx: Tx, boardId: string, asOf: Day): Promise<boolean> {
   const counted = await repo.findCountedBoard(tx, boardId)
-  return counted !== undefined && counted.rules === countingRules && (counted.last_filed_on ?? '') <= asOf
+  return repo.isCounted(counted) && (counted!.last_filed_on ?? '') <= asOf
 }
 
 /**
@@ -53,15 +53,12 @@ export async function readLives(tx: Tx, asked: CountsAsked, grain: 1 | 14): Prom
     addLife(byGroup.get(group_id)!.cell, {
       entry,
       lower,
-      upper: upper === noUpper ? null : upper,
+      upper: upper === repo.noUpper ? null : upper,
       cause: cause === '' ? null : (cause as Cause),
       count
     })
   return cells
 }
-
-/** How `life_counts` stores that there is no upper end. */
-export const noUpper = -1
 
 async function cellsOf<T>(tx: Tx, { scopeIds, revisionId, filters }: CountsAsked, none: () => T) {
   const cells: CountCells<T> = new Map()

@@ -1,13 +1,13 @@
 import type { Day } from '~/lib/dates'
-import { addDays, dayOf } from '~/lib/dates'
 import { DomainError } from '~/lib/domain-error'
 import type { DbOrTx, Tx } from '~db/client.server'
 import type { LifeHistory } from '../reports/observations'
+import { pagesOfLives } from './lives.repo.server'
 import type { FilterChoices } from './reliability-filters'
 
 const published = ['trial', 'released', 'withdrawn'] as const
 /** More than this is refused rather than half read. */
-const maxRows = 1_000_000
+const maxLives = 1_000_000
 
 export const findBoard = (db: DbOrTx, slug: string) =>
   db
@@ -64,75 +64,20 @@ export const listRevisions = (db: DbOrTx, consoleId: string) =>
     .limit(100)
     .execute()
 
-/**
- * The life histories of one release's units filed up to a day, on one console revision or all. Reads three lists along the same index and
- * joins them in memory.
- */
-export async function listLives(tx: Tx, releaseId: string, revisionId: string | null, asOf: Day): Promise<LifeHistory[]> {
-  // Reports filed on the day itself count; instants sort as text.
-  const before = addDays(asOf, 1)
-  const reports = await tx
-    .selectFrom('install_reports as r')
-    .leftJoin('failures as f', 'f.report_id', 'r.id')
-    .leftJoin('units as u', 'u.tag', 'r.unit_tag')
-    .where('r.release_id', '=', releaseId)
-    .$if(revisionId !== null, (q) => q.where('r.console_revision_id', '=', revisionId))
-    .where('r.filed_at', '<', before)
-    .select([
-      'r.id',
-      'r.console_revision_id',
-      'u.batch_id',
-      'r.evidence',
-      'r.method',
-      'r.first_power',
-      'r.installed_on',
-      'r.filed_on',
-      'r.excluded_at',
-      'r.exclusion_kind',
-      'f.last_running_on',
-      'f.found_on',
-      'f.cause',
-      'f.created_at as failure_filed_at'
-    ])
-    .limit(maxRows + 1)
-    .execute()
-  if (reports.length > maxRows) throw tooMany()
-  const lives = new Map<string, LifeHistory>()
-  for (const r of reports)
-    lives.set(r.id, {
-      reportId: r.id,
-      releaseId,
-      revisionId: r.console_revision_id,
-      batchId: r.batch_id,
-      evidence: r.evidence,
-      method: r.method,
-      firstPower: r.first_power,
-      installedOn: r.installed_on,
-      filedOn: r.filed_on,
-      exclusion: r.excluded_at === null ? null : { kind: r.exclusion_kind!, on: dayOf(r.excluded_at) },
-      statements: [],
-      failure:
-        r.found_on === null
-          ? null
-          : { lastRunningOn: r.last_running_on, foundOn: r.found_on, cause: r.cause!, filedOn: dayOf(r.failure_filed_at!) }
-    })
-  const checkIns = await tx
-    .selectFrom('install_reports as r')
-    .innerJoin('check_ins as i', 'i.report_id', 'r.id')
-    .where('r.release_id', '=', releaseId)
-    .$if(revisionId !== null, (q) => q.where('r.console_revision_id', '=', revisionId))
-    .where('r.filed_at', '<', before)
-    .where('i.statement', 'in', ['running', 'parted'])
-    .where('i.filed_at', '<', before)
-    .select(['i.report_id', 'i.statement', 'i.stated_on', 'i.filed_at'])
-    .limit(maxRows + 1)
-    .execute()
-  if (checkIns.length > maxRows) throw tooMany()
-  for (const { report_id, statement, stated_on, filed_at } of checkIns)
-    lives
-      .get(report_id)!
-      .statements.push({ statement: statement as 'running' | 'parted', statedOn: stated_on, filedOn: dayOf(filed_at) })
-  return [...lives.values()]
+/** The life histories of one release's units filed up to a day, on one console revision or all, of one batch or all. */
+export async function listLives(
+  tx: Tx,
+  releaseId: string,
+  revisionId: string | null,
+  asOf: Day,
+  batchId: string | null = null
+): Promise<LifeHistory[]> {
+  const lives: LifeHistory[] = []
+  for await (const page of pagesOfLives(tx, { releaseId, revisionId, batchId, asOf })) {
+    for (const life of page) lives.push(life)
+    if (lives.length > maxLives) throw tooMany()
+  }
+  return lives
 }
 
 const tooMany = () =>

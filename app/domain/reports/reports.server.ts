@@ -5,6 +5,7 @@ import { dayOf } from '~/lib/dates'
 import { DomainError } from '~/lib/domain-error'
 import { newId } from '~/lib/new-id'
 import type { Services } from '~/server/services.server'
+import { withCounts } from '../reliability/keep-counts.server'
 import { statementErrors, whyEnded } from './check-in-rules'
 import type { CheckInInput, ExclusionInput, InstallReportInput } from './report.schema'
 import * as repo from './reports.repo.server'
@@ -38,30 +39,32 @@ export async function fileReport({ db, now }: Services, actor: Actor, input: Ins
     if (errors.length > 0) throw new DomainError('invalid', 'This report cannot be filed yet.', errors)
 
     const id = newId()
-    await repo.insertReport(tx, {
-      id,
-      release_id: input.release,
-      console_revision_id: input.revision,
-      unit_tag: input.unit_tag ?? null,
-      reporter_id: actor.userId,
-      installed_on: input.installed_on,
-      filed_on: dayOf(at),
-      filed_at: at.toISOString(),
-      evidence: input.evidence,
-      method: input.method ?? null,
-      first_power: input.first_power,
-      notes: input.notes ?? '',
-      form_key: input.form_key
-    })
-    if (input.first_power !== 'works')
-      await repo.insertFailure(tx, {
-        report_id: id,
-        check_in_id: null,
-        last_running_on: null,
-        found_on: input.installed_on,
-        cause: input.cause ?? 'unknown',
-        created_at: at.toISOString()
+    await withCounts(tx, id, async () => {
+      await repo.insertReport(tx, {
+        id,
+        release_id: input.release,
+        console_revision_id: input.revision,
+        unit_tag: input.unit_tag ?? null,
+        reporter_id: actor.userId,
+        installed_on: input.installed_on,
+        filed_on: dayOf(at),
+        filed_at: at.toISOString(),
+        evidence: input.evidence,
+        method: input.method ?? null,
+        first_power: input.first_power,
+        notes: input.notes ?? '',
+        form_key: input.form_key
       })
+      if (input.first_power !== 'works')
+        await repo.insertFailure(tx, {
+          report_id: id,
+          check_in_id: null,
+          last_running_on: null,
+          found_on: input.installed_on,
+          cause: input.cause ?? 'unknown',
+          created_at: at.toISOString()
+        })
+    })
     await recordAudit(
       tx,
       entry(actor, 'report.file', id, { release: input.release, firstPower: input.first_power }),
@@ -104,26 +107,28 @@ export async function addCheckIn({ db, now }: Services, actor: Actor, reportId: 
     const id = newId()
     const notes = input.notes ?? ''
     const filedAt = at.toISOString()
-    await repo.insertCheckIn(tx, {
-      id,
-      report_id: reportId,
-      statement: input.statement,
-      stated_on: input.stated_on,
-      filed_at: filedAt,
-      filed_by: actor.userId,
-      notes,
-      form_key: input.form_key
-    })
-    if (isFailure)
-      await repo.insertFailure(tx, {
+    await withCounts(tx, reportId, async () => {
+      await repo.insertCheckIn(tx, {
+        id,
         report_id: reportId,
-        check_in_id: id,
-        last_running_on: next.lastRunningOn,
-        found_on: input.stated_on,
-        cause: input.cause,
+        statement: input.statement,
+        stated_on: input.stated_on,
+        filed_at: filedAt,
+        filed_by: actor.userId,
         notes,
-        created_at: filedAt
+        form_key: input.form_key
       })
+      if (isFailure)
+        await repo.insertFailure(tx, {
+          report_id: reportId,
+          check_in_id: id,
+          last_running_on: next.lastRunningOn,
+          found_on: input.stated_on,
+          cause: input.cause,
+          notes,
+          created_at: filedAt
+        })
+    })
     await recordAudit(tx, entry(actor, 'report.check-in', reportId, { statement: input.statement, on: input.stated_on }), filedAt)
   })
 }
@@ -139,7 +144,7 @@ export async function excludeReport({ db, now }: Services, actor: Actor, reportI
     if (!report) throw noReport()
     must(actor, 'report.exclude', { reporterId: report.reporter_id, isExcluded: false })
     if (report.excluded_at !== null) throw new DomainError('conflict', 'This report is excluded already.')
-    await repo.markExcluded(tx, reportId, actor.userId!, at.toISOString(), input)
+    await withCounts(tx, reportId, () => repo.markExcluded(tx, reportId, actor.userId!, at.toISOString(), input))
     await recordAudit(tx, entry(actor, 'report.exclude', reportId, { kind: input.kind }), at.toISOString())
   })
 }
