@@ -93,7 +93,7 @@ export const steps: fc.Arbitrary<Step[]> = fc.array(
     },
     { weight: 3, arbitrary: fc.record({ do: fc.constant('wait' as const), days: fc.integer({ min: 1, max: 250 }) }) }
   ),
-  { minLength: 3, maxLength: 40, size: 'max' }
+  { minLength: 12, maxLength: 40, size: 'max' }
 )
 
 export type Played = { reports: string[]; today: Day; taken: number; refused: number }
