@@ -10,7 +10,7 @@ export type CommandIo = {
 
 /**
  * One command of `fettle`. `run` gets the arguments after the command's name and answers the exit code: 0 when the answer could be
- * computed. Bad input is thrown as a `DomainError`; the frame prints it as a problem object to standard error and exits with 2.
+ * computed (`recount`: and what was stored agreed, else 1). Bad input is thrown as a `DomainError`; the frame prints it as a problem object to standard error and exits with 2.
  */
 export type Command = {
   name: string

@@ -22,6 +22,12 @@ const named = [
   'GITHUB_CLIENT_SECRET'
 ] as const
 
+const usualDataDir = 'data'
+
+/** The database of the data folder that the environment names; all that a command beside the server has to know. */
+export const databaseFileOf = ({ DATA_DIR }: { DATA_DIR?: string | undefined }): string =>
+  `${DATA_DIR === undefined || DATA_DIR === '' ? usualDataDir : DATA_DIR}/fettle.sqlite`
+
 const notSet = (mode: string) => `is not set (needed in ${mode} mode)`
 const modeOf = <M extends string>(env: { FETTLE_MODE?: M; NODE_ENV?: string }) =>
   env.FETTLE_MODE ?? (env.NODE_ENV === 'production' ? 'production' : 'development')
@@ -40,7 +46,7 @@ const schema = z
     HOST: z.string().default('127.0.0.1'),
     PUBLIC_ORIGIN: url.optional(),
     TRUST_PROXY_HOPS: z.coerce.number('must be a whole number').int().min(0).max(10).default(0),
-    DATA_DIR: z.string().default('data'),
+    DATA_DIR: z.string().default(usualDataDir),
     APP_SECRET: z.string().min(32, 'must have at least 32 characters').optional(),
     STORAGE_ENDPOINT: url.optional(),
     STORAGE_REGION: z.string().default('us-east-1'),
@@ -91,7 +97,7 @@ const schema = z
       isSecure: publicOrigin.startsWith('https:'),
       trustProxyHops: env.TRUST_PROXY_HOPS,
       dataDir: env.DATA_DIR,
-      databaseFile: `${env.DATA_DIR}/fettle.sqlite`,
+      databaseFile: databaseFileOf(env),
       uploadDir: `${env.DATA_DIR}/uploads`,
       appSecret: env.APP_SECRET!,
       uploadMaxBytes: env.UPLOAD_MAX_BYTES,

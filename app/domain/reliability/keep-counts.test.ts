@@ -12,10 +12,11 @@ import { fillReportWorld } from '../../../tests/factories/report-world'
 import { evidenceGrades } from '../reports/report-words'
 import * as reports from '../reports/reports.repo.server'
 import { coarseLife, countLives } from './count-life'
+import { countingRules } from './count-slices'
 import { addLife, noCounts, type GroupCounts, type LifeCounts } from './group-counts'
 import { withCounts } from './keep-counts.server'
 import { areCountsCurrent, readCounts, readLives } from './read-counts.server'
-import { recountBoard } from './recount-board.server'
+import { countMissing, recountBoard } from './recount-board.server'
 import {
   evidenceFilters,
   firstPowerFilters,
@@ -194,6 +195,23 @@ describe('stored counts', () => {
       })
     expect(await write(1)).toEqual(await write(2))
   })
+})
+
+describe('before the server serves', () => {
+  it('boards are counted whose counts cannot be read, and only those', () =>
+    inWorld(async (db) => {
+      const told: string[] = []
+      const count = () => countMissing(db, (board, { reports: n }) => void told.push(`${board} ${n}`))
+      await play(db, [fitted(), fitted()])
+      await count()
+      expect(told).toEqual([])
+      const before = await db.transaction().execute(stored)
+      for (const change of [{ rules: countingRules - 1 }, { uncounted: '*' }])
+        await db.updateTable('counted_boards').set(change).execute().then(count)
+      await db.deleteFrom('counted_boards').execute().then(count)
+      expect(told).toEqual(['buttress 2', 'buttress 2', 'buttress 2'])
+      expect(await db.transaction().execute(stored)).toEqual(before)
+    }))
 })
 
 describe('what is written past the counts', () => {
