@@ -1,7 +1,7 @@
 import type { Day } from '~/lib/dates'
 import type { Tx } from '~db/client.server'
 import { countingRules } from './count-slices'
-import { listBoards } from './counts.repo.server'
+import type { listBoards } from './counts.repo.server'
 import { deleteCounts, markCounted } from './counts-writing.repo.server'
 import { blockDays, counterOf, dayInBlock, readBlock } from './day-block'
 import { countReports } from './recount-board.server'
