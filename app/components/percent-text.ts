@@ -1,5 +1,3 @@
-import { atRiskAt, goneUnder, pointAt, type SurvivalPoint } from './chart-geometry'
-
 /**
  * A share as whole percent, never as "100": where nothing failed it is the lower bound, "≥ 59"; what rounds to 100 is "over 99",
  * and what rounds to 0 "under 1".
@@ -10,12 +8,4 @@ export function percentText(share: number, lower: number | null): string {
   if (percent === 100) return 'over 99'
   if (percent === 0 && share > 0) return 'under 1'
   return String(percent)
-}
-
-/** "95 % at 1 year", or why there is no such figure. */
-export function readingText(points: readonly SurvivalPoint[], days: number, when: string): string {
-  const at = pointAt(points, days)
-  if (!at || atRiskAt(points, days) < goneUnder) return `too few at ${when}`
-  const text = percentText(at.survival, at.lower)
-  return text === 'none failed' ? `none failed by ${when}` : `${text} % at ${when}`
 }

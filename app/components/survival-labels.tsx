@@ -1,9 +1,10 @@
 import type { Plot } from './chart-frame'
 import { atRiskAt, faintUnder, spreadLabels, visibleRuns, type Scale, type SurvivalPoint } from './chart-geometry'
 import type { CurveInk } from './curve-ink'
-import { readingText } from './percent-text'
+import { usePointing } from './chart-reader'
+import { readingText } from './chart-reading'
 
-export type DrawnSeries = { name: string; points: SurvivalPoint[]; isMarked: boolean; ink: CurveInk }
+export type DrawnSeries = { name: string; points: SurvivalPoint[]; says?: string; isMarked: boolean; ink: CurveInk }
 
 type LabelProps = {
   drawn: DrawnSeries[]
@@ -16,6 +17,7 @@ type LabelProps = {
 
 /** Names at the lines' ends, moved apart where they would meet, each with a thin leader to its line. */
 export function CurveLabels({ drawn, x, y, plot, isNarrow, reading }: LabelProps) {
+  const { mark } = usePointing()
   const ended = drawn.flatMap((series) => {
     const end = visibleRuns(series.points).at(-1)?.steps.at(-1)
     return end ? [{ series, endX: x(end.time), endY: Math.min(y(end.survival), plot.bottom) }] : []
@@ -28,12 +30,12 @@ export function CurveLabels({ drawn, x, y, plot, isNarrow, reading }: LabelProps
     plot.bottom - (isNarrow ? 4 : 24)
   )
   const textX = plot.right + (isNarrow ? 16 : 18)
-  return ended.map(({ series: { name, points, isMarked, ink }, endX, endY }, i) => {
+  return ended.map(({ series: { name, points, says, isMarked, ink }, endX, endY }, i) => {
     const at = places[i]!
     const turn = plot.right + (isNarrow ? 4 : 6)
     const leader = `M${endX + 4} ${endY}H${Math.max(endX + 4, plot.right - (isNarrow ? 4 : 10))}L${turn} ${at}H${textX - 4}`
     return (
-      <g key={name}>
+      <g key={name} onPointerEnter={() => mark(name)}>
         <path d={leader} stroke="var(--color-edge)" fill="none" />
         <text x={textX} y={at + 5} className={`${isMarked ? 't-mark' : 't-b'} ${ink.textClass}`}>
           {name}
@@ -41,7 +43,7 @@ export function CurveLabels({ drawn, x, y, plot, isNarrow, reading }: LabelProps
         {isMarked && <path d={`M${textX} ${at + 10}h${Math.max(24, name.length * 9)}`} stroke={ink.stroke} strokeWidth="3" />}
         {!isNarrow && (
           <text x={textX} y={at + (isMarked ? 27 : 21)} className="t-soft">
-            {readingText(points, reading.days, reading.words)}
+            {says ?? readingText(points, reading.days, reading.words)}
           </text>
         )}
       </g>
@@ -55,6 +57,10 @@ export const nameWidths = (drawn: readonly DrawnSeries[]) => ({
   row: Math.max(0, ...drawn.map((s) => s.name.length * 7.6))
 })
 
+/** In the order in which they are listed. */
+export const byName = <One extends { name: string }>(drawn: readonly One[]): One[] =>
+  [...drawn].sort((a, b) => a.name.localeCompare(b.name, 'en', { numeric: true }))
+
 /** How high the rows are; `isStacked` sets a long name over its counts. */
 export const rowHeight = (isStacked: boolean) => (isStacked ? 40 : 22)
 
@@ -62,7 +68,7 @@ type RowsProps = { drawn: DrawnSeries[]; x: Scale; ticks: { label: string; days:
 
 /** How many were still followed at each tick; the marked row is bold. The rows keep the order of the names. */
 export function AtRiskRows({ drawn, x, ticks, top, isStacked }: RowsProps) {
-  const rows = [...drawn].sort((a, b) => a.name.localeCompare(b.name, 'en', { numeric: true }))
+  const rows = byName(drawn)
   return (
     <g>
       <text x="0" y={top} className="t-soft">

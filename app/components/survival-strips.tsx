@@ -1,4 +1,4 @@
-import { useId } from 'react'
+import { memo, useId, useMemo, type PointerEvent } from 'react'
 import {
   axisFloor,
   faintUnder,
@@ -12,7 +12,9 @@ import {
 import { curveInks } from './curve-ink'
 import { knownPath } from './curve-paths'
 import { TwoDrawings } from './figure'
-import { readingText } from './percent-text'
+import { spokenRow } from './chart-lines'
+import { ChartReader, CursorLine, placeOf, useCursorDay, usePointing } from './chart-reader'
+import { dayWords, drawnTo, pointerStep, readAt, readingText, readingWords, stopsOf } from './chart-reading'
 import { SurvivalCurve } from './survival-curve'
 
 export type Strip = {
@@ -35,21 +37,21 @@ export type SurvivalStripsProps = {
 const oneYear = { days: 365, words: '1 year' }
 const shortUnit: Record<TimeUnit, string> = { year: 'y', month: 'm', day: 'd' }
 
-/** Small multiples: one revision each with band and ticks, the others as hairlines, one scale for all. */
-export function SurvivalStrips({ strips, unit, floor, reading = oneYear }: SurvivalStripsProps) {
+/** Small multiples: one revision each with band and ticks, the others as hairlines, one scale for all, one cursor over all. */
+export function SurvivalStrips({ strips, unit, floor, reading = oneYear, grain = null }: SurvivalStripsProps) {
   const id = useId()
   const lowest = Math.min(
     1,
     ...strips.flatMap((s) => visibleRuns(s.points).flatMap((run) => run.steps.map((step) => step.survival)))
   )
-  const shared = {
-    strips,
-    unit,
-    reading,
-    floor: floor ?? Math.min(60, axisFloor(lowest)),
-    lastDay: Math.max(1, ...strips.flatMap((s) => visibleRuns(s.points).flatMap((run) => run.steps.map((step) => step.time))))
-  }
-  return (
+  const last = Math.max(0, ...strips.map((s) => drawnTo(s.points)))
+  const stops = useMemo(
+    () => [...new Set(strips.flatMap((s) => stopsOf(s.points, last, reading.days, grain)))].sort((a, b) => a - b),
+    [strips, last, reading.days, grain]
+  )
+  const shared = { strips, unit, reading, floor: floor ?? Math.min(60, axisFloor(lowest)), lastDay: Math.max(1, last) }
+  const idle = Math.min(reading.days, last)
+  const grid = (
     <div className="strips">
       {strips.map((strip, i) => (
         <div key={strip.name}>
@@ -57,17 +59,52 @@ export function SurvivalStrips({ strips, unit, floor, reading = oneYear }: Survi
             <b>{strip.name}</b> <span className="soft nw">{strip.counts}</span>
           </p>
           <TwoDrawings
-            wide={<StripDrawing {...shared} strip={strip} hairs={{ id: `${id}wide`, isHere: i === 0 }} />}
-            narrow={<StripDrawing {...shared} strip={strip} hairs={{ id: `${id}narrow`, isHere: i === 0 }} isNarrow />}
+            wide={<StripDrawing {...shared} strip={strip} hairsId={`${id}wide`} isFirst={i === 0} />}
+            narrow={<StripDrawing {...shared} strip={strip} hairsId={`${id}narrow`} isFirst={i === 0} isNarrow />}
           />
+          {last > 0 && <StripLine strip={strip} idle={idle} />}
         </div>
       ))}
     </div>
   )
+  if (last === 0) return grid
+  return (
+    <ChartReader
+      label="Read the strips"
+      stops={stops}
+      step={pointerStep(last, grain, false)}
+      wordsOf={dayWords}
+      spoken={(day) =>
+        strips.map(({ name, points }) => spokenRow({ name, ...readingWords(readAt(points, day)) }, '95\u00a0%')).join('; ')
+      }
+      names={noNames}
+      marked=""
+      onMark={doNothing}
+      idle={idle}
+      lines={(day) => (
+        <p className="chart-lines soft">Under each strip: still working on {dayWords(day ?? idle)}, 95&nbsp;% interval.</p>
+      )}
+      isWide
+    >
+      {grid}
+    </ChartReader>
+  )
 }
 
-/** The hairlines are written once a size, in its first strip, and used again in the others. */
-type Hairs = { id: string; isHere: boolean }
+const noNames: string[] = []
+const doNothing = () => undefined
+
+/** A strip's figures at the cursor's day. */
+function StripLine({ strip, idle }: { strip: Strip; idle: number }) {
+  const { share, interval, followed } = readingWords(readAt(strip.points, useCursorDay() ?? idle))
+  return (
+    <p className="strip-line">
+      <b>{share}</b>
+      {interval && `, ${interval}`}
+      <span className="soft">{followed || '\u00a0'}</span>
+    </p>
+  )
+}
 
 /** All curves as hairlines; the strip's own lies under its heavy line. */
 const hairlines = (strips: readonly Strip[], { x, y }: { x: Scale; y: Scale }) =>
@@ -80,18 +117,25 @@ type StripProps = Required<Omit<SurvivalStripsProps, 'grain'>> & {
   strip: Strip
   lastDay: number
   isNarrow?: boolean
-  hairs: Hairs
+  /** The hairlines are written once a size, in its first strip, and used again in the others. */
+  hairsId: string
+  isFirst: boolean
 }
 
-function StripDrawing({ strips, strip, unit, floor, reading, lastDay, isNarrow, hairs }: StripProps) {
+const StripDrawing = memo(function StripDrawing(props: StripProps) {
+  const { strips, strip, unit, floor, reading, lastDay, isNarrow, hairsId, isFirst } = props
+  const { toDay } = usePointing()
   const clip = useId()
   const [width, bottom, right] = isNarrow ? [156, 100, 152] : [252, 132, 248]
   const axis = timeAxis(lastDay, unit)
   const x = linear(0, axis.days, 28, right)
   const y = linear(floor / 100, 1, bottom, 10)
+  const point = (event: PointerEvent<SVGSVGElement>) => toDay(((placeOf(event).x - 28) / (right - 28)) * axis.days)
   const isSparse = !strip.points.some((p) => p.atRisk >= faintUnder)
   return (
     <svg
+      onPointerMove={point}
+      onPointerDown={point}
       viewBox={`0 0 ${width} ${bottom + 24}`}
       width={width}
       height={bottom + 24}
@@ -125,10 +169,19 @@ function StripDrawing({ strips, strip, unit, floor, reading, lastDay, isNarrow, 
       ))}
       <g clipPath={`url(#${clip})`}>
         <g fill="none" stroke="var(--color-edge)" strokeWidth=".75" opacity=".75">
-          {hairs.isHere ? <path id={hairs.id} d={hairlines(strips, { x, y })} /> : <use href={`#${hairs.id}`} />}
+          {isFirst ? <path id={hairsId} d={hairlines(strips, { x, y })} /> : <use href={`#${hairsId}`} />}
         </g>
         <SurvivalCurve points={strip.points} x={x} y={y} ink={curveInks[0]!} isMarked width={2.25} tick={7} />
       </g>
+      <CursorLine
+        x={x}
+        top={4}
+        bottom={bottom}
+        levels={(day) => {
+          const at = readAt(strip.points, day)
+          return at.kind === 'known' ? [{ y: y(at.share), isMarked: false }] : []
+        }}
+      />
     </svg>
   )
-}
+})
