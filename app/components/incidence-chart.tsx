@@ -1,7 +1,13 @@
+import { memo, useMemo, useState, type PointerEvent } from 'react'
 import { ChartFrame } from './chart-frame'
-import { linear, plainAxis, roundTicks, spreadLabels, stepPath, timeAxis, type TimeUnit } from './chart-geometry'
+import { linear, plainAxis, roundTicks, timeAxis, visibleRuns, type TimeUnit } from './chart-geometry'
+import { CauseLabels, CauseLine, shareText, type DrawnCause } from './cause-lines'
+import { ReadingLines, spokenRow, type ReadingRow } from './chart-lines'
+import { ChartReader, CursorLine, placeOf, usePointing } from './chart-reader'
+import { dayWords, drawnTo, plainWords, pointerStep, readAt, stopsOf, type Reading } from './chart-reading'
 import { curveInks } from './curve-ink'
 import { TwoDrawings } from './figure'
+import { unitWords } from './survival-drawing'
 
 /** Share failed from one cause, over days. */
 export type CauseCurve = {
@@ -9,7 +15,6 @@ export type CauseCurve = {
   points: {
     time: number
     estimate: number
-    standardError?: number
     lower?: number | null
     upper?: number | null
     /** Faint under 10, gone under 5; without it all is drawn. */
@@ -18,7 +23,6 @@ export type CauseCurve = {
   }[]
 }
 
-/** `plainUnit` as in the survival chart. */
 export type IncidenceChartProps = {
   /** At most six are drawn, in this order; the first carries its band. */
   causes: CauseCurve[]
@@ -30,70 +34,166 @@ export type IncidenceChartProps = {
   sure?: string
 }
 
-const unitWords: Record<TimeUnit, string> = { year: 'years', month: 'months', day: 'days' }
-const shareText = (share: number) => (share * 100).toFixed(1)
-const lastOf = (cause: CauseCurve) => cause.points.at(-1)?.estimate ?? 0
+const most = curveInks.length
+const oneYear = { days: 365, words: '1 year' }
 
-/** Cumulative incidence by cause; causes compete, so the lines add up to the share that failed. At most four. */
-export function IncidenceChart({ causes, ...rest }: IncidenceChartProps) {
-  const drawn = causes.slice(0, 4)
-  return <TwoDrawings wide={<Drawing causes={drawn} {...rest} />} narrow={<Drawing causes={drawn} {...rest} isNarrow />} />
+/** In drawing order: the one with the band last. Inks stay with their causes, whichever is pointed at. */
+export function drawnCauses(causes: readonly CauseCurve[], pointed: string | null = null): DrawnCause[] {
+  const shown = causes.slice(0, most)
+  const marked = shown.some((cause) => cause.name === pointed) ? pointed : shown[0]?.name
+  return shown
+    .map(({ name, points }, i) => ({
+      name,
+      isMarked: name === marked,
+      ink: curveInks[i]!,
+      points: points.map(({ time, estimate, lower = null, upper = null, atRisk = Infinity, since }) => ({
+        time,
+        since,
+        survival: estimate,
+        lower,
+        upper,
+        atRisk
+      }))
+    }))
+    .sort((a, b) => Number(a.isMarked) - Number(b.isMarked))
 }
 
-function Drawing({ causes, unit, plainUnit, isNarrow }: IncidenceChartProps & { isNarrow?: boolean }) {
+/** Cumulative incidence by cause; causes compete, so the lines add up to the share that failed. Read day by day like the survival figure. */
+export function IncidenceChart(props: IncidenceChartProps) {
+  const { causes, unit, plainUnit, reading = oneYear, grain = null, sure = '95\u00a0%' } = props
+  const [pointed, setPointed] = useState<string | null>(null)
+  const drawn = useMemo(() => drawnCauses(causes, pointed), [causes, pointed])
+  const last = Math.max(0, ...drawn.map((c) => drawnTo(c.points)))
+  const marked = drawn.at(-1)
+  const stops = useMemo(() => stopsOf(marked?.points ?? [], last, reading.days, grain, 0), [marked, last, reading.days, grain])
+  const names = useMemo(() => causes.slice(0, most).map((cause) => cause.name), [causes])
+  const label = useMemo(() => inWords(drawnCauses(causes)), [causes])
+  const drawing = { drawn, label, unit, plainUnit }
+  const drawings = <TwoDrawings wide={<Drawing {...drawing} />} narrow={<Drawing {...drawing} isNarrow />} />
+  if (marked === undefined || last === 0) return drawings
+  const wordsOf = (day: number) => (plainUnit === undefined ? dayWords(day) : plainWords(day, plainUnit))
+  const idle = Math.min(reading.days, last)
+  const rowsAt = (day: number): ReadingRow[] =>
+    names.map((name) => {
+      const { points, isMarked, ink } = drawn.find((cause) => cause.name === name)!
+      return { name, isMarked: isMarked && drawn.length > 1, textClass: ink.textClass, ...failedWords(readAt(points, day, 0)) }
+    })
+  return (
+    <ChartReader
+      label="Read the shares failed, by cause"
+      stops={stops}
+      step={pointerStep(last, grain, plainUnit !== undefined)}
+      wordsOf={wordsOf}
+      spoken={(day) =>
+        rowsAt(day)
+          .map((row) => spokenRow(row, sure))
+          .join('; ')
+      }
+      names={names}
+      marked={marked.name}
+      onMark={setPointed}
+      idle={idle}
+      lines={(day) => <ReadingLines head={`Failed by ${wordsOf(day ?? idle)}, ${sure} interval:`} rows={rowsAt(day ?? idle)} />}
+    >
+      {drawings}
+    </ChartReader>
+  )
+}
+
+/** The share failed with its interval; limits are rounded away from the claim. */
+function failedWords(reading: Reading): Pick<ReadingRow, 'share' | 'interval' | 'followed'> {
+  if (reading.kind === 'ended') return { share: 'nobody followed so long', interval: '', followed: '' }
+  const followed = Number.isFinite(reading.atRisk) ? `${reading.atRisk} followed` : ''
+  if (reading.kind === 'few') return { share: 'too few to say', interval: '', followed }
+  const { lower, upper } = reading
+  const interval =
+    lower === null || upper === null
+      ? ''
+      : `${(Math.floor(lower * 1000 + 1e-9) / 10).toFixed(1)} to ${(Math.ceil(upper * 1000 - 1e-9) / 10).toFixed(1)}`
+  if (reading.kind === 'open')
+    return { share: `between ${shareText(reading.low)} and ${shareText(reading.high)} %`, interval, followed }
+  if (reading.share === 0)
+    return { share: 'none', interval: upper === null ? '' : `under ${interval.split(' to ')[1]}`, followed }
+  return { share: `${shareText(reading.share)} %`, interval, followed }
+}
+
+const lastOf = ({ points }: DrawnCause) => visibleRuns(points, 0).at(-1)?.steps.at(-1)
+
+function inWords(drawn: readonly DrawnCause[]): string {
+  const parts = [...drawn].reverse().map((cause) => {
+    const end = lastOf(cause)
+    return `${cause.name} ${end === undefined ? 'too few to draw' : `${shareText(end.survival)} percent`}`
+  })
+  return `Share failed by cause: ${parts.join(', ')}`
+}
+
+type DrawingProps = { drawn: DrawnCause[]; label: string; unit: TimeUnit; plainUnit?: string; isNarrow?: boolean }
+
+const nearby = 12
+
+const Drawing = memo(function Drawing({ drawn, label, unit, plainUnit, isNarrow }: DrawingProps) {
+  const { toDay, mark } = usePointing()
   const [width, plot] = isNarrow
     ? [328, { left: 44, right: 196, top: 26, bottom: 250 }]
     : [804, { left: 44, right: 614, top: 26, bottom: 270 }]
-  const last = Math.max(plainUnit === undefined ? 1 : 0, ...causes.map((c) => c.points.at(-1)?.time ?? 0))
+  const last = Math.max(plainUnit === undefined ? 1 : 0, ...drawn.map((c) => drawnTo(c.points)))
   const axis = plainUnit === undefined ? timeAxis(last, unit) : plainAxis(last)
-  const yTicks = roundTicks(Math.max(1, ...causes.map((c) => lastOf(c) * 100)), 3)
+  const highest = Math.max(...drawn.map((c) => Math.max(lastOf(c)?.survival ?? 0, c.isMarked ? (lastOf(c)?.upper ?? 0) : 0)))
+  const yTicks = roundTicks(Math.max(1, highest * 100), 3)
   const x = linear(0, axis.days, plot.left, plot.right)
-  const y = linear(0, yTicks.at(-1)!, plot.bottom, plot.top)
-  const ends = causes.map((c) => y(lastOf(c) * 100))
-  const gap = isNarrow ? 36 : 20
-  const places = spreadLabels(ends, gap, plot.top + 4, plot.bottom - 8)
+  const percent = linear(0, yTicks.at(-1)!, plot.bottom, plot.top)
+  const y = (share: number) => percent(share * 100)
+  const levelAt = ({ points }: DrawnCause, day: number) => {
+    const at = readAt(points, day, 0)
+    return at.kind === 'known' ? y(at.share) : null
+  }
+  function point(event: PointerEvent<SVGSVGElement>) {
+    const at = placeOf(event)
+    if (at.x < plot.left - 12 || at.x > plot.right + 8) return
+    const day = ((at.x - plot.left) / (plot.right - plot.left)) * axis.days
+    toDay(day)
+    const near = drawn.flatMap((cause) => {
+      const level = levelAt(cause, Math.max(0, day))
+      return level === null ? [] : [{ name: cause.name, away: Math.abs(level - at.y) }]
+    })
+    const nearest = near.sort((a, b) => a.away - b.away)[0]
+    mark(nearest !== undefined && nearest.away < nearby ? nearest.name : null)
+  }
   const height = plot.bottom + 30
-  const label = `Share failed by cause: ${causes.map((c) => `${c.name} ${shareText(lastOf(c))} percent`).join(', ')}`
   return (
-    <svg viewBox={`0 0 ${width} ${height}`} width={width} height={height} role="img" aria-label={label}>
+    <svg
+      viewBox={`0 0 ${width} ${height}`}
+      width={width}
+      height={height}
+      role="img"
+      aria-label={label}
+      onPointerMove={point}
+      onPointerDown={point}
+    >
       <ChartFrame
         plot={plot}
         x={x}
-        y={y}
+        y={percent}
         yTicks={yTicks}
         xTicks={axis.ticks}
         yTitle="% failed from this cause"
         xTitle={plainUnit ?? (isNarrow ? unitWords[unit] : `${unitWords[unit]} after fitting`)}
       />
-      {causes.map((cause, i) => {
-        const ink = curveInks[i]!
-        const steps: [number, number][] = [
-          [x(0), y(0)],
-          ...cause.points.map((p): [number, number] => [x(p.time), y(p.estimate * 100)])
-        ]
-        return (
-          <g key={cause.name}>
-            <path d={stepPath(steps)} fill="none" stroke={ink.stroke} strokeWidth="2.5" strokeDasharray={ink.dash} />
-            <path
-              d={`M${steps.at(-1)![0] + 3} ${ends[i]}H${Math.max(steps.at(-1)![0] + 3, plot.right + 2)}L${plot.right + 10} ${places[i]}h6`}
-              stroke="var(--color-edge)"
-              fill="none"
-            />
-            <text x={plot.right + 20} y={places[i]! + 5} className={`t-b ${ink.textClass}`}>
-              {isNarrow ? (
-                <>
-                  <tspan>{cause.name}</tspan>
-                  <tspan x={plot.right + 20} dy="16">
-                    {shareText(lastOf(cause))} %
-                  </tspan>
-                </>
-              ) : (
-                `${cause.name} ${shareText(lastOf(cause))} %`
-              )}
-            </text>
-          </g>
-        )
-      })}
+      {drawn.map((cause) => (
+        <CauseLine key={cause.name} cause={cause} x={x} y={y} />
+      ))}
+      <CursorLine
+        x={x}
+        top={plot.top - 6}
+        bottom={plot.bottom}
+        levels={(day) =>
+          drawn.flatMap((cause) => {
+            const level = levelAt(cause, day)
+            return level === null ? [] : [{ y: level, isMarked: cause.isMarked }]
+          })
+        }
+      />
+      <CauseLabels drawn={drawn} x={x} y={y} plot={plot} isNarrow={isNarrow} />
     </svg>
   )
-}
+})

@@ -3,6 +3,7 @@ import { DomainError } from '~/lib/domain-error'
 import { curvePoints, type CurvePoint } from '../reliability/curve-points'
 import { tooFew } from '../reliability/reliability-words'
 import { allUnits, calculatorSentence, readingTime, shapeLimits, shapeSentence, type Limited } from './calculator-words'
+import { incidenceLimits } from './aalen-johansen'
 import { computeSurvival } from './compute-survival'
 import { parseSurvivalRequest } from './compute-survival.schema'
 import { zOf, type IntervalKind } from './confidence-limits'
@@ -38,7 +39,14 @@ export type CalculatorGroup = {
   supportCount: number
 }
 
-export type CausePoint = { time: number; estimate: number; standardError: number; since?: number }
+export type CausePoint = {
+  time: number
+  estimate: number
+  lower: number | null
+  upper: number | null
+  atRisk: number
+  since?: number
+}
 
 /** What the calculator's page prints; bounded, whatever was sent. */
 export type CalculatorFigures = {
@@ -85,7 +93,7 @@ export function calculatorFigures(body: ArrayBuffer, options: CalculatorOptions)
   const groups = answer.groups.map((group, g): CalculatorGroup => {
     const steps = group.curve.slice(0, Math.max(0, left))
     left -= steps.length
-    return groupFigures(group, { points: thin.curves[drawn.indexOf(g)] ?? null, steps, confidence: options.confidence, exactAt })
+    return groupFigures(group, { points: thin.curves[drawn.indexOf(g)] ?? null, steps, options, exactAt })
   })
   return {
     method: answer.method,
@@ -129,9 +137,11 @@ function drawnIndices({ groups }: SurvivalAnswer): number[] {
   return [...groups.keys()].sort((a, b) => groups[b]!.n - groups[a]!.n || a - b).slice(0, maxDrawn)
 }
 
-type Shown = { points: CurvePoint[] | null; steps: AnswerRow[]; confidence: number; exactAt: number[] }
+type Shown = { points: CurvePoint[] | null; steps: AnswerRow[]; options: CalculatorOptions; exactAt: number[] }
 
-function groupFigures(group: GroupAnswer, { points, steps, confidence, exactAt }: Shown): CalculatorGroup {
+function groupFigures(group: GroupAnswer, shown: Shown): CalculatorGroup {
+  const { points, steps } = shown
+  const { confidence } = shown.options
   const { n, events, median, rmst, weibull } = group
   return {
     name: group.group ?? allUnits,
@@ -143,7 +153,7 @@ function groupFigures(group: GroupAnswer, { points, steps, confidence, exactAt }
     points,
     steps,
     stepCount: group.curve.length,
-    ...causesOf(group, points !== null, exactAt),
+    ...causesOf(group, points !== null, shown),
     support: (group.support ?? []).slice(0, maxSupport),
     supportCount: group.support?.length ?? 0
   }
@@ -153,11 +163,18 @@ function groupFigures(group: GroupAnswer, { points, steps, confidence, exactAt }
 function causesOf(
   { curve, incidence = [] }: GroupAnswer,
   isDrawn: boolean,
-  exactAt: number[]
+  { options, exactAt }: Shown
 ): Pick<CalculatorGroup, 'causes' | 'causeGrain'> {
   const until = curve.findLast(({ atRisk }) => atRisk >= tooFew)?.time ?? -1
+  const atRisk = new Map(curve.map((row) => [row.time, row.atRisk]))
   const told = incidence.map((one) => one.curve.filter(({ time }) => time <= until))
-  const thin = thinPoints<CausePoint>(isDrawn ? told : [], exactAt)
+  const pointsOf = (rows: (typeof told)[number]) =>
+    rows.map(({ time, estimate, standardError }): CausePoint => {
+      const at = { estimate, standardError, atRisk: atRisk.get(time)! }
+      const { lower, upper } = incidenceLimits(at, options)
+      return { time, estimate, lower, upper, atRisk: at.atRisk }
+    })
+  const thin = thinPoints(isDrawn ? told.map(pointsOf) : [], exactAt)
   const causes = incidence.map(({ cause }, i) => {
     const last = told[i]!.at(-1)
     return {

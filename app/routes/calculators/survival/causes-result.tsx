@@ -4,11 +4,11 @@ import { Section, SubHeading } from '~/components/section'
 import { Table } from '~/components/table'
 import { tooFew } from '~/domain/reliability/reliability-words'
 import type { CalculatorFigures } from '~/domain/survival/calculator-figures'
-import { timeText } from '~/domain/survival/calculator-words'
+import { confidenceText, timeText } from '~/domain/survival/calculator-words'
 import { chartName } from './chart-name'
 
 /** Cumulative incidence by cause, a figure for each group that is drawn. */
-export function CausesResult({ number, figures: { groups, options } }: { number: number; figures: CalculatorFigures }) {
+export function CausesResult({ number, figures: { groups, options, readAt } }: { number: number; figures: CalculatorFigures }) {
   const drawn = groups.filter((g) => g.points !== null && g.causes.some((cause) => cause.points.length > 0))
   const rows = groups.flatMap((g) => g.causes.map((cause) => ({ group: g.name, ...cause }))).slice(0, 200)
   return (
@@ -22,9 +22,16 @@ export function CausesResult({ number, figures: { groups, options } }: { number:
           {groups.length > 1 && <SubHeading>{group.name}</SubHeading>}
           <Figure
             number={2 + i}
-            caption={`Cumulative incidence by cause, by Aalen and Johansen${group.causes.length > 4 ? '; the four largest are drawn' : ''}.`}
+            caption={`Cumulative incidence by cause, by Aalen and Johansen, the largest with its ${confidenceText(options.confidence)} band${group.causes.length > 6 ? '; the six largest are drawn' : ''}.`}
           >
-            <IncidenceChart causes={largest(group.causes)} unit="day" plainUnit={options.timeUnit} />
+            <IncidenceChart
+              causes={largest(group.causes)}
+              unit="day"
+              plainUnit={options.timeUnit}
+              reading={readAt === null ? undefined : { days: readAt, words: `${timeText(readAt)} ${options.timeUnit}` }}
+              grain={group.causeGrain}
+              sure={confidenceText(options.confidence)}
+            />
           </Figure>
         </div>
       ))}
@@ -51,6 +58,6 @@ export function CausesResult({ number, figures: { groups, options } }: { number:
 }
 
 function largest(causes: CalculatorFigures['groups'][number]['causes']) {
-  const most = [...causes].sort((a, b) => (b.last ?? 0) - (a.last ?? 0)).slice(0, 4)
+  const most = [...causes].sort((a, b) => (b.last ?? 0) - (a.last ?? 0)).slice(0, 6)
   return most.map((cause, i) => ({ name: chartName(most, i), points: cause.points }))
 }

@@ -54,6 +54,8 @@ function CurveResult({ figures }: { figures: CalculatorFigures }) {
             series={drawn.map(({ name, points }, i) => ({ name, points, marked: i === marked }))}
             unit="day"
             plainUnit={options.timeUnit}
+            grain={figures.grain}
+            sure={sure}
             reading={readAt === null ? undefined : { days: readAt, words: `${timeText(readAt)} ${options.timeUnit}` }}
           />
         </Figure>
@@ -106,7 +108,7 @@ function curveCaption({ method, options, groups }: CalculatorFigures, drawn: num
       : `The group with the most units carries its ${sure} band${groups.length > drawn ? `; the ${drawn} largest of ${groups.length} groups are drawn` : ''}`
   const kind =
     method === 'turnbull'
-      ? `By Turnbull, for failures known only between two times. ${who}, by resampling. Within the intervals of the table of masses the share is not determined; the line falls at the end of each, as late as it can.`
+      ? `By Turnbull, for failures known only between two times. ${who}, by resampling. Where the data do not say when within an interval the share falls, it is not determined: a hatched box, a thin slant on lines without a band.`
       : `By Kaplan and Meier. ${who}; ticks are units that left still working.`
   return `${kind} Thin and faint under 10 at risk, not drawn under ${tooFew}.`
 }
