@@ -1,4 +1,5 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { reliabilityTables } from '~/domain/reliability/reliability-export'
 import { addDays } from '~/lib/dates'
 import { fillReportWorld } from '../factories/report-world'
 import { reference } from '../support/survival-reference'
@@ -56,6 +57,7 @@ beforeAll(async () => {
           .values({
             report_id: `r${i}`,
             check_in_id: until > 0 ? `c${i}` : null,
+            last_running_on: until > 0 ? addDays(end, -1) : null,
             found_on: end,
             cause: 'board',
             created_at: at(end)
@@ -113,6 +115,14 @@ describe('the reliability of a board as JSON', () => {
     expect(tm1.firstPower.lower).toBeCloseTo(Math.pow(0.025, 1 / 8), 10)
     expect(group('TM-2').curve).toMatchObject([{ time: 0, atRisk: 1, events: 1, survival: 0, lower: null, upper: null }])
     expect(group('all')).toMatchObject({ fitted: 9, n: 9, events: 4 })
+    // 5 days once, 10 once, 20 twice (one still ran), a year four times, of eight: mean days without failure as far as a year.
+    expect(tm1.rmst).toMatchObject({ tau: 365 })
+    expect(tm1.rmst.estimate).toBeCloseTo(5 + (7 / 8) * 5 + (6 / 8) * 10 + (5 / 8) * 345, 9)
+    expect(tm1.incidence.map((i: { cause: string; failures: number }) => [i.cause, i.failures])).toEqual([['board', 3]])
+    expect(tm1.incidence[0].curve.map((r: { estimate: number }) => r.estimate)).toEqual(
+      [1 / 8, 2 / 8, 3 / 8, 3 / 8].map((share) => expect.closeTo(share, 12))
+    )
+    expect(body.comparisons).toMatchObject([{ by: 'revision', groups: ['TM-1'], leftOut: ['TM-2'], pairs: [] }])
   })
   it('narrows by each filter', async () => {
     const fitted = async (query: string) => (await json(`${api}?${query}`)).body.groups[0].fitted
@@ -173,9 +183,22 @@ describe('the reliability page', () => {
     expect(answer.headers.get('Content-Type')).toContain('text/csv')
     expect(answer.headers.get('Content-Disposition')).toBe('attachment; filename="buttress-reliability-2026-11-30.csv"')
     const [head, ...rows] = (await answer.text()).trimEnd().split('\r\n')
-    expect(head).toBe('board,as_of,by,group,day,at_risk,events,censored,survival,standard_error,lower,upper,bound')
+    expect(head).toBe(
+      'board,as_of,by,group,day,at_risk,events,censored,survival,standard_error,lower,upper,bound,estimator,filters'
+    )
     expect(rows.filter((r) => r.startsWith('buttress,2026-11-30,revision,TM-1,'))).toHaveLength(4)
     expect(rows[0]).toMatch(/^buttress,2026-11-30,all,all,5,8,1,0,0\.875,/)
+  })
+  it('gives every other table by its name, and no table that there is not', async () => {
+    for (const table of reliabilityTables) {
+      const answer = await site.browser().fetch(`${page}.csv?table=${table}&revision=TM-1&as-of=2026-11-30`)
+      expect(answer.status).toBe(200)
+      const rows = (await answer.text()).trimEnd().split('\r\n')
+      expect(rows[0]).toMatch(/^board,as_of,.*,filters$/)
+      for (const row of rows.slice(1)) expect(row).toMatch(/^buttress,2026-11-30,.*revision=TM-1/)
+    }
+    const { body } = await json(`${page}.csv?table=everything`, 400)
+    expect(body).toMatchObject({ status: 400, errors: [{ path: 'table' }] })
   })
   it('moves when a report is filed', async () => {
     const member = await site.signInByGithub('vigga')

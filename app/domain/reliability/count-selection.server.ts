@@ -18,7 +18,8 @@ export type Selection = {
   batches: BatchCounts[]
 }
 
-export type CountedSelection = { cells: Cell[]; grain: 1 | 14 }
+/** `way`: what was read for them. */
+export type CountedSelection = { cells: Cell[]; grain: 1 | 14; way: 'counts' | 'histories' }
 
 /** Counts a selection by the stored counts where they answer, else by the life histories; both give the same. Fills the batches' counts. */
 export async function countSelection(tx: Tx, selection: Selection): Promise<CountedSelection> {
@@ -50,7 +51,7 @@ export async function countStored(
       for (const [revision, lives] of byRevision) counted.get(scope)!.get(revision)!.lives = lives
   const ofBatches = await readCounts(tx, { ...asked, scopeIds: batches.map(({ id }) => id) })
   for (const { id, counts } of batches) for (const more of ofBatches.get(id)?.values() ?? []) addCounts(counts, more)
-  return { cells, grain: grain ?? 1 }
+  return { cells, grain: grain ?? 1, way: 'counts' }
 }
 
 /** From the life histories: any filter, any as-of day. Fills the batches' counts. */
@@ -63,7 +64,7 @@ export async function countHistories(
   const cells = countCells(lives, filters, batchId, batches)
   const grain = grainOf(cells, filters) ?? 1
   if (grain === 14) for (const { counts } of cells) counts.lives = coarseLives(counts.lives!)
-  return { cells, grain }
+  return { cells, grain, way: 'histories' }
 }
 
 function grainOf(cells: readonly Cell[], filters: ReliabilityFilters) {

@@ -42,9 +42,12 @@ export type ShapeFigures = {
   estimate: number
   lower: number
   upper: number
+  standardError: number
   scale: number
   scaleLower: number
   scaleUpper: number
+  scaleStandardError: number
+  logLikelihood: number
   failures: number
   /** B10 life and median, days. */
   b10: { estimate: number; lower: number; upper: number }

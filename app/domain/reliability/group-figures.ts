@@ -132,13 +132,17 @@ function shapeFigures(spans: Spans): ShapeFigures | null {
   if (fit === null) return null
   const [shape, scale] = [weibullLimits(fit, 'shape'), weibullLimits(fit, 'scale')]
   const [b10, median] = [weibullQuantile(fit, 0.1), weibullQuantile(fit, 0.5)]
+  const numbers = [shape, scale, b10, median].flatMap((estimate) => Object.values(estimate))
   // A shape so small that a life overflows says nothing that could be sent.
-  if (![shape, scale, b10, median].every((estimate) => Object.values(estimate).every(Number.isFinite))) return null
+  if (![...numbers, fit.shapeStandardError, fit.scaleStandardError].every(Number.isFinite)) return null
   return {
     ...shape,
+    standardError: fit.shapeStandardError,
     scale: scale.estimate,
     scaleLower: scale.lower,
     scaleUpper: scale.upper,
+    scaleStandardError: fit.scaleStandardError,
+    logLikelihood: fit.logLikelihood,
     failures: spans.weight.reduce((n, weight, i) => n + (spans.upper[i] === Infinity ? 0 : weight), 0),
     b10,
     median

@@ -49,14 +49,16 @@ export async function reliabilityQuestion({ db, now }: Services, boardSlug: stri
 
 /**
  * The figures that an address asks for.
+ * @param adapted what its filters are changed to before anything is computed
  * @throws DomainError `not-found`, `invalid` with messages at the filters, `unavailable`
  */
 export async function reliabilityAsked(
   services: Services,
   boardSlug: string,
-  query: URLSearchParams
+  query: URLSearchParams,
+  adapted: (filters: ReliabilityFilters) => ReliabilityFilters = (filters) => filters
 ): Promise<ReliabilityFigures> {
   const { filters, errors } = await reliabilityQuestion(services, boardSlug, query)
   if (errors.length > 0) throw new DomainError('invalid', 'The filters do not add up.', errors)
-  return reliabilityOf(services, boardSlug, filters)
+  return reliabilityOf(services, boardSlug, adapted(filters))
 }
