@@ -1,5 +1,8 @@
 import { describe, expect, it } from 'vitest'
 import { allReports, observationOf, type LifeHistory, type UnitObservation } from '~/domain/reports/observations'
+import { countLives } from '~/domain/reliability/count-life'
+import { groupFigures } from '~/domain/reliability/group-figures'
+import { countedCauses, type CauseFilter } from '~/domain/reliability/reliability-filters'
 import { clopperPearson } from '~/domain/survival/clopper-pearson'
 import { columnsOf } from '~/domain/survival/columns'
 import { garwood } from '~/domain/survival/garwood'
@@ -8,7 +11,16 @@ import { survivalAt } from '~/domain/survival/survival-at'
 import { tallyOf } from '~/domain/survival/tally'
 import { readManifests } from './manifests'
 import { simulate } from './simulate'
-import { demoAsOf, demoSeed, hiddenFirstPower, hiddenHazard, hiddenSurvival, hiddenTotalHazard, type UnitKind } from './truth'
+import {
+  demoAsOf,
+  demoSeed,
+  hiddenFirstPower,
+  hiddenHazard,
+  hiddenSurvival,
+  hiddenTotalHazard,
+  unknownCauseShare,
+  type UnitKind
+} from './truth'
 
 /*
  * Holds what the product's own functions make of the reports against the parameters they were drawn from. The seed is fixed, so nothing here
@@ -22,7 +34,7 @@ const { rows, told } = simulate(demoSeed, {
   revisionId: (code) => code
 })
 
-type Watched = { kind: UnitKind; seen: UnitObservation }
+type Watched = { kind: UnitKind; life: LifeHistory; seen: UnitObservation }
 
 /** Every unit that the product's rules put into a curve. */
 const watched: Watched[] = told.flatMap(({ kind, reportId }) => {
@@ -53,7 +65,7 @@ const watched: Watched[] = told.flatMap(({ kind, reportId }) => {
       : null
   }
   const seen = observationOf(life, demoAsOf, allReports)
-  return seen.kind === 'observed' ? [{ kind, seen }] : []
+  return seen.kind === 'observed' ? [{ kind, life, seen }] : []
 })
 
 const curveOf = (units: Watched[]) =>
@@ -61,7 +73,9 @@ const curveOf = (units: Watched[]) =>
     tallyOf(columnsOf(units.map(({ seen }) => ({ entry: seen.entry, time: seen.time, event: seen.cause === null ? 0 : 1 }))))
   )
 
-const buttress = watched.filter(({ kind }) => kind.board === 'buttress')
+const ofBoard = (board: string) => watched.filter(({ kind }) => kind.board === board)
+const buttress = ofBoard('buttress')
+const sundial = ofBoard('sundial')
 
 /** Failures are found up to so many days after they happened. */
 const foundWithin = 6
@@ -134,6 +148,55 @@ describe('the reports of the demo, against the parameters they were drawn from',
       expect(hiddenSurvival(kind, day)).toBeGreaterThan(lower!)
       if (bound === null) expect(hiddenSurvival(kind, day)).toBeLessThan(upper!)
     }
+  })
+
+  describe('give Sundial, some of whose failures were found late, a curve by Turnbull', () => {
+    const figuresOf = (units: Watched[], cause: CauseFilter) =>
+      groupFigures(
+        'all',
+        countLives(
+          units.map(({ life }) => life),
+          demoAsOf,
+          allReports
+        ),
+        { counted: countedCauses(cause), isOneCause: cause !== 'all', asOf: demoAsOf },
+        null
+      )
+    /** On how many of the days on which the curve has fallen its limits leave out the hidden share; `hazard` says what is hidden. */
+    function outside(units: Watched[], cause: CauseFilter, hazard: (kind: UnitKind, t: number) => number) {
+      const { curve, estimator } = figuresOf(units, cause)
+      expect(estimator).toBe('turnbull')
+      const last = lastFollowed(units)
+      const { cumulative } = hiddenPooled(units, hazard, last)
+      const start = curve.findLast(({ time }) => time === 0)?.survival ?? 1
+      const told = curve.filter(({ time, bound }) => time > 0 && time <= last && bound === null)
+      const hidden = (time: number) => start * Math.exp(-cumulative[time]!)
+      return {
+        told: told.length,
+        outside: told.filter(({ time, lower, upper }) => hidden(time) < lower! || hidden(time) > upper!).length
+      }
+    }
+    /** What is laid to the board: its own failures, and the share of all others whose cause nobody established. */
+    const boardHazard = (kind: UnitKind, t: number) => {
+      const own = hiddenHazard(kind, 'board', t)
+      return own + unknownCauseShare * (hiddenTotalHazard(kind, t) - own)
+    }
+
+    it.each([
+      ['all failures', 'all', hiddenTotalHazard],
+      ['those of the board', 'board', boardHazard]
+    ] as const)('whose limits hold the hidden one for %s', (_, cause, hazard) => {
+      const found = outside(sundial, cause, hazard)
+      expect(found.told).toBeGreaterThan(10)
+      expect(found.outside).toBe(0)
+    })
+    it('which would tell a truth three times as bad from this one', () => {
+      expect(outside(sundial, 'all', (kind, t) => 3 * hiddenTotalHazard(kind, t)).outside).toBeGreaterThan(5)
+    })
+    it.each(['TP-3', 'TP-4'])('also on %s alone', (revision) => {
+      const units = sundial.filter(({ kind }) => kind.revision === revision)
+      expect(outside(units, 'all', hiddenTotalHazard)).toMatchObject({ outside: 0 })
+    })
   })
 
   it.each(['buttress', 'sundial', 'almanac'])('give a share of %s working at first power as hidden', (board) => {
