@@ -1,8 +1,9 @@
 import { describe, expect, it } from 'vitest'
 import { lifeOf } from '../../../tests/factories/life-history'
 import { guideSections, numbersIn } from '../../../tests/support/guide-tables'
-import { daysBetween } from '~/lib/dates'
+import { addDays, daysBetween } from '~/lib/dates'
 import { lowerPercent, tooFew } from '../reliability/reliability-words'
+import { dueDays, nextDueDay } from '../reliability/silent-figures'
 import { allReports, observationOf, promptDays, type LifeOutcome } from '../reports/observations'
 import { firstPowerWords } from '../reports/report-words'
 import { aalenJohansen } from '../survival/aalen-johansen'
@@ -16,7 +17,7 @@ import { logRank } from '../survival/log-rank'
 import { nelsonAalen } from '../survival/nelson-aalen'
 import type { TimedObservation } from '../survival/observation'
 import { quantile } from '../survival/quantile'
-import { restrictedMean } from '../survival/restricted-mean'
+import { restrictedMean, restrictedMeanDifference } from '../survival/restricted-mean'
 import { isSilent, silentAfterDays, silentBounds, type SilentUnit } from '../survival/silent-bounds'
 import { spansOf } from '../survival/spans'
 import { survivalAt } from '../survival/survival-at'
@@ -174,7 +175,7 @@ describe('the worked examples', () => {
         fit.right[k] === Infinity ? none : percent(fit.survivalAfter[k]!)
       ])
     ).toEqual(rows[1])
-    expect(prose).toEqual(['1976'])
+    expect(prose).toEqual(['1976', '1993'])
   })
 
   it('one cause beside another', () => {
@@ -230,6 +231,27 @@ describe('the worked examples', () => {
     expect(prose).toEqual(['1966'])
     expect(test.observed).toEqual([3, 1]) // "three against one"
     expect(Math.round(1 / test.p)).toBe(6) // "one time in six"
+  })
+
+  it('the difference in days', () => {
+    const { rows, prose } = example('difference')
+    const tau = 100 // "their first hundred days"
+    const units = example('two-groups').rows[0]!
+    const means = rows[0]!.map(([name]) => {
+      const group = units.filter(([, revision]) => revision === name).map(([, , to, end]) => observed('0', to!, end!))
+      return restrictedMean(curveOf(group), tau)
+    })
+    expect(rows[0]).toEqual(means.map((mean, i) => [['old', 'new'][i], fixed(mean.estimate!, 1), fixed(mean.standardError!, 1)]))
+    const { estimate, standardError, lower, upper } = restrictedMeanDifference(means[0]!, means[1]!)!
+    expect(rows[1]).toEqual([
+      ['New less old', fixed(estimate, 1)],
+      ['Standard error', fixed(standardError, 1)],
+      ['95 % interval', range(fixed(lower, 1), fixed(upper, 1)).replace('-', '−')]
+    ])
+    expect(Math.hypot(means[0]!.standardError!, means[1]!.standardError!)).toBeCloseTo(standardError, 12)
+    expect(Math.round(upper / 30)).toBe(2) // "two months"
+    expect(tooFew).toBe(5) // "five of both"
+    expect(prose).toEqual([])
   })
 
   it('whether failures come early or late', () => {
@@ -292,6 +314,8 @@ describe('the worked examples', () => {
   it('what the silent could hide', () => {
     const { rows, prose } = example('silent')
     const due = new Map(rows[0]!.map(([unit, day]) => [unit!, day!]))
+    for (const { unit, observation } of watched())
+      expect(due.get(unit)).toBe(observation.event === 1 ? none : addDays(installedOn, nextDueDay(observation.time)))
     const units = watched().map(({ unit, observation }): SilentUnit => {
       const day = due.get(unit)!
       return { observation, isSilent: day !== none && isSilent(day, asOf), toClose }
@@ -308,7 +332,7 @@ describe('the worked examples', () => {
       ['At best', share(best)]
     ])
     expect(sections.get('silent')!.tables[1]!.head[0]).toBe('Share on day 180')
-    expect(prose).toEqual([String(silentAfterDays)])
+    expect(prose).toEqual([String(silentAfterDays), ...dueDays.map(String)])
     expect(units.filter((unit) => unit.isSilent)).toHaveLength(2) // "two silent units of six"
   })
 

@@ -9,7 +9,7 @@ import type { SilentFigures } from './figures.types'
 import type { Counter, DayCounts, GroupTotals } from './group-counts'
 
 /** A check-in is due so many days after installing, and from then on once a year. */
-const dueDays = [30, 90, 180, 365] as const
+export const dueDays = [30, 90, 180, 365] as const
 
 /** The day after installing on which the next check-in is due when the last word came on day `last`. */
 export function nextDueDay(last: number): number {
