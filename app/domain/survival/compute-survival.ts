@@ -17,10 +17,8 @@ import { tallyOf, type Tally } from './tally'
 import { fitWeibull } from './weibull'
 import { weibullQuantile } from './weibull-quantities'
 
-const resamples = 200
-// Past this many rows or units 200 resamples would take more than some ten seconds; the limits are then null.
-const maxResampledRows = 10_000
-const maxResampledUnits = 200_000
+// Past this many units a refit for each resample of every group would take more than some ten seconds.
+const maxRefittedUnits = 10_000
 
 /**
  * Computes the answer of `POST /api/v1/compute/survival` (METHODS.md section 1), the same for pages, endpoint and command line. Kaplan-Meier, with
@@ -32,7 +30,8 @@ const maxResampledUnits = 200_000
 export function computeSurvival(request: SurvivalRequest): SurvivalAnswer {
   if (hasIntervals(request)) {
     const rows = rowsByGroup(request)
-    const options = { ...request, resamples: resamplesFor(request) }
+    const units = request.observations.reduce((sum, { weight = 1 }) => sum + weight, 0)
+    const options = { ...request, isLarge: units > maxRefittedUnits }
     return {
       method: 'turnbull',
       groups: request.groups.map((group, g) => {
@@ -98,11 +97,6 @@ function weibullAnswer(spans: Spans, confidence: number): WeibullAnswer | null {
     ...Object.values(median)
   ]
   return numbers.every(Number.isFinite) ? answer : null
-}
-
-function resamplesFor({ observations }: SurvivalRequest): number {
-  const units = observations.reduce((sum, { weight = 1 }) => sum + weight, 0)
-  return observations.length <= maxResampledRows && units <= maxResampledUnits ? resamples : 0
 }
 
 function rowsByGroup({ observations, groups, groupOf }: SurvivalRequest): Observation[][] {

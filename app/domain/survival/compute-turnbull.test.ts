@@ -1,10 +1,10 @@
-import { expect, test } from 'vitest'
+import { describe, expect, test } from 'vitest'
 import { computeTurnbullGroup } from './compute-turnbull'
 import type { Observation } from './observation'
 import { spansOf } from './spans'
 
-const groupOf = (observations: Observation[], resamples = 40) =>
-  computeTurnbullGroup('A', spansOf(observations), { confidence: 0.95, seed: 1, tau: null, resamples }, null)
+const groupOf = (observations: Observation[], isLarge = false) =>
+  computeTurnbullGroup('A', spansOf(observations), { confidence: 0.95, seed: 1, tau: null, isLarge }, null)
 
 test('units that may still be at risk: entered before, not known to have failed or left before', () => {
   const { curve } = groupOf([
@@ -30,11 +30,35 @@ test('nothing but right-censored units: no row, one endless cell', () => {
   })
 })
 
-test('without resamples there are no limits', () => {
-  const rows = [
-    { lower: 0, upper: 5 },
-    { lower: 5, upper: null }
+describe('limits by the size of the group', () => {
+  const counts = (weight: number): Observation[] => [
+    { lower: 0, upper: 5, weight },
+    { lower: 5, upper: null, weight }
   ]
-  expect(groupOf(rows, 0).curve).toMatchObject([{ time: 5, lower: null, upper: null, standardError: null }])
-  expect(groupOf(rows).curve[0]!.standardError).toBeGreaterThan(0)
+
+  test.each([
+    ['refitted', 150, false],
+    ['refitted in a large request', 150, true],
+    ['refitted', 1_500, false],
+    ['by one step in a large request', 1_500, true],
+    ['by one step', 500_000_000, false]
+  ])('%s: %s units twice, about the binomial error', (_how, weight, isLarge) => {
+    const [row] = groupOf(counts(weight), isLarge).curve
+    const error = Math.sqrt(0.25 / (2 * weight))
+    // 200 resamples tell an error to 5 %, a limit to 19 % of it.
+    expect(Math.abs(row!.standardError! / error - 1)).toBeLessThan(0.2)
+    expect(Math.abs(row!.lower! - (0.5 - 1.96 * error))).toBeLessThan(0.75 * error)
+    expect(Math.abs(row!.upper! - (0.5 + 1.96 * error))).toBeLessThan(0.75 * error)
+  })
+
+  test('the two ways differ', () => {
+    expect(groupOf(counts(400), true).curve[0]!.lower).not.toBe(groupOf(counts(400), false).curve[0]!.lower)
+  })
+
+  test('none with more cells than a step can take', () => {
+    const many = Array.from({ length: 1_600 }, (_, i): Observation => ({ time: i + 1, event: 1, weight: 2 }))
+    expect(
+      groupOf(many).curve.every(({ lower, upper, standardError }) => lower === null && upper === null && standardError === null)
+    ).toBe(true)
+  })
 })

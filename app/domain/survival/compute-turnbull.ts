@@ -1,13 +1,20 @@
-import { bootstrapTurnbull } from './bootstrap'
+import { bootstrapTurnbull, type BootstrapLimits } from './bootstrap'
+import { bootstrapOneStep } from './bootstrap-one-step'
 import { possiblyAtRisk } from './possibly-at-risk'
 import { firstCrossing } from './quantile'
 import { seededRandom } from './special/seeded-random'
 import type { Spans } from './spans'
 import type { AnswerRow, GroupAnswer, WeibullAnswer } from './survival-answer'
-import { turnbull } from './turnbull'
+import { turnbull, type TurnbullFit } from './turnbull'
 
-/** `resamples` of the bootstrap; with 0 there are no limits. */
-export type TurnbullOptions = { confidence: number; seed: number; tau: number | null; resamples: number }
+/** `isLarge`: the request as a whole has so many units that only its small groups are refitted in every resample. */
+export type TurnbullOptions = { confidence: number; seed: number; tau: number | null; isLarge: boolean }
+
+const resamples = 200
+// Units up to which each resample is refitted whole; above, it is one Newton step.
+const refitted = { alone: 3_000, inLarge: 300 }
+// The step takes the inverse of a square matrix of the cells with mass: past this many it would take more than some seconds.
+const maxStepCells = 1_500
 
 /**
  * The answer for one group of interval-censored data. The curve has a row at the right end of each cell with mass, where S is known again; the median
@@ -21,10 +28,7 @@ export function computeTurnbullGroup(
 ): GroupAnswer {
   const fit = turnbull(spans)
   const rows = [...fit.mass.keys()].filter((k) => fit.mass[k]! > 0 && fit.right[k] !== Infinity)
-  const limits =
-    options.resamples > 0 && rows.length > 0
-      ? bootstrapTurnbull(fit, seededRandom(options.seed), options.confidence, options.resamples)
-      : null
+  const limits = limitsOf(fit, rows.length, options)
   const time = Float64Array.from(rows, (k) => fit.right[k]!)
   const survival = Float64Array.from(rows, (k) => fit.survivalAfter[k]!)
   const atRisk = possiblyAtRisk(spans, time)
@@ -58,4 +62,12 @@ export function computeTurnbullGroup(
       mass: fit.mass[k]!
     }))
   }
+}
+
+/** Null where there is nothing to tell, or where it would take too long. */
+function limitsOf(fit: TurnbullFit, rows: number, { confidence, seed, isLarge }: TurnbullOptions): BootstrapLimits | null {
+  if (rows === 0) return null
+  if (fit.units <= (isLarge ? refitted.inLarge : refitted.alone))
+    return bootstrapTurnbull(fit, seededRandom(seed), confidence, resamples)
+  return rows <= maxStepCells ? bootstrapOneStep(fit, seededRandom(seed), confidence, resamples) : null
 }
