@@ -8,6 +8,9 @@ import { bandPaths, knownPath } from './curve-paths'
 /** `survival` of a point is here the share failed by the cause. */
 export type DrawnCause = { name: string; points: ReadPoint[]; isMarked: boolean; ink: CurveInk }
 
+/** The end of its line. */
+export const lastOf = ({ points }: DrawnCause) => visibleRuns(points, 0).at(-1)?.steps.at(-1)
+
 export const shareText = (share: number) => (share * 100).toFixed(1)
 
 /** One cause's line, marked with its band; faint under 10 at risk, gone under 5. */
@@ -47,7 +50,7 @@ type LabelProps = { drawn: DrawnCause[]; x: Scale; y: Scale; plot: Plot; isNarro
 export function CauseLabels({ drawn, x, y, plot, isNarrow }: LabelProps) {
   const { mark } = usePointing()
   const ended = drawn.flatMap((cause) => {
-    const end = visibleRuns(cause.points, 0).at(-1)?.steps.at(-1)
+    const end = lastOf(cause)
     return end ? [{ cause, share: end.survival, endX: x(end.time), endY: y(end.survival) }] : []
   })
   const places = spreadLabels(

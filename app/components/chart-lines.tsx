@@ -25,8 +25,8 @@ export function ReadingLines({ head, rows }: ReadingLinesProps) {
         {rows.map(({ name, textClass, isMarked, share, interval, followed }) => (
           <li key={name} className={isMarked ? 'b' : undefined}>
             <span className={`nm ${textClass ?? ''}`}>{name} </span>
-            <span>{share} </span>
-            <span>{interval} </span>
+            <span className={interval === '' ? 'all' : undefined}>{share} </span>
+            {interval !== '' && <span>{interval} </span>}
             <span className="r">{followed}</span>
           </li>
         ))}
@@ -34,6 +34,15 @@ export function ReadingLines({ head, rows }: ReadingLinesProps) {
     </div>
   )
 }
+
+/** The same for one line alone, in a sentence. */
+export const ReadingLine = ({ head, row }: { head: string; row: ReadingRow }) => (
+  <p className="chart-lines">
+    <span className="soft">{head}</span> <b>{row.share}</b>
+    {row.interval && `, ${row.interval}`}
+    {row.followed && `, ${row.followed}`}
+  </p>
+)
 
 /** One line's figures as a part of a sentence: "TM-3 93 %, 88 to 96, 84 followed". */
 export const spokenRow = ({ name, share, interval, followed }: ReadingRow, sure: string): string =>

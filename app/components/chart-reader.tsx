@@ -51,6 +51,8 @@ export type ChartReaderProps = {
   lines: (day: number | null) => ReactNode
   /** The drawing fills the column. */
   isWide?: boolean
+  /** In a small figure the lines stand in place of the hint, and only while somebody reads. */
+  isCompact?: boolean
   children: ReactNode
 }
 
@@ -59,7 +61,7 @@ export type ChartReaderProps = {
  * scripts the drawing stands as it is.
  */
 export function ChartReader(props: ChartReaderProps) {
-  const { label, stops, step, wordsOf, spoken, names, marked, onMark, idle, lines, isWide, children } = props
+  const { label, stops, step, wordsOf, spoken, names, marked, onMark, idle, lines, isWide, isCompact, children } = props
   const hasScripts = useHasScripts()
   const [day, setDay] = useState<number | null>(null)
   const [said, setSaid] = useState('')
@@ -142,11 +144,16 @@ export function ChartReader(props: ChartReaderProps) {
               />
             )}
           </div>
-          {lines(day)}
-          <p className="chart-hint" id={hint} data-on={hasScripts || undefined}>
-            Point at a line, or go along it with the left and right keys
-            {names.length > 1 && ', from line to line with up and down'}; Escape leaves.
-          </p>
+          <div className={isCompact ? 'chart-compact' : undefined}>
+            {!(isCompact && day === null) && lines(day)}
+            <p className={isCompact && day !== null ? 'vh' : 'chart-hint'} id={hint} data-on={hasScripts || undefined}>
+              <span className="by-touch">Touch the drawing to read other days.</span>
+              <span className="by-keys">
+                Point at a line to read other days. By keys: left and right
+                {names.length > 1 && ', from line to line up and down'}; Escape leaves.
+              </span>
+            </p>
+          </div>
           <p className="vh" aria-live="polite">
             {said}
           </p>

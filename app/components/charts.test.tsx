@@ -1,11 +1,14 @@
 import { renderToStaticMarkup as render } from 'react-dom/server'
 import { describe, expect, it } from 'vitest'
 import type { SurvivalPoint } from './chart-geometry'
-import { IncidenceChart } from './incidence-chart'
+import { DifferenceCell, differenceReach, differenceText } from './difference-bar'
+import { IncidenceChart, drawnCauses } from './incidence-chart'
 import { IntervalBar, IntervalCell } from './interval-bar'
 import { readingText } from './chart-reading'
 import { percentText } from './percent-text'
 import { RangeFigure } from './range-bar'
+import { RatioCell, ratioText } from './ratio-bar'
+import { SmallCurve } from './small-curve'
 import { SurvivalChart, drawnSeries } from './survival-chart'
 import { SurvivalStrips } from './survival-strips'
 
@@ -98,6 +101,116 @@ describe('SurvivalChart', () => {
     expect(
       chart([{ name: 'A', points: curve(40, 40).map((p) => ({ ...p, survival: p.survival * 0.3 })), marked: true }])
     ).not.toContain(stroke)
+  })
+})
+
+describe('reading a chart', () => {
+  const named = ['TM-1', 'TM-3'].map((name) => ({ name, points: curve(40, 5), marked: name === 'TM-3' }))
+  it('stands there at one year before anybody points, and needs no script', () => {
+    const html = chart(named)
+    expect(html).toContain('Still working on day 365 (1 year), 95\u00a0% interval:')
+    expect(html).toMatch(/TM-3 <\/span><span>94 % <\/span><span>60 to 99 <\/span><span class="r">22 followed/)
+    // the cursor is offered once scripts have taken over; the place for what it says is there
+    expect(html).not.toContain('role="slider"')
+    expect(html).toContain('aria-live="polite"')
+  })
+  it('is described at length: ends, limits, what is not drawn and why', () => {
+    const html = chart([...named, { name: 'TM-6', points: curve(4, 1), marked: false }])
+    expect(html).toMatch(/TM-3, marked, goes to day 720 .* and ends at 94 % \(95\u00a0% interval 60 to 99\)\./)
+    expect(html).toContain('TM-1 goes to day 720 (1 year and 355 days) and ends at 94 %.')
+    expect(html).toContain('Not drawn: TM-6, of which never 5 units were followed at once.')
+    expect(html).toContain('Only the marked line carries its 95\u00a0% limits.')
+    const [, id] = /aria-describedby="([^"]+)"/.exec(html)!
+    expect(html).toContain(`id="${id}"`)
+  })
+  it('keeps inks with their lines when another is pointed at', () => {
+    const inks = (pointed: string | null) =>
+      Object.fromEntries(drawnSeries(named, pointed).map((s) => [s.name, [s.ink.dash, s.isMarked]]))
+    expect(inks(null)).toEqual({ 'TM-3': [undefined, true], 'TM-1': ['9 4', false] })
+    expect(inks('TM-1')).toEqual({ 'TM-3': [undefined, false], 'TM-1': ['9 4', true] })
+    expect(drawnSeries(named, 'TM-1').at(-1)!.name).toBe('TM-1')
+  })
+})
+
+describe('where a curve is not determined', () => {
+  const open = (name: string, marked: boolean) => ({
+    name,
+    marked,
+    points: curve(40, 5).map((p, i) => (i === 3 ? { ...p, from: p.time - 18 } : p))
+  })
+  it('a hatched box stands in the marked one, a thin slant in the others', () => {
+    const html = chart([open('TM-3', true), open('TM-1', false)])
+    expect(count(html, '<pattern ')).toBe(2)
+    expect(count(html, 'data-part="open"')).toBe(4)
+    expect(html).toMatch(/fill="url\(#[^"]+\)"/)
+  })
+  it('the description says so', () =>
+    expect(chart([open('TM-3', true)])).toContain(
+      'the share is not determined: TM-3 in one stretch, from day 62 (about 2 months) to day 80 (about 3 months).'
+    ))
+})
+
+describe('IncidenceChart', () => {
+  const cause = (name: string, share: number, atRisk = 40) => ({
+    name,
+    points: [
+      { time: 100, estimate: share / 2, lower: share / 4, upper: share, atRisk },
+      { time: 400, estimate: share, lower: share / 2, upper: share * 2, atRisk }
+    ]
+  })
+  const six = ['Board', 'Fitting', 'Other fault', 'Wrong diagnosis', 'Accident', 'Not known'].map((name, i) =>
+    cause(name, 0.2 - i / 50)
+  )
+  const html = render(<IncidenceChart unit="year" causes={[...six, cause('A seventh', 0.01)]} />)
+  it('draws six, told apart by dash and name, the first with its band', () => {
+    expect(new Set(drawnCauses(six).map((one) => one.ink.dash)).size).toBe(6)
+    expect(count(html, 'data-curve=')).toBe(12)
+    expect(count(html, 'data-part="band"')).toBe(2)
+    for (const { name } of six) expect(html).toContain(`>${name} <`)
+    expect(html).not.toContain('A seventh')
+  })
+  it('says the shares after a year with their intervals', () =>
+    expect(html).toMatch(/Board <\/span><span>10\.0 % <\/span><span>5\.0 to 20\.0 <\/span><span class="r">40 followed/))
+  it('is faint under ten at risk and gone under five', () => {
+    expect(count(render(<IncidenceChart unit="year" causes={[cause('Board', 0.1, 7)]} />), 'data-part="faint"')).toBe(2)
+    const few = render(<IncidenceChart unit="year" causes={[cause('Board', 0.1, 4)]} />)
+    expect(few).not.toContain('data-part=')
+    expect(few).toContain('Board too few to draw')
+    expect(few).not.toMatch(/NaN|Infinity/)
+  })
+})
+
+describe('bars', () => {
+  it('a difference says its direction and interval, rounded away from the claim', () => {
+    expect(differenceText({ estimate: 12.4, lower: -3.2, upper: 27.9 })).toBe('12 days more (−4 to 28)')
+    expect(differenceText({ estimate: -1.2, lower: -3, upper: 0.4 })).toBe('1 day less (−3 to 1)')
+    expect(differenceText({ estimate: 0.2, lower: -3, upper: 4 })).toBe('less than one day (−3 to 4)')
+  })
+  it('a difference stands on one scale around 0, with an arrowhead where its interval leaves it', () => {
+    expect(differenceReach([{ estimate: 12, lower: -3, upper: 27 }, { estimate: -1, lower: -4, upper: 3 }])).toBe(50) // prettier-ignore
+    expect(differenceReach([])).toBe(1)
+    const html = render(<DifferenceCell estimate={12} lower={-3} upper={120} reach={50} />)
+    expect(html).toContain('M85 0V22')
+    expect(html).toContain('M159 5L166 10l-7 5')
+  })
+  it('a flagged ratio is told by a word and a shape', () => {
+    const flagged = render(<RatioCell ratio={2.4} lower={1.04} upper={4.61} isFlagged />)
+    expect(flagged).toContain('2.4 times (1.04 to 4.7)')
+    expect(flagged).toContain('more than chance')
+    expect(flagged).not.toContain('<circle')
+    const usual = render(<RatioCell ratio={0.8} lower={0.3} upper={1.7} isFlagged={false} />)
+    expect(usual).not.toContain('more than chance')
+    expect(usual).toContain('<circle')
+    expect(ratioText({ ratio: 0, lower: 0, upper: 3.1 })).toBe('0.0 times (0.00 to 3.1)')
+    // nothing observed: no point on a logarithmic line
+    expect(render(<RatioCell ratio={0} lower={0} upper={3.1} isFlagged={false} />)).not.toMatch(/<circle|NaN|Infinity/)
+  })
+  it('a small curve is silent, has its tick at one year, and is gone under five', () => {
+    const small = render(<SmallCurve points={curve(40, 5)} lastDay={800} floor={50} />)
+    expect(small).toContain('aria-hidden="true"')
+    expect(count(small, 'data-part="band"')).toBe(1)
+    expect(small).toContain('M54.5 30v5')
+    expect(render(<SmallCurve points={curve(4, 1)} lastDay={800} floor={50} />)).not.toContain('data-part="f')
   })
 })
 

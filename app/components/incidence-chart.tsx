@@ -1,13 +1,12 @@
-import { memo, useMemo, useState, type PointerEvent } from 'react'
-import { ChartFrame } from './chart-frame'
-import { linear, plainAxis, roundTicks, timeAxis, visibleRuns, type TimeUnit } from './chart-geometry'
-import { CauseLabels, CauseLine, shareText, type DrawnCause } from './cause-lines'
+import { useMemo, useState } from 'react'
+import type { TimeUnit } from './chart-geometry'
+import { lastOf, shareText, type DrawnCause } from './cause-lines'
 import { ReadingLines, spokenRow, type ReadingRow } from './chart-lines'
-import { ChartReader, CursorLine, placeOf, usePointing } from './chart-reader'
+import { ChartReader } from './chart-reader'
 import { dayWords, drawnTo, plainWords, pointerStep, readAt, stopsOf, type Reading } from './chart-reading'
 import { curveInks } from './curve-ink'
 import { TwoDrawings } from './figure'
-import { unitWords } from './survival-drawing'
+import { IncidenceDrawing } from './incidence-drawing'
 
 /** Share failed from one cause, over days. */
 export type CauseCurve = {
@@ -69,7 +68,7 @@ export function IncidenceChart(props: IncidenceChartProps) {
   const names = useMemo(() => causes.slice(0, most).map((cause) => cause.name), [causes])
   const label = useMemo(() => inWords(drawnCauses(causes)), [causes])
   const drawing = { drawn, label, unit, plainUnit }
-  const drawings = <TwoDrawings wide={<Drawing {...drawing} />} narrow={<Drawing {...drawing} isNarrow />} />
+  const drawings = <TwoDrawings wide={<IncidenceDrawing {...drawing} />} narrow={<IncidenceDrawing {...drawing} isNarrow />} />
   if (marked === undefined || last === 0) return drawings
   const wordsOf = (day: number) => (plainUnit === undefined ? dayWords(day) : plainWords(day, plainUnit))
   const idle = Math.min(reading.days, last)
@@ -117,8 +116,6 @@ function failedWords(reading: Reading): Pick<ReadingRow, 'share' | 'interval' | 
   return { share: `${shareText(reading.share)} %`, interval, followed }
 }
 
-const lastOf = ({ points }: DrawnCause) => visibleRuns(points, 0).at(-1)?.steps.at(-1)
-
 function inWords(drawn: readonly DrawnCause[]): string {
   const parts = [...drawn].reverse().map((cause) => {
     const end = lastOf(cause)
@@ -126,74 +123,3 @@ function inWords(drawn: readonly DrawnCause[]): string {
   })
   return `Share failed by cause: ${parts.join(', ')}`
 }
-
-type DrawingProps = { drawn: DrawnCause[]; label: string; unit: TimeUnit; plainUnit?: string; isNarrow?: boolean }
-
-const nearby = 12
-
-const Drawing = memo(function Drawing({ drawn, label, unit, plainUnit, isNarrow }: DrawingProps) {
-  const { toDay, mark } = usePointing()
-  const [width, plot] = isNarrow
-    ? [328, { left: 44, right: 196, top: 26, bottom: 250 }]
-    : [804, { left: 44, right: 614, top: 26, bottom: 270 }]
-  const last = Math.max(plainUnit === undefined ? 1 : 0, ...drawn.map((c) => drawnTo(c.points)))
-  const axis = plainUnit === undefined ? timeAxis(last, unit) : plainAxis(last)
-  const highest = Math.max(...drawn.map((c) => Math.max(lastOf(c)?.survival ?? 0, c.isMarked ? (lastOf(c)?.upper ?? 0) : 0)))
-  const yTicks = roundTicks(Math.max(1, highest * 100), 3)
-  const x = linear(0, axis.days, plot.left, plot.right)
-  const percent = linear(0, yTicks.at(-1)!, plot.bottom, plot.top)
-  const y = (share: number) => percent(share * 100)
-  const levelAt = ({ points }: DrawnCause, day: number) => {
-    const at = readAt(points, day, 0)
-    return at.kind === 'known' ? y(at.share) : null
-  }
-  function point(event: PointerEvent<SVGSVGElement>) {
-    const at = placeOf(event)
-    if (at.x < plot.left - 12 || at.x > plot.right + 8) return
-    const day = ((at.x - plot.left) / (plot.right - plot.left)) * axis.days
-    toDay(day)
-    const near = drawn.flatMap((cause) => {
-      const level = levelAt(cause, Math.max(0, day))
-      return level === null ? [] : [{ name: cause.name, away: Math.abs(level - at.y) }]
-    })
-    const nearest = near.sort((a, b) => a.away - b.away)[0]
-    mark(nearest !== undefined && nearest.away < nearby ? nearest.name : null)
-  }
-  const height = plot.bottom + 30
-  return (
-    <svg
-      viewBox={`0 0 ${width} ${height}`}
-      width={width}
-      height={height}
-      role="img"
-      aria-label={label}
-      onPointerMove={point}
-      onPointerDown={point}
-    >
-      <ChartFrame
-        plot={plot}
-        x={x}
-        y={percent}
-        yTicks={yTicks}
-        xTicks={axis.ticks}
-        yTitle="% failed from this cause"
-        xTitle={plainUnit ?? (isNarrow ? unitWords[unit] : `${unitWords[unit]} after fitting`)}
-      />
-      {drawn.map((cause) => (
-        <CauseLine key={cause.name} cause={cause} x={x} y={y} />
-      ))}
-      <CursorLine
-        x={x}
-        top={plot.top - 6}
-        bottom={plot.bottom}
-        levels={(day) =>
-          drawn.flatMap((cause) => {
-            const level = levelAt(cause, day)
-            return level === null ? [] : [{ y: level, isMarked: cause.isMarked }]
-          })
-        }
-      />
-      <CauseLabels drawn={drawn} x={x} y={y} plot={plot} isNarrow={isNarrow} />
-    </svg>
-  )
-})

@@ -10,6 +10,7 @@ export type LastingWordsProps = {
     failed: number
     followedAYear: number
     curve: SurvivalPoint[] | null
+    grain: number | null
     asOf: string
   } | null
   /** What the curve is of: "Buttress 1.1.0". */
@@ -35,7 +36,7 @@ export function LastingWords({ lasting, name, figure, href, link }: LastingWords
         {go}
       </>
     )
-  const { oneYear, fitted, failed, followedAYear, curve, asOf } = lasting
+  const { oneYear, fitted, failed, followedAYear, curve, grain, asOf } = lasting
   return (
     <div className="last">
       <div>
@@ -67,6 +68,7 @@ export function LastingWords({ lasting, name, figure, href, link }: LastingWords
           series={[{ name, points: curve, marked: true }]}
           unit={unitFor(curve.at(-1)?.time ?? 1)}
           asOf={asOf}
+          grain={grain}
         />
       </Figure>
     </div>

@@ -22,7 +22,7 @@ export function SmallCurve({ points, lastDay, floor, tickDay = 365 }: SmallCurve
     <svg className="smc" viewBox={`0 0 ${width} ${height}`} width={width} height={height} aria-hidden="true">
       <path d={`M${left} ${top}H${right}`} stroke="var(--color-hair)" />
       <path className="ln" d={`M${left} ${top}V${bottom + 0.5}H${right}`} />
-      {tickDay <= lastDay && <path className="ln" d={`M${Math.round(x(tickDay)) + 0.5} ${bottom}v5`} />}
+      {tickDay <= lastDay && <path className="ln" d={`M${Math.floor(x(tickDay)) + 0.5} ${bottom}v5`} />}
       <SurvivalCurve
         points={points}
         x={x}

@@ -1,6 +1,7 @@
-import { useMemo, useState } from 'react'
+import { useId, useMemo, useState } from 'react'
+import { describeCurves } from './chart-description'
 import type { SurvivalPoint, TimeUnit } from './chart-geometry'
-import { ReadingLines, spokenRow, type ReadingRow } from './chart-lines'
+import { ReadingLine, ReadingLines, spokenRow, type ReadingRow } from './chart-lines'
 import { ChartReader } from './chart-reader'
 import { dayWords, drawnTo, plainWords, pointerStep, readAt, readingText, readingWords, stopsOf } from './chart-reading'
 import { curveInks } from './curve-ink'
@@ -76,10 +77,12 @@ export function SurvivalChart(props: SurvivalChartProps) {
   const marked = drawn.at(-1)
   const last = Math.max(0, ...drawn.map((s) => drawnTo(s.points)))
   const stops = useMemo(() => stopsOf(marked?.points ?? [], last, reading.days, grain), [marked, last, reading.days, grain])
-  const drawing = { drawn, label, unit, plainUnit, reading, isSmall }
+  const wordsOf = (day: number) => (plainUnit === undefined ? dayWords(day) : plainWords(day, plainUnit))
+  const id = useId()
+  const descriptionId = last > 0 ? id : undefined
+  const drawing = { drawn, label, descriptionId, unit, plainUnit, reading, isSmall }
   const drawings = <TwoDrawings wide={<SurvivalDrawing {...drawing} />} narrow={<SurvivalDrawing {...drawing} isNarrow />} />
   if (marked === undefined || last === 0) return drawings
-  const wordsOf = (day: number) => (plainUnit === undefined ? dayWords(day) : plainWords(day, plainUnit))
   const idle = Math.min(reading.days, last)
   const named = byName(drawn)
   const rowsAt = (day: number): ReadingRow[] =>
@@ -105,11 +108,21 @@ export function SurvivalChart(props: SurvivalChartProps) {
       marked={marked.name}
       onMark={setPointed}
       idle={idle}
-      lines={(day) => (
-        <ReadingLines head={`Still working on ${wordsOf(day ?? idle)}, ${sure} interval:`} rows={rowsAt(day ?? idle)} />
-      )}
+      lines={(day) => {
+        const at = `Still working ${plainUnit === undefined ? 'on' : 'at'} ${wordsOf(day ?? idle)}`
+        const rows = rowsAt(day ?? idle)
+        return isSmall ? (
+          <ReadingLine head={`${at}:`} row={rows[0]!} />
+        ) : (
+          <ReadingLines head={`${at}, ${sure} interval:`} rows={rows} />
+        )
+      }}
+      isCompact={isSmall}
     >
       {drawings}
+      <p className="vh" id={descriptionId}>
+        {describeCurves(drawnSeries(series).reverse(), { sure, wordsOf, grain, unit: plainUnit ?? 'days' })}
+      </p>
     </ChartReader>
   )
 }

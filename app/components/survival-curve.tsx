@@ -36,7 +36,7 @@ export function SurvivalCurve({ points, x, y, ink, isMarked, width = isMarked ? 
             data-part={run.weight}
             d={knownPath(run, places)}
             stroke={ink.stroke}
-            strokeWidth={run.weight === 'full' ? width : isMarked ? 1.75 : 1.1}
+            strokeWidth={run.weight === 'full' ? width : isMarked ? Math.min(1.75, width * 0.6) : 1.1}
             strokeDasharray={ink.dash}
           />
         </g>

@@ -12,18 +12,19 @@ import {
 } from './chart-geometry'
 import { CursorLine, placeOf, usePointing } from './chart-reader'
 import { readAt } from './chart-reading'
+import { curveInks } from './curve-ink'
 import { SurvivalCurve } from './survival-curve'
 import { AtRiskRows, CurveLabels, nameWidths, rowHeight, type DrawnSeries } from './survival-labels'
 
 export const unitWords: Record<TimeUnit, string> = { year: 'years', month: 'months', day: 'days' }
 
-/** How far down (the marked band included) and how far to the right the drawn runs go. */
+/** How far down (the band of the one first marked included) and how far to the right the drawn runs go; pointing at a line moves no axis. */
 function drawnExtent(drawn: DrawnSeries[], isPlain: boolean) {
   let [lowest, lastDay] = [1, isPlain ? 0 : 1]
-  for (const { points, isMarked } of drawn)
+  for (const { points, ink } of drawn)
     for (const { weight, steps } of visibleRuns(points))
       for (const step of steps) {
-        lowest = Math.min(lowest, isMarked && weight === 'full' ? (step.lower ?? step.survival) : step.survival)
+        lowest = Math.min(lowest, ink === curveInks[0] && weight === 'full' ? (step.lower ?? step.survival) : step.survival)
         lastDay = Math.max(lastDay, step.time)
       }
   return { lowest, lastDay }
@@ -51,6 +52,8 @@ type DrawingProps = {
   isSmall?: boolean
   drawn: DrawnSeries[]
   label: string
+  /** The element that says what is drawn at length. */
+  descriptionId?: string
   reading: { days: number; words: string }
   isNarrow?: boolean
 }
@@ -62,6 +65,7 @@ const nearby = 12
 export const SurvivalDrawing = memo(function SurvivalDrawing({
   drawn,
   label,
+  descriptionId,
   isNarrow,
   isSmall,
   unit,
@@ -102,6 +106,7 @@ export const SurvivalDrawing = memo(function SurvivalDrawing({
       height={height}
       role="img"
       aria-label={label}
+      aria-describedby={descriptionId}
       onPointerMove={point}
       onPointerDown={point}
     >

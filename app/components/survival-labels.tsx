@@ -51,9 +51,9 @@ export function CurveLabels({ drawn, x, y, plot, isNarrow, reading }: LabelProps
   })
 }
 
-/** About how wide the longest name is, at a line's end and in the rows below. */
+/** About how wide the longest name is, at a line's end, where any may be marked, and in the rows below. */
 export const nameWidths = (drawn: readonly DrawnSeries[]) => ({
-  label: Math.max(0, ...drawn.map((s) => s.name.length * (s.isMarked ? 9.2 : 7.6))),
+  label: Math.max(0, ...drawn.map((s) => s.name.length * 9.2)),
   row: Math.max(0, ...drawn.map((s) => s.name.length * 7.6))
 })
 

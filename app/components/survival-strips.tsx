@@ -91,6 +91,14 @@ export function SurvivalStrips({ strips, unit, floor, reading = oneYear, grain =
   )
 }
 
+/** Where a strip's line ends, in words. */
+function atEnd({ points }: Strip): string {
+  const end = drawnTo(points)
+  if (end === 0) return ', not drawn'
+  const { share, interval } = readingWords(readAt(points, end))
+  return `; the line goes to ${dayWords(end)}, ${share}${interval === '' ? '' : `, ${interval}`}`
+}
+
 const noNames: string[] = []
 const doNothing = () => undefined
 
@@ -140,7 +148,7 @@ const StripDrawing = memo(function StripDrawing(props: StripProps) {
       width={width}
       height={bottom + 24}
       role="img"
-      aria-label={`${strip.name}: ${isSparse ? 'too few for a band, ' : ''}${readingText(strip.points, reading.days, reading.words)}`}
+      aria-label={`${strip.name}: ${isSparse ? 'too few for a band, ' : ''}${readingText(strip.points, reading.days, reading.words)}${atEnd(strip)}`}
     >
       <clipPath id={clip}>
         <rect x="26" y="4" width={right - 26} height={bottom - 4} />

@@ -1,4 +1,4 @@
-import { curvePoints, type CurvePoint } from '~/domain/reliability/curve-points'
+import { drawnCurves, type CurvePoint } from '~/domain/reliability/curve-points'
 import { oneYearWords, type OneYearWords } from '~/domain/reliability/one-year'
 import { readFilters } from '~/domain/reliability/reliability-filters'
 import { tooFew } from '~/domain/reliability/reliability-words'
@@ -18,6 +18,8 @@ export type Lasting = {
   failed: number
   followedAYear: number
   curve: CurvePoint[] | null
+  /** As the charts take it, see `drawnCurves`. */
+  grain: number | null
   asOf: Day
 }
 
@@ -30,13 +32,15 @@ export async function lastingOf(services: Services, slug: string, version?: stri
   try {
     const figures = await reliabilityOf(services, slug, filters)
     const group = version === undefined ? figures.all : figures.byRelease.find((g) => g.group === version)
-    if (!group) return { oneYear: null, fitted: 0, failed: 0, followedAYear: 0, curve: null, asOf: filters.asOf }
+    if (!group) return { oneYear: null, fitted: 0, failed: 0, followedAYear: 0, curve: null, grain: null, asOf: filters.asOf }
+    const { curves, grain } = drawnCurves([group])
     return {
       oneYear: oneYearWords(group.atOneYear),
       fitted: group.fitted,
       failed: group.events,
       followedAYear: group.atOneYear.atRisk,
-      curve: group.curve.some((row) => row.time > 0 && row.atRisk >= tooFew) ? curvePoints(group.curve) : null,
+      curve: group.curve.some((row) => row.time > 0 && row.atRisk >= tooFew) ? curves[0]! : null,
+      grain,
       asOf: filters.asOf
     }
   } catch (error) {
