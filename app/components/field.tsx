@@ -111,7 +111,7 @@ export function SelectField({
   options,
   empty,
   ...props
-}: Common & Native<'select'> & { options: SelectOption[]; empty?: string }) {
+}: Common & Native<'select'> & { options: (SelectOption | SelectGroup)[]; empty?: string }) {
   const { frame, control } = split(props)
   return (
     <Frame {...frame}>

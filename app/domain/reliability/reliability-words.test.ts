@@ -13,7 +13,7 @@ const at = (change: object) => ({
   ...change
 })
 const said = (change: object, n = 212, events = 17) =>
-  plainSentence({ n, events, atOneYear: at(change), worksAtFirstPowerOnly: false })
+  plainSentence({ n, events, atOneYear: at(change), worksAtFirstPowerOnly: false, cause: 'all' })
 
 describe('plainSentence', () => {
   it('says the share with its interval, rounded outwards', () => {
@@ -37,6 +37,26 @@ describe('plainSentence', () => {
     expect(said({ survival: 0, lower: null, upper: null, atRisk: 0 }, 1, 1)).toBe(
       'Of 1 unit followed, 1 has failed. None of them lasted a year.'
     )
+  })
+  it('says of one cause what it takes for granted', () => {
+    const of = (change: object, events = 9) =>
+      plainSentence({ n: 212, events, atOneYear: at(change), worksAtFirstPowerOnly: false, cause: 'board' })
+    expect(of({})).toBe(
+      'Of 212 units followed, 9 have failed by the board or for no known reason. About 92 of 100 get through a year without that (95\u00a0% interval 89 to 95), were there no other cause.'
+    )
+    expect(of({ survival: 1, bound: 'exact-one-sided', upper: 1 }, 0)).toContain(
+      'none is known to have failed by the board or for no known reason. With 120 still followed, at least 89 of 100 get through'
+    )
+  })
+  it('says where the failures leave the day open', () => {
+    expect(said({ open: { from: 340, to: 402 } })).toContain(
+      'It is read on day 402: between days 340 and 402 the failures leave it open.'
+    )
+  })
+  it('claims no limit that there is none of', () => {
+    const text = said({ survival: 1, lower: null, upper: null })
+    expect(text).toContain('what its limits are cannot be said')
+    expect(text).not.toMatch(/100 of 100|at least/)
   })
   it('never writes 100 for an estimate or a limit', () => {
     for (const survival of [0.9951, 0.9999])

@@ -1,87 +1,149 @@
-import { visibleRuns } from '~/components/chart-geometry'
-import { curvePoints, type CurvePoint } from '~/domain/reliability/curve-points'
-import type { GroupFigures, ReliabilityFigures } from '~/domain/reliability/figures.types'
+import { drawnCurves, type CurvePoint } from '~/domain/reliability/curve-points'
+import type {
+  BatchFigures,
+  GroupFigures,
+  IncidenceCurve,
+  ReliabilityFigures,
+  ShapeFigures,
+  SilentFigures
+} from '~/domain/reliability/figures.types'
+import { causeNames } from '~/domain/reliability/filter-words'
 import { filtersQuery } from '~/domain/reliability/reliability-filters'
-import { excludedSentence, plainSentence, tooFewSentence } from '~/domain/reliability/reliability-words'
+import { excludedSentence, plainSentence, tooFew, tooFewSentence } from '~/domain/reliability/reliability-words'
+import { thinPoints } from '~/domain/survival/thin-points'
+import { pageOf } from './page-of'
+import { shownComparison } from './shown-comparison'
 
 export const stepsPageSize = 20
+export const batchesPageSize = 20
 const besideMost = 3
+const oneYear = 365
 
-export type ShownTotal = Omit<GroupFigures, Series>
-type Series = 'curve' | 'hazard' | 'incidence' | 'support' | 'silent'
+export type ShownSilent = Pick<SilentFigures, 'silent' | 'heardOf' | 'atOneYear'>
+export type ShownTotal = Omit<GroupFigures, 'curve' | 'support' | 'hazard' | 'incidence' | 'silent'> & {
+  silent: ShownSilent | null
+}
 export type ShownGroup = ShownTotal & { points: CurvePoint[] }
 export type ShownFigures = ReturnType<typeof pageFigures>
 
-const shownGroup = (group: GroupFigures): ShownGroup => ({ ...shownTotal(group), points: curvePoints(group.curve) })
-
 /** All together are said in words and rows; their curve is not drawn, only listed a page at a time. */
-const shownTotal = ({ curve: _, hazard: __, incidence: ___, support: ____, silent: _____, ...rest }: GroupFigures): ShownTotal =>
-  rest
+function shownTotal({ curve: _, support: _s, hazard: _h, incidence: _i, silent, ...rest }: GroupFigures): ShownTotal {
+  return { ...rest, silent: silent && { silent: silent.silent, heardOf: silent.heardOf, atOneYear: silent.atOneYear } }
+}
+
+/** Groups with their curves as drawn beside each other; `grain` as the charts take it. */
+function shownGroups(groups: readonly GroupFigures[]): { groups: ShownGroup[]; grain: number | null } {
+  const { curves, grain } = drawnCurves(groups)
+  return { groups: groups.map((group, i) => ({ ...shownTotal(group), points: curves[i]! })), grain }
+}
 
 /** What the page prints of the figures, and which curves and steps its address asks to see. */
 export function pageFigures(figures: ReliabilityFigures, query: URLSearchParams) {
-  const { all, byRevision, byRelease, filters } = figures
+  const { all, byRevision, byRelease, filters, grain } = figures
   const sentence = plainSentence({
     n: all.n,
     events: all.events,
     atOneYear: all.atOneYear,
-    worksAtFirstPowerOnly: filters.firstPower === 'set-aside'
+    worksAtFirstPowerOnly: filters.firstPower === 'set-aside',
+    cause: filters.cause
   })
+  const revisions = shownGroups(byRevision)
+  const releases = shownGroups(byRelease)
+  const chosen = chosenCurves(byRevision, query)
+  const markedRelease = most(byRelease)
+  return {
+    sentence: [sentence, tooFewSentence(byRevision)].filter(Boolean).join(' '),
+    reports: all.fitted,
+    grain,
+    all: shownTotal(all),
+    byRevision: revisions.groups,
+    byRelease: releases.groups,
+    drawnGrain: { revision: revisions.grain, release: releases.grain },
+    ...chosen,
+    markedRelease,
+    causes: shownCauses(all),
+    comparisons: [shownComparison(figures.revisions, chosen.marked), shownComparison(figures.releases, markedRelease)].filter(
+      (c) => c !== null
+    ),
+    shapes: shownShapes(figures),
+    batches: shownBatches(figures, query),
+    flagged: figures.batches.rows.filter(({ watch }) => watch?.isFlagged === true),
+    excluded: excludedSentence(figures.excluded),
+    excludedByKind: figures.excluded,
+    query: filtersQuery(filters).toString(),
+    steps: shownSteps(figures, query)
+  }
+}
+
+type IncidenceRow = IncidenceCurve['curve'][number]
+type ShownIncidence = {
+  name: string
+  failures: number
+  atOneYear: IncidenceRow | null
+  last: IncidenceRow | null
+  points: Pick<IncidenceRow, 'time' | 'estimate' | 'lower' | 'upper' | 'atRisk'>[]
+}
+
+/** Incidences up to the last day on which enough were at risk: past it one unit more or less would move them too far. */
+function shownCauses(all: GroupFigures): {
+  rows: ShownIncidence[]
+  isDrawn: boolean
+  until: number | null
+  grain: number | null
+} {
+  const isFollowed = all.atOneYear.atRisk >= tooFew
+  const end = all.curve.findLast(({ atRisk }) => atRisk >= tooFew) ?? null
+  const told = all.incidence.map(({ curve }) => {
+    const rows = curve.filter(({ atRisk }) => atRisk >= tooFew)
+    const last = rows.at(-1)
+    // level from its last failure on, as far as enough are followed
+    return last && end && end.time > last.time ? [...rows, { ...last, time: end.time, atRisk: end.atRisk }] : rows
+  })
+  const { curves, grain } = thinPoints(told, [oneYear])
+  const rows = all.incidence.map(({ cause, failures }, i): ShownIncidence => ({
+    name: causeNames[cause],
+    failures,
+    atOneYear: isFollowed ? (told[i]!.findLast(({ time }) => time <= oneYear) ?? null) : null,
+    last: told[i]!.at(-1) ?? null,
+    points: curves[i]!.map(({ time, estimate, lower, upper, atRisk }) => ({ time, estimate, lower, upper, atRisk }))
+  }))
+  return { rows, isDrawn: rows.some(({ points }) => points.length > 0), until: end?.time ?? null, grain }
+}
+
+export type ShownShape = { group: string; shape: ShapeFigures }
+
+/** The shapes that there are, all together first. */
+const shownShapes = ({ all, byRevision }: ReliabilityFigures): ShownShape[] =>
+  [{ ...all, group: 'all' }, ...(byRevision.length > 1 ? byRevision : [])].flatMap(({ group, shape }) =>
+    shape === null ? [] : [{ group, shape }]
+  )
+
+/** Batches are shown where one was asked for, or one stands out; null else. */
+function shownBatches({ filters, batches }: ReliabilityFigures, query: URLSearchParams) {
+  const { rows, total } = batches
+  const isAsked = filters.release !== null || filters.batch !== null
+  if (rows.length === 0 || !(isAsked || rows.some((b: BatchFigures) => b.watch?.isFlagged))) return null
+  return { ...pageOf(rows, query.get('batches'), batchesPageSize), unlisted: total - rows.length }
+}
+
+/** The rows of one curve, and of its masses where it is Turnbull's, a page of each. */
+function shownSteps({ all, byRevision, byRelease }: ReliabilityFigures, query: URLSearchParams) {
   const groups = [
     { key: 'all', label: 'all together', figures: all },
     ...byRevision.map((g) => ({ key: `revision:${g.group}`, label: g.group, figures: g })),
     ...byRelease.map((g) => ({ key: `release:${g.group}`, label: `release ${g.group}`, figures: g }))
   ]
-  const steps = groups.find((g) => g.key === query.get('steps')) ?? groups[0]!
-  const pages = Math.max(1, Math.ceil(steps.figures.curve.length / stepsPageSize))
-  const page = Math.min(pages, Math.max(1, Math.trunc(Number(query.get('page'))) || 1))
+  const chosen = groups.find((g) => g.key === query.get('steps')) ?? groups[0]!
+  const { curve, support, estimator } = chosen.figures
   return {
-    sentence: [sentence, tooFewSentence(byRevision)].filter(Boolean).join(' '),
-    reports: all.fitted,
-    all: shownTotal(all),
-    byRevision: byRevision.map(shownGroup),
-    byRelease: byRelease.map(shownGroup),
-    ...chosenCurves(byRevision, query),
-    markedRelease: most(byRelease),
-    revisionsDiffer: figures.revisions?.logRank ?? null,
-    excluded: excludedSentence(figures.excluded),
-    excludedByKind: figures.excluded,
-    followUp: all.followUp?.ratio ?? null,
-    query: filtersQuery(filters).toString(),
-    steps: {
-      key: steps.key,
-      label: steps.label,
-      choices: groups.map(({ key, label }) => ({ value: key, label })),
-      page,
-      total: steps.figures.curve.length,
-      rows: steps.figures.curve.slice((page - 1) * stepsPageSize, page * stepsPageSize)
-    }
+    key: chosen.key,
+    label: chosen.label,
+    estimator,
+    choices: groups.map(({ key, label }) => ({ value: key, label })),
+    ...pageOf(curve, query.get('page'), stepsPageSize),
+    support: support && pageOf(support, query.get('masses'), stepsPageSize)
   }
 }
-
-/**
- * The numbers of what a page shows, counted without a gap: of its sections, and of its figures, null where too few are followed for anything
- * to be drawn.
- */
-export function numbering({ byRevision, byRelease }: Pick<ShownFigures, 'byRevision' | 'byRelease'>) {
-  const isDrawn = (groups: readonly ShownGroup[]) => groups.some((g) => visibleRuns(g.points).length > 0)
-  const hasStrips = byRevision.length > 1 && isDrawn(byRevision)
-  const [curves, strips] = [isDrawn(byRevision) ? 1 : null, hasStrips ? 2 : null]
-  const strip = hasStrips ? 1 : 0
-  return {
-    figures: { curves, strips, releases: isDrawn(byRelease) ? (curves ?? 0) + strip + 1 : null },
-    sections: {
-      curves: 1,
-      strips: hasStrips ? 2 : null,
-      revisions: 2 + strip,
-      releases: 3 + strip,
-      causes: 4 + strip,
-      apart: 5 + strip,
-      steps: 6 + strip
-    }
-  }
-}
-export type Numbering = ReturnType<typeof numbering>
 
 const most = (groups: readonly GroupFigures[]): string | null =>
   groups.reduce<GroupFigures | null>((best, g) => (best === null || g.n > best.n ? g : best), null)?.group ?? null

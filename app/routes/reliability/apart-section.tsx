@@ -1,10 +1,11 @@
 import { Definitions } from '~/components/definition'
 import { Section } from '~/components/section'
 import { exclusionWords } from '~/domain/reports/report-words'
-import type { ShownFigures } from './page-figures'
+import { GuideLink } from './csv-link'
+import type { SectionProps } from './curves-section'
 
 /** What the curves leave out or hold in part, counted. */
-export function NotInCurveSection({ number, shown }: { number: number; shown: ShownFigures }) {
+export function ApartSection({ shown, sections }: Pick<SectionProps, 'shown' | 'sections'>) {
   const { all, excludedByKind } = shown
   const excluded = excludedByKind.reduce((sum, e) => sum + e.count, 0)
   const items = [
@@ -13,8 +14,8 @@ export function NotInCurveSection({ number, shown }: { number: number; shown: Sh
     { label: 'Failed before it was filed', value: `${all.failedBeforeRegistration}, listed and left out` },
     { label: 'Filed late, silent since', value: `${all.notFollowed}, never followed` },
     {
-      label: 'Failed within an interval',
-      value: `${all.failuresWithinInterval}, known less closely than to 14 days; drawn at the day found`
+      label: 'Failed between two days',
+      value: `${all.failuresWithinInterval}, more than 14 days apart; both ends are kept`
     },
     {
       label: 'Excluded',
@@ -26,10 +27,17 @@ export function NotInCurveSection({ number, shown }: { number: number; shown: Sh
   ]
   return (
     <Section
-      number={number}
+      number={sections.apart!}
       id="apart"
       heading="What stands apart"
-      margin={<p>Only a steward excludes a report, with a reason that everybody can read on it.</p>}
+      margin={
+        <>
+          <p>Only a steward excludes a report, with a reason that everybody can read on it.</p>
+          <p>
+            <GuideLink to="worked-examples#lives">From reports to days</GuideLink>
+          </p>
+        </>
+      }
     >
       <Definitions items={items} />
     </Section>
