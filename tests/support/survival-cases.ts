@@ -1,4 +1,4 @@
-import { reference, referencesWith, type Reference } from './survival-reference'
+import { reference, referencesNamed, referencesWith, type Reference } from './survival-reference'
 
 /** One Kaplan-Meier reference: its input as rows and R's results. */
 export type KaplanMeierCase = { name: string; rows: { entry?: number; time: number; event: 0 | 1 }[]; expected: Reference }
@@ -15,9 +15,9 @@ function rowsOf(data: Data, group: string | null, from = 0): KaplanMeierCase['ro
   })
 }
 
-/** Every Kaplan-Meier result of every file, pooled, by group, conditional and odd. */
+/** Every Kaplan-Meier result of every file, pooled, by group, conditional, odd, and as silent units bound it. */
 export function kaplanMeierCases(): KaplanMeierCase[] {
-  return referencesWith('kaplan_meier').flatMap((name): KaplanMeierCase[] => {
+  const published = referencesWith('kaplan_meier').flatMap((name): KaplanMeierCase[] => {
     const { data, results } = reference(name)
     if (name.startsWith('odd-cases'))
       return Object.entries<Reference>(results.kaplan_meier).map(([odd, expected]) => ({
@@ -46,4 +46,30 @@ export function kaplanMeierCases(): KaplanMeierCase[] {
     }
     return cases
   })
+  return [...published, ...referencesNamed('followup').flatMap(silentCases)]
+}
+
+/** As observed; with every silent unit failed on the day of its last word, and running to the closing day. */
+function silentCases(name: string): KaplanMeierCase[] {
+  const { data, results } = reference(name)
+  const units = data.start.map((start: number, i: number) => ({
+    time: data.last_contact[i] - start,
+    event: data.event[i],
+    toClose: data.closing_day - start
+  }))
+  const rowsWith = (change: (unit: { time: number; event: 0 | 1; toClose: number }) => { time: number; event: 0 | 1 }) =>
+    units.map((unit: { time: number; event: 0 | 1; toClose: number }) => ({ entry: 0, ...change(unit) }))
+  return [
+    { name: `${name} as observed`, rows: rowsWith(({ time, event }) => ({ time, event })), expected: results.as_observed },
+    {
+      name: `${name} worst`,
+      rows: rowsWith(({ time, event, toClose }) => ({ time, event: event === 1 || time < toClose ? 1 : 0 })),
+      expected: results.worst_tied
+    },
+    {
+      name: `${name} best`,
+      rows: rowsWith(({ time, event, toClose }) => ({ time: event === 1 ? time : toClose, event })),
+      expected: results.best
+    }
+  ]
 }

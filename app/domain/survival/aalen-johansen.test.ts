@@ -93,6 +93,15 @@ describe("R's survfit for competing risks on published data sets (tests/fixtures
     expectClose(result.time, expected.time, 0, 'time')
     expectClose(result.atRisk, expected.n_risk, 0, 'at risk')
     expectClose(result.eventFree, expected.event_free, 1e-12, 'event-free')
+    const tally = tallyOf(columnsOf(rows, causes))
+    const atRows = (counts: Float64Array) => counts.filter((_, j) => tally.failed[j]! + tally.censored[j]! > 0)
+    expect(rows).toHaveLength(expected.n)
+    expectClose(atRows(tally.censored), expected.n_censor, 0, 'censored')
+    causes.forEach((cause, k) => expectClose(atRows(tally.failedBy[k]!), expected.n_event[cause], 0, `failed by ${cause}`))
+    const curve = kaplanMeier(tally)
+    curve.survival.forEach((s, i) => {
+      if (s > 0) expect(Math.abs(s * Math.sqrt(curve.greenwood[i]!) - expected.se_event_free[i])).toBeLessThan(1e-12)
+    })
     causes.forEach((cause, k) => {
       const incidence = result.incidence[k]!
       const error = result.standardError[k]!

@@ -32,5 +32,7 @@ test("R's binom.test (exact-bounds-a, 1e-12)", () => {
     const at = (confidence: number) => clopperPearson(row.successes, row.n, confidence)!
     const ours = [at(0.95).estimate, at(0.95).lower, at(0.95).upper, at(0.9).lower, at(0.9).upper]
     expectClose(ours, [row.estimate, ...row.clopper_pearson_95, ...row.clopper_pearson_90], 1e-12, `${row.successes} of ${row.n}`)
+    // A limit of one side at 95 % is that of both sides at 90 %.
+    expectClose([at(0.9).lower, at(0.9).upper], [row.lower_one_sided_95, row.upper_one_sided_95], 1e-12, 'one-sided')
   }
 })

@@ -53,6 +53,17 @@ test('zero-failure bounds as binom.test gives them (exact-bounds-a, 1e-12)', () 
   }
 })
 
+test('the fewest units without a failure that show a reliability (exact-bounds-a)', () => {
+  const rows = reference('exact-bounds-a').results.zero_failure_sample_size
+  expect(rows.length).toBeGreaterThan(3)
+  for (const { reliability, confidence, n } of rows) {
+    const shown = (units: number) =>
+      confidenceLimits({ survival: 1, greenwood: 0, atRisk: units }, { confidence, interval: 'log-log' }).lower!
+    expect(shown(n)).toBeGreaterThanOrEqual(reliability - 1e-12)
+    expect(shown(n - 1)).toBeLessThan(reliability)
+  }
+})
+
 describe("R's survfit at 95 % on published data sets (tests/fixtures/survival, 1e-9)", () => {
   test.each(kaplanMeierCases())('$name', ({ rows, expected }) => {
     const curve = kaplanMeier(tallyOf(columnsOf(rows)))

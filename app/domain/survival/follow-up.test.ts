@@ -52,6 +52,9 @@ describe('ten units worked by hand and the published heart transplant list (test
       name
     )
     expect(ours.units).toBe(results.units)
+    const failures = units.filter(({ isFailed }: { isFailed: boolean }) => isFailed).length
+    expect([failures, ours.units - ours.completeUnits]).toEqual([results.events, results.silent])
+    expect((ours.completeUnits - failures) / (ours.units - failures)).toBeCloseTo(results.fraction_of_nonevents_complete, 12)
     expect(Math.abs(ours.completeUnits / ours.units - results.fraction_of_units_complete)).toBeLessThan(1e-12)
   })
 

@@ -62,6 +62,7 @@ describe("R's survival package on published data sets (tests/fixtures/survival, 
     expectClose(curve.censored, want.n_censor, 0, 'censored')
     expectClose(curve.survival, want.surv, 1e-12, 'survival')
     expectClose(curve.greenwood, want.greenwood_sum, 1e-12, 'greenwood')
+    expectClose(curve.greenwood.map(Math.sqrt), want.se_log_surv, 1e-12, 'standard error of ln S')
   })
 })
 

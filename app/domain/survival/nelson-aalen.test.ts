@@ -23,5 +23,6 @@ describe("R's survfit on published data sets (tests/fixtures/survival, 1e-12)", 
     const hazard = nelsonAalen(kaplanMeier(tallyOf(columnsOf(rows))))
     expectClose(hazard.cumulative, expected.nelson_aalen.cumhaz, 1e-12, 'cumulative')
     expectClose(hazard.variance, expected.nelson_aalen.var_cumhaz, 1e-12, 'variance')
+    expectClose(hazard.variance.map(Math.sqrt), expected.nelson_aalen.se_cumhaz, 1e-12, 'standard error')
   })
 })
