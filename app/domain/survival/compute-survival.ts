@@ -2,7 +2,7 @@ import { DomainError } from '~/lib/domain-error'
 import { aalenJohansen } from './aalen-johansen'
 import { causesOf, columnsOf, splitColumns, type Columns } from './columns'
 import { hasIntervals, type SurvivalRequest } from './compute-survival.schema'
-import { computeTurnbullGroup } from './compute-turnbull'
+import { computeTurnbullGroup, resamplingLimits } from './compute-turnbull'
 import { curveLimits } from './confidence-limits'
 import { curveRows } from './curve-rows'
 import { kaplanMeier } from './kaplan-meier'
@@ -17,9 +17,6 @@ import { tallyOf, type Tally } from './tally'
 import { fitWeibull } from './weibull'
 import { weibullQuantile } from './weibull-quantities'
 
-// Past this many units a refit for each resample of every group would take more than some ten seconds.
-const maxRefittedUnits = 10_000
-
 /**
  * Computes the answer of `POST /api/v1/compute/survival` (METHODS.md section 1), the same for pages, endpoint and command line. Kaplan-Meier, with
  * incidences when failures name their causes and a log-rank test of two groups or more; Turnbull for all when any row is an interval. Groups come
@@ -31,7 +28,7 @@ export function computeSurvival(request: SurvivalRequest): SurvivalAnswer {
   if (hasIntervals(request)) {
     const rows = rowsByGroup(request)
     const units = request.observations.reduce((sum, { weight = 1 }) => sum + weight, 0)
-    const options = { ...request, isLarge: units > maxRefittedUnits }
+    const options = { ...request, ...resamplingLimits(units, request.groups.length) }
     return {
       method: 'turnbull',
       groups: request.groups.map((group, g) => {

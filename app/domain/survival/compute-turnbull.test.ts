@@ -1,10 +1,12 @@
 import { describe, expect, test } from 'vitest'
-import { computeTurnbullGroup } from './compute-turnbull'
+import { computeTurnbullGroup, resamplingLimits } from './compute-turnbull'
 import type { Observation } from './observation'
 import { spansOf } from './spans'
 
-const groupOf = (observations: Observation[], isLarge = false) =>
-  computeTurnbullGroup('A', spansOf(observations), { confidence: 0.95, seed: 1, tau: null, isLarge }, null)
+const groupOf = (observations: Observation[], units = 100, groups = 1) => {
+  const options = { confidence: 0.95, seed: 1, tau: null, ...resamplingLimits(units, groups) }
+  return computeTurnbullGroup('A', spansOf(observations), options, null)
+}
 
 test('units that may still be at risk: entered before, not known to have failed or left before', () => {
   const { curve } = groupOf([
@@ -37,13 +39,13 @@ describe('limits by the size of the group', () => {
   ]
 
   test.each([
-    ['refitted', 150, false],
-    ['refitted in a large request', 150, true],
-    ['refitted', 1_500, false],
-    ['by one step in a large request', 1_500, true],
-    ['by one step', 500_000_000, false]
-  ])('%s: %s units twice, about the binomial error', (_how, weight, isLarge) => {
-    const [row] = groupOf(counts(weight), isLarge).curve
+    ['refitted', 75, 150],
+    ['refitted in a large request', 75, 100_000],
+    ['refitted', 500, 3_000],
+    ['by one step in a large request', 500, 3_001],
+    ['by one step', 500_000_000, 1_000_000_000]
+  ])('%s: %s units twice, about the binomial error', (_how, weight, units) => {
+    const [row] = groupOf(counts(weight), units).curve
     const error = Math.sqrt(0.25 / (2 * weight))
     // 200 resamples tell an error to 5 %, a limit to 19 % of it.
     expect(Math.abs(row!.standardError! / error - 1)).toBeLessThan(0.2)
@@ -52,13 +54,16 @@ describe('limits by the size of the group', () => {
   })
 
   test('the two ways differ', () => {
-    expect(groupOf(counts(400), true).curve[0]!.lower).not.toBe(groupOf(counts(400), false).curve[0]!.lower)
+    const lower = (units: number) => groupOf(counts(400), units).curve[0]!.lower
+    expect(lower(800)).toBe(lower(3_000))
+    expect(lower(3_001)).not.toBe(lower(3_000))
   })
 
-  test('none with more cells than a step can take', () => {
-    const many = Array.from({ length: 1_600 }, (_, i): Observation => ({ time: i + 1, event: 1, weight: 2 }))
-    expect(
-      groupOf(many).curve.every(({ lower, upper, standardError }) => lower === null && upper === null && standardError === null)
-    ).toBe(true)
+  test('none with more cells than a step can take, which are fewer the more groups there are', () => {
+    const many = Array.from({ length: 400 }, (_, i): Observation => ({ time: i + 1, event: 1, weight: 3 }))
+    const hasLimits = (groups: number) =>
+      groupOf(many, 5_000, groups).curve.map(({ lower, upper }) => lower !== null && upper !== null)
+    expect(new Set(hasLimits(4))).toEqual(new Set([true]))
+    expect(new Set(hasLimits(64))).toEqual(new Set([false]))
   })
 })

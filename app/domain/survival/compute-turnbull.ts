@@ -7,14 +7,24 @@ import type { Spans } from './spans'
 import type { AnswerRow, GroupAnswer, WeibullAnswer } from './survival-answer'
 import { turnbull, type TurnbullFit } from './turnbull'
 
-/** `isLarge`: the request as a whole has so many units that only its small groups are refitted in every resample. */
-export type TurnbullOptions = { confidence: number; seed: number; tau: number | null; isLarge: boolean }
+/**
+ * How limits are told: up to `refittedUnits` by refitting every resample, above by one Newton step each, for which `stepCells` cells with mass are at most
+ * looked at; past both there are none.
+ */
+export type ResamplingLimits = { refittedUnits: number; stepCells: number }
+
+export type TurnbullOptions = ResamplingLimits & { confidence: number; seed: number; tau: number | null }
 
 const resamples = 200
-// Units up to which each resample is refitted whole; above, it is one Newton step.
-const refitted = { alone: 3_000, inLarge: 300 }
-// The step takes the inverse of a square matrix of the cells with mass: past this many it would take more than some seconds.
-const maxStepCells = 1_500
+
+/**
+ * What a request of so many units and groups can be given within some five seconds (two cores, 200 resamples): refits of 3,000 units in all, or of 100
+ * groups of 150; steps on 3,000 cells at once, their cost growing with the square of the cells.
+ */
+export const resamplingLimits = (units: number, groups: number): ResamplingLimits => ({
+  refittedUnits: units <= 3_000 ? 1_000 : 150,
+  stepCells: 3_000 / Math.sqrt(groups)
+})
 
 /**
  * The answer for one group of interval-censored data. The curve has a row at the right end of each cell with mass, where S is known again; the median
@@ -65,9 +75,9 @@ export function computeTurnbullGroup(
 }
 
 /** Null where there is nothing to tell, or where it would take too long. */
-function limitsOf(fit: TurnbullFit, rows: number, { confidence, seed, isLarge }: TurnbullOptions): BootstrapLimits | null {
+function limitsOf(fit: TurnbullFit, rows: number, options: TurnbullOptions): BootstrapLimits | null {
+  const { confidence, seed, refittedUnits, stepCells } = options
   if (rows === 0) return null
-  if (fit.units <= (isLarge ? refitted.inLarge : refitted.alone))
-    return bootstrapTurnbull(fit, seededRandom(seed), confidence, resamples)
-  return rows <= maxStepCells ? bootstrapOneStep(fit, seededRandom(seed), confidence, resamples) : null
+  if (fit.units <= refittedUnits) return bootstrapTurnbull(fit, seededRandom(seed), confidence, resamples)
+  return rows <= stepCells ? bootstrapOneStep(fit, seededRandom(seed), confidence, resamples) : null
 }
