@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import { allReports, observationOf, type LifeHistory, type UnitObservation } from '~/domain/reports/observations'
 import { countLives } from '~/domain/reliability/count-life'
+import { columnsOfCounts } from '~/domain/reliability/counts-tally'
 import { groupFigures } from '~/domain/reliability/group-figures'
 import { countedCauses, type CauseFilter } from '~/domain/reliability/reliability-filters'
 import { clopperPearson } from '~/domain/survival/clopper-pearson'
@@ -151,17 +152,19 @@ describe('the reports of the demo, against the parameters they were drawn from',
   })
 
   describe('give Sundial, some of whose failures were found late, a curve by Turnbull', () => {
-    const figuresOf = (units: Watched[], cause: CauseFilter) =>
-      groupFigures(
+    const figuresOf = (units: Watched[], cause: CauseFilter) => {
+      const { days, totals, lives } = countLives(
+        units.map(({ life }) => life),
+        demoAsOf,
+        allReports
+      )
+      return groupFigures(
         'all',
-        countLives(
-          units.map(({ life }) => life),
-          demoAsOf,
-          allReports
-        ),
+        { columns: columnsOfCounts([days])[0]!, totals, lives: [lives!] },
         { counted: countedCauses(cause), isOneCause: cause !== 'all', asOf: demoAsOf },
         null
       )
+    }
     /** On how many of the days on which the curve has fallen its limits leave out the hidden share; `hazard` says what is hidden. */
     function outside(units: Watched[], cause: CauseFilter, hazard: (kind: UnitKind, t: number) => number) {
       const { curve, estimator } = figuresOf(units, cause)

@@ -4,9 +4,9 @@ import { batchWatchOfCounts } from '../survival/batch-watch'
 import { kaplanMeier } from '../survival/kaplan-meier'
 import { nelsonAalen } from '../survival/nelson-aalen'
 import { failuresIn } from '../survival/tally'
-import { tallyOfCounts } from './counts-tally'
+import { columnsOfCounts, sumOfColumns, tallyOfCounts, withoutPart, type CountColumns } from './counts-tally'
 import type { BatchFigures } from './figures.types'
-import { addDay, type DayCounts, type GroupCounts } from './group-counts'
+import type { GroupCounts } from './group-counts'
 import { batchName } from './reliability-filters'
 
 /** A batch and the counts of its units. */
@@ -37,43 +37,38 @@ export function batchFigures(
   batches: readonly BatchCounts[],
   isShown: (batch: BatchCounts) => boolean = () => true
 ): { rows: BatchFigures[]; total: number } {
-  const together = new Map<string, DayCounts>()
-  for (const { releaseId, counts } of batches) {
-    const days = together.get(releaseId) ?? new Map()
-    together.set(releaseId, days)
-    addAll(days, counts.days, 1)
-  }
-  const rows = batches.filter(isShown).map((batch) => {
-    const others = together.get(batch.releaseId)!
-    addAll(others, batch.counts.days, -1)
-    const hazard = nelsonAalen(kaplanMeier(tallyOfCounts(others, boardCauses)))
-    addAll(others, batch.counts.days, 1)
-    const tally = tallyOfCounts(batch.counts.days, boardCauses)
-    const watch = batchWatchOfCounts(tally, hazard)
-    return {
-      batch: batchName(batch),
-      version: batch.version,
-      code: batch.code,
-      madeOn: batch.madeOn,
-      quantity: batch.quantity,
-      n: batch.counts.totals.inCurve,
-      observed: failuresIn(tally),
-      watch: watch && {
-        observed: watch.observed,
-        expected: watch.expected,
-        ratio: watch.ratio,
-        lower: watch.lower,
-        upper: watch.upper,
-        isFlagged: watch.isFlagged,
-        comparedTo: watch.comparedTo
+  const columns = columnsOfCounts(batches.map(({ counts }) => counts.days))
+  const together = new Map<string, CountColumns>()
+  for (const { releaseId } of batches)
+    if (!together.has(releaseId))
+      together.set(releaseId, sumOfColumns(columns.filter((_, i) => batches[i]!.releaseId === releaseId)))
+  const rows = [...batches.entries()]
+    .filter(([, batch]) => isShown(batch))
+    .map(([i, batch]) => {
+      const others = withoutPart(together.get(batch.releaseId)!, columns[i]!)
+      const hazard = nelsonAalen(kaplanMeier(tallyOfCounts(others, boardCauses)))
+      const tally = tallyOfCounts(columns[i]!, boardCauses)
+      const watch = batchWatchOfCounts(tally, hazard)
+      return {
+        batch: batchName(batch),
+        version: batch.version,
+        code: batch.code,
+        madeOn: batch.madeOn,
+        quantity: batch.quantity,
+        n: batch.counts.totals.inCurve,
+        observed: failuresIn(tally),
+        watch: watch && {
+          observed: watch.observed,
+          expected: watch.expected,
+          ratio: watch.ratio,
+          lower: watch.lower,
+          upper: watch.upper,
+          isFlagged: watch.isFlagged,
+          comparedTo: watch.comparedTo
+        }
       }
-    }
-  })
+    })
   const isFlagged = (row: BatchFigures) => row.watch?.isFlagged === true
   const ordered = [...rows.filter(isFlagged), ...rows.filter((row) => !isFlagged(row))]
   return { rows: ordered.slice(0, maxBatchRows), total: rows.length }
-}
-
-function addAll(days: DayCounts, more: DayCounts, sign: 1 | -1): void {
-  for (const [counter, byDay] of more) for (const [day, count] of byDay) addDay(days, counter, day, sign * count)
 }

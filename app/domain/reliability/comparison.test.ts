@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest'
-import { causes } from '../reports/report-words'
+import { causes, type Cause } from '../reports/report-words'
 import { comparison } from './comparison'
+import { columnsOfCounts, tallyOfCounts } from './counts-tally'
 import { addDay, type Counter, type DayCounts } from './group-counts'
 
 const days = (...counts: [Counter, number, number][]): DayCounts => {
@@ -11,7 +12,15 @@ const days = (...counts: [Counter, number, number][]): DayCounts => {
   }
   return of
 }
-const group = (name: string, of: DayCounts) => ({ name, n: of.get('entered')?.get(0) ?? 0, days: of })
+type Group = { name: string; n: number; days: DayCounts }
+const group = (name: string, of: DayCounts): Group => ({ name, n: of.get('entered')?.get(0) ?? 0, days: of })
+function compare(by: 'revision' | 'release', groups: readonly Group[], counted: readonly Cause[]) {
+  const columns = columnsOfCounts(groups.map(({ days: of }) => of))
+  return comparison(
+    by,
+    groups.map(({ name, n }, i) => ({ name, n, tally: tallyOfCounts(columns[i]!, counted) }))
+  )
+}
 
 // The guide's two groups, each unit six times over, so that five are followed.
 const old = days(
@@ -25,7 +34,7 @@ const young = days(['entered', 0, 24], ['failed:board', 60, 6], ['left', 90, 6],
 
 describe('comparison', () => {
   it('tests all together and each pair, and has the difference of mean days as far as both are followed', () => {
-    const found = comparison('revision', [group('old', old), group('new', young)], causes)!
+    const found = compare('revision', [group('old', old), group('new', young)], causes)!
     expect(found).toMatchObject({ by: 'revision', groups: ['old', 'new'], leftOut: [], tooMany: [] })
     const [pair] = found.pairs
     expect(pair!.logRank).toMatchObject({ ...found.logRank, adjustedP: found.logRank!.p })
@@ -45,12 +54,12 @@ describe('comparison', () => {
   })
 
   it('counts one cause alone where one is asked for', () => {
-    const found = comparison('release', [group('old', old), group('new', young)], ['unknown'])!
+    const found = compare('release', [group('old', old), group('new', young)], ['unknown'])!
     // Of 12 and 18 still followed on day 50; the others have left on the days they were last known to run.
     expect(found.logRank!.chiSquare).toBeCloseTo((6 - (6 * 18) / 42) ** 2 / (((6 * 36) / 41) * (18 / 42) * (24 / 42)), 9)
     // Nothing of the kind failed in the new ones: there is no spread to give the difference limits.
     expect(found.pairs[0]!.meanDifference).toBeNull()
-    const none = comparison('release', [group('old', old), group('new', young)], ['accident'])!
+    const none = compare('release', [group('old', old), group('new', young)], ['accident'])!
     expect([none.logRank, none.pairs[0]!.logRank, none.pairs[0]!.meanDifference]).toEqual([null, null, null])
   })
 
@@ -58,15 +67,15 @@ describe('comparison', () => {
     const few = days(['entered', 0, 4], ['left', 300, 4])
     const fresh = days(['entered', 0, 90], ['left', 0, 90])
     const late = days(['entered', 500, 90], ['left', 800, 90])
-    const found = comparison(
+    const found = compare(
       'revision',
       [group('old', old), group('few', few), group('fresh', fresh), group('late', late), group('new', young)],
       causes
     )!
     expect(found.groups).toEqual(['old', 'new'])
     expect(found.leftOut).toEqual(['few', 'fresh', 'late'])
-    expect(comparison('revision', [group('old', old)], causes)).toBeNull()
-    expect(comparison('revision', [group('few', few), group('fresh', fresh)], causes)).toMatchObject({
+    expect(compare('revision', [group('old', old)], causes)).toBeNull()
+    expect(compare('revision', [group('few', few), group('fresh', fresh)], causes)).toMatchObject({
       groups: [],
       pairs: [],
       logRank: null
@@ -77,7 +86,7 @@ describe('comparison', () => {
     const more = Array.from({ length: 15 }, (_, i) =>
       group(`g${i}`, days(['entered', 0, 100 + i], ['failed:board', 30 + i, 10 + 2 * i], ['left', 400, 90 - i]))
     )
-    const found = comparison('release', more, causes)!
+    const found = compare('release', more, causes)!
     expect(found.groups).toHaveLength(12)
     expect(found.tooMany).toEqual(['g0', 'g1', 'g2'])
     expect(found.pairs).toHaveLength(66)

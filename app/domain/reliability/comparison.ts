@@ -1,12 +1,9 @@
-import type { Cause } from '../reports/report-words'
 import { kaplanMeier, type SurvivalCurve } from '../survival/kaplan-meier'
 import { logRank } from '../survival/log-rank'
 import { pairwiseLogRank } from '../survival/pairwise-log-rank'
 import { restrictedMean, restrictedMeanDifference } from '../survival/restricted-mean'
 import { atRiskAt, type Tally } from '../survival/tally'
-import { tallyOfCounts } from './counts-tally'
 import type { Comparison, PairFigures } from './figures.types'
-import type { DayCounts } from './group-counts'
 import { oneYear } from './group-figures'
 import { tooFew } from './reliability-words'
 
@@ -20,17 +17,17 @@ type Compared = { name: string; n: number; tally: Tally; curve: SurvivalCurve; l
  * without failure up to the last day of the first year on which at least five units of both are followed. Failures on the day they were
  * found. Groups that never had five followed at once in that year are left out.
  *
+ * @param groups their counts, of the failures that count
  * @returns null with fewer than two groups in all
  */
 export function comparison(
   by: Comparison['by'],
-  groups: readonly { name: string; n: number; days: DayCounts }[],
-  counted: readonly Cause[]
+  groups: readonly { name: string; n: number; tally: Tally }[]
 ): Comparison | null {
   if (groups.length < 2) return null
-  const all = groups.map(({ name, n, days }): Compared => {
-    const tally = tallyOfCounts(days, counted)
-    return { name, n, tally, curve: kaplanMeier(tally), lastFollowed: lastFollowed(tally) }
+  const all = groups.map((group): Compared => {
+    const { tally } = group
+    return { ...group, curve: kaplanMeier(tally), lastFollowed: lastFollowed(tally) }
   })
   const followed = all.filter((group) => group.lastFollowed > 0)
   const largest = [...followed].sort((a, b) => b.n - a.n).slice(0, maxCompared)

@@ -9,6 +9,7 @@ import * as repo from './reliability.repo.server'
 
 /**
  * Reads what a board's figures need in one snapshot and computes them. Runs in the worker.
+ * @param detail as `reliabilityFigures` has it
  * @param count how the units are counted; both ways are held against each other in tests
  * @throws DomainError `not-found` for the board, `invalid` for names in the filters that it does not have
  */
@@ -16,6 +17,7 @@ export function computeReliability(
   db: Db,
   boardSlug: string,
   filters: ReliabilityFilters,
+  detail: 'whole' | 'page' = 'whole',
   count: typeof countSelection = countSelection
 ): Promise<ReliabilityFigures> {
   return db.transaction().execute(async (tx) => {
@@ -40,13 +42,16 @@ export function computeReliability(
           counts: { ...noCounts(), lives: null }
         }))
     }
-    return reliabilityFigures({
-      filters,
-      ...(await count(tx, selection)),
-      batches: selection.batches,
-      revisions: revisions.map(({ id, code }) => ({ id, name: code })),
-      releases: releases.map(({ id, version }) => ({ id, name: version }))
-    })
+    return reliabilityFigures(
+      {
+        filters,
+        ...(await count(tx, selection)),
+        batches: selection.batches,
+        revisions: revisions.map(({ id, code }) => ({ id, name: code })),
+        releases: releases.map(({ id, version }) => ({ id, name: version }))
+      },
+      detail
+    )
   })
 }
 

@@ -79,8 +79,8 @@ describe('computeReliability', () => {
     const met = { turnbull: 0, watched: 0, pairs: 0 }
     await fc.assert(
       fc.asyncProperty(filters, async (some) => {
-        const stored = await computeReliability(db, 'buttress', some, countStored)
-        expect(stored).toEqual(await computeReliability(db, 'buttress', some, countHistories))
+        const stored = await computeReliability(db, 'buttress', some, 'whole', countStored)
+        expect(stored).toEqual(await computeReliability(db, 'buttress', some, 'whole', countHistories))
         if (stored.all.estimator === 'turnbull') met.turnbull++
         if (stored.batches.rows.some(({ watch }) => watch !== null)) met.watched++
         if (stored.revisions?.pairs.some(({ logRank }) => logRank !== null)) met.pairs++
@@ -93,7 +93,7 @@ describe('computeReliability', () => {
   it('reads the stored counts only where they answer', async () => {
     const from = async (change: Partial<ReliabilityFilters>) => {
       let way = ''
-      await computeReliability(db, 'buttress', { ...everything, ...change }, async (tx, selection) => {
+      await computeReliability(db, 'buttress', { ...everything, ...change }, 'page', async (tx, selection) => {
         const counted = await countSelection(tx, selection)
         way = counted.way
         return counted
@@ -150,8 +150,8 @@ describe('a release with thousands of units and failures found late', () => {
     const many = [...Array.from({ length: 3_000 }, (_, i) => life(i)), ...Array.from({ length: 40 }, (_, i) => failed(i))]
     const world = await worldOf(many)
     try {
-      const stored = await computeReliability(world.db, 'buttress', everything, countStored)
-      expect(stored).toEqual(await computeReliability(world.db, 'buttress', everything, countHistories))
+      const stored = await computeReliability(world.db, 'buttress', everything, 'whole', countStored)
+      expect(stored).toEqual(await computeReliability(world.db, 'buttress', everything, 'whole', countHistories))
       expect(stored).toMatchObject({ grain: 14, all: { estimator: 'turnbull', n: 3_040, events: 40 } })
       for (const { lower, upper } of stored.all.support!) expect([lower % 14, (upper ?? 0) % 14]).toEqual([0, 0])
       // Forty of 3040, all found before the first year was over.

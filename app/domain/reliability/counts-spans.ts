@@ -10,17 +10,18 @@ type Row = [entry: number, lower: number, upper: number, weight: number]
  * censored at `lower`, the last day their unit is known to have run. A unit that leaves on the day it enters tells nothing and is left
  * out. Rows that have become alike are one, in a fixed order, so that a seeded resampling gives the same however the counts were gathered.
  */
-export function spansOfLives(lives: LifeCounts, counted: readonly Cause[]): Spans {
+export function spansOfLives(parts: readonly LifeCounts[], counted: readonly Cause[]): Spans {
   const rows = new Map<string, Row>()
-  for (const { entry, lower, upper, cause, count } of lives.values()) {
-    const isCounted = cause !== null && counted.includes(cause)
-    const end = isCounted ? upper! : Infinity
-    if (entry > 0 && lower <= entry && end === Infinity) continue
-    const key = `${entry},${lower},${end}`
-    const row = rows.get(key)
-    if (row === undefined) rows.set(key, [entry, lower, end, count])
-    else row[3] += count
-  }
+  for (const lives of parts)
+    for (const { entry, lower, upper, cause, count } of lives.values()) {
+      const isCounted = cause !== null && counted.includes(cause)
+      const end = isCounted ? upper! : Infinity
+      if (entry > 0 && lower <= entry && end === Infinity) continue
+      const key = `${entry},${lower},${end}`
+      const row = rows.get(key)
+      if (row === undefined) rows.set(key, [entry, lower, end, count])
+      else row[3] += count
+    }
   return spansFrom([...rows.values()].sort(([a, b, c], [d, e, f]) => a - d || b - e || (c === f ? 0 : c - f)))
 }
 

@@ -85,9 +85,12 @@ export type GroupFigures = {
   curve: AnswerRow[]
   /** Turnbull's masses; null for Kaplan-Meier. */
   support: { lower: number; upper: number | null; mass: number }[] | null
-  /** Nelson-Aalen. */
+  /** Nelson-Aalen; empty in the detail of a page. */
   hazard: { time: number; cumulative: number }[]
-  /** Causes with failures, by their number; empty where one cause is chosen. Interval-censored failures on the day they were found. */
+  /**
+   * Causes with failures, by their number; empty where one cause is chosen, and for groups in the detail of a page. Interval-censored failures on the
+   * day they were found.
+   */
   incidence: IncidenceCurve[]
   shape: ShapeFigures | null
   /** Completeness of follow-up (Clark, Altman and De Stavola 2002): observed unit-days over those there could have been; null without any. */

@@ -16,7 +16,8 @@ import { tallyOf } from '../survival/tally'
 import { turnbull, turnbullAt } from '../survival/turnbull'
 import { fitWeibull } from '../survival/weibull'
 import { countLives } from './count-life'
-import { addDay, type Counter } from './group-counts'
+import { columnsOfCounts } from './counts-tally'
+import { addDay, type Counter, type GroupCounts } from './group-counts'
 import { groupFigures } from './group-figures'
 import { countedCauses, type CauseFilter } from './reliability-filters'
 
@@ -31,10 +32,15 @@ const watchedOf = (lives: readonly LifeHistory[]): Watched[] =>
     return seen.kind === 'observed' ? [{ life, seen }] : []
   })
 
+const summed = ({ days, totals, lives }: GroupCounts) => ({
+  columns: columnsOfCounts([days])[0]!,
+  totals,
+  lives: lives && [lives]
+})
 const figuresOf = (lives: readonly LifeHistory[], cause: CauseFilter) =>
   groupFigures(
     'all',
-    countLives(lives, livesAsOf, allReports),
+    summed(countLives(lives, livesAsOf, allReports)),
     { counted: countedCauses(cause), isOneCause: cause !== 'all', asOf: livesAsOf },
     null
   )
@@ -157,7 +163,8 @@ describe('the figures of a group, from its counts', () => {
     addDay(counts.days, 'entered', 0, 30)
     const ended = (counter: Counter, day: number) => {
       const days = new Map([...counts.days, [counter, new Map([[day, 30]])] as const])
-      return groupFigures('all', { ...counts, days }, { counted: causes, isOneCause: false, asOf: livesAsOf }, null).meanInYear
+      return groupFigures('all', summed({ ...counts, days }), { counted: causes, isOneCause: false, asOf: livesAsOf }, null)
+        .meanInYear
     }
     // 0.05^(1/30) of a year at least
     expect(ended('left', 400)).toMatchObject({ estimate: 365, lower: expect.closeTo(365 * 0.05 ** (1 / 30), 9), upper: 365 })
@@ -215,6 +222,8 @@ describe('the figures of a group, from its counts', () => {
     const counts = countLives([], livesAsOf, allReports)
     counts.totals['wide:board'] = 1
     counts.lives = null
-    expect(() => groupFigures('all', counts, { counted: causes, isOneCause: false, asOf: livesAsOf }, null)).toThrow(RangeError)
+    expect(() => groupFigures('all', summed(counts), { counted: causes, isOneCause: false, asOf: livesAsOf }, null)).toThrow(
+      RangeError
+    )
   })
 })

@@ -13,13 +13,19 @@ import { survivalAt } from '../survival/survival-at'
 import { fitWeibull, weibullLimits } from '../survival/weibull'
 import { weibullQuantile } from '../survival/weibull-quantities'
 import { outlastingSpans, spansOfLives, spansOfTally } from './counts-spans'
-import { competingTally, tallyOfCounts } from './counts-tally'
+import { competingTally, tallyOfCounts, type CountColumns } from './counts-tally'
 import type { GroupFigures, IncidenceCurve, ShapeFigures, SilentFigures } from './figures.types'
-import type { GroupCounts, GroupTotals } from './group-counts'
+import type { GroupTotals, LifeCounts } from './group-counts'
 import { turnbullFigures, type TurnbullFigures } from './turnbull-figures'
 
 /** The day at which shares are read, and up to which mean days are counted. */
 export const oneYear = 365
+
+/** A group's counts, summed: as `GroupCounts`, with the days as columns and the joint observations of each part. */
+export type SummedCounts = { columns: CountColumns; totals: GroupTotals; lives: readonly LifeCounts[] | null }
+
+/** How much is wanted of a group: all there is, all but the hazard, or neither hazard nor incidences. */
+export type Detail = 'whole' | 'all-but-hazard' | 'brief'
 
 /** What a curve counts: `counted` are the causes whose failures it falls at; `isOneCause` when the filters chose among them. */
 export type Counting = { counted: readonly Cause[]; isOneCause: boolean; asOf: Day }
@@ -33,27 +39,26 @@ export const wideOf = (totals: GroupTotals, counted: readonly Cause[]): number =
  * and incidences take failures on the day they were found. Pure; linear in the days, apart from Turnbull's maximisation.
  *
  * @param silent what the silent could hide, computed beside it; null where nobody asked
+ * @param detail what is not wanted is empty
  * @throws RangeError when there are wide failures but no joint observations
  */
 export function groupFigures(
   group: string,
-  counts: GroupCounts,
+  { columns, totals, lives }: SummedCounts,
   { counted, isOneCause, asOf }: Counting,
-  silent: SilentFigures | null
+  silent: SilentFigures | null,
+  detail: Detail = 'whole'
 ): GroupFigures {
-  const { days, totals } = counts
-  const tally = tallyOfCounts(days, counted)
+  const tally = tallyOfCounts(columns, counted)
   const curve = kaplanMeier(tally)
-  const hazard = nelsonAalen(curve)
-  const failuresByCause = Object.fromEntries(causes.map((cause) => [cause, sum(days.get(`failed:${cause}`))])) as Record<
-    Cause,
-    number
-  >
+  const failuresByCause = Object.fromEntries(
+    causes.map((cause) => [cause, sum(columns.columns.get(`failed:${cause}`))])
+  ) as Record<Cause, number>
   const failuresWithinInterval = wideOf(totals, counted)
   let joint: Spans | null = null
   if (failuresWithinInterval > 0) {
-    if (counts.lives === null) throw new RangeError(`groupFigures: ${group} has wide failures and no joint observations`)
-    joint = spansOfLives(counts.lives, counted)
+    if (lives === null) throw new RangeError(`groupFigures: ${group} has wide failures and no joint observations`)
+    joint = spansOfLives(lives, counted)
   }
   const firstPower = clopperPearson(totals.worked, totals.promptly)
   return {
@@ -71,8 +76,8 @@ export function groupFigures(
     firstPower: firstPower && { ...firstPower, n: totals.promptly, works: totals.worked },
     ...(joint === null ? kaplanMeierFigures(curve) : turnbullFigures(joint, oneYear)),
     meanInYear: meanInYear(curve),
-    hazard: Array.from(hazard.time, (time, i) => ({ time, cumulative: hazard.cumulative[i]! })),
-    incidence: isOneCause ? [] : incidenceCurves(counts),
+    hazard: detail === 'whole' ? hazardRows(curve) : [],
+    incidence: isOneCause || detail === 'brief' ? [] : incidenceCurves(columns),
     shape: shapeFigures(joint === null ? spansOfTally(tally) : outlastingSpans(joint)),
     followUp: followUp(totals, asOf),
     silent
@@ -99,7 +104,12 @@ function meanInYear(curve: SurvivalCurve): GroupFigures['meanInYear'] {
   return { ...mean, lower: oneYear * lower!, upper: oneYear, bound }
 }
 
-const sum = (byDay: ReadonlyMap<number, number> | undefined) => [...(byDay?.values() ?? [])].reduce((a, b) => a + b, 0)
+function hazardRows(curve: SurvivalCurve): GroupFigures['hazard'] {
+  const { time, cumulative } = nelsonAalen(curve)
+  return Array.from(time, (at, i) => ({ time: at, cumulative: cumulative[i]! }))
+}
+
+const sum = (column: Float64Array | undefined) => column?.reduce((a, b) => a + b, 0) ?? 0
 
 function commonest(failures: Record<Cause, number>): Cause | null {
   const most = Math.max(...Object.values(failures))
@@ -108,8 +118,8 @@ function commonest(failures: Record<Cause, number>): Cause | null {
 }
 
 /** Rows where the cause's share grows, and the last day anybody was heard of. */
-function incidenceCurves({ days }: GroupCounts): IncidenceCurve[] {
-  const tally = competingTally(days)
+function incidenceCurves(columns: CountColumns): IncidenceCurve[] {
+  const tally = competingTally(columns)
   if (tally.causes.length === 0) return []
   const { time, atRisk, incidence, standardError } = aalenJohansen(tally)
   const curves = tally.causes.map((name, k): IncidenceCurve => {

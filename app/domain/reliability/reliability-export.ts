@@ -36,6 +36,10 @@ export function reliabilityCsv(board: string, figures: ReliabilityFigures, table
   )
 }
 
+/** The whole of a board's figures as text: the answer of the API, or a table. */
+export const reliabilityText = (board: string, figures: ReliabilityFigures, as: 'json' | ReliabilityTable): string =>
+  as === 'json' ? JSON.stringify(reliabilityJson(board, figures)) : reliabilityCsv(board, figures, as)
+
 /** The answer of the API: METHODS' group objects, with what the rules kept out, comparisons, batches and silent units beside them. */
 export function reliabilityJson(board: string, figures: ReliabilityFigures) {
   const { asOf, ...filters } = figures.filters

@@ -1,9 +1,10 @@
 import { exclusionKinds } from '../reports/report-words'
 import { batchFigures, type BatchCounts } from './batch-figures'
 import { comparison } from './comparison'
-import type { GroupFigures, ReliabilityFigures } from './figures.types'
-import { addCounts, noCounts, type GroupCounts, type GroupTotals } from './group-counts'
-import { groupFigures, oneYear, wideOf, type Counting } from './group-figures'
+import { columnsOfCounts, sumOfColumns, tallyOfCounts, type CountColumns } from './counts-tally'
+import type { ReliabilityFigures } from './figures.types'
+import { addCounts, noCounts, noTotals, totalKeys, type DayCounts, type GroupCounts, type GroupTotals } from './group-counts'
+import { groupFigures, oneYear, wideOf, type Counting, type Detail, type SummedCounts } from './group-figures'
 import { batchName, countedCauses, type ReliabilityFilters } from './reliability-filters'
 import { addSilent, noSilent, silentFigures, type SilentCounts } from './silent-figures'
 
@@ -36,56 +37,77 @@ export type FiguresInput = {
 /**
  * The figures of a board: all counted units together, by console revision and by release, each group the sum of its cells. Groups of which nothing is
  * reported are left out. Pure.
+ *
+ * @param detail `page`: without hazards, and with incidences of all units together only, which is what a page shows
  */
-export function reliabilityFigures({ filters, cells, grain, ...names }: FiguresInput): ReliabilityFigures {
+export function reliabilityFigures(
+  { filters, cells, grain, ...names }: FiguresInput,
+  detail: 'whole' | 'page' = 'whole'
+): ReliabilityFigures {
   const counting: Counting = {
     counted: countedCauses(filters.cause),
     isOneCause: filters.cause !== 'all',
     asOf: filters.asOf
   }
-  const all = sumOf('all', cells)
-  const revisions = groupsOf(names.revisions, cells, (cell) => cell.revisionId)
-  const releases = groupsOf(names.releases, cells, (cell) => cell.releaseId)
-  const figures = ({ name, counts, silent }: Sum): GroupFigures =>
-    groupFigures(name, counts, counting, silent && silentFigures(counts.days, counts.totals, silent, counting.counted, oneYear))
+  const columns = columnsOfCounts(cells.map(({ counts }) => counts.days))
+  const counted = cells.map((cell, i): CountedCell => ({ ...cell, columns: columns[i]! }))
+  const all = sumOf('all', counted)
+  const revisions = groupsOf(names.revisions, counted, (cell) => cell.revisionId)
+  const releases = groupsOf(names.releases, counted, (cell) => cell.releaseId)
+  const figures = (sum: Sum, ofGroup: Detail) => {
+    const silent = sum.silent && silentFigures(sumOfDays(sum.cells), sum.totals, sum.silent, counting.counted, oneYear)
+    return groupFigures(sum.name, sum, counting, silent, ofGroup)
+  }
+  const groups = (sums: readonly Sum[]) => sums.map((sum) => figures(sum, detail === 'page' ? 'brief' : 'whole'))
   const compare = (by: 'revision' | 'release', sums: readonly Sum[]) =>
     comparison(
       by,
-      sums.map(({ name, counts }) => ({ name, n: counts.totals.inCurve, days: counts.days })),
-      counting.counted
+      sums.map(({ name, totals, columns: own }) => ({ name, n: totals.inCurve, tally: tallyOfCounts(own, counting.counted) }))
     )
   return {
     filters,
     grain,
-    all: figures(all),
-    byRevision: revisions.map(figures),
-    byRelease: releases.map(figures),
+    all: figures(all, detail === 'page' ? 'all-but-hazard' : 'whole'),
+    byRevision: groups(revisions),
+    byRelease: groups(releases),
     revisions: compare('revision', revisions),
     releases: compare('release', releases),
     excluded: exclusionKinds.flatMap((kind) => {
-      const count = all.counts.totals[`excluded:${kind}`]
+      const count = all.totals[`excluded:${kind}`]
       return count > 0 ? [{ kind, count }] : []
     }),
     batches: batchFigures(names.batches, (batch) => filters.batch === null || batchName(batch) === filters.batch)
   }
 }
 
-type Sum = { name: string; counts: GroupCounts; silent: SilentCounts | null }
+type CountedCell = Cell & { columns: CountColumns }
+type Sum = SummedCounts & { name: string; cells: readonly CountedCell[]; silent: SilentCounts | null }
 
-function sumOf(name: string, cells: readonly Cell[]): Sum {
-  const counts = noCounts()
+function sumOf(name: string, cells: readonly CountedCell[]): Sum {
+  const totals = noTotals()
   const silent = cells.some((cell) => cell.silent !== null) ? noSilent() : null
   for (const cell of cells) {
-    addCounts(counts, cell.counts)
+    for (const key of totalKeys) totals[key] += cell.counts.totals[key]
     if (silent !== null && cell.silent !== null) addSilent(silent, cell.silent)
   }
-  return { name, counts, silent }
+  const lives = cells.flatMap(({ counts }) => counts.lives ?? [])
+  return {
+    ...{ name, cells, totals, silent },
+    columns: sumOfColumns(cells.map((cell) => cell.columns)),
+    lives: lives.length < cells.length ? null : lives
+  }
 }
 
-const groupsOf = (names: GroupNames, cells: readonly Cell[], idOf: (cell: Cell) => string): Sum[] =>
+function sumOfDays(cells: readonly Cell[]): DayCounts {
+  const sum = { ...noCounts(), lives: null }
+  for (const { counts } of cells) addCounts(sum, { ...counts, lives: null })
+  return sum.days
+}
+
+const groupsOf = (names: GroupNames, cells: readonly CountedCell[], idOf: (cell: Cell) => string): Sum[] =>
   names.flatMap(({ id, name }) => {
     const own = cells.filter((cell) => idOf(cell) === id)
     if (own.length === 0) return []
     const sum = sumOf(name, own)
-    return sum.counts.totals.fitted > 0 ? [sum] : []
+    return sum.totals.fitted > 0 ? [sum] : []
   })

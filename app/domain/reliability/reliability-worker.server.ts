@@ -4,6 +4,7 @@ import { openDbReadOnly, type Db } from '~db/client.server'
 import { calculatorFigures } from '../survival/calculator-figures'
 import { survivalAnswer } from '../survival/compute-survival.server'
 import { computeReliability } from './compute-reliability.server'
+import { reliabilityText } from './reliability-export'
 import type { WorkerAnswer, WorkerRequest, WorkerTask } from './worker-messages'
 
 /* The thread in which long reads and computations run, one task after the other, through read-only connections. */
@@ -19,7 +20,9 @@ function database(file: string): Db {
 async function run(task: WorkerTask) {
   if (task.kind === 'survival') return survivalAnswer(task.body)
   if (task.kind === 'calculator') return calculatorFigures(task.body, task.options)
-  return await computeReliability(database(task.databaseFile), task.board, task.filters)
+  const detail = task.kind === 'reliability' ? 'page' : 'whole'
+  const figures = await computeReliability(database(task.databaseFile), task.board, task.filters, detail)
+  return task.kind === 'reliability' ? figures : reliabilityText(task.board, figures, task.as)
 }
 
 async function answer({ id, task }: WorkerRequest): Promise<WorkerAnswer> {

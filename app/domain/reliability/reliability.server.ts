@@ -1,34 +1,43 @@
-import { dayOf } from '~/lib/dates'
+import { dayOf, type Day } from '~/lib/dates'
 import { DomainError } from '~/lib/domain-error'
 import type { Services } from '~/server/services.server'
 import { LruCache } from '~/lib/lru-cache'
 import type { ReliabilityFigures } from './figures.types'
+import { filtersFor, type ReliabilityTable } from './reliability-export'
 import { filtersQuery, readFilters, unknownNames, type ReliabilityFilters } from './reliability-filters'
 import * as repo from './reliability.repo.server'
 import { pagesWorker } from './worker-client.server'
 
-/** Figures already computed, by file, board, how often its reports changed, and filters. */
+/** Figures and texts already computed, by file, board, how often its reports changed, and filters. */
 const computed = new LruCache<string, Promise<ReliabilityFigures>>(32)
+const texts = new LruCache<string, Promise<string>>(16)
 
 /**
- * The reliability figures of a board under filters, computed off the event loop or remembered since its reports last changed.
+ * The figures that a board's pages show under filters (`page` detail), computed off the event loop or remembered since its reports last changed.
  * @throws DomainError `not-found`, `invalid` with messages at the filters, `unavailable` when it takes too long
  */
-export async function reliabilityOf(
-  { db, config }: Services,
+export const reliabilityOf = (services: Services, board: string, filters: ReliabilityFilters): Promise<ReliabilityFigures> =>
+  remembered(computed, services, board, filters, '', (databaseFile) =>
+    pagesWorker().run({ kind: 'reliability', databaseFile, board, filters })
+  )
+
+async function remembered<T>(
+  cache: LruCache<string, Promise<T>>,
+  { db, config: { databaseFile } }: Services,
   boardSlug: string,
-  filters: ReliabilityFilters
-): Promise<ReliabilityFigures> {
+  filters: ReliabilityFilters,
+  as: string,
+  compute: (databaseFile: string) => Promise<T>
+): Promise<T> {
   const board = await repo.findBoard(db, boardSlug)
   if (!board) throw new DomainError('not-found', 'There is no such board.')
-  const { databaseFile } = config
-  const key = JSON.stringify([databaseFile, board.id, board.report_version ?? 0, filtersQuery(filters).toString()])
-  const known = computed.get(key)
+  const key = JSON.stringify([databaseFile, board.id, board.report_version ?? 0, filtersQuery(filters).toString(), as])
+  const known = cache.get(key)
   if (known !== undefined) return known
-  const figures = pagesWorker().run({ kind: 'reliability', databaseFile, board: boardSlug, filters })
-  computed.set(key, figures)
-  figures.catch(() => computed.delete(key))
-  return figures
+  const value = compute(databaseFile)
+  cache.set(key, value)
+  value.catch(() => cache.delete(key))
+  return value
 }
 
 /**
@@ -48,17 +57,20 @@ export async function reliabilityQuestion({ db, now }: Services, boardSlug: stri
 }
 
 /**
- * The figures that an address asks for.
- * @param adapted what its filters are changed to before anything is computed
+ * All figures that an address asks for as text, made off the event loop: the JSON of the API, or the CSV of a table.
  * @throws DomainError `not-found`, `invalid` with messages at the filters, `unavailable`
  */
-export async function reliabilityAsked(
+export async function reliabilityTextAsked(
   services: Services,
   boardSlug: string,
   query: URLSearchParams,
-  adapted: (filters: ReliabilityFilters) => ReliabilityFilters = (filters) => filters
-): Promise<ReliabilityFigures> {
+  as: 'json' | ReliabilityTable
+): Promise<{ text: string; asOf: Day }> {
   const { filters, errors } = await reliabilityQuestion(services, boardSlug, query)
   if (errors.length > 0) throw new DomainError('invalid', 'The filters do not add up.', errors)
-  return reliabilityOf(services, boardSlug, adapted(filters))
+  const asked = as === 'json' ? filters : filtersFor(as, filters)
+  const text = await remembered(texts, services, boardSlug, asked, as, (databaseFile) =>
+    pagesWorker().run({ kind: 'reliability-text', databaseFile, board: boardSlug, filters: asked, as })
+  )
+  return { text, asOf: filters.asOf }
 }

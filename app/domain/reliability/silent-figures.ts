@@ -4,7 +4,7 @@ import type { Cause } from '../reports/report-words'
 import { kaplanMeier } from '../survival/kaplan-meier'
 import { silentAfterDays } from '../survival/silent-bounds'
 import { survivalAt } from '../survival/survival-at'
-import { tallyOfCounts } from './counts-tally'
+import { columnsOfCounts, tallyOfCounts } from './counts-tally'
 import type { SilentFigures } from './figures.types'
 import type { Counter, DayCounts, GroupTotals } from './group-counts'
 
@@ -55,9 +55,10 @@ export function silentFigures(
   const silent = [...lastWords.values()].reduce((a, b) => a + b, 0)
   const gone = moved(days, 'left', lastWords, -1)
   const failing = new Map([...lastWords].map(([day, count]) => [day + 1, count]))
-  const worst = kaplanMeier(tallyOfCounts(moved(gone, `failed:${counted[0]!}`, failing, 1), counted))
-  const best = kaplanMeier(tallyOfCounts(moved(gone, 'left', toClose, 1), counted))
-  const reported = kaplanMeier(tallyOfCounts(days, counted))
+  const curveOf = (counts: DayCounts) => kaplanMeier(tallyOfCounts(columnsOfCounts([counts])[0]!, counted))
+  const worst = curveOf(moved(gone, `failed:${counted[0]!}`, failing, 1))
+  const best = curveOf(moved(gone, 'left', toClose, 1))
+  const reported = curveOf(days)
   const steps = ({ time, survival, events }: typeof worst) =>
     Array.from(time, (day, i) => ({ time: day, survival: survival[i]! })).filter(
       (_, i) => events[i]! > 0 || i === time.length - 1

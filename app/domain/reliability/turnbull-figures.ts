@@ -34,17 +34,18 @@ export type TurnbullFigures = Pick<GroupFigures, 'curve' | 'support' | 'median' 
 export function turnbullFigures(spans: Spans, year: number): TurnbullFigures {
   const fit = turnbull(spans)
   const cells = [...fit.mass.keys()].filter((k) => fit.mass[k]! > someMass)
-  const ends = Float64Array.from(
-    cells.filter((k) => fit.right[k] !== Infinity),
-    (k) => fit.right[k]!
-  )
-  const limits = limitsOf(fit, spans, cells, ends)
   const known = knownStretches(fit, cells)
+  const atRisk = atRiskAt(spans, [...known.flatMap(({ from, to }) => [from, to]), year])
+  const limits = limitsOf(fit, cells, atRisk)
+  const rowOf: RowOf = (day, { from, survival }) => {
+    const row = { time: day, events: null, censored: null, survival }
+    if (survival === 1) return { ...row, standardError: 0, ...boundAt(day, spans) }
+    return { ...row, atRisk: atRisk.get(day)!, ...(limits.get(from) ?? noLimits), bound: null }
+  }
   const curve: AnswerRow[] = []
   known.forEach((stretch, i) => {
-    if (i > 0) curve.push(rowAt(stretch.from, stretch.survival, limits.get(stretch.from)!, spans))
-    if (stretch.isEndKnown && stretch.to > stretch.from)
-      curve.push(rowAt(stretch.to, stretch.survival, limits.get(stretch.from) ?? noLimits, spans))
+    if (i > 0) curve.push(rowOf(stretch.from, stretch))
+    if (stretch.isEndKnown && stretch.to > stretch.from) curve.push(rowOf(stretch.to, stretch))
   })
   const falling = curve.filter((row) => row.bound === null)
   const column = (value: (row: AnswerRow) => number | null) => Float64Array.from(falling, (row) => value(row) ?? NaN)
@@ -62,7 +63,7 @@ export function turnbullFigures(spans: Spans, year: number): TurnbullFigures {
   return {
     curve,
     median,
-    atOneYear: figureAt(year, known, limits, spans),
+    atOneYear: figureAt(year, known, rowOf, atRisk.get(year)!),
     support: Array.from(cells, (k) => ({
       lower: fit.left[k]!,
       upper: fit.right[k] === Infinity ? null : fit.right[k]!,
@@ -73,6 +74,14 @@ export function turnbullFigures(spans: Spans, year: number): TurnbullFigures {
 
 type RowLimits = { lower: number | null; upper: number | null; standardError: number | null }
 const noLimits: RowLimits = { lower: null, upper: null, standardError: null }
+
+type RowOf = (day: number, stretch: Stretch) => AnswerRow
+
+/** Those possibly at risk on some days. */
+function atRiskAt(spans: Spans, days: readonly number[]): Map<number, number> {
+  const times = Float64Array.from(new Set(days)).sort()
+  return new Map(possiblyAtRisk(spans, times).map((n, i) => [times[i]!, n]))
+}
 
 /** S is known from day `from` up to day `to` (Infinity once it is 0), on which it still stands where `isEndKnown` and has just fallen where not. */
 type Stretch = { from: number; to: number; isEndKnown: boolean; survival: number }
@@ -90,38 +99,37 @@ function knownStretches({ left, right, survivalAfter }: TurnbullFit, cells: read
   return known
 }
 
-function limitsOf(fit: TurnbullFit, spans: Spans, cells: readonly number[], ends: Float64Array): Map<number, RowLimits> {
+function limitsOf(fit: TurnbullFit, cells: readonly number[], atRisk: ReadonlyMap<number, number>): Map<number, RowLimits> {
   const limits = new Map<number, RowLimits>()
-  if (ends.length === 0) return limits
+  const ending = cells.filter((k) => fit.right[k] !== Infinity)
+  if (ending.length === 0) return limits
   const resampled = resampledLimits(fit)
-  const atRisk = possiblyAtRisk(spans, ends)
+  const rowAt = new Map(Array.from(resampled.time, (time, r) => [time, r]))
   let greenwood = 0
-  ends.forEach((end, r) => {
-    const k = cells[r]!
+  for (const k of ending) {
+    const end = fit.right[k]!
+    const n = atRisk.get(end)!
     const after = fit.survivalAfter[k]!
-    if (after < someMass) return void limits.set(end, noLimits)
+    if (after < someMass) {
+      limits.set(end, noLimits)
+      continue
+    }
     const share = fit.mass[k]! / (fit.mass[k]! + after)
-    greenwood += share / ((1 - share) * atRisk[r]!)
-    const exact = confidenceLimits({ survival: after, greenwood, atRisk: atRisk[r]! })
-    const at = resampled.time.indexOf(end)
+    greenwood += share / ((1 - share) * n)
+    const exact = confidenceLimits({ survival: after, greenwood, atRisk: n })
+    const r = rowAt.get(end)!
     limits.set(end, {
-      lower: Math.min(exact.lower!, resampled.lower[at]!),
-      upper: Math.max(exact.upper!, resampled.upper[at]!),
-      standardError: Math.max(after * Math.sqrt(greenwood), resampled.standardError[at]!)
+      lower: Math.min(exact.lower!, resampled.lower[r]!),
+      upper: Math.max(exact.upper!, resampled.upper[r]!),
+      standardError: Math.max(after * Math.sqrt(greenwood), resampled.standardError[r]!)
     })
-  })
+  }
   return limits
 }
 
 const resampledLimits = (fit: TurnbullFit): BootstrapLimits => {
   const bootstrap = fit.units <= maxRefittedUnits ? bootstrapTurnbull : bootstrapOneStep
   return bootstrap(fit, seededRandom(seed), 0.95, resamples)
-}
-
-function rowAt(time: number, survival: number, { standardError, ...limits }: RowLimits, spans: Spans): AnswerRow {
-  const row = { time, events: null, censored: null, survival }
-  if (survival === 1) return { ...row, standardError: 0, ...boundAt(time, spans) }
-  return { ...row, atRisk: possiblyAtRisk(spans, Float64Array.of(time))[0]!, standardError, ...limits, bound: null }
 }
 
 /** The exact bound of the units surely running at `time`, and their number. */
@@ -135,10 +143,9 @@ function boundAt(time: number, { entry, lower, weight }: Spans): Limits & { atRi
  * S at a day. Between two known stretches it lies between the S of both: the lower is given, with limits that hold both, and the smaller number at
  * risk; nothing where the lower is 0.
  */
-function figureAt(time: number, known: readonly Stretch[], limits: ReadonlyMap<number, RowLimits>, spans: Spans): FigureAt {
+function figureAt(time: number, known: readonly Stretch[], rowOf: RowOf, atRiskThen: number): FigureAt {
   const at = known.findLastIndex((stretch) => stretch.from <= time)
   const stretch = known[at]!
-  const rowOf = (day: number, { from, survival }: Stretch) => rowAt(day, survival, limits.get(from) ?? noLimits, spans)
   const figure = ({ survival, standardError, atRisk, lower, upper, bound }: AnswerRow) => ({
     time,
     survival,
@@ -153,7 +160,7 @@ function figureAt(time: number, known: readonly Stretch[], limits: ReadonlyMap<n
   const unknown = { time, survival: null, standardError: null, lower: null, upper: null, bound: null }
   if (next === undefined) return { ...unknown, atRisk: 0, open: null }
   const [before, after] = [rowOf(stretch.to, stretch), rowOf(next.from, next)]
-  const atRisk = Math.min(after.atRisk, possiblyAtRisk(spans, Float64Array.of(time))[0]!)
+  const atRisk = Math.min(after.atRisk, atRiskThen)
   const open = { from: stretch.to, to: next.from, before: stretch.survival }
   if (after.survival === 0) return { ...unknown, atRisk, open }
   return { ...figure(after), atRisk, upper: before.upper ?? 1, open }

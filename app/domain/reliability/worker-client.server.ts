@@ -55,7 +55,7 @@ export class WorkerClient {
     if (waiting === undefined) return
     this.#current = { waiting, timer: setTimeout(() => this.#giveUp(), waiting.timeoutMs) }
     const { task } = waiting.request
-    this.#thread().postMessage(waiting.request, task.kind === 'reliability' ? [] : [task.body])
+    this.#thread().postMessage(waiting.request, 'body' in task ? [task.body] : [])
   }
 
   #thread(): Worker {

@@ -55,8 +55,11 @@ export function curveLimits(curve: SurvivalCurve, options: LimitOptions = defaul
 /** Two-sided standard normal quantile of a confidence. */
 export function zOf(confidence: number): number {
   if (!(confidence > 0 && confidence < 1)) throw new RangeError(`the confidence must lie between 0 and 1 (${confidence})`)
-  return normalQuantile((1 + confidence) / 2)
+  if (confidence !== last.confidence) last = { confidence, z: normalQuantile((1 + confidence) / 2) }
+  return last.z
 }
+// Limits are asked for row by row, thousands of times at one confidence.
+let last = { confidence: NaN, z: NaN }
 
 function limitsWith(s: number, greenwood: number, atRisk: number, z: number, { confidence, interval }: LimitOptions): Limits {
   if (!(s > 0)) return { lower: null, upper: null, bound: null }

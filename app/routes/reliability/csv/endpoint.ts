@@ -1,6 +1,6 @@
 import type { Route } from './+types/endpoint'
-import { filtersFor, reliabilityCsv, tableAsked } from '~/domain/reliability/reliability-export'
-import { reliabilityAsked } from '~/domain/reliability/reliability.server'
+import { tableAsked } from '~/domain/reliability/reliability-export'
+import { reliabilityTextAsked } from '~/domain/reliability/reliability.server'
 import { answerApi } from '~/server/answer.server'
 import { services } from '~/server/services.server'
 
@@ -8,12 +8,12 @@ import { services } from '~/server/services.server'
 export function loader({ params, url }: Route.LoaderArgs) {
   return answerApi(async () => {
     const table = tableAsked(url.searchParams)
-    const figures = await reliabilityAsked(services(), params.board, url.searchParams, (filters) => filtersFor(table, filters))
+    const { text, asOf } = await reliabilityTextAsked(services(), params.board, url.searchParams, table)
     const name = table === 'curve' ? 'reliability' : table
-    return new Response(reliabilityCsv(params.board, figures, table), {
+    return new Response(text, {
       headers: {
         'Content-Type': 'text/csv; charset=utf-8; header=present',
-        'Content-Disposition': `attachment; filename="${params.board}-${name}-${figures.filters.asOf}.csv"`
+        'Content-Disposition': `attachment; filename="${params.board}-${name}-${asOf}.csv"`
       }
     })
   })
