@@ -171,6 +171,10 @@ describe('IncidenceChart', () => {
   })
   it('says the shares after a year with their intervals', () =>
     expect(html).toMatch(/Board <\/span><span>10\.0 % <\/span><span>5\.0 to 20\.0 <\/span><span class="r">40 followed/))
+  it('says how many are followed only where the rows of all causes agree on it', () => {
+    const two = [cause('Board', 0.2), cause('Fitting', 0.1, 30)]
+    expect(render(<IncidenceChart unit="year" causes={two} />)).not.toContain('followed<')
+  })
   it('is faint under ten at risk and gone under five', () => {
     expect(count(render(<IncidenceChart unit="year" causes={[cause('Board', 0.1, 7)]} />), 'data-part="faint"')).toBe(2)
     const few = render(<IncidenceChart unit="year" causes={[cause('Board', 0.1, 4)]} />)

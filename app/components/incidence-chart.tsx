@@ -72,11 +72,15 @@ export function IncidenceChart(props: IncidenceChartProps) {
   if (marked === undefined || last === 0) return drawings
   const wordsOf = (day: number) => (plainUnit === undefined ? dayWords(day) : plainWords(day, plainUnit))
   const idle = Math.min(reading.days, last)
-  const rowsAt = (day: number): ReadingRow[] =>
-    names.map((name) => {
+  const rowsAt = (day: number): ReadingRow[] => {
+    const rows = names.map((name) => {
       const { points, isMarked, ink } = drawn.find((cause) => cause.name === name)!
       return { name, isMarked: isMarked && drawn.length > 1, textClass: ink.textClass, ...failedWords(readAt(points, day, 0)) }
     })
+    // all causes have one risk set: where their rows differ, they are rows of failures only and do not tell it
+    const isTold = rows.every(({ followed }) => followed === rows[0]!.followed)
+    return isTold ? rows : rows.map((row) => ({ ...row, followed: '' }))
+  }
   return (
     <ChartReader
       label="Read the shares failed, by cause"

@@ -1,3 +1,4 @@
+import { faintUnder } from '~/components/chart-geometry'
 import { drawnCurves, type CurvePoint } from '~/domain/reliability/curve-points'
 import type {
   BatchFigures,
@@ -81,7 +82,7 @@ type ShownIncidence = {
   failures: number
   atOneYear: IncidenceRow | null
   last: IncidenceRow | null
-  points: Pick<IncidenceRow, 'time' | 'estimate' | 'lower' | 'upper' | 'atRisk'>[]
+  points: (Pick<IncidenceRow, 'time' | 'estimate' | 'lower' | 'upper' | 'atRisk'> & { since?: number })[]
 }
 
 /** Incidences up to the last day on which enough were at risk: past it one unit more or less would move them too far. */
@@ -99,15 +100,33 @@ function shownCauses(all: GroupFigures): {
     // level from its last failure on, as far as enough are followed
     return last && end && end.time > last.time ? [...rows, { ...last, time: end.time, atRisk: end.atRisk }] : rows
   })
-  const { curves, grain } = thinPoints(told, [oneYear])
+  const solid = all.curve.findLast(({ atRisk }) => atRisk >= faintUnder) ?? null
+  const { curves, grain } = thinPoints(
+    told.map((rows) => withLevelAt(rows, solid)),
+    [oneYear]
+  )
   const rows = all.incidence.map(({ cause, failures }, i): ShownIncidence => ({
     name: causeNames[cause],
     failures,
     atOneYear: isFollowed ? (told[i]!.findLast(({ time }) => time <= oneYear) ?? null) : null,
     last: told[i]!.at(-1) ?? null,
-    points: curves[i]!.map(({ time, estimate, lower, upper, atRisk }) => ({ time, estimate, lower, upper, atRisk }))
+    points: curves[i]!.map(({ time, since, estimate, lower, upper, atRisk }: IncidenceRow & { since?: number }) => ({
+      time,
+      ...(since === undefined ? {} : { since }),
+      estimate,
+      lower,
+      upper,
+      atRisk
+    }))
   }))
   return { rows, isDrawn: rows.some(({ points }) => points.length > 0), until: end?.time ?? null, grain }
+}
+
+/** A cause has rows on the days of its failures only: with a row more on the last day on which a line is not yet faint. */
+function withLevelAt(rows: IncidenceRow[], day: { time: number; atRisk: number } | null): IncidenceRow[] {
+  const before = day === null ? -1 : rows.findLastIndex(({ time }) => time <= day.time)
+  if (day === null || before < 0 || rows[before]!.time === day.time) return rows
+  return [...rows.slice(0, before + 1), { ...rows[before]!, time: day.time, atRisk: day.atRisk }, ...rows.slice(before + 1)]
 }
 
 export type ShownShape = { group: string; shape: ShapeFigures }
