@@ -10,7 +10,8 @@ import type {
 } from '~/domain/reliability/figures.types'
 import { causeNames } from '~/domain/reliability/filter-words'
 import { filtersQuery } from '~/domain/reliability/reliability-filters'
-import { excludedSentence, plainSentence, tooFew, tooFewSentence } from '~/domain/reliability/reliability-words'
+import { plainSentence } from '~/domain/reliability/plain-sentence'
+import { excludedSentence, tooFew, tooFewSentence } from '~/domain/reliability/reliability-words'
 import { thinPoints } from '~/domain/survival/thin-points'
 import { pageOf } from './page-of'
 import { shownComparison } from './shown-comparison'
@@ -45,8 +46,7 @@ export function pageFigures(figures: ReliabilityFigures, query: URLSearchParams)
     n: all.n,
     events: all.events,
     atOneYear: all.atOneYear,
-    worksAtFirstPowerOnly: filters.firstPower === 'set-aside',
-    cause: filters.cause
+    filters
   })
   const revisions = shownGroups(byRevision)
   const releases = shownGroups(byRelease)
