@@ -63,6 +63,15 @@ describe('worked by hand', () => {
   })
 })
 
+test('nothing is uncertain where all fail of the same cause: no rounding is left in its place', () => {
+  // R's survfit has 7e-17; a difference of variances would leave 1e-9 and more.
+  const rows = [0.3, 0.7, 1.1, 1.9, 2.3, 3.1, 4.7].map((time) => ({ time, event: 'a', weight: 3 }))
+  const { incidence, standardError } = incidencesOf(rows, ['a', 'b'])
+  expect(incidence[0]!.at(-1)).toBeCloseTo(1, 14)
+  expect(standardError[0]!.at(-1)).toBeLessThan(1e-15)
+  expect([...standardError[1]!]).toEqual(rows.map(() => 0))
+})
+
 type Case = { name: string; rows: TimedObservation[]; causes: string[]; expected: Reference }
 
 function cases(): Case[] {

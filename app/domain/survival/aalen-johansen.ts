@@ -18,8 +18,9 @@ export type CumulativeIncidence = {
  * The Aalen-Johansen estimator for competing causes: the incidence of cause k grows by S(t-) d_k/n at each failure time, with S the Kaplan-Meier
  * curve of failures by any cause. Delayed entry as there.
  *
- * Variance by the delta method, carried forward from one failure time to the next through Var S, Cov(S, F_k) and Var F_k with
- * multinomial failures; it equals the Greenwood-type formula and the infinitesimal jackknife.
+ * Variance by the delta method, carried forward from one failure time to the next with multinomial failures; it equals the Greenwood-type formula and
+ * the infinitesimal jackknife. What is carried is the triangular root of the covariance of S and F_k (as in G. J. Bierman, Factorization Methods for
+ * Discrete Sequential Estimation, 1977), all sums of squares, so that a variance of 0 comes out as 0 and not as rounding.
  *
  * Source: O. O. Aalen and S. Johansen, Scandinavian Journal of Statistics 5:141-150 (1978); E. Marubini and M. G. Valsecchi, Analysing Survival
  * Data from Clinical Trials and Observational Studies (Wiley 1995), chapter 10.
@@ -40,10 +41,11 @@ export function aalenJohansen(tally: Tally): CumulativeIncidence {
     standardError: tally.causes.map(column)
   }
   const f = new Float64Array(k)
-  const varF = new Float64Array(k)
-  const covariance = new Float64Array(k)
+  // S has the error rootS, F_k the part slope_k in common with S and the part rest_k of its own.
+  const slope = new Float64Array(k)
+  const rest = new Float64Array(k)
   let s = 1
-  let varS = 0
+  let rootS = 0
   let n = 0
   let row = 0
   for (let j = 0; j < tally.time.length; j++) {
@@ -54,13 +56,21 @@ export function aalenJohansen(tally: Tally): CumulativeIncidence {
     if (leaving > 0) {
       if (d > 0) {
         const left = (n - d) / n
+        const carried = left * rootS
+        const fresh = (s * Math.sqrt(d * left)) / n
+        const next = norm(carried, fresh)
         for (let c = 0; c < k; c++) {
-          const h = tally.failedBy[c]![j]! / n
-          varF[c]! += h * h * varS + 2 * h * covariance[c]! + (s * s * h * (1 - h)) / n
-          covariance[c] = left * (covariance[c]! + h * varS - (s * s * h) / n)
+          const by = tally.failedBy[c]![j]!
+          const h = by / n
+          const before = h * rootS + slope[c]!
+          const shared = -s * h * Math.sqrt(left / d)
+          const own = (s * Math.sqrt((by * (d - by)) / d)) / n
+          slope[c] = next > 0 ? (carried * before + fresh * shared) / next : 0
+          const across = next > 0 ? (carried * shared - fresh * before) / next : norm(before, shared)
+          rest[c] = norm(norm(rest[c]!, own), across)
           f[c]! += s * h
         }
-        varS = left * (left * varS + (s * s * d) / (n * n))
+        rootS = next
         s *= left
       }
       result.time[row] = tally.time[j]!
@@ -68,8 +78,7 @@ export function aalenJohansen(tally: Tally): CumulativeIncidence {
       result.eventFree[row] = s
       for (let c = 0; c < k; c++) {
         result.incidence[c]![row] = f[c]!
-        // Rounding may leave a tiny negative number where the variance is 0.
-        result.standardError[c]![row] = Math.sqrt(Math.max(0, varF[c]!))
+        result.standardError[c]![row] = norm(slope[c]!, rest[c]!)
       }
       row++
       n -= leaving
@@ -78,6 +87,8 @@ export function aalenJohansen(tally: Tally): CumulativeIncidence {
   }
   return result
 }
+
+const norm = (a: number, b: number) => Math.sqrt(a * a + b * b)
 
 export type IncidenceLimits = { lower: number | null; upper: number | null; bound: Bound | null }
 
