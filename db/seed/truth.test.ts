@@ -1,9 +1,12 @@
 import { describe, expect, it } from 'vitest'
 import { allReports, observationOf, type LifeHistory, type UnitObservation } from '~/domain/reports/observations'
+import { batchFigures } from '~/domain/reliability/batch-figures'
+import { countCells } from '~/domain/reliability/count-cells'
 import { countLives } from '~/domain/reliability/count-life'
 import { columnsOfCounts } from '~/domain/reliability/counts-tally'
 import { groupFigures } from '~/domain/reliability/group-figures'
-import { countedCauses, type CauseFilter } from '~/domain/reliability/reliability-filters'
+import { noCounts } from '~/domain/reliability/group-counts'
+import { countedCauses, readFilters, type CauseFilter } from '~/domain/reliability/reliability-filters'
 import { clopperPearson } from '~/domain/survival/clopper-pearson'
 import { columnsOf } from '~/domain/survival/columns'
 import { garwood } from '~/domain/survival/garwood'
@@ -13,6 +16,7 @@ import { tallyOf } from '~/domain/survival/tally'
 import { readManifests } from './manifests'
 import { simulate } from './simulate'
 import {
+  badLot,
   demoAsOf,
   demoSeed,
   hiddenFirstPower,
@@ -35,6 +39,8 @@ const { rows, told } = simulate(demoSeed, {
   revisionId: (code) => code
 })
 
+const batchOfTag = new Map(rows.units.map((unit) => [unit.tag, unit.batch_id]))
+
 type Watched = { kind: UnitKind; life: LifeHistory; seen: UnitObservation }
 
 /** Every unit that the product's rules put into a curve. */
@@ -46,7 +52,7 @@ const watched: Watched[] = told.flatMap(({ kind, reportId }) => {
     reportId,
     releaseId: r.release_id,
     revisionId: r.console_revision_id,
-    batchId: null,
+    batchId: (r.unit_tag && batchOfTag.get(r.unit_tag)) || null,
     evidence: r.evidence,
     method: r.method ?? null,
     firstPower: r.first_power,
@@ -217,6 +223,22 @@ describe('the reports of the demo, against the parameters they were drawn from',
     const good = (kind: UnitKind, t: number) => hiddenHazard({ ...kind, isBadLot: false }, 'board', t)
     const expected = lot.reduce((sum, { kind, seen }) => sum + good(kind, seen.time) - good(kind, seen.entry), 0)
     expect(garwood(observed, expected)!.lower).toBeGreaterThan(1)
+  })
+
+  it('flag the bad lot by the batch watch, and no sound batch', () => {
+    const batches = rows.batches.map(({ id, release_id, code, made_on, quantity }) => ({
+      id,
+      releaseId: release_id,
+      version: release_id,
+      code,
+      madeOn: made_on,
+      quantity,
+      counts: noCounts()
+    }))
+    const lives = watched.map(({ life }) => life)
+    countCells(lives, readFilters(new URLSearchParams(), demoAsOf).filters, null, batches)
+    const flagged = batchFigures(batches).rows.filter(({ watch }) => watch?.isFlagged)
+    expect(flagged.map(({ batch }) => batch)).toEqual([`${badLot.board}/${badLot.release}/${badLot.batch}`])
   })
 
   it('hold Buttress failures known to within 14 days only, and some of Sundial less well', () => {

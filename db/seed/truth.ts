@@ -6,7 +6,7 @@ import type { Day } from '~/lib/dates'
 
 /** The day on which the demo world stands still. */
 export const demoAsOf: Day = '2026-12-01'
-export const demoSeed = 20_261_201
+export const demoSeed = 20_261_202
 
 export type Cause = 'board' | 'fitting' | 'other-fault' | 'accident'
 /** Cumulative hazard H(t) = (t / scaleDays) ^ shape, t in days after a first power-up that worked. */
