@@ -88,6 +88,20 @@ export function addDay(days: DayCounts, counter: Counter, day: number, count: nu
   else byDay.set(day, sum)
 }
 
+/** Adds the counts of many days to a counter, as `addDay` does of one. */
+function addDays(days: DayCounts, counter: Counter, more: ReadonlyMap<number, number>): void {
+  const byDay = days.get(counter)
+  if (byDay === undefined) {
+    days.set(counter, new Map(more))
+    return
+  }
+  for (const [day, count] of more) {
+    const sum = (byDay.get(day) ?? 0) + count
+    if (sum === 0) byDay.delete(day)
+    else byDay.set(day, sum)
+  }
+}
+
 /** Adds units with one observation; an observation that comes to 0 is taken out. */
 export function addLife(lives: LifeCounts, life: LifeCount): void {
   const key = lifeKey(life)
@@ -98,7 +112,7 @@ export function addLife(lives: LifeCounts, life: LifeCount): void {
 
 /** Adds all of `more` to `counts`, in place. The sum has lives only where both have. */
 export function addCounts(counts: GroupCounts, more: GroupCounts): void {
-  for (const [counter, byDay] of more.days) for (const [day, count] of byDay) addDay(counts.days, counter, day, count)
+  for (const [counter, byDay] of more.days) addDays(counts.days, counter, byDay)
   for (const key of totalKeys) counts.totals[key] += more.totals[key]
   if (counts.lives === null || more.lives === null) counts.lives = null
   else for (const life of more.lives.values()) addLife(counts.lives, life)

@@ -4,7 +4,7 @@ import type { Cause } from '../reports/report-words'
 import { slicesFor } from './count-slices'
 import * as repo from './counts.repo.server'
 import { blockDays, counterOf, dayInBlock, readBlock } from './day-block'
-import { addDay, addLife, noCounts, totalKeys, type GroupCounts, type GroupTotals, type LifeCounts } from './group-counts'
+import { addLife, noCounts, totalKeys, type Counter, type GroupCounts, type GroupTotals, type LifeCounts } from './group-counts'
 import type { ReliabilityFilters } from './reliability-filters'
 
 /** Counts by scope (release or batch) and console revision. Groups without any are absent. */
@@ -38,7 +38,18 @@ export async function readCounts(tx: Tx, asked: CountsAsked): Promise<CountCells
   for (const { group, cell } of byGroup.values()) addTotals(cell.totals, group.totals_json)
   for (const { group_id, block, counts } of await repo.listBlocks(tx, [...byGroup.keys()])) {
     const { days } = byGroup.get(group_id)!.cell
-    readBlock(counts, (slot, count) => addDay(days, counterOf(slot), block * blockDays + dayInBlock(slot), count))
+    // Slots come counter by counter: its days are looked up once.
+    let counter: Counter | null = null
+    let byDay = new Map<number, number>()
+    readBlock(counts, (slot, count) => {
+      if (counterOf(slot) !== counter) {
+        counter = counterOf(slot)
+        byDay = days.get(counter) ?? new Map()
+        days.set(counter, byDay)
+      }
+      const day = block * blockDays + dayInBlock(slot)
+      byDay.set(day, (byDay.get(day) ?? 0) + count)
+    })
   }
   return cells
 }
