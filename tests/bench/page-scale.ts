@@ -1,5 +1,6 @@
 import { statSync } from 'node:fs'
 import { join } from 'node:path'
+import { sql } from 'kysely'
 import { computeReliability } from '~/domain/reliability/compute-reliability.server'
 import { areCountsCurrent } from '~/domain/reliability/read-counts.server'
 import { recountBoard } from '~/domain/reliability/recount-board.server'
@@ -111,17 +112,17 @@ async function inTurns(sizes: readonly Sized[], work: (sized: Sized) => Promise<
   const times = sizes.map((): number[] => [])
   for (let round = -1; round < rounds; round++)
     for (const [i, sized] of sizes.entries()) {
-      await sized.site.query((db) =>
-        db
-          .updateTable('report_versions')
-          .set((e) => ({ version: e('version', '+', 1) }))
-          .execute()
-      )
+      await sized.site.query(forget)
       const time = await elapsed(() => work(sized))
       if (round >= 0) times[i]!.push(time)
     }
   return times.map(median)
 }
+
+/** Makes the server compute its figures again, as a change of a report does. */
+const forget = (db: Db) =>
+  sql`insert into report_versions (board_id, version) select id, 1 from boards where true
+    on conflict (board_id) do update set version = version + 1`.execute(db)
 
 async function elapsed(work: () => Promise<unknown>): Promise<number> {
   const start = performance.now()

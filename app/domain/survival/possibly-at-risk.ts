@@ -6,7 +6,9 @@ import type { Spans } from './spans'
  *
  * @param times ascending
  */
-export function possiblyAtRisk({ entry, lower, upper, weight }: Spans, times: Float64Array): number[] {
+export function possiblyAtRisk(spans: Spans, times: Float64Array): number[] {
+  const { entry, lower, upper, weight } = spans
+  if (times.length < fewTimes) return Array.from(times, (t) => atRiskOnce(spans, t))
   const order = [...entry.keys()]
   const exit = (i: number) => (upper[i] === Infinity ? lower[i]! : upper[i]!)
   const byEntry = [...order].sort((a, b) => entry[a]! - entry[b]!)
@@ -22,3 +24,13 @@ export function possiblyAtRisk({ entry, lower, upper, weight }: Spans, times: Fl
 }
 
 const isIn = (entry: number, t: number) => entry < t || entry === 0
+
+/** For fewer, a look at every row is quicker than their order. */
+const fewTimes = 8
+
+function atRiskOnce({ entry, lower, upper, weight }: Spans, t: number): number {
+  let n = 0
+  for (let i = 0; i < entry.length; i++)
+    if (isIn(entry[i]!, t) && (upper[i] === Infinity ? lower[i]! : upper[i]!) >= t) n += weight[i]!
+  return n
+}
