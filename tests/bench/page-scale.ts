@@ -94,7 +94,7 @@ async function writeTime(db: Db, { release, revision }: { release: string; revis
 /** Everything that is behind the page, from the stored counts to what the loader returns. */
 async function compute({ db, units }: Sized, board: string): Promise<void> {
   const { filters } = readFilters(new URLSearchParams(), demoAsOf)
-  const shown = pageFigures(await computeReliability(db, board, filters), new URLSearchParams())
+  const shown = pageFigures(await computeReliability(db, board, filters, 'page'), new URLSearchParams())
   const isTurnbull = shown.all.estimator === 'turnbull'
   if (shown.reports < units * 0.99 || isTurnbull !== (board === 'sundial'))
     throw new Error(`${shown.reports} of ${units} units were counted, by ${shown.all.estimator}`)
