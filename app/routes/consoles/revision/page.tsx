@@ -10,6 +10,8 @@ import { TextLink } from '~/components/text-link'
 import { Title } from '~/components/title'
 import { revisionByCode } from '~/domain/consoles/consoles.server'
 import { byFit } from '~/domain/fit/by-fit'
+import type { OneYearWords } from '~/domain/reliability/one-year'
+import { oneYearOnRevision } from '~/domain/reliability/one-year.server'
 import { answerPage } from '~/server/answer.server'
 import { services } from '~/server/services.server'
 import { reportsWord } from '../console-words'
@@ -22,17 +24,33 @@ export const meta: Route.MetaFunction = ({ loaderData }) =>
       ]
     : [{ title: 'No such revision · Fettle' }]
 
+/** Of so many boards the page gives the figure itself. */
+const figuresMost = 12
+
 export function loader({ params, url }: Route.LoaderArgs) {
   return answerPage(url, async () => {
     const { console, revision, before, after } = await revisionByCode(services().db, params.console, params.revision)
     if (revision.code !== params.revision) throw redirect(`/consoles/${console.slug}/${revision.code}`, 301)
     const boards = [...revision.boards].sort(byFit)
-    return { consoleName: console.name, consoleSlug: console.slug, revision: { ...revision, boards }, before, after }
+    const reported = boards.filter((board) => board.reports > 0).slice(0, figuresMost)
+    const oneYear = await oneYearOnRevision(
+      services(),
+      reported.map(({ slug }) => slug),
+      revision.code
+    )
+    return {
+      oneYear: Object.fromEntries(oneYear),
+      consoleName: console.name,
+      consoleSlug: console.slug,
+      revision: { ...revision, boards },
+      before,
+      after
+    }
   })
 }
 
 export default function RevisionPage({ loaderData }: Route.ComponentProps) {
-  const { consoleName, consoleSlug, revision, before, after } = loaderData
+  const { consoleName, consoleSlug, revision, before, after, oneYear } = loaderData
   const trail = [
     { label: 'Boards', href: '/' },
     { label: 'Consoles', href: '/consoles' },
@@ -70,7 +88,7 @@ export default function RevisionPage({ loaderData }: Route.ComponentProps) {
             No board is made for this console yet. If you have designed one, it goes here.
           </Empty>
         ) : (
-          <BoardTable consoleName={consoleName} revision={revision} />
+          <BoardTable consoleName={consoleName} revision={revision} oneYear={oneYear} />
         )}
       </Section>
     </SiteSheet>
@@ -82,11 +100,13 @@ type Revision = Route.ComponentProps['loaderData']['revision']
 const sentence = (reports: number) =>
   reports === 0 ? 'Nobody has reported a board on it yet.' : `${reportsWord(reports)} of boards fitted to it so far.`
 
-function BoardTable({ consoleName, revision }: { consoleName: string; revision: Revision }) {
+type TableProps = { consoleName: string; revision: Revision; oneYear: Route.ComponentProps['loaderData']['oneYear'] }
+
+function BoardTable({ consoleName, revision, oneYear }: TableProps) {
   return (
     <Table
       number={1}
-      caption={`The boards for the ${consoleName}: what their maintainers claim for ${revision.code}, and how often one was reported there.`}
+      caption={`The boards for the ${consoleName}: what their maintainers claim for ${revision.code}, how often one was reported there, and how many of a hundred still work after a year, with the 95\u00a0% interval.`}
       columns={[
         {
           key: 'board',
@@ -96,15 +116,23 @@ function BoardTable({ consoleName, revision }: { consoleName: string; revision: 
         },
         { key: 'claim', head: 'Claim', cell: (board) => <FitMark fit={board.claim} />, className: 'nw' },
         { key: 'reason', head: 'Why', cell: (board) => board.reason },
+        { key: 'reports', head: 'Reports', isFigure: true, cell: (board) => board.reports },
         {
-          key: 'reports',
-          head: 'Reports',
-          isFigure: true,
+          key: 'year',
+          head: 'After one year',
           cell: (board) =>
             board.reports === 0 ? (
-              '0'
+              <span className="soft">nobody has reported one</span>
             ) : (
-              <TextLink href={`/boards/${board.slug}/reliability?revision=${revision.code}`}>{board.reports}</TextLink>
+              <>
+                <OneYear words={oneYear[board.slug]} />{' '}
+                <TextLink
+                  href={`/boards/${board.slug}/reliability?revision=${revision.code}`}
+                  aria-label={`How long ${board.name} lasts in ${revision.code}`}
+                >
+                  How long it lasts
+                </TextLink>
+              </>
             )
         }
       ]}
@@ -112,6 +140,17 @@ function BoardTable({ consoleName, revision }: { consoleName: string; revision: 
       rowKey={(board) => board.slug}
       isFolded
     />
+  )
+}
+
+/** The figure with its interval; nothing where it cannot be had just now. */
+function OneYear({ words }: { words: OneYearWords | null | undefined }) {
+  if (words === undefined) return null
+  if (words === null) return <span className="soft block">too few followed</span>
+  return (
+    <span className="block">
+      <b>{words.figure}</b> <span className="soft">({words.interval})</span>
+    </span>
   )
 }
 
