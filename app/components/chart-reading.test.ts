@@ -75,6 +75,12 @@ describe('words', () => {
     expect(said(350)).toBe('too few to say |  | 4 followed')
     expect(said(500)).toBe('nobody followed so long |  | ')
   })
+  it('state the bound of those followed on the day, not of the row before', () => {
+    const bound = [point(10, 1, 8, { lower: 0.05 ** (1 / 8), upper: null }), point(400, 0.8, 5)]
+    // 0.05^(1/5) = 0.549…; with the eight of day 10 it would be 0.687
+    expect(readingWords(readAt(bound, 365))).toMatchObject({ share: '≥ 54 %', interval: 'none failed' })
+    expect(readingWords(readAt(bound, 10)).share).toBe('≥ 68 %')
+  })
   it('claim no more than the bound where nothing has failed', () => {
     const bound = [point(10, 1, 30, { lower: 0.905, upper: null }), point(40, 0.9, 20, { from: 20 })]
     expect(readingWords(readAt(bound, 10))).toMatchObject({ share: '≥ 90 %', interval: 'none failed' })

@@ -22,7 +22,10 @@ export function readAt(points: readonly ReadPoint[], day: number, start = 1): Re
   const atRisk = point?.time === day ? point.atRisk : next!.atRisk
   if (atRisk < goneUnder) return { kind: 'few', atRisk }
   const share = point?.survival ?? start
-  const [lower, upper] = [point?.lower ?? null, point?.upper ?? null]
+  const upper = point?.upper ?? null
+  // The exact bound of a curve without a failure is that of the units followed now, who may be fewer than at its last row.
+  const lower =
+    share >= 1 && point?.lower != null && point.atRisk > atRisk ? point.lower ** (point.atRisk / atRisk) : (point?.lower ?? null)
   const begins = next?.from ?? next?.since
   if (begins === undefined || begins >= day) return { kind: 'known', share, lower, upper, atRisk }
   const [low, high] = share < next!.survival ? [share, next!.survival] : [next!.survival, share]

@@ -38,8 +38,6 @@ export function SentenceForm({ action, label, parts, submit, isOutlined, span, c
           {gap && <Gap part={gap} />}
         </span>
       ))}
-      {children}
-      <Button kind={isOutlined ? 'outline' : 'solid'}>{submit}</Button>
       {parts.map((part) =>
         typeof part !== 'string' && part.error ? (
           <div key={part.name} className="col-span-full basis-full">
@@ -47,6 +45,8 @@ export function SentenceForm({ action, label, parts, submit, isOutlined, span, c
           </div>
         ) : null
       )}
+      {children}
+      <Button kind={isOutlined ? 'outline' : 'solid'}>{submit}</Button>
     </form>
   )
 }

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { filtersInForce, queryWith, selectionHeading } from './filter-words'
+import { filtersInForce, queryWith, selectionHeading, selectionLabel } from './filter-words'
 import { readFilters } from './reliability-filters'
 
 const today = '2026-12-01'
@@ -16,6 +16,11 @@ describe('selectionHeading', () => {
   ])('%s', (query, heading) => {
     expect(selectionHeading('Buttress', read(query))).toBe(heading)
   })
+})
+
+it('names the selection in a trail', () => {
+  expect(selectionLabel('Buttress', read('cause=board'))).toBeNull()
+  expect(selectionLabel('Buttress', read('batch=1.1.1/2024-09&revision=TM-3'))).toBe('Buttress 1.1.1, batch 2024-09 in TM-3')
 })
 
 describe('filtersInForce', () => {

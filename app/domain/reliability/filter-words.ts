@@ -49,17 +49,24 @@ export const causeNames: Record<Cause, string> = {
 }
 
 /** "Buttress 1.1.1, batch 2024-09": what is counted, without the console. */
-export function selectionName(board: string, { release, boardRevision, batch }: ReliabilityFilters): string {
+function selectionName(board: string, { release, boardRevision, batch }: ReliabilityFilters): string {
   const [madeOf, code] = batch === null ? [null, null] : [batch.slice(0, batch.indexOf('/')), batch.slice(batch.indexOf('/') + 1)]
   const version = release ?? madeOf
   const name = version === null ? board : `${board} ${version}`
-  if (code !== null) return `${name}, batch ${code},`
+  if (code !== null) return `${name}, batch ${code}`
   return version === null && boardRevision !== null ? `${name} board revision ${boardRevision}` : name
 }
 
 /** "How long Buttress 1.1.1 lasts in TM-3": the heading of a page of figures. */
 export function selectionHeading(board: string, filters: ReliabilityFilters): string {
-  return `How long ${selectionName(board, filters)} lasts${filters.revision === null ? '' : ` in ${filters.revision}`}`
+  return `How long ${selectionName(board, filters)}${filters.batch === null ? '' : ','} lasts${placeOf(filters)}`
+}
+const placeOf = ({ revision }: ReliabilityFilters) => (revision === null ? '' : ` in ${revision}`)
+
+/** The same in a trail: "Buttress 1.1.1 in TM-3"; null for the whole board. */
+export function selectionLabel(board: string, filters: ReliabilityFilters): string | null {
+  const label = `${selectionName(board, filters)}${placeOf(filters)}`
+  return label === board ? null : label
 }
 
 export type FilterInForce = { name: string; words: string; without: string }

@@ -97,8 +97,10 @@ function CauseWords({ all, cause, everyCause }: { all: ShownTotal; cause: CauseF
   if (cause !== 'all')
     return (
       <>
-        The curves fall only at {causeFilterWords[cause]}: {all.events} of the {known} failures ({list.join(', ')}). A unit that
-        failed by another cause is followed up to that day. <TextLink href={everyCause}>Every cause beside the others</TextLink>
+        The curves fall only at {causeFilterWords[cause]}:{' '}
+        {all.events === known ? `all ${known}` : `${all.events} of the ${known} failures`} ({list.join(', ')}). A unit that failed
+        by another cause is followed up to the last day on which it is known to have run.{' '}
+        <TextLink href={everyCause}>Every cause beside the others</TextLink>
       </>
     )
   return (

@@ -28,7 +28,7 @@ export function CurvesSections({ here, shown, sections, figures }: SectionProps)
       <Section
         number={sections.curves!}
         id="curves"
-        heading="Time to failure, by console revision"
+        heading={byRevision.length > 1 ? 'Time to failure, by console revision' : 'Time to failure'}
         margin={
           <>
             <EstimatorNotes groups={byRevision} grain={grain} />

@@ -3,7 +3,8 @@ import { IntervalAxisCell, IntervalCell } from '~/components/interval-bar'
 import { SmallCurve } from '~/components/small-curve'
 import { Table, type Column } from '~/components/table'
 import { TextLink } from '~/components/text-link'
-import { causeNames } from '~/domain/reliability/filter-words'
+import { causeFilterWords, causeNames } from '~/domain/reliability/filter-words'
+import type { ReliabilityFilters } from '~/domain/reliability/reliability-filters'
 import { tooFew } from '~/domain/reliability/reliability-words'
 import type { ShownGroup, ShownTotal } from './page-figures'
 import { smallScale } from './small-scale'
@@ -19,15 +20,17 @@ type Props = {
   total: ShownTotal | null
   /** The page of a group's own figures; null where this is it. */
   hrefOf: (group: string) => string | null
+  filters: Pick<ReliabilityFilters, 'cause' | 'firstPower'>
   /** A column more, beside the name. */
   extra?: { head: string; cell: (group: string) => React.ReactNode }
 }
 
 /** The page's own answer: first power and one year with their intervals, how many stand behind them, what fails most, and a small curve. */
-export function GroupTable({ number, what, groups, total, hrefOf, extra }: Props) {
+export function GroupTable({ number, what, groups, total, hrefOf, filters, extra }: Props) {
   const rows: Row[] = total === null ? groups : [...groups, { ...total, points: null }]
   const from = scaleFrom(rows)
   const scale = smallScale(groups)
+  const isOneCause = filters.cause !== 'all'
   const columns: Column<Row>[] = [
     {
       key: 'group',
@@ -42,8 +45,16 @@ export function GroupTable({ number, what, groups, total, hrefOf, extra }: Props
       className: 'cv',
       cell: (g) => g.points && hasCurve(g.points) && <SmallCurve points={g.points} {...scale} />
     },
-    { key: 'first', head: 'Works at first power', className: 'iv', cell: (g) => <FirstPower group={g} from={from} /> },
-    { key: 'year', head: 'Works after one year', className: 'iv', cell: (g) => <OneYear group={g} from={from} /> },
+    // Of units that worked at first power all did.
+    ...(filters.firstPower === 'counted'
+      ? [{ key: 'first', head: 'Works at first power', className: 'iv', cell: (g: Row) => <FirstPower group={g} from={from} /> }]
+      : []),
+    {
+      key: 'year',
+      head: isOneCause ? 'Without that for one year' : 'Works after one year',
+      className: 'iv',
+      cell: (g) => <OneYear group={g} from={from} />
+    },
     { key: 'risk', head: 'Followed a year', isFigure: true, only: 'wide', cell: (g) => g.atOneYear.atRisk },
     { key: 'cause', head: 'Most failures by', className: 'cs', cell: (g) => <Commonest group={g} /> }
   ]
@@ -51,7 +62,7 @@ export function GroupTable({ number, what, groups, total, hrefOf, extra }: Props
     <Table
       number={number}
       className="ivt gt"
-      caption={`Percent, with 95\u00a0% interval, on a scale from ${from} to 100. ≥ stands where nothing had failed by then: the exact lower bound alone is known. The curves run to the same day; their tick is one year.`}
+      caption={`${isOneCause ? `Only ${causeFilterWords[filters.cause]} count after first power. ` : ''}Percent, with 95\u00a0% interval, on a scale from ${from} to 100. ≥ stands where nothing had failed by then: the exact lower bound alone is known. The curves run to the same day; their tick is one year.`}
       rows={rows}
       rowKey={(g) => g.group}
       columns={columns}

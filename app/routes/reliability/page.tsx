@@ -4,7 +4,7 @@ import { SiteSheet } from '~/components/site-sheet'
 import { TextLink } from '~/components/text-link'
 import { FilterStrip } from '~/components/section'
 import { Title } from '~/components/title'
-import { selectionHeading } from '~/domain/reliability/filter-words'
+import { selectionHeading, selectionLabel } from '~/domain/reliability/filter-words'
 import { reliabilityOf, reliabilityQuestion } from '~/domain/reliability/reliability.server'
 import { answerPage } from '~/server/answer.server'
 import { services } from '~/server/services.server'
@@ -36,19 +36,25 @@ export function loader({ params, url }: Route.LoaderArgs) {
       today,
       errors
     }
-    if (errors.length > 0) return data({ ...shared, heading: `How long ${board.name} lasts`, shown: null }, { status: 400 })
+    if (errors.length > 0)
+      return data({ ...shared, heading: `How long ${board.name} lasts`, label: null, shown: null }, { status: 400 })
     const figures = await reliabilityOf(services(), params.board, filters)
-    return data({ ...shared, heading: selectionHeading(board.name, filters), shown: pageFigures(figures, query) })
+    const [heading, label] = [selectionHeading(board.name, filters), selectionLabel(board.name, filters)]
+    return data({ ...shared, heading, label, shown: pageFigures(figures, query) })
   })
 }
 
 export default function Reliability({ loaderData }: Route.ComponentProps) {
-  const { board, choices, boardRevisionOf, filters, asked, errors, today, heading, shown } = loaderData
+  const { board, choices, boardRevisionOf, filters, asked, errors, today, heading, label, shown } = loaderData
   const here = `/boards/${board.slug}/reliability`
   const hrefs = hrefsOf(here, filters, today)
   return (
-    <SiteSheet current="Boards" trail={trailOf(board, here, heading)} foot={footOf(shown, filters.asOf)}>
-      <Title heading={heading} lead={leadOf(shown)} margin={<Margin shown={shown} here={here} asOf={filters.asOf} />}>
+    <SiteSheet current="Boards" trail={trailOf(board, here, label)} foot={footOf(shown, filters.asOf)}>
+      <Title
+        heading={heading}
+        lead={leadOf(shown)}
+        margin={shown !== null && shown.reports > 0 ? <Margin shown={shown} here={here} asOf={filters.asOf} /> : undefined}
+      >
         {shown !== null && <FlaggedBatches flagged={shown.flagged} hrefOf={hrefs.batch} />}
       </Title>
       <FilterStrip label="Which reports are counted">
@@ -71,15 +77,10 @@ export default function Reliability({ loaderData }: Route.ComponentProps) {
   )
 }
 
-const trailOf = (board: { slug: string; name: string }, here: string, heading: string) => [
+const trailOf = (board: { slug: string; name: string }, here: string, label: string | null) => [
   { label: 'Boards', href: '/' },
   { label: board.name, href: `/boards/${board.slug}` },
-  ...(heading === `How long ${board.name} lasts`
-    ? [{ label: 'Reliability' }]
-    : [
-        { label: 'Reliability', href: here },
-        { label: heading.slice('How long '.length).replace(/^(.)/, (c) => c.toUpperCase()) }
-      ])
+  ...(label === null ? [{ label: 'Reliability' }] : [{ label: 'Reliability', href: here }, { label }])
 ]
 
 const footOf = (shown: ShownFigures | null, asOf: string) =>
@@ -90,8 +91,7 @@ function leadOf(shown: ShownFigures | null): string {
   return shown.reports === 0 ? 'Nothing is known yet, and nothing is claimed.' : shown.sentence
 }
 
-function Margin({ shown, here, asOf }: { shown: ShownFigures | null; here: string; asOf: string }) {
-  if (shown === null || shown.reports === 0) return null
+function Margin({ shown, here, asOf }: { shown: ShownFigures; here: string; asOf: string }) {
   const { all, excluded, query } = shown
   return (
     <>

@@ -2,6 +2,7 @@ import { Figure } from '~/components/figure'
 import { Section } from '~/components/section'
 import { SurvivalChart } from '~/components/survival-chart'
 import { TextLink } from '~/components/text-link'
+import type { ReliabilityFilters } from '~/domain/reliability/reliability-filters'
 import { tooFew } from '~/domain/reliability/reliability-words'
 import { CsvLink } from './csv-link'
 import { asOfOf, NothingDrawn, unitOf, type SectionProps } from './curves-section'
@@ -10,6 +11,7 @@ import { GroupTable } from './group-table'
 
 type Props = SectionProps & {
   boardName: string
+  filters: Pick<ReliabilityFilters, 'cause' | 'firstPower'>
   boardRevisionOf: Record<string, string>
   hrefOf: (release: string) => string | null
   hrefOfBoardRevision: (boardRevision: string) => string | null
@@ -17,7 +19,7 @@ type Props = SectionProps & {
 
 /** The curves by release: the one with the most units marked, up to three beside it, all in the table. */
 export function ReleasesSection(props: Props) {
-  const { here, shown, sections, figures, tables, boardName, boardRevisionOf, hrefOf, hrefOfBoardRevision } = props
+  const { here, shown, sections, figures, tables, boardName, filters, boardRevisionOf, hrefOf, hrefOfBoardRevision } = props
   const { byRelease, markedRelease } = shown
   const beside = [...byRelease]
     .filter((g) => g.group !== markedRelease)
@@ -63,6 +65,7 @@ export function ReleasesSection(props: Props) {
           groups={byRelease}
           total={null}
           hrefOf={hrefOf}
+          filters={filters}
           extra={{ head: 'Board revision', cell: boardRevision }}
         />
         <div className="under">

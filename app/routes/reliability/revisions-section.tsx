@@ -1,20 +1,23 @@
 import { Section } from '~/components/section'
 import { TextLink } from '~/components/text-link'
+import type { ReliabilityFilters } from '~/domain/reliability/reliability-filters'
 import { CsvLink, GuideLink } from './csv-link'
 import type { SectionProps } from './curves-section'
 import { GroupTable } from './group-table'
 
 type Props = SectionProps & {
   consoleName: string
+  filters: Pick<ReliabilityFilters, 'cause' | 'firstPower'>
   consoleHref: string
   hrefOf: (revision: string) => string | null
 }
 
 /** What a visitor came for: how each console revision does. */
-export function RevisionsSection({ here, shown, sections, tables, consoleName, consoleHref, hrefOf }: Props) {
+export function RevisionsSection({ here, shown, filters, sections, tables, consoleName, consoleHref, hrefOf }: Props) {
   const { byRevision, all, query } = shown
+  const isOne = byRevision.length === 1
   return (
-    <Section number={sections.revisions!} id="revisions" heading="Revision by revision">
+    <Section number={sections.revisions!} id="revisions" heading={isOne ? `In ${byRevision[0]!.group}` : 'Revision by revision'}>
       <div className="wide">
         <GroupTable
           number={tables.revisions!}
@@ -22,6 +25,7 @@ export function RevisionsSection({ here, shown, sections, tables, consoleName, c
           groups={byRevision}
           total={byRevision.length > 1 ? { ...all, group: consoleName } : null}
           hrefOf={hrefOf}
+          filters={filters}
         />
         <div className="under">
           <p className="small">

@@ -52,6 +52,7 @@ export function Shown({ here, board, shown, filters, boardRevisionOf, hrefs }: P
         consoleName={board.consoleName}
         consoleHref={`/consoles/${board.consoleSlug}`}
         hrefOf={hrefs.revision}
+        filters={filters}
       />
       <CurvesSections {...common} />
       {sections.releases !== null && (
@@ -60,6 +61,7 @@ export function Shown({ here, board, shown, filters, boardRevisionOf, hrefs }: P
           boardName={board.name}
           boardRevisionOf={boardRevisionOf}
           hrefOf={hrefs.release}
+          filters={filters}
           hrefOfBoardRevision={hrefs.boardRevision}
         />
       )}
