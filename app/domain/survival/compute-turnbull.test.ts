@@ -32,6 +32,21 @@ test('nothing but right-censored units: no row, one endless cell', () => {
   })
 })
 
+test('where S is 0 there are no limits and no error, nor an upper limit of the median that only they could give', () => {
+  const one = groupOf([{ lower: 2, upper: 4 }])
+  expect(one.curve).toMatchObject([{ time: 4, survival: 0, standardError: null, lower: null, upper: null }])
+  expect(one.median).toEqual({ estimate: 4, lower: null, upper: null })
+  const { curve, median } = groupOf([
+    { lower: 0, upper: 3, weight: 5 },
+    { lower: 3, upper: 9, weight: 20 }
+  ])
+  expect(curve.map(({ lower, upper }) => [lower !== null, upper !== null])).toEqual([
+    [true, true],
+    [false, false]
+  ])
+  expect(median).toEqual({ estimate: 9, lower: null, upper: null })
+})
+
 describe('limits by the size of the group', () => {
   const counts = (weight: number): Observation[] => [
     { lower: 0, upper: 5, weight },
@@ -60,7 +75,7 @@ describe('limits by the size of the group', () => {
   })
 
   test('none with more cells than a step can take, which are fewer the more groups there are', () => {
-    const many = Array.from({ length: 400 }, (_, i): Observation => ({ time: i + 1, event: 1, weight: 3 }))
+    const many = Array.from({ length: 400 }, (_, i): Observation => ({ time: i + 1, event: i < 399 ? 1 : 0, weight: 3 }))
     const hasLimits = (groups: number) =>
       groupOf(many, 5_000, groups).curve.map(({ lower, upper }) => lower !== null && upper !== null)
     expect(new Set(hasLimits(4))).toEqual(new Set([true]))

@@ -43,7 +43,18 @@ export function computeTurnbullGroup(
   const survival = Float64Array.from(rows, (k) => fit.survivalAfter[k]!)
   const atRisk = possiblyAtRisk(spans, time)
   let cumulative = 0
-  const crossing = (values: Float64Array | undefined) => (values === undefined ? null : firstCrossing(time, values, 0.5))
+  // Where S is 0 there are no limits, as for Kaplan-Meier: resamples of those who failed can only say 0 again.
+  const isTold = survival.map((s) => (s > 0 ? 1 : 0))
+  const told = (values: Float64Array | undefined, r: number) => (values !== undefined && isTold[r] === 1 ? values[r]! : null)
+  const crossing = (values: Float64Array | undefined) =>
+    values === undefined
+      ? null
+      : firstCrossing(
+          time,
+          values,
+          0.5,
+          Uint8Array.from(isTold, (one) => 1 - one)
+        )
   return {
     group,
     n: fit.units,
@@ -54,12 +65,12 @@ export function computeTurnbullGroup(
       events: null,
       censored: null,
       survival: survival[r]!,
-      standardError: limits && limits.standardError[r]!,
-      lower: limits && limits.lower[r]!,
-      upper: limits && limits.upper[r]!,
+      standardError: told(limits?.standardError, r),
+      lower: told(limits?.lower, r),
+      upper: told(limits?.upper, r),
       bound: null
     })),
-    median: { estimate: crossing(survival), lower: crossing(limits?.lower), upper: crossing(limits?.upper) },
+    median: { estimate: firstCrossing(time, survival, 0.5), lower: crossing(limits?.lower), upper: crossing(limits?.upper) },
     rmst: options.tau === null ? null : { tau: options.tau, estimate: null, standardError: null },
     hazard: rows.map((k, r) => ({
       time: time[r]!,
