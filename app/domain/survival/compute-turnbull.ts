@@ -44,17 +44,10 @@ export function computeTurnbullGroup(
   const atRisk = possiblyAtRisk(spans, time)
   let cumulative = 0
   // Where S is 0 there are no limits, as for Kaplan-Meier: resamples of those who failed can only say 0 again.
-  const isTold = survival.map((s) => (s > 0 ? 1 : 0))
-  const told = (values: Float64Array | undefined, r: number) => (values !== undefined && isTold[r] === 1 ? values[r]! : null)
+  const isUntold = Uint8Array.from(survival, (s) => (s > 0 ? 0 : 1))
+  const told = (values: Float64Array | undefined, r: number) => (values === undefined || isUntold[r] === 1 ? null : values[r]!)
   const crossing = (values: Float64Array | undefined) =>
-    values === undefined
-      ? null
-      : firstCrossing(
-          time,
-          values,
-          0.5,
-          Uint8Array.from(isTold, (one) => 1 - one)
-        )
+    values === undefined ? null : firstCrossing(time, values, 0.5, isUntold)
   return {
     group,
     n: fit.units,
