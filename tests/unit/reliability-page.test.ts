@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest'
 import type { Comparison, GroupFigures, ReliabilityFigures } from '~/domain/reliability/figures.types'
+import { columnsOfCounts } from '~/domain/reliability/counts-tally'
 import { groupFigures } from '~/domain/reliability/group-figures'
 import { addDay, noCounts } from '~/domain/reliability/group-counts'
 import { countedCauses, readFilters } from '~/domain/reliability/reliability-filters'
@@ -21,7 +22,13 @@ function group(name: string, ran: number, failed: number): GroupFigures {
   addDay(counts.days, 'failed:board', 100, failed)
   addDay(counts.days, 'ran:board', 100, failed)
   Object.assign(counts.totals, { fitted: ran + failed, inCurve: ran + failed, promptly: ran + failed, worked: ran + failed })
-  return groupFigures(name, counts, { counted: countedCauses('all'), isOneCause: false, asOf: today }, null)
+  const columns = columnsOfCounts([counts.days])[0]!
+  return groupFigures(
+    name,
+    { columns, totals: counts.totals, lives: null },
+    { counted: countedCauses('all'), isOneCause: false, asOf: today },
+    null
+  )
 }
 
 function figures(groups: [name: string, ran: number, failed: number][], change: Partial<ReliabilityFigures> = {}) {
