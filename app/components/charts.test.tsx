@@ -169,6 +169,14 @@ describe('IncidenceChart', () => {
     for (const { name } of six) expect(html).toContain(`>${name} <`)
     expect(html).not.toContain('A seventh')
   })
+  it('keeps long names whole: they end inside the drawing', () => {
+    for (const svg of html.split('<svg ').slice(1)) {
+      const width = Number(/^viewBox="0 0 (\d+)/.exec(svg)![1])
+      const at = Number(/<text x="([\d.]+)"[^>]*>(?:<tspan>)?Wrong diagnosis/.exec(svg)![1])
+      // 14 px semi-bold is about 7.6 px a character (measured in Chromium with Source Sans 3)
+      expect(at + (width === 328 ? 15 : 22) * 7.6).toBeLessThanOrEqual(width)
+    }
+  })
   it('says the shares after a year with their intervals', () =>
     expect(html).toMatch(/Board <\/span><span>10\.0 % <\/span><span>5\.0 to 20\.0 <\/span><span class="r">40 followed/))
   it('says how many are followed only where the rows of all causes agree on it', () => {

@@ -15,9 +15,11 @@ const nearby = 12
 export const IncidenceDrawing = memo(function IncidenceDrawing({ drawn, label, unit, plainUnit, isNarrow }: DrawingProps) {
   const { toDay, mark } = usePointing()
   const clip = useId()
+  // long names take room from the plot, never from themselves
+  const longest = Math.max(0, ...drawn.map((cause) => cause.name.length))
   const [width, plot] = isNarrow
-    ? [328, { left: 44, right: 196, top: 26, bottom: 250 }]
-    : [804, { left: 44, right: 614, top: 26, bottom: 270 }]
+    ? [328, { left: 44, right: Math.max(120, Math.min(196, 280 - longest * 8)), top: 26, bottom: 250 }]
+    : [804, { left: 44, right: Math.min(614, 752 - (longest + 7) * 8), top: 26, bottom: 270 }]
   const last = Math.max(plainUnit === undefined ? 1 : 0, ...drawn.map((c) => drawnTo(c.points)))
   const axis = plainUnit === undefined ? timeAxis(last, unit) : plainAxis(last)
   const highest = Math.max(
