@@ -5,6 +5,7 @@ import { calculatorFigures } from '../survival/calculator-figures'
 import { survivalAnswer } from '../survival/compute-survival.server'
 import { computeReliability } from './compute-reliability.server'
 import { reliabilityText } from './reliability-export'
+import { packRows } from './pack-rows'
 import type { WorkerAnswer, WorkerRequest, WorkerTask } from './worker-messages'
 
 /* The thread in which long reads and computations run, one task after the other, through read-only connections. */
@@ -27,7 +28,7 @@ async function run(task: WorkerTask) {
 
 async function answer({ id, task }: WorkerRequest): Promise<WorkerAnswer> {
   try {
-    return { id, ok: true, value: await run(task) }
+    return { id, ok: true, value: packRows(await run(task)) }
   } catch (error) {
     if (error instanceof DomainError) return { id, ok: false, kind: error.kind, message: error.message, errors: error.errors }
     return { id, ok: false, kind: null, message: error instanceof Error ? (error.stack ?? error.message) : String(error) }

@@ -3,6 +3,7 @@ import { fileURLToPath } from 'node:url'
 import { Worker } from 'node:worker_threads'
 import { DomainError } from '~/lib/domain-error'
 import { logError } from '~/server/log.server'
+import { unpackRows } from './pack-rows'
 import type { WorkerAnswer, WorkerRequest, WorkerResults, WorkerTask } from './worker-messages'
 
 type Waiting = {
@@ -72,7 +73,7 @@ export class WorkerClient {
   #answered(answer: WorkerAnswer): void {
     if (this.#current?.waiting.request.id !== answer.id) return
     const waiting = this.#settle()!
-    if (answer.ok) waiting.resolve(answer.value)
+    if (answer.ok) waiting.resolve(unpackRows(answer.value) as WorkerResults[WorkerTask['kind']])
     else if (answer.kind !== null) waiting.reject(new DomainError(answer.kind, answer.message, answer.errors))
     else waiting.reject(new Error(answer.message))
     this.#next()

@@ -23,7 +23,8 @@ export type WorkerResults = {
 
 export type WorkerRequest = { id: number; task: WorkerTask }
 export type WorkerAnswer =
-  | { id: number; ok: true; value: WorkerResults[WorkerTask['kind']] }
+  /** What the task gives, by `packRows`. */
+  | { id: number; ok: true; value: unknown }
   /** An expected failure, meant for the person who asked. */
   | { id: number; ok: false; kind: ErrorKind; message: string; errors: FieldError[] }
   | { id: number; ok: false; kind: null; message: string }
