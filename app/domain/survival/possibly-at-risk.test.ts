@@ -28,3 +28,21 @@ test('for exact and right-censored times it is the number at risk', () => {
     })
   )
 })
+
+test('a few times are told as many are', () => {
+  const row = fc
+    .record({ entry: fc.nat(6), from: fc.nat(6), width: fc.option(fc.nat(5)), weight: fc.integer({ min: 1, max: 3 }) })
+    .map(({ entry, from, width, weight }) => ({
+      entry,
+      lower: entry + from + 1,
+      upper: width === null ? null : entry + from + 1 + width,
+      weight
+    }))
+  fc.assert(
+    fc.property(fc.array(row, { maxLength: 20 }), (rows) => {
+      const spans = spansOf(rows)
+      const times = Float64Array.from({ length: 20 }, (_, t) => t)
+      expect([...times].flatMap((t) => possiblyAtRisk(spans, Float64Array.of(t)))).toEqual(possiblyAtRisk(spans, times))
+    })
+  )
+})
