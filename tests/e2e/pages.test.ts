@@ -41,6 +41,8 @@ const pages: [name: string, path: string, who: string | null][] = [
   ['reliability', '/boards/buttress/reliability', null],
   ['reliability-bad', '/boards/buttress/reliability?as-of=yesterday', null],
   ['reliability-few', '/boards/buttress/reliability?revision=TM-6', null],
+  ['reliability-turnbull', '/boards/sundial/reliability?silent=bounds&steps=revision:TP-4', null],
+  ['reliability-batch', '/boards/buttress/reliability?batch=1.1.1/2024-09&cause=board&first-power=set-aside', null],
   ['calculator', '/calculators/survival', null],
   ['calculator-groups', '/calculators/survival?example=batches', null],
   ['calculator-causes', '/calculators/survival?example=causes', null],

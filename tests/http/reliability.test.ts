@@ -141,7 +141,15 @@ describe('the reliability of a board as JSON', () => {
     ['evidence=guess', 'evidence'],
     ['first-power=x', 'first-power'],
     ['as-of=2024-02-30', 'as-of'],
-    [`as-of=${addDays(today, 1)}`, 'as-of']
+    [`as-of=${addDays(today, 1)}`, 'as-of'],
+    ['cause=gremlins', 'cause'],
+    ['method=glue', 'method'],
+    ['since=2024-13-01', 'since'],
+    ['silent=perhaps', 'silent'],
+    ['board-revision=Z', 'board-revision'],
+    ['batch=1.0.0/none', 'batch'],
+    ['batch=<i>', 'batch'],
+    ['release=1.1.0&batch=1.0.0/2020-01', 'batch']
   ])('answers %s with a problem at its filter, as JSON, as a page and for the CSV', async (query, path) => {
     const { body, headers } = await json(`${api}?${query}`, 400)
     expect(headers.get('Content-Type')).toContain('application/problem+json')
@@ -149,7 +157,10 @@ describe('the reliability of a board as JSON', () => {
     await json(`${page}.csv?${query}`, 400)
     const html = await site.browser().page(`${page}?${query}`, 400)
     expect(html).toMatch(new RegExp(`id="${path}"[^>]*aria-invalid="true"`))
-    expect(html).toContain(query.split('=')[1])
+    const typed = new URLSearchParams(query).get(path)!.replace(/[<>]/g, (c) => (c === '<' ? '&lt;' : '&gt;'))
+    expect(html).toMatch(new RegExp(`(value="${typed}"[^>]*>|selected=""[^>]*>)`))
+    expect(html).toContain(typed)
+    expect(html).toContain(`id="${path}-error"`)
   })
   it('knows no other board', async () => {
     await json('/api/v1/boards/nothing/reliability', 404)
@@ -166,6 +177,57 @@ describe('the reliability page', () => {
     )
     expect(textOf(html)).not.toMatch(/100 % at|100 of 100/)
     expect(html).toContain('Share still working by')
+  })
+  it('narrows by every filter, names what is in force, and gives the way out of each', async () => {
+    const every = 'release=1.0.0&revision=TM-1&evidence=established&method=untold&first-power=set-aside&since=2023-12-31'
+    const html = await site.browser().page(`${page}?${every}&board-revision=A&cause=board&silent=bounds`)
+    expect(textOf(html)).toContain('How long Buttress 1.0.0 lasts in TM-1')
+    // Of the eight on TM-1 all but the first, whose fault was not checked; two of them failed.
+    expect(textOf(html)).toMatch(
+      /Of 7 units that worked at first power [^.]*, 2 have failed by the board or for no known reason\./
+    )
+    const ways = [...html.matchAll(/aria-label="Take away: [^"]*" href="([^"]*)"|href="([^"]*)"[^>]*aria-label="Take away/g)]
+    expect(ways).toHaveLength(9)
+    for (const [, first, second] of ways) {
+      const answer = await site.browser().fetch((first ?? second)!.replaceAll('&amp;', '&'))
+      expect(answer.status).toBe(200)
+    }
+    expect(html).toMatch(/<details class="nar" open=""/)
+    expect(await site.browser().page(`${page}?revision=TM-1`)).not.toMatch(/<details class="nar" open=""/)
+    expect(textOf(await site.browser().page(`${page}?since=2024-01-02`))).toContain('No report answers to these words.')
+    expect(textOf(await site.browser().page(`${page}?method=iron`))).toContain('No report answers to these words.')
+  })
+  it('leads from its rows to the figures of that row alone, and keeps the other filters', async () => {
+    const html = await site.browser().page(`${page}?evidence=established&as-of=2025-06-01`)
+    expect(html).toContain(`href="${page}?revision=TM-1&amp;evidence=established&amp;as-of=2025-06-01"`)
+    expect(html).toContain(`href="${page}.csv?table=groups&amp;evidence=established&amp;as-of=2025-06-01"`)
+    expect(html).toContain(`href="/api/v1${page}?evidence=established&amp;as-of=2025-06-01"`)
+  })
+  it('shows what the silent could hide when it is switched on, and says how much was followed always', async () => {
+    const plain = await site.browser().page(`${page}?revision=TM-1`)
+    expect(textOf(plain)).toContain('of the possible follow-up has been had.')
+    expect(plain).toContain(`href="${page}?revision=TM-1&amp;silent=bounds#silent"`)
+    expect(textOf(plain)).not.toContain('Worst to best')
+    const bounds = textOf(await site.browser().page(`${page}?revision=TM-1&silent=bounds`))
+    // All five that did not fail were last heard of more than a year ago: at day 20 and at day 400.
+    expect(bounds).toContain('5 of 8 units are silent')
+    // Only four of them are followed for a year.
+    expect(bounds).toContain('Too few were followed for a year to say what the silent could change in it.')
+    expect(bounds).toMatch(/Worst to best TM-1 5 of 8 \d+ too few too few followed/)
+  })
+  it('shows a withdrawn release as any other, and a batch without a report as such', async () => {
+    expect(await site.browser().page(page)).toMatch(/<option value="1.1.0"[^>]*>1.1.0, withdrawn/)
+    const batch = textOf(await site.browser().page(`${page}?batch=1.0.0/2020-01`))
+    expect(batch).toContain('How long Buttress 1.0.0, batch 2020-01, lasts')
+    expect(batch).toContain('No report answers to these words.')
+  })
+  it('numbers its sections through', async () => {
+    for (const query of ['', 'revision=TM-2', 'release=1.0.0', 'cause=accident', 'silent=bounds', 'as-of=2024-01-03']) {
+      const html = await site.browser().page(`${page}?${query}`)
+      const numbers = [...html.matchAll(/<span class="no" aria-hidden="true">(\d+)<\/span>/g)].map((m) => Number(m[1]))
+      expect(numbers, query).toEqual(numbers.map((_, i) => i + 1))
+      expect(numbers.length, query).toBeGreaterThan(4)
+    }
   })
   it('marks the curve asked for and pages through the steps', async () => {
     const html = await site.browser().page(`${page}?mark=TM-2&beside=TM-1&steps=revision:TM-1`)
@@ -200,6 +262,15 @@ describe('the reliability page', () => {
     const { body } = await json(`${page}.csv?table=everything`, 400)
     expect(body).toMatchObject({ status: 400, errors: [{ path: 'table' }] })
   })
+  it.each(['groups', 'incidence', 'comparison', 'shape', 'hazard', 'batches', 'support', 'silent', 'silent-curve'])(
+    'gives its table “%s” as CSV',
+    async (table) => {
+      const answer = await site.browser().fetch(`${page}.csv?table=${table}&as-of=2026-11-30`)
+      expect(answer.status).toBe(200)
+      expect(answer.headers.get('Content-Disposition')).toBe(`attachment; filename="buttress-${table}-2026-11-30.csv"`)
+      expect((await answer.text()).split('\r\n')[0]).toMatch(/^board,as_of,/)
+    }
+  )
   it('moves when a report is filed', async () => {
     const member = await site.signInByGithub('vigga')
     const path = '/report?board=buttress&release=1.0.0&revision=TM-1'

@@ -2,6 +2,7 @@ import { describe, expect, it } from 'vitest'
 import { lifeOf } from '../../../tests/factories/life-history'
 import { guideSections, numbersIn } from '../../../tests/support/guide-tables'
 import { addDays, daysBetween } from '~/lib/dates'
+import { chanceLevel } from '../reliability/comparison-words'
 import { lowerPercent, tooFew } from '../reliability/reliability-words'
 import { dueDays, nextDueDay } from '../reliability/silent-figures'
 import { allReports, observationOf, promptDays, type LifeOutcome } from '../reports/observations'
@@ -12,6 +13,7 @@ import { clopperPearson } from '../survival/clopper-pearson'
 import { columnsOf } from '../survival/columns'
 import { confidenceLimits, curveLimits } from '../survival/confidence-limits'
 import { completeness } from '../survival/follow-up'
+import { holm } from '../survival/holm'
 import { kaplanMeier } from '../survival/kaplan-meier'
 import { logRank } from '../survival/log-rank'
 import { nelsonAalen } from '../survival/nelson-aalen'
@@ -196,6 +198,22 @@ describe('the worked examples', () => {
     expect(prose).toEqual(['1978'])
   })
 
+  it('one cause alone', () => {
+    const { rows, prose } = example('one-cause')
+    const units = example('causes').rows[0]!
+    const curve = curveOf(units.map(([, time, end]) => ({ time: Number(time), event: end === 'board' ? 1 : 0 })))
+    const falls = [...curve.time.keys()].filter((i) => curve.events[i]! > 0)
+    expect(
+      falls.map((i) => {
+        const [n, d] = [curve.atRisk[i]!, curve.events[i]!]
+        return [String(curve.time[i]), String(n), String(d), `${n - d}/${n}`, percent(curve.survival[i]!)]
+      })
+    ).toEqual(rows[0])
+    // "38.9 of a hundred" as the example before has it, "not" what this curve leaves
+    const competing = example('causes').rows[1]!.at(-1)![2]!
+    expect(prose).toEqual([competing, percent(1 - curve.survival.at(-1)!)])
+  })
+
   it('two groups', () => {
     const { rows, prose } = example('two-groups')
     const group = (name: string) =>
@@ -231,6 +249,15 @@ describe('the worked examples', () => {
     expect(prose).toEqual(['1966'])
     expect(test.observed).toEqual([3, 1]) // "three against one"
     expect(Math.round(1 / test.p)).toBe(6) // "one time in six"
+  })
+
+  it('several pairs at once', () => {
+    const { rows, prose } = example('several')
+    const adjusted = holm(rows[0]!.map(([, p]) => Number(p)))
+    expect(rows[0]!.map(([pair, p, times], i) => [pair, p, times, fixed(adjusted[i]!, 3)])).toEqual(rows[0])
+    expect(rows[0]!.map(([, , times]) => Number(times))).toEqual([3, 2, 1])
+    expect(prose).toEqual(['1979'])
+    expect(adjusted.filter((p) => p < chanceLevel)).toHaveLength(1) // "only the first pair"
   })
 
   it('the difference in days', () => {

@@ -4,7 +4,7 @@ import { tooFew } from './reliability-words'
 export type AgeingPattern = 'early' | 'wear-out'
 
 /** Of fewer failures nothing is said: the limits of a shape are those of many. */
-const hasEnough = ({ failures }: Pick<ShapeFigures, 'failures'>) => failures >= tooFew
+export const hasEnough = ({ failures }: Pick<ShapeFigures, 'failures'>) => failures >= tooFew
 
 /** What the shape says of failures as units age; null where its interval holds 1, too few have failed, or there is no shape. */
 export function ageingPattern(shape: Pick<ShapeFigures, 'lower' | 'upper' | 'failures'> | null): AgeingPattern | null {

@@ -1,7 +1,6 @@
 import { Section } from '~/components/section'
 import { Table } from '~/components/table'
-import { ageingPattern, ageingSentence, patternWords, shapeInterval } from '~/domain/reliability/ageing-words'
-import { tooFew } from '~/domain/reliability/reliability-words'
+import { ageingPattern, ageingSentence, hasEnough, patternWords, shapeInterval } from '~/domain/reliability/ageing-words'
 import { CsvLink, GuideLink } from './csv-link'
 import type { SectionProps } from './curves-section'
 import type { ShownShape } from './page-figures'
@@ -36,19 +35,26 @@ export function AgeingSection({ here, shown, sections, tables }: SectionProps) {
                 key: 'shape',
                 head: 'Shape',
                 isFigure: true,
-                cell: ({ shape }) => (
-                  <>
-                    {shape.estimate.toFixed(2)} <small className="on-n soft">{shapeInterval(shape)}</small>
-                  </>
-                )
+                cell: ({ shape }) =>
+                  hasEnough(shape) && (
+                    <>
+                      {shape.estimate.toFixed(2)} <small className="on-n soft">{shapeInterval(shape)}</small>
+                    </>
+                  )
               },
-              { key: 'interval', head: '95 % interval', isFigure: true, only: 'wide', cell: ({ shape }) => shapeInterval(shape) },
+              {
+                key: 'interval',
+                head: '95 % interval',
+                isFigure: true,
+                only: 'wide',
+                cell: ({ shape }) => hasEnough(shape) && shapeInterval(shape)
+              },
               {
                 key: 'tenth',
                 head: 'One in ten by day',
                 isFigure: true,
                 only: 'wide',
-                cell: ({ shape: { b10 } }) => `${Math.round(b10.estimate)} (${Math.floor(b10.lower)} to ${Math.ceil(b10.upper)})`
+                cell: ({ shape }) => hasEnough(shape) && tenthText(shape)
               },
               { key: 'words', head: 'Failures grow', className: 'cs', cell: ({ shape }) => patternOf(shape) }
             ]}
@@ -60,10 +66,13 @@ export function AgeingSection({ here, shown, sections, tables }: SectionProps) {
   )
 }
 
+const tenthText = ({ b10 }: ShownShape['shape']) =>
+  `${Math.round(b10.estimate)} (${Math.floor(b10.lower)} to ${Math.ceil(b10.upper)})`
+
 function patternOf(shape: ShownShape['shape']) {
   const pattern = ageingPattern(shape)
   return pattern === null ? (
-    <span className="soft">{shape.failures < tooFew ? 'too few to tell' : 'not to be told'}</span>
+    <span className="soft">{hasEnough(shape) ? 'not to be told' : 'too few to tell'}</span>
   ) : (
     patternWords[pattern]
   )

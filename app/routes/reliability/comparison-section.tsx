@@ -47,6 +47,7 @@ export function ComparisonSection({ here, shown, sections, tables }: SectionProp
 
 function Compared({ comparison, number }: { comparison: ShownComparison; number: number }) {
   const { reference, beside, others } = comparison
+  const hasDays = beside.some((pair) => pair.meanDifference !== null)
   const reach = differenceReach([...beside, ...others].flatMap(({ meanDifference }) => meanDifference ?? []))
   return (
     <>
@@ -60,7 +61,7 @@ function Compared({ comparison, number }: { comparison: ShownComparison; number:
           reach={reach}
           head={`Beside ${reference}`}
           nameOf={(pair) => pair.second}
-          caption={`Mean days without failure in the first year that each has more or less than ${reference}, with 95\u00a0% interval, on a scale of ${reach} days to both sides.`}
+          caption={`Mean days without failure in the first year that each has more or less than ${reference}, with 95\u00a0% interval${hasDays ? `, on a scale of ${reach} days to both sides` : ''}.`}
         />
       </div>
       {others.length > 0 && (

@@ -99,7 +99,7 @@ function SilentWords({ all: { silent, n }, hrefOfPlain }: { all: ShownTotal; hre
 
 /** The scale begins at 50, or at 0 where a figure lies lower. */
 const scaleFrom = (rows: readonly ShownTotal[]) =>
-  Math.min(1, ...rows.map((g) => g.silent?.atOneYear.worst ?? 1)) < 0.5 ? 0 : 50
+  Math.min(1, ...rows.map((g) => (hasRange(g) ? g.silent!.atOneYear.worst! : 1))) < 0.5 ? 0 : 50
 
 function SilentFigure({ shown, figures }: Props) {
   const { all } = shown
@@ -158,22 +158,19 @@ function reportedText({ atOneYear: { atRisk }, silent, atOneYear }: ShownTotal) 
 }
 
 function Range({ group, from }: { group: ShownTotal; from: number }) {
-  const { worst, best, reported } = group.silent?.atOneYear ?? { worst: null, best: null, reported: null }
-  if (worst === null || best === null) return <span className="soft">too few followed</span>
-  const low = Math.floor(worst * 100 + 1e-9)
+  if (!hasRange(group)) return <span className="soft">too few followed</span>
+  const { worst, best, reported } = group.silent!.atOneYear
+  const low = Math.floor(worst! * 100 + 1e-9)
+  const bar = { worst: worst!, reported: reported!, best: best!, from }
   return (
     <>
-      <b className="nw">{best >= 1 ? `${low} or more` : `${low} to ${Math.ceil(best * 100 - 1e-9)}`}</b>
-      {hasRange(group) && (
-        <>
-          <span className="on-w in">
-            <RangeBar worst={worst} reported={reported!} best={best} from={from} width={170} />
-          </span>
-          <span className="on-n">
-            <RangeBar worst={worst} reported={reported!} best={best} from={from} width={110} />
-          </span>
-        </>
-      )}
+      <b className="nw">{best! >= 1 ? `${low} or more` : `${low} to ${Math.ceil(best! * 100 - 1e-9)}`}</b>
+      <span className="on-w in">
+        <RangeBar {...bar} width={170} />
+      </span>
+      <span className="on-n">
+        <RangeBar {...bar} width={110} />
+      </span>
     </>
   )
 }

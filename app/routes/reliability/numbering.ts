@@ -1,4 +1,5 @@
 import { visibleRuns } from '~/components/chart-geometry'
+import { tooFew } from '~/domain/reliability/reliability-words'
 import type { ShownFigures, ShownGroup } from './page-figures'
 
 const sectionKeys = [
@@ -86,7 +87,7 @@ export function numbering(shown: ShownFigures) {
 }
 export type Numbering = ReturnType<typeof numbering>
 
-/** Whether all three marks of what the silent could hide are known, so that they can be drawn. */
-export function hasRange({ silent }: Pick<ShownGroup, 'silent'>): boolean {
-  return silent !== null && Object.values(silent.atOneYear).every((share) => share !== null)
+/** Whether all three marks of what the silent could hide are known from enough units, so that they can be drawn. */
+export function hasRange({ silent, atOneYear }: Pick<ShownGroup, 'silent' | 'atOneYear'>): boolean {
+  return silent !== null && atOneYear.atRisk >= tooFew && Object.values(silent.atOneYear).every((share) => share !== null)
 }
