@@ -13,9 +13,14 @@ const edge = 4
 
 /** A round number that holds the estimates and most of their limits; limits further out end in an arrowhead. */
 export function differenceReach(rows: readonly { estimate: number; lower: number; upper: number }[]): number {
+  const widths = rows.map((r) => (r.upper - r.lower) / 2).sort((a, b) => a - b)
+  // Half of the intervals are no wider than this; a scale that cuts those off shows nothing.
+  const typical = 2 * (widths[Math.floor(widths.length / 2)] ?? 0)
   const most = Math.max(
     0,
-    ...rows.map((r) => Math.max(Math.abs(r.estimate) * 1.15, Math.min(Math.abs(r.estimate) * 3, Math.max(-r.lower, r.upper))))
+    ...rows.map((r) =>
+      Math.max(Math.abs(r.estimate) * 1.15, Math.min(Math.max(Math.abs(r.estimate) * 3, typical), Math.max(-r.lower, r.upper)))
+    )
   )
   if (!(most > 0)) return 1
   const power = 10 ** Math.floor(Math.log10(most))

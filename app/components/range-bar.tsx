@@ -49,12 +49,14 @@ const oneDigit = (share: number) => (share >= 1 ? 'none failed' : (share * 100).
 
 /** The same once, large, with its words; `isNarrow` sets them on lines of their own. */
 export function RangeFigure({ worst, reported, best, from = 50, to = 100, isNarrow }: RangeBarProps & { isNarrow?: boolean }) {
-  const [width, right, base] = isNarrow ? [328, 310, 104] : [700, 682, 88]
+  // Wide, the words of the best case stand right of it, past the scale's end if need be.
+  const [width, right, base] = isNarrow ? [328, 310, 104] : [700, 540, 88]
   const scale = linear(from, to, 2, right)
   const x = (share: number) => Math.max(2, scale(share * 100))
   const ticks = Array.from({ length: 6 }, (_, i) => from + ((to - from) / 5) * i)
   const label = `Worst case ${oneDigit(worst)}, as reported ${oneDigit(reported)}, best case ${oneDigit(best)} percent`
   const top = base - 24
+  const isLeft = isNarrow === true || x(worst) < 150
   return (
     <svg viewBox={`0 0 ${width} ${base + 30}`} width={width} height={base + 30} role="img" aria-label={label}>
       <path d={`M2 ${base}H${right}`} className="ln" strokeWidth="1.5" />
@@ -72,7 +74,7 @@ export function RangeFigure({ worst, reported, best, from = 50, to = 100, isNarr
         <tspan className="font-bold">{oneDigit(reported)}</tspan> as reported
       </text>
       <path d={`M${x(worst)} ${top - 12}V${base}M${x(best)} ${top - 12}V${base}`} className="ln" strokeWidth="1" />
-      <text x={isNarrow ? 2 : x(worst) - 6} y={isNarrow ? 14 : top - 4} textAnchor={isNarrow ? 'start' : 'end'}>
+      <text x={isLeft ? 2 : x(worst) - 6} y={isNarrow ? 14 : top - 4} textAnchor={isLeft ? 'start' : 'end'}>
         <tspan className="font-bold">{oneDigit(worst)}</tspan> if all had failed
       </text>
       <text x={isNarrow ? 2 : x(best) + 6} y={isNarrow ? 32 : top - 4} textAnchor="start">

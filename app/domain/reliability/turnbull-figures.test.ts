@@ -23,6 +23,18 @@ describe('turnbullFigures', () => {
     ])
   })
 
+  it('has a row on each day of a last word where S is known, so that those at risk can be read', () => {
+    // Three that ran on day 150 narrow the place of the failure to (150, 200]; until then only they and the later ones surely run.
+    const { curve } = of([...one, running(50, 2), running(150, 3), running(300, 5)])
+    expect(curve.map(({ time, atRisk }) => [time, atRisk])).toEqual([
+      [50, 20],
+      [150, 17],
+      [200, 15],
+      [300, 14],
+      [400, 9]
+    ])
+  })
+
   it('bounds S exactly while it is 1, by the units surely running', () => {
     // Clopper and Pearson 1934: 0.05^(1/10)
     expect(of(one).curve[0]).toMatchObject({

@@ -20,9 +20,9 @@ const someMass = 1e-7
 export type TurnbullFigures = Pick<GroupFigures, 'curve' | 'support' | 'median' | 'atOneYear'>
 
 /**
- * Turnbull's curve of one group with limits. It has a row at each end of the stretches where S is known: at the right end of each cell with mass, where S
- * is known again, and at its left end, up to which it was; between the two S is not determined. The median is the first such day at which S has
- * fallen to a half.
+ * Turnbull's curve of one group with limits. It has a row at each end of the stretches where S is known (at the right end of each cell with mass, where S
+ * is known again, and at its left end, up to which it was; between the two S is not determined) and, within them, on each day on which a unit was
+ * last heard of, so that the number at risk can be read. The median is the first such day at which S has fallen to a half.
  *
  * Limits are the percentiles of a seeded bootstrap, widened to at least those which Greenwood's variance would give had every failure a
  * known day (log-log; with d/n the fall of S over a cell and n all that may have been at risk at its end): not knowing the day cannot make S
@@ -35,17 +35,23 @@ export function turnbullFigures(spans: Spans, year: number): TurnbullFigures {
   const fit = turnbull(spans)
   const cells = [...fit.mass.keys()].filter((k) => fit.mass[k]! > someMass)
   const known = knownStretches(fit, cells)
-  const atRisk = atRiskAt(spans, [...known.flatMap(({ from, to }) => [from, to]), year])
+  const leaving = leavingDays(spans)
+  const days = [...known.flatMap(({ from, to }) => [from, to]), ...leaving, year]
+  const atRisk = atRiskAt(spans, days)
+  const running = atRiskAt({ ...spans, upper: new Float64Array(spans.upper.length).fill(Infinity) }, days)
   const limits = limitsOf(fit, cells, atRisk)
   const rowOf: RowOf = (day, { from, survival }) => {
     const row = { time: day, events: null, censored: null, survival }
-    if (survival === 1) return { ...row, standardError: 0, ...boundAt(day, spans) }
+    if (survival === 1) return { ...row, standardError: 0, ...boundAt(running.get(day)!) }
     return { ...row, atRisk: atRisk.get(day)!, ...(limits.get(from) ?? noLimits), bound: null }
   }
   const curve: AnswerRow[] = []
   known.forEach((stretch, i) => {
-    if (i > 0) curve.push(rowOf(stretch.from, stretch))
-    if (stretch.isEndKnown && stretch.to > stretch.from) curve.push(rowOf(stretch.to, stretch))
+    const { from, to, isEndKnown } = stretch
+    if (i > 0) curve.push(rowOf(from, stretch))
+    const isInside = (day: number) => (day > from || (i === 0 && day === from)) && day < to
+    for (const day of leaving) if (isInside(day)) curve.push(rowOf(day, stretch))
+    if (isEndKnown && to > from) curve.push(rowOf(to, stretch))
   })
   const falling = curve.filter((row) => row.bound === null)
   const column = (value: (row: AnswerRow) => number | null) => Float64Array.from(falling, (row) => value(row) ?? NaN)
@@ -76,6 +82,13 @@ type RowLimits = { lower: number | null; upper: number | null; standardError: nu
 const noLimits: RowLimits = { lower: null, upper: null, standardError: null }
 
 type RowOf = (day: number, stretch: Stretch) => AnswerRow
+
+/** The distinct days of the last words of units that are not known to have failed, ascending. */
+function leavingDays({ lower, upper }: Spans): number[] {
+  const days = new Set<number>()
+  for (let i = 0; i < lower.length; i++) if (upper[i] === Infinity) days.add(lower[i]!)
+  return [...days].sort((a, b) => a - b)
+}
 
 /** Those possibly at risk on some days. */
 function atRiskAt(spans: Spans, days: readonly number[]): Map<number, number> {
@@ -132,12 +145,11 @@ const resampledLimits = (fit: TurnbullFit): BootstrapLimits => {
   return bootstrap(fit, seededRandom(seed), 0.95, resamples)
 }
 
-/** The exact bound of the units surely running at `time`, and their number. */
-function boundAt(time: number, { entry, lower, weight }: Spans): Limits & { atRisk: number } {
-  let atRisk = 0
-  for (let i = 0; i < entry.length; i++) if ((entry[i]! < time || entry[i] === 0) && lower[i]! >= time) atRisk += weight[i]!
-  return { atRisk, ...confidenceLimits({ survival: 1, greenwood: 0, atRisk }) }
-}
+/** The exact bound of so many units surely running, and their number. */
+const boundAt = (running: number): Limits & { atRisk: number } => ({
+  atRisk: running,
+  ...confidenceLimits({ survival: 1, greenwood: 0, atRisk: running })
+})
 
 /**
  * S at a day. Between two known stretches it lies between the S of both: the lower is given, with limits that hold both, and the smaller number at

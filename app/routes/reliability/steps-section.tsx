@@ -122,7 +122,7 @@ function whenText({ lower, upper }: Mass): string {
 
 const stepsCaption = ({ label, estimator }: Steps) =>
   estimator === 'turnbull'
-    ? `The curve of ${label}: one row for each end of a stretch on which it is known. Limits are 95\u00a0%, by resampling; marked ≥ where the lower one is an exact bound.`
+    ? `The curve of ${label}: one row for each day of a last word on which it is known, and for each end of a stretch on which it is. Limits are 95\u00a0%, by resampling; marked ≥ where the lower one is an exact bound.`
     : `The curve of ${label}: one row for each day with a failure or a last word. Limits are 95\u00a0%, log-log; marked ≥ where the lower one is the exact bound of a curve without a failure.`
 
 function columnsOf(estimator: Steps['estimator']): Column<Step>[] {
