@@ -13,8 +13,8 @@ const benches: Record<string, { what: string; run(args: string[]): Promise<Claim
     run: async (args) => (await import('./check-load')).checkLoad(args[0])
   },
   'page-scale': {
-    what: 'a reliability page over 1,000,000 units beside the same page over 10,000 [UNITS]; takes minutes and some GB of temporary files',
-    run: async (args) => (await import('./page-scale')).pageScale(args[0])
+    what: 'a reliability page over 1,000,000 units beside the same page over 10,000 [UNITS [BOARD]]; takes minutes and some GB of temporary files',
+    run: async (args) => (await import('./page-scale')).pageScale(args[0], args[1])
   },
   survival: {
     what: "the survival estimators beside R's survival and npsurv packages",

@@ -58,7 +58,17 @@ const isGapless = (numbers: Numbering[keyof Numbering]) => {
 describe('the numbers of a page', () => {
   const silent = { silent: 3, heardOf: 9, atOneYear: { worst: 0.6, reported: 0.9, best: 0.95 }, worst: [], best: [] }
   const watch = { observed: 9, expected: 2, ratio: 4.5, lower: 2, upper: 8, isFlagged: true, comparedTo: 400 }
-  const batch = { batch: '1.0.0/a', version: '1.0.0', code: 'a', madeOn: today, quantity: 20, n: 20, observed: 9, watch }
+  const batch = {
+    batch: '1.0.0/a',
+    version: '1.0.0',
+    code: 'a',
+    madeOn: today,
+    quantity: 20,
+    n: 20,
+    observed: 9,
+    others: 60,
+    watch
+  }
   const comparison: Comparison = { by: 'revision', groups: ['A', 'B'], logRank: null, pairs: [], leftOut: [], tooMany: [] }
   const withSilent = (made: ReliabilityFigures) => ({ ...made, all: { ...made.all, silent } })
   const two: [string, number, number][] = [

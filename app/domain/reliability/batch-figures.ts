@@ -42,6 +42,8 @@ export function batchFigures(
   for (const { releaseId } of batches)
     if (!together.has(releaseId))
       together.set(releaseId, sumOfColumns(columns.filter((_, i) => batches[i]!.releaseId === releaseId)))
+  const units = new Map<string, number>()
+  for (const { releaseId, counts } of batches) units.set(releaseId, (units.get(releaseId) ?? 0) + counts.totals.inCurve)
   const rows = [...batches.entries()]
     .filter(([, batch]) => isShown(batch))
     .map(([i, batch]) => {
@@ -56,6 +58,7 @@ export function batchFigures(
         madeOn: batch.madeOn,
         quantity: batch.quantity,
         n: batch.counts.totals.inCurve,
+        others: units.get(batch.releaseId)! - batch.counts.totals.inCurve,
         observed: failuresIn(tally),
         watch: watch && {
           observed: watch.observed,

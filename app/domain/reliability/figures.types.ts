@@ -154,6 +154,8 @@ export type BatchFigures = {
   /** Units in the curve, and board failures among them. */
   n: number
   observed: number
+  /** Units in the curve of the release's other batches. */
+  others: number
   /** Null where nothing can be expected: no other batch, or none of theirs failed. */
   watch: BatchWatchFigures | null
 }

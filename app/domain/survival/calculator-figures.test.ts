@@ -68,8 +68,8 @@ describe('bounds', () => {
     const figures = figuresOf(Array.from({ length: 6000 }, (_, i) => `${i + 0.5},${i % 3 === 0 ? 1 : 0}`).join('\n'))
     expect(figures.groups[0]!.stepCount).toBe(6000)
     expect(figures.groups[0]!.steps).toHaveLength(600)
-    expect(figures.groups[0]!.points!.length).toBeLessThan(850)
-    expect(figures.grain).toBe(20)
+    expect(figures.groups[0]!.points!.length).toBeLessThan(450)
+    expect(figures.grain).toBe(50)
     expect(figures).toMatchObject({ json: null, csv: null })
   })
 

@@ -3,7 +3,7 @@ import { RatioAxisCell, RatioCell } from '~/components/ratio-bar'
 import { Section } from '~/components/section'
 import { Table } from '~/components/table'
 import { TextLink } from '~/components/text-link'
-import { flaggedHeading, flaggedSentence } from '~/domain/reliability/batch-words'
+import { flaggedHeading, flaggedSentence, unwatchedText } from '~/domain/reliability/batch-words'
 import type { BatchFigures } from '~/domain/reliability/figures.types'
 import { Warning } from '~/components/warning'
 import { CsvLink, GuideLink } from './csv-link'
@@ -85,8 +85,8 @@ export function BatchesSection({ here, shown, sections, tables, hrefOf }: Props)
   )
 }
 
-function Ratio({ row: { watch, observed }, scale }: { row: BatchFigures; scale: { from: number; to: number } }) {
-  if (watch === null) return <span className="soft">nothing to compare it with</span>
+function Ratio({ row: { watch, observed, others }, scale }: { row: BatchFigures; scale: { from: number; to: number } }) {
+  if (watch === null) return <span className="soft">{unwatchedText({ others })}</span>
   return (
     <>
       <RatioCell {...watch} {...scale} />
