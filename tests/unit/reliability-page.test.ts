@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import type { Comparison, GroupFigures, ReliabilityFigures } from '~/domain/reliability/figures.types'
+import type { Comparison, GroupFigures, ReliabilityFigures, ShapeFigures } from '~/domain/reliability/figures.types'
 import { columnsOfCounts } from '~/domain/reliability/counts-tally'
 import { groupFigures } from '~/domain/reliability/group-figures'
 import { addDay, noCounts } from '~/domain/reliability/group-counts'
@@ -132,6 +132,20 @@ describe('what a page shows', () => {
     expect(rows[0]!.last).toMatchObject({ time: 400, atRisk: 20 })
     expect(shownOf(figures([['A', 3, 1]])).causes.rows[0]).toMatchObject({ atOneYear: null, last: null, points: [] })
     expect(causes.length).toBeGreaterThan(1)
+  })
+  it('states the exact bound for a cause without a failure in the first year', () => {
+    const made = figures([['A', 20, 5]])
+    const late = made.all.incidence.map((one) => ({ ...one, curve: one.curve.map((row) => ({ ...row, time: 390 })) }))
+    const { rows } = shownOf({ ...made, all: { ...made.all, incidence: late } }).causes
+    // the 20 still followed after a year: 1 - 0.05^(1/20) = 0.139…
+    expect(rows[0]!.atOneYear).toMatchObject({ estimate: 0, bound: 'exact-one-sided' })
+    expect(rows[0]!.atOneYear!.upper).toBeCloseTo(0.1391, 4)
+  })
+  it('lists no shape where fewer than five have failed in each', () => {
+    const made = figures([['A', 20, 4]])
+    const withFailures = (failures: number) => ({ ...made, all: { ...made.all, shape: { failures } as ShapeFigures } })
+    expect(shownOf(withFailures(4)).shapes).toEqual([])
+    expect(shownOf(withFailures(5)).shapes).toEqual([{ group: 'all', shape: { failures: 5 } }])
   })
   it('sends no curve, hazard or mass of all together along with the page', () => {
     const { all } = shownOf(figures([['A', 20, 3]]))

@@ -1,4 +1,5 @@
 import { faintUnder } from '~/components/chart-geometry'
+import { hasEnough } from '~/domain/reliability/ageing-words'
 import { drawnCurves, type CurvePoint } from '~/domain/reliability/curve-points'
 import type {
   BatchFigures,
@@ -20,6 +21,8 @@ export const stepsPageSize = 20
 export const batchesPageSize = 20
 const besideMost = 3
 const oneYear = 365
+/** One-sided, at 95 %. */
+const alpha = 0.05
 
 export type ShownSilent = Pick<SilentFigures, 'silent' | 'heardOf' | 'atOneYear'>
 export type ShownTotal = Omit<GroupFigures, 'curve' | 'support' | 'hazard' | 'incidence' | 'silent'> & {
@@ -85,6 +88,12 @@ type ShownIncidence = {
   points: (Pick<IncidenceRow, 'time' | 'estimate' | 'lower' | 'upper' | 'atRisk'> & { since?: number })[]
 }
 
+/** Without a failure of a cause by then: the exact one-sided bound of those followed, where they are known to the day. */
+function noneAtOneYear({ estimator, atOneYear: { time, atRisk } }: GroupFigures): IncidenceRow {
+  const upper = estimator === 'kaplan-meier' ? 1 - alpha ** (1 / atRisk) : null
+  return { time, atRisk, estimate: 0, standardError: 0, lower: 0, upper, bound: 'exact-one-sided' }
+}
+
 /** Incidences up to the last day on which enough were at risk: past it one unit more or less would move them too far. */
 function shownCauses(all: GroupFigures): {
   rows: ShownIncidence[]
@@ -108,7 +117,7 @@ function shownCauses(all: GroupFigures): {
   const rows = all.incidence.map(({ cause, failures }, i): ShownIncidence => ({
     name: causeNames[cause],
     failures,
-    atOneYear: isFollowed ? (told[i]!.findLast(({ time }) => time <= oneYear) ?? null) : null,
+    atOneYear: isFollowed ? (told[i]!.findLast(({ time }) => time <= oneYear) ?? noneAtOneYear(all)) : null,
     last: told[i]!.at(-1) ?? null,
     points: curves[i]!.map(({ time, since, estimate, lower, upper, atRisk }: IncidenceRow & { since?: number }) => ({
       time,
@@ -131,11 +140,13 @@ function withLevelAt(rows: IncidenceRow[], day: { time: number; atRisk: number }
 
 export type ShownShape = { group: string; shape: ShapeFigures }
 
-/** The shapes that there are, all together first. */
-const shownShapes = ({ all, byRevision }: ReliabilityFigures): ShownShape[] =>
-  [{ ...all, group: 'all' }, ...(byRevision.length > 1 ? byRevision : [])].flatMap(({ group, shape }) =>
+/** The shapes that there are, all together first; none where too few have failed in each. */
+function shownShapes({ all, byRevision }: ReliabilityFigures): ShownShape[] {
+  const shapes = [{ ...all, group: 'all' }, ...(byRevision.length > 1 ? byRevision : [])].flatMap(({ group, shape }) =>
     shape === null ? [] : [{ group, shape }]
   )
+  return shapes.some(({ shape }) => hasEnough(shape)) ? shapes : []
+}
 
 /** Batches are shown where one was asked for, or one stands out; null else. */
 function shownBatches({ filters, batches }: ReliabilityFigures, query: URLSearchParams) {
