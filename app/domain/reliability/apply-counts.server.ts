@@ -7,7 +7,7 @@ import { addLife, totalKeys, type DayCounts, type GroupTotals, type LifeCounts }
 
 /**
  * Adds a delta to stored counts; what comes to nothing is deleted.
- * @throws Error when anything would be counted less than never: then the counts were wrong before, and the transaction must not be kept
+ * @throws WrongCounts when anything would be counted less than never: part of the delta is then written, and the counts must not be read
  */
 export async function applyCounts(tx: Tx, tables: repo.CountTables, boardId: string, delta: CountsDelta): Promise<void> {
   for (const group of delta.values()) await applyGroup(tx, tables, boardId, group)
@@ -81,5 +81,10 @@ async function applyLives(tx: Tx, tables: repo.CountTables, groupId: number, gra
   }
 }
 
+/** The stored counts were wrong before. */
+export class WrongCounts extends Error {}
+
 const belowZero = (what: string) =>
-  new Error(`The stored counts of ${what} would fall below 0: they do not agree with the reports. \`fettle recount\` mends them.`)
+  new WrongCounts(
+    `The stored counts of ${what} would fall below 0: they do not agree with the reports. \`fettle recount\` mends them.`
+  )

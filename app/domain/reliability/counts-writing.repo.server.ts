@@ -90,6 +90,22 @@ export const markCounted = (tx: Tx, boardId: string, lastFiledOn: Day | null) =>
     )
     .execute()
 
+/** Keeps a board's counts from being read until they are rebuilt. One that was never counted is not read anyway. */
+export const markUncounted = (tx: Tx, boardId: string) =>
+  tx.updateTable('counted_boards').set({ uncounted: '*' }).where('board_id', '=', boardId).execute()
+
+/** Whether a board has more than so many reports. Reads no more of them. */
+export async function hasMoreReports(tx: Tx, boardId: string, limit: number): Promise<boolean> {
+  const rows = await tx
+    .selectFrom('install_reports as r')
+    .innerJoin('releases as v', 'v.id', 'r.release_id')
+    .where('v.board_id', '=', boardId)
+    .select('r.id')
+    .limit(limit + 1)
+    .execute()
+  return rows.length > limit
+}
+
 export const findBoardOfRelease = (tx: Tx, releaseId: string) =>
   tx.selectFrom('releases').where('id', '=', releaseId).select('board_id').executeTakeFirstOrThrow()
 

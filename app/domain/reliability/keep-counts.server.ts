@@ -1,17 +1,21 @@
+import { logError } from '~/server/log.server'
 import type { Tx } from '~db/client.server'
-import { applyCounts } from './apply-counts.server'
+import { applyCounts, WrongCounts } from './apply-counts.server'
 import { countLife, lastFiledOn, type CountsDelta } from './counts-delta'
 import { findCountedBoard, isCounted } from './counts.repo.server'
 import * as repo from './counts-writing.repo.server'
 import { findLife } from './lives.repo.server'
 import { recountBoard } from './recount-board.server'
 
+/** More reports are not counted anew while somebody waits and everybody else waits for the event loop. */
+export const maxRecountedAtOnce = 1_000
+
 /**
  * Writes to one report, its check-ins or its failure, and keeps the stored counts true: everything that writes to these tables goes through here, in
  * the transaction that writes. The unit's life is read before and after, and the counts are changed by the difference. A board that was not
- * counted by the present rules, or that was written to otherwise, is counted anew.
+ * counted by the present rules, that was written to otherwise, or whose counts turn out to be wrong, is counted anew or, when it has very many reports,
+ * left to the next start: its counts are not read until then. What somebody reports is never refused for the counts' sake.
  * @param work the writes, about the report `reportId` and no other
- * @throws Error when the counts turn out to be wrong; the transaction must then be rolled back
  */
 export async function withCounts<T>(tx: Tx, reportId: string, work: () => Promise<T>): Promise<T> {
   const before = await findLife(tx, reportId)
@@ -29,15 +33,28 @@ export async function withCounts<T>(tx: Tx, reportId: string, work: () => Promis
   const isOnlyThis = counted !== undefined && (counted.uncounted === null || counted.uncounted === reportId)
   const isKept = isOnlyThis && isCounted({ ...counted, uncounted: null }) && wasCounted !== false
   if (!isKept) {
-    await recountBoard(tx, boardId)
+    await mendCounts(tx, boardId)
     return result
   }
   const delta: CountsDelta = new Map()
   if (before) countLife(delta, before, -1)
   if (after) countLife(delta, after, 1)
-  await applyCounts(tx, repo.storedTables, boardId, delta)
+  try {
+    await applyCounts(tx, repo.storedTables, boardId, delta)
+  } catch (error) {
+    if (!(error instanceof WrongCounts)) throw error
+    logError('counts-wrong', error, { board: boardId })
+    await mendCounts(tx, boardId)
+    return result
+  }
   const filedOn = lastFiledOn(life)
   const last = counted.last_filed_on
   await repo.markCounted(tx, boardId, last !== null && last > filedOn ? last : filedOn)
   return result
+}
+
+/** Counts a board anew, or marks its counts as not to be read. */
+async function mendCounts(tx: Tx, boardId: string): Promise<void> {
+  if (await repo.hasMoreReports(tx, boardId, maxRecountedAtOnce)) await repo.markUncounted(tx, boardId)
+  else await recountBoard(tx, boardId)
 }

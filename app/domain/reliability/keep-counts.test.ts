@@ -3,7 +3,7 @@ import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import fc from 'fast-check'
 import { sql } from 'kysely'
-import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest'
 import { addDays, type Day } from '~/lib/dates'
 import { openDb, type Db, type Tx } from '~db/client.server'
 import { migrate } from '~db/migrate'
@@ -14,7 +14,7 @@ import * as reports from '../reports/reports.repo.server'
 import { coarseLife, countLives } from './count-life'
 import { countingRules } from './count-slices'
 import { addLife, noCounts, type GroupCounts, type LifeCounts } from './group-counts'
-import { withCounts } from './keep-counts.server'
+import { maxRecountedAtOnce, withCounts } from './keep-counts.server'
 import { areCountsCurrent, readCounts, readLives } from './read-counts.server'
 import { countMissing, recountBoard } from './recount-board.server'
 import {
@@ -266,19 +266,35 @@ describe('what is written past the counts', () => {
     }))
 
   it.each(['group_totals', 'day_counts', 'life_counts'] as const)(
-    'nothing falls below 0: with a wrong row of %s the write is refused as a whole',
+    'a wrong row of %s keeps nobody from writing: it is noticed, and the board is counted anew',
     (table) =>
       inWorld(async (db) => {
-        const { reports: filed } = await play(db, [fitted()])
+        const told = vi.spyOn(process.stderr, 'write').mockReturnValue(true)
+        const { reports: filed } = await play(db, [fitted(), fitted()])
         if (table === 'group_totals') await db.updateTable(table).set({ totals_json: '{"fitted":1}' }).execute()
         else await db.deleteFrom(table).execute()
-        const write = db
-          .transaction()
-          .execute((tx) => withCounts(tx, filed[0]!, () => tx.deleteFrom('install_reports').execute()))
-        await expect(write).rejects.toThrow('below 0')
-        expect(await db.selectFrom('install_reports').select('id').execute()).toEqual([{ id: filed[0] }])
+        await db.transaction().execute(async (tx) => {
+          await withCounts(tx, filed[0]!, () => tx.deleteFrom('install_reports').where('id', '=', filed[0]!).execute())
+          expect(await areCountsCurrent(tx, 'b1', endOfTime)).toBe(true)
+          await expectTrue(tx)
+        })
+        expect(told).toHaveBeenCalledWith(expect.stringContaining('counts-wrong'))
+        told.mockRestore()
       })
   )
+
+  it('a board of very many reports is left to the next start, and not read until then', () =>
+    inWorld(async (db) => {
+      const { reports: filed } = await play(db, [fitted()])
+      await db.transaction().execute(async (tx) => {
+        for (let i = 0; i < maxRecountedAtOnce; i++) await reports.insertReport(tx, row(`more ${i}`))
+        await withCounts(tx, filed[0]!, () => reports.insertCheckIn(tx, said(filed[0]!)))
+      })
+      expect(await isCurrent(db)).toBe(false)
+      await countMissing(db, () => {})
+      expect(await isCurrent(db)).toBe(true)
+      await db.transaction().execute(expectTrue)
+    }))
 })
 
 const fitted = (change: Partial<Extract<Step, { do: 'file' }>> = {}): Step => ({

@@ -15,7 +15,15 @@ export const findBoard = (db: DbOrTx, slug: string) =>
     .innerJoin('consoles as k', 'k.id', 'b.console_id')
     .leftJoin('report_versions as w', 'w.board_id', 'b.id')
     .where('b.slug', '=', slug)
-    .select(['b.id', 'b.slug', 'b.name', 'b.console_id', 'k.name as console_name', 'k.slug as console_slug', 'w.version as report_version'])
+    .select([
+      'b.id',
+      'b.slug',
+      'b.name',
+      'b.console_id',
+      'k.name as console_name',
+      'k.slug as console_slug',
+      'w.version as report_version'
+    ])
     .executeTakeFirst()
 
 /** Published releases, the highest version first. */
