@@ -6,27 +6,24 @@ import type { Cell } from './reliability-figures'
 import { observationFilters, type ReliabilityFilters } from './reliability-filters'
 import { countSilent, noSilent } from './silent-figures'
 
+/** Takes life histories one by one, of the releases and console revisions counted, whatever their batch; `cells` is what they came to. */
+export type CellCounter = { add: (life: LifeHistory) => void; cells: () => Cell[] }
+
 /**
  * Counts life histories into cells of one release on one console revision, and into those of their batches.
  *
- * @param lives of the releases and console revisions counted, whatever their batch
  * @param batchId only this batch's units go into the cells; null for all
  * @param batches whose units are counted, in place
  */
-export function countCells(
-  lives: Iterable<LifeHistory>,
-  filters: ReliabilityFilters,
-  batchId: string | null,
-  batches: readonly BatchCounts[]
-): Cell[] {
+export function cellCounter(filters: ReliabilityFilters, batchId: string | null, batches: readonly BatchCounts[]): CellCounter {
   const kept = observationFilters(filters)
   const cells = new Map<string, Cell>()
   const byId = new Map(batches.map((batch) => [batch.id, batch]))
-  for (const life of lives) {
+  const add = (life: LifeHistory) => {
     const outcome = observationOf(life, filters.asOf, kept)
     const batch = life.batchId === null ? undefined : byId.get(life.batchId)
     if (batch) countOutcome(batch.counts, life, outcome, 1)
-    if (batchId !== null && life.batchId !== batchId) continue
+    if (batchId !== null && life.batchId !== batchId) return
     const { releaseId, revisionId } = life
     const key = `${releaseId} ${revisionId}`
     let cell = cells.get(key)
@@ -38,7 +35,14 @@ export function countCells(
     countOutcome(cell.counts, life, outcome, 1)
     if (cell.silent !== null) countSilent(cell.silent, life, outcome, filters.asOf)
   }
-  return [...cells.values()]
+  return { add, cells: () => [...cells.values()] }
+}
+
+/** The cells of life histories at hand; see `cellCounter`. */
+export function countCells(lives: Iterable<LifeHistory>, ...rest: Parameters<typeof cellCounter>): Cell[] {
+  const counter = cellCounter(...rest)
+  for (const life of lives) counter.add(life)
+  return counter.cells()
 }
 
 /** Joint observations on the coarse grid. */

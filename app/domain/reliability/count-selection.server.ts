@@ -1,12 +1,11 @@
 import type { Tx } from '~db/client.server'
-import type { LifeHistory } from '../reports/observations'
 import type { BatchCounts } from './batch-figures'
-import { coarseLives, countCells } from './count-cells'
+import { cellCounter, coarseLives } from './count-cells'
 import { addCounts, noTotals, totalKeys } from './group-counts'
 import { areCountsCurrent, readCounts, readLives } from './read-counts.server'
 import { grainNeeded, type Cell } from './reliability-figures'
+import { pagesOfLives } from './lives.repo.server'
 import type { ReliabilityFilters } from './reliability-filters'
-import { listLives } from './reliability.repo.server'
 
 /** What is counted: the releases that the filters leave, and the one console revision or batch they name. `batches` are those of the releases, without counts. */
 export type Selection = {
@@ -54,14 +53,16 @@ export async function countStored(
   return { cells, grain: grain ?? 1, way: 'counts' }
 }
 
-/** From the life histories: any filter, any as-of day. Fills the batches' counts. */
+/** From the life histories, a page at a time: any filter, any as-of day. Fills the batches' counts. */
 export async function countHistories(
   tx: Tx,
   { filters, releaseIds, revisionId, batchId, batches }: Selection
 ): Promise<CountedSelection> {
-  const lives: LifeHistory[] = []
-  for (const id of releaseIds) for (const life of await listLives(tx, id, revisionId, filters.asOf)) lives.push(life)
-  const cells = countCells(lives, filters, batchId, batches)
+  const counter = cellCounter(filters, batchId, batches)
+  for (const releaseId of releaseIds)
+    for await (const page of pagesOfLives(tx, { releaseId, revisionId, asOf: filters.asOf }))
+      for (const life of page) counter.add(life)
+  const cells = counter.cells()
   const grain = grainOf(cells, filters) ?? 1
   if (grain === 14) for (const { counts } of cells) counts.lives = coarseLives(counts.lives!)
   return { cells, grain, way: 'histories' }

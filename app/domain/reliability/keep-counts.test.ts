@@ -9,6 +9,7 @@ import { openDb, type Db, type Tx } from '~db/client.server'
 import { migrate } from '~db/migrate'
 import { addBatches, play, steps, type Step } from '../../../tests/factories/report-sequence'
 import { fillReportWorld } from '../../../tests/factories/report-world'
+import { livesOfRelease } from '../../../tests/support/lives-of-release'
 import { evidenceGrades } from '../reports/report-words'
 import * as reports from '../reports/reports.repo.server'
 import { coarseLife, countLives } from './count-life'
@@ -25,7 +26,6 @@ import {
   readFilters,
   type ReliabilityFilters
 } from './reliability-filters'
-import { listLives } from './reliability.repo.server'
 
 const folder = mkdtempSync(join(tmpdir(), 'fettle-counts-'))
 const template = join(folder, 'template.sqlite')
@@ -81,7 +81,7 @@ const sorted = (lives: LifeCounts | undefined) => [...(lives?.entries() ?? [])].
 
 /** Every slice of every release and batch on every revision and all, as the tables have it beside what the rows give. */
 async function expectTrue(tx: Tx): Promise<void> {
-  const lives = (await Promise.all(releases.map((id) => listLives(tx, id, null, endOfTime)))).flat()
+  const lives = (await Promise.all(releases.map((id) => livesOfRelease(tx, { releaseId: id, asOf: endOfTime })))).flat()
   const scopes = [...releases, ...Object.values(batches).flat()]
   for (const filters of slices) {
     const countedOf = (scope: string, revision: string) =>

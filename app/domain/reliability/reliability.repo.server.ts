@@ -1,13 +1,7 @@
-import type { Day } from '~/lib/dates'
-import { DomainError } from '~/lib/domain-error'
-import type { DbOrTx, Tx } from '~db/client.server'
-import type { LifeHistory } from '../reports/observations'
-import { pagesOfLives } from './lives.repo.server'
+import type { DbOrTx } from '~db/client.server'
 import type { FilterChoices } from './reliability-filters'
 
 const published = ['trial', 'released', 'withdrawn'] as const
-/** More than this is refused rather than half read. */
-const maxLives = 1_000_000
 
 export const findBoard = (db: DbOrTx, slug: string) =>
   db
@@ -71,22 +65,3 @@ export const listRevisions = (db: DbOrTx, consoleId: string) =>
     .select(['id', 'code'])
     .limit(100)
     .execute()
-
-/** The life histories of one release's units filed up to a day, on one console revision or all, of one batch or all. */
-export async function listLives(
-  tx: Tx,
-  releaseId: string,
-  revisionId: string | null,
-  asOf: Day,
-  batchId: string | null = null
-): Promise<LifeHistory[]> {
-  const lives: LifeHistory[] = []
-  for await (const page of pagesOfLives(tx, { releaseId, revisionId, batchId, asOf })) {
-    for (const life of page) lives.push(life)
-    if (lives.length > maxLives) throw tooMany()
-  }
-  return lives
-}
-
-const tooMany = () =>
-  new DomainError('impossible', 'There are more reports than one figure can be computed from. Narrow the filters.')

@@ -4,8 +4,8 @@ import { DomainError } from '~/lib/domain-error'
 import type { Services } from '~/server/services.server'
 import type { Db } from '~db/client.server'
 import { fillReportWorld, openTestDb } from '../../../tests/factories/report-world'
+import { livesOfRelease } from '../../../tests/support/lives-of-release'
 import { readFilters, type ReliabilityFilters } from './reliability-filters'
-import { listLives } from './reliability.repo.server'
 import { reliabilityOf } from './reliability.server'
 import { closeWorkers } from './worker-client.server'
 
@@ -210,7 +210,9 @@ describe('a unit that is taken out and fitted anew', () => {
           filed_at: '2026-05-30T10:00:00.000Z'
         })
         .execute()
-      const found = (await listLives(tx, 'v1', null, everything.asOf)).filter((life) => life.reportId.startsWith('again'))
+      const found = (await livesOfRelease(tx, { releaseId: 'v1', asOf: everything.asOf })).filter((life) =>
+        life.reportId.startsWith('again')
+      )
       expect(found).toMatchObject([
         { reportId: 'again1', revisionId: 'tm-1', installedOn: '2026-01-10', statements: [{ statedOn: '2026-05-30' }] },
         { reportId: 'again2', revisionId: 'tm-2', installedOn: '2026-06-01', statements: [] }
