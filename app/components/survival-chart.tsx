@@ -30,6 +30,8 @@ export type SurvivalChartProps = {
   reading?: { days: number; words: string }
   /** The points are thinned: exact at its multiples (`drawnCurves`). */
   grain?: number | null
+  /** What the share is one of; "still working". */
+  share?: string
   /** The confidence of the limits in words. */
   sure?: string
   /** One curve in a small figure: no label, no rows below. */
@@ -37,6 +39,7 @@ export type SurvivalChartProps = {
 }
 
 const oneYear = { days: 365, words: '1 year' }
+export const stillWorking = 'still working'
 
 /**
  * What is drawn, in drawing order: the marked series last, over the others; at most four. Inks stay with their series, whichever is pointed at.
@@ -58,8 +61,9 @@ const inWords = (drawn: DrawnSeries[], props: SurvivalChartProps) => {
   const parts = [...drawn]
     .reverse()
     .map((s) => `${s.name}${s.isMarked && drawn.length > 1 ? ' (marked)' : ''} ${s.says ?? readingText(s.points, days, words)}`)
-  if (props.plainUnit !== undefined) return `Share still working by ${props.plainUnit}: ${parts.join('; ')}.`
-  return `Share still working by ${unitWords[props.unit]} after fitting, as of ${props.asOf}: ${parts.join('; ')}.`
+  const share = props.share ?? stillWorking
+  if (props.plainUnit !== undefined) return `Share ${share} by ${props.plainUnit}: ${parts.join('; ')}.`
+  return `Share ${share} by ${unitWords[props.unit]} after fitting, as of ${props.asOf}: ${parts.join('; ')}.`
 }
 
 /**
@@ -68,11 +72,12 @@ const inWords = (drawn: DrawnSeries[], props: SurvivalChartProps) => {
  */
 export function SurvivalChart(props: SurvivalChartProps) {
   const { series, unit, plainUnit, reading = oneYear, grain = null, sure = '95\u00a0%', isSmall } = props
+  const share = props.share ?? stillWorking
   const [pointed, setPointed] = useState<string | null>(null)
   const drawn = useMemo(() => drawnSeries(series, pointed), [series, pointed])
   const label = useMemo(
-    () => inWords(drawnSeries(series), { series, unit, plainUnit, reading: props.reading, asOf: props.asOf }),
-    [series, unit, plainUnit, props.reading, props.asOf]
+    () => inWords(drawnSeries(series), { series, unit, plainUnit, share, reading: props.reading, asOf: props.asOf }),
+    [series, unit, plainUnit, share, props.reading, props.asOf]
   )
   const marked = drawn.at(-1)
   const last = Math.max(0, ...drawn.map((s) => drawnTo(s.points)))
@@ -80,7 +85,7 @@ export function SurvivalChart(props: SurvivalChartProps) {
   const wordsOf = (day: number) => (plainUnit === undefined ? dayWords(day) : plainWords(day, plainUnit))
   const id = useId()
   const descriptionId = last > 0 ? id : undefined
-  const drawing = { drawn, label, descriptionId, unit, plainUnit, reading, isSmall }
+  const drawing = { drawn, label, share, descriptionId, unit, plainUnit, reading, isSmall }
   const drawings = <TwoDrawings wide={<SurvivalDrawing {...drawing} />} narrow={<SurvivalDrawing {...drawing} isNarrow />} />
   if (marked === undefined || last === 0) return drawings
   const idle = Math.min(reading.days, last)
@@ -109,7 +114,7 @@ export function SurvivalChart(props: SurvivalChartProps) {
       onMark={setPointed}
       idle={idle}
       lines={(day) => {
-        const at = `Still working ${plainUnit === undefined ? 'on' : 'at'} ${wordsOf(day ?? idle)}`
+        const at = `${share[0]!.toUpperCase()}${share.slice(1)} ${plainUnit === undefined ? 'on' : 'at'} ${wordsOf(day ?? idle)}`
         const rows = rowsAt(day ?? idle)
         return isSmall ? (
           <ReadingLine head={`${at}:`} row={rows[0]!} />

@@ -52,6 +52,8 @@ type DrawingProps = {
   isSmall?: boolean
   drawn: DrawnSeries[]
   label: string
+  /** What the share is one of. */
+  share: string
   /** The element that says what is drawn at length. */
   descriptionId?: string
   reading: { days: number; words: string }
@@ -65,6 +67,7 @@ const nearby = 12
 export const SurvivalDrawing = memo(function SurvivalDrawing({
   drawn,
   label,
+  share,
   descriptionId,
   isNarrow,
   isSmall,
@@ -119,7 +122,7 @@ export const SurvivalDrawing = memo(function SurvivalDrawing({
         y={percent}
         yTicks={percentTicks(floor, isNarrow || isSmall)}
         xTicks={axis.ticks}
-        yTitle="% still working"
+        yTitle={`% ${share}`}
         xTitle={plainUnit ?? (isNarrow && !isSmall ? unitWords[unit] : `${unitWords[unit]} after fitting`)}
         isCut={floor > 0}
         isTight={isSmall}

@@ -32,13 +32,22 @@ export type SurvivalStripsProps = {
   reading?: { days: number; words: string }
   /** The points are thinned: exact at its multiples (`drawnCurves`). */
   grain?: number | null
+  /** What the share is one of; "still working". */
+  share?: string
 }
 
 const oneYear = { days: 365, words: '1 year' }
 const shortUnit: Record<TimeUnit, string> = { year: 'y', month: 'm', day: 'd' }
 
 /** Small multiples: one revision each with band and ticks, the others as hairlines, one scale for all, one cursor over all. */
-export function SurvivalStrips({ strips, unit, floor, reading = oneYear, grain = null }: SurvivalStripsProps) {
+export function SurvivalStrips({
+  strips,
+  unit,
+  floor,
+  reading = oneYear,
+  grain = null,
+  share = 'still working'
+}: SurvivalStripsProps) {
   const id = useId()
   const lowest = Math.min(
     1,
@@ -82,7 +91,9 @@ export function SurvivalStrips({ strips, unit, floor, reading = oneYear, grain =
       onMark={doNothing}
       idle={idle}
       lines={(day) => (
-        <p className="chart-lines soft">Under each strip: still working on {dayWords(day ?? idle)}, 95&nbsp;% interval.</p>
+        <p className="chart-lines soft">
+          Under each strip: {share} on {dayWords(day ?? idle)}, 95&nbsp;% interval.
+        </p>
       )}
       isWide
     >
@@ -121,7 +132,7 @@ const hairlines = (strips: readonly Strip[], { x, y }: { x: Scale; y: Scale }) =
     .map((run) => knownPath(run, { x, y }))
     .join('')
 
-type StripProps = Required<Omit<SurvivalStripsProps, 'grain'>> & {
+type StripProps = Required<Omit<SurvivalStripsProps, 'grain' | 'share'>> & {
   strip: Strip
   lastDay: number
   isNarrow?: boolean

@@ -38,6 +38,17 @@ export const causeFilterWords: Record<CauseFilter, string> = {
   unknown: 'unexplained failures'
 }
 
+/** What the share of a curve is one of: "% still working", or of one cause what has not failed by it. */
+export const shareWords: Record<CauseFilter, string> = {
+  all: 'still working',
+  board: 'not failed by the board',
+  fitting: 'not failed by the fitting',
+  'other-fault': 'not failed by another fault',
+  'wrong-diagnosis': 'not failed by a wrong diagnosis',
+  accident: 'not failed by an accident',
+  unknown: 'not failed unexplained'
+}
+
 /** A cause as the row of a table or the name of a line. */
 export const causeNames: Record<Cause, string> = {
   board: 'The board',

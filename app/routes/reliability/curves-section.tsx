@@ -5,6 +5,8 @@ import { Figure } from '~/components/figure'
 import { Section } from '~/components/section'
 import { SurvivalChart } from '~/components/survival-chart'
 import { SurvivalStrips } from '~/components/survival-strips'
+import { shareWords } from '~/domain/reliability/filter-words'
+import type { ReliabilityFilters } from '~/domain/reliability/reliability-filters'
 import { listOf, tooFew } from '~/domain/reliability/reliability-words'
 import { CsvLink } from './csv-link'
 import { EstimatorNotes } from './estimator-notes'
@@ -17,9 +19,16 @@ export const unitOf = (groups: readonly ShownGroup[]) => unitFor(Math.max(1, ...
 export const asOfOf = (shown: ShownFigures) => new URLSearchParams(shown.query).get('as-of')!
 
 /** Four curves by console revision in one figure, and each on its own strip. */
-export function CurvesSections({ here, shown, sections, figures }: SectionProps) {
+export function CurvesSections({
+  here,
+  shown,
+  sections,
+  figures,
+  filters
+}: SectionProps & { filters: Pick<ReliabilityFilters, 'cause'> }) {
   const { byRevision, marked, beside, all, grain, query } = shown
   const unit = unitOf(byRevision)
+  const share = shareWords[filters.cause]
   const series = byRevision
     .filter((g) => g.group === marked || beside.includes(g.group))
     .map((g) => ({ name: g.group, points: g.points, marked: g.group === marked }))
@@ -51,12 +60,12 @@ export function CurvesSections({ here, shown, sections, figures }: SectionProps)
             number={figures.curves}
             caption={
               <>
-                Share still working. {series.length > 1 ? 'Only the marked revision carries' : 'With'} its 95&nbsp;% band and, as
-                ticks, the last word from its working units. Thin and faint under 10 units followed, not drawn under {tooFew}.
+                Share {share}. {series.length > 1 ? 'Only the marked revision carries' : 'With'} its 95&nbsp;% band and, as ticks,
+                the last word from its working units. Thin and faint under 10 units followed, not drawn under {tooFew}.
               </>
             }
           >
-            <SurvivalChart series={series} unit={unit} asOf={asOfOf(shown)} grain={shown.drawnGrain.revision} />
+            <SurvivalChart series={series} unit={unit} asOf={asOfOf(shown)} grain={shown.drawnGrain.revision} share={share} />
           </Figure>
         )}
       </Section>
@@ -68,6 +77,7 @@ export function CurvesSections({ here, shown, sections, figures }: SectionProps)
           >
             <SurvivalStrips
               unit={unit}
+              share={share}
               grain={shown.drawnGrain.revision}
               strips={byRevision.map((g) => ({
                 name: g.group,

@@ -20,8 +20,8 @@ export function EstimatorNotes({ groups, grain }: Props) {
   return (
     <p>
       <b>Turnbull{wide.length < drawn.length && ` for ${names(wide)}`}:</b> {failures}{' '}
-      {failures === 1 ? 'failure there lies' : 'failures there lie'} somewhere between two days more than 14 apart. Where a line
-      is open it is not known when it falls.
+      {failures === 1 ? 'failure there lies' : 'failures there lie'} somewhere between two days more than 14 apart. Where a box is
+      hatched or a line slants, it is not known when the curve falls.
       {wide.length < drawn.length &&
         ` Kaplan-Meier for ${names(drawn.filter((g) => g.estimator === 'kaplan-meier'))}, where all days are known.`}
       {grain > 1 && ' With so many units, days are counted in fortnights.'}{' '}

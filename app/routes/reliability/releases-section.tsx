@@ -2,6 +2,7 @@ import { Figure } from '~/components/figure'
 import { Section } from '~/components/section'
 import { SurvivalChart } from '~/components/survival-chart'
 import { TextLink } from '~/components/text-link'
+import { shareWords } from '~/domain/reliability/filter-words'
 import type { ReliabilityFilters } from '~/domain/reliability/reliability-filters'
 import { tooFew } from '~/domain/reliability/reliability-words'
 import { CsvLink } from './csv-link'
@@ -53,9 +54,15 @@ export function ReleasesSection(props: Props) {
       ) : (
         <Figure
           number={figures.releases}
-          caption={`Share still working, by release of ${boardName}. The release with the most reports carries its 95\u00a0% band and ticks. Not drawn under ${tooFew} followed.`}
+          caption={`Share ${shareWords[filters.cause]}, by release of ${boardName}. The release with the most reports carries its 95\u00a0% band and ticks. Not drawn under ${tooFew} followed.`}
         >
-          <SurvivalChart series={series} unit={unitOf(byRelease)} asOf={asOfOf(shown)} grain={shown.drawnGrain.release} />
+          <SurvivalChart
+            series={series}
+            unit={unitOf(byRelease)}
+            asOf={asOfOf(shown)}
+            grain={shown.drawnGrain.release}
+            share={shareWords[filters.cause]}
+          />
         </Figure>
       )}
       <div className="wide">

@@ -54,7 +54,7 @@ export function Shown({ here, board, shown, filters, boardRevisionOf, hrefs }: P
         hrefOf={hrefs.revision}
         filters={filters}
       />
-      <CurvesSections {...common} />
+      <CurvesSections {...common} filters={filters} />
       {sections.releases !== null && (
         <ReleasesSection
           {...common}
