@@ -48,7 +48,6 @@ async function scaleOf(board: string, many: number): Promise<Claim[]> {
     say('a report filed', [small.write, large.write])
     const what = `${board}, ${many} units over ${few}`
     return [
-      { claim: `${what}: figures and page data`, measured: computed[1]! / computed[0]!, limit: 1.5 },
       { claim: `${what}: the whole page`, measured: served[1]! / served[0]!, limit: 1.5 },
       { claim: `${what}: a report filed`, measured: large.write / small.write, limit: 1.5 }
     ]
@@ -71,6 +70,8 @@ async function open(board: string, units: number): Promise<Sized> {
       await sql`pragma cache_size = -2000000`.execute(db)
       await timed(`${board}: ${units} units counted`, () => db.transaction().execute((tx) => recountBoard(tx, id)))
       await sql`pragma cache_size = -2000`.execute(db)
+      // One transaction of everything leaves a log as large, which no board that grew report by report has.
+      await sql`pragma wal_checkpoint(truncate)`.execute(db)
       write = await writeTime(db, places)
       const isCurrent = await db.transaction().execute((tx) => areCountsCurrent(tx, id, demoAsOf))
       if (!isCurrent) throw new Error('The counts are not current after a report was filed')

@@ -41,14 +41,27 @@ export function outlastingSpans({ entry, lower, upper, weight }: Spans): Spans {
  * matter: ln S(entry) is taken off the log-likelihood of each late unit, which is what a row censored at its entry with a negative weight does.
  */
 export function spansOfTally({ time, entered, failed, censored }: Tally): Spans {
-  const rows: Row[] = []
-  time.forEach((day, j) => {
-    if (day === 0) return
-    if (failed[j] !== 0) rows.push([0, day, day, failed[j]!])
-    const leaving = censored[j]! - entered[j]!
-    if (leaving !== 0) rows.push([0, day, Infinity, leaving])
-  })
-  return spansFrom(rows)
+  const most = 2 * time.length
+  const [lower, upper, weight] = [new Float64Array(most), new Float64Array(most), new Float64Array(most)]
+  let rows = 0
+  const add = (day: number, end: number, count: number) => {
+    if (count === 0) return
+    lower[rows] = day
+    upper[rows] = end
+    weight[rows++] = count
+  }
+  for (let j = 0; j < time.length; j++) {
+    const day = time[j]!
+    if (day === 0) continue
+    add(day, day, failed[j]!)
+    add(day, Infinity, censored[j]! - entered[j]!)
+  }
+  return {
+    entry: new Float64Array(rows),
+    lower: lower.subarray(0, rows),
+    upper: upper.subarray(0, rows),
+    weight: weight.subarray(0, rows)
+  }
 }
 
 const spansFrom = (rows: readonly Row[]): Spans => ({

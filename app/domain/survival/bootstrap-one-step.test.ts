@@ -109,8 +109,9 @@ describe('units do not cost', () => {
       return count
     }
     const few = used(12)
-    expect(few).toBeGreaterThan(20 * spans.weight.length)
-    expect(used(200_000)).toBeLessThan(1.05 * few)
+    expect(few).toBeGreaterThanOrEqual(20 * spans.weight.length)
+    // One or two numbers by the table, some two and a half by rejection.
+    expect(used(200_000)).toBeLessThan(3 * few)
   })
 
   test('a hundredfold of every row has a tenth of the error', () => {

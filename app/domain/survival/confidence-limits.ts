@@ -44,7 +44,14 @@ export function curveLimits(curve: SurvivalCurve, options: LimitOptions = defaul
       upper[i] = upper[i - 1]!
       continue
     }
-    const limits = limitsWith(curve.survival[i]!, curve.greenwood[i]!, curve.atRisk[i]!, z, options)
+    const s = curve.survival[i]!
+    if (s > 0 && s < 1) {
+      const limits = limitsOfProbability(s, Math.sqrt(curve.greenwood[i]!), z, options.interval)
+      lower[i] = limits.lower
+      upper[i] = limits.upper
+      continue
+    }
+    const limits = limitsWith(s, curve.greenwood[i]!, curve.atRisk[i]!, z, options)
     if (limits.lower !== null) lower[i] = limits.lower
     if (limits.upper !== null) upper[i] = limits.upper
     if (limits.bound !== null) exact[i] = 1

@@ -21,12 +21,12 @@ const drawn = (rows: readonly Row[], t: number) => rows.findLast((row) => (row.s
 
 describe('thinPoints', () => {
   it('leaves curves alone that are short enough', () => {
-    const curve = curveOf(Array.from({ length: 400 }, () => 3))
+    const curve = curveOf(Array.from({ length: 300 }, () => 3))
     expect(thinPoints([curve, []])).toEqual({ curves: [curve, []], grain: null })
   })
 
   it('keeps value and risk set at each multiple of the grain and at the times named, and never draws higher than the truth', () => {
-    const gaps = fc.array(fc.integer({ min: 1, max: 4 }), { minLength: 401, maxLength: 2_500 })
+    const gaps = fc.array(fc.integer({ min: 1, max: 4 }), { minLength: 301, maxLength: 2_500 })
     fc.assert(
       fc.property(
         gaps,
@@ -65,10 +65,10 @@ describe('thinPoints', () => {
     const long = curveOf(Array.from({ length: 1_800 }, () => 1))
     const short = curveOf(Array.from({ length: 300 }, () => 1))
     const { curves, grain } = thinPoints([long, short])
-    // 1,800 days in at most 200 stretches
-    expect(grain).toBe(10)
-    expect(curves[0]!.slice(0, 5).map((row) => row.time)).toEqual([1, 9, 10, 19, 20])
-    expect(curves[0]!.slice(0, 5).map((row) => row.since)).toEqual([undefined, 1, undefined, 10, undefined])
+    // 1,800 days in at most 150 stretches
+    expect(grain).toBe(20)
+    expect(curves[0]!.slice(0, 5).map((row) => row.time)).toEqual([1, 19, 20, 39, 40])
+    expect(curves[0]!.slice(0, 5).map((row) => row.since)).toEqual([undefined, 1, undefined, 20, undefined])
     expect(curves[1]).toBe(short)
   })
 
@@ -83,9 +83,9 @@ describe('thinPoints', () => {
     const { curves } = thinPoints<Row>([cells])
     expect(curves[0]!.slice(0, 4)).toMatchObject([
       { time: 1, from: 0.5 },
-      { time: 4, from: 1 },
-      { time: 5, from: 4.5 },
-      { time: 9, from: 5 }
+      { time: 9, from: 1 },
+      { time: 10, from: 9.5 },
+      { time: 19, from: 10 }
     ])
   })
 })

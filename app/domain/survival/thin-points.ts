@@ -1,5 +1,5 @@
-/** A curve of more rows is thinned, to two rows in each of at most half as many stretches: one for each three pixels of the wide drawing. */
-const enough = 400
+/** A curve of more rows is thinned, to two rows in each of at most half as many stretches: one for each four pixels or so of the wide drawing. */
+const enough = 300
 
 /**
  * A row of a step curve as a drawing carries it. `from`: S is not determined after this time and before the row's own. `since`: rows between this
@@ -8,7 +8,7 @@ const enough = 400
 export type ThinRow = { time: number; censored?: number; from?: number; since?: number }
 
 /**
- * Curves that are drawn together, each with at most about 400 rows: time is cut into equal stretches `grain` long (1, 2 or 5 times a power of ten)
+ * Curves that are drawn together, each with at most about 300 rows: time is cut into equal stretches `grain` long (1, 2 or 5 times a power of ten)
  * and at the times `exactAt`, and of each stretch the first and the last row are kept, as they are. The value, limits and risk set in force at every multiple of
  * `grain` and at every time of `exactAt` are therefore those of the whole curve. Units censored at a row left out are counted at the last one of its stretch. `grain` is null
  * where nothing had to be left out. Linear in the rows.

@@ -156,8 +156,10 @@ describe('properties', () => {
             : [one]
         })
         const [whole, parts] = [fitOf(all), fitOf(split)]
-        expect(parts === null).toBe(whole === null)
-        if (whole && parts)
+        // A likelihood so flat that ln sigma is known to some factor of e^4 ends where rounding takes it, or nowhere.
+        const isTold = (fit: typeof whole) => fit !== null && fit.covariance.logSigma < 16
+        expect(isTold(parts)).toBe(isTold(whole))
+        if (whole && parts && isTold(whole))
           expectClose(
             [parts.shape, parts.scale, parts.logLikelihood],
             [whole.shape, whole.scale, whole.logLikelihood],

@@ -1,30 +1,57 @@
 import { deviance, stirlingError } from './gamma'
 
 /**
- * Draws Poisson numbers of mean `mean`, exactly (as far as uniform numbers of 32 bits go): by inversion below 10, above by transformed rejection, whose cost
- * does not grow with the mean.
+ * Draws Poisson numbers of mean `mean`, exactly (as far as uniform numbers of 32 bits go): up to 500 by inversion through a table of where to
+ * begin, above by transformed rejection; the cost of neither grows with the mean.
  *
- * Source: W. Hörmann, Insurance: Mathematics and Economics 12:39-45 (1993), algorithm PTRS.
+ * Source: W. Hörmann, Insurance: Mathematics and Economics 12:39-45 (1993), algorithm PTRS; H.-C. Chen and Y. Asau, AIIE Transactions 6:163-166 (1974),
+ * guide tables.
  *
  * @param random uniform numbers in [0, 1)
  * @throws RangeError unless the mean is finite and not below 0
  */
 export function poissonSampler(mean: number, random: () => number): () => number {
   if (!(mean >= 0 && Number.isFinite(mean))) throw new RangeError(`poissonSampler: the mean must not be below 0 (${mean})`)
-  return mean < 10 ? byInversion(mean, random) : byRejection(mean, random)
+  return mean <= largestTabled ? byTable(mean, random) : byRejection(mean, random)
 }
 
-function byInversion(mean: number, random: () => number): () => number {
-  const none = Math.exp(-mean)
+const largestTabled = 500
+
+/** P(X <= first + i), and for each of equally wide strips of the unit interval the i at which the search for a number in it begins. */
+type Table = { first: number; upTo: Float64Array; guide: Uint16Array }
+
+// Rows of a sample share few different weights, and resamples share the rows.
+const tables = new Map<number, Table>()
+const mostTables = 1_000
+
+function tableOf(mean: number): Table {
+  const known = tables.get(mean)
+  if (known !== undefined) return known
+  // Beyond ten deviations, and some more for small means, less than 1e-20 is left: no number of 32 bits reaches it.
+  const first = Math.max(0, Math.floor(mean - 10 * Math.sqrt(mean)))
+  const size = Math.ceil(mean + 10 * Math.sqrt(mean) + 25) - first + 1
+  const upTo = new Float64Array(size)
+  let sum = 0
+  for (let i = 0; i < size; i++) upTo[i] = sum += mean === 0 ? Number(i === 0) : Math.exp(logProbability(first + i, mean))
+  const guide = new Uint16Array(size)
+  for (let strip = 0, i = 0; strip < size; strip++) {
+    while (i < size - 1 && upTo[i]! <= strip / size) i++
+    guide[strip] = i
+  }
+  const table = { first, upTo, guide }
+  if (tables.size >= mostTables) tables.clear()
+  tables.set(mean, table)
+  return table
+}
+
+function byTable(mean: number, random: () => number): () => number {
+  const { first, upTo, guide } = tableOf(mean)
+  const last = upTo.length - 1
   return () => {
-    let u = random()
-    let k = 0
-    // The probabilities run out where no uniform number is left to reach them.
-    for (let p = none; u >= p && p > 1e-20; p *= mean / k) {
-      u -= p
-      k++
-    }
-    return k
+    const u = random()
+    let i = guide[Math.floor(u * guide.length)]!
+    while (i < last && u >= upTo[i]!) i++
+    return first + i
   }
 }
 
