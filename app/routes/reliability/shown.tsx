@@ -78,7 +78,7 @@ export function Shown({ here, board, shown, filters, boardRevisionOf, hrefs }: P
       )}
       {sections.batches !== null && <BatchesSection {...common} hrefOf={hrefs.batch} />}
       <ApartSection shown={shown} sections={sections} />
-      {sections.steps !== null && <StepsSection {...common} />}
+      {sections.steps !== null && <StepsSection {...common} filters={filters} />}
     </>
   )
 }

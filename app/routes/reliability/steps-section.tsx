@@ -4,6 +4,7 @@ import { Pager } from '~/components/pager'
 import { Section } from '~/components/section'
 import { Table, type Column } from '~/components/table'
 import { TextLink } from '~/components/text-link'
+import type { ReliabilityFilters } from '~/domain/reliability/reliability-filters'
 import { CsvLink, GuideLink } from './csv-link'
 import type { SectionProps } from './curves-section'
 import { stepsPageSize, type ShownFigures } from './page-figures'
@@ -15,7 +16,13 @@ type Mass = NonNullable<Steps['support']>['rows'][number]
 const share = (value: number | null) => (value === null ? '' : value.toFixed(4))
 
 /** Every step of one curve in figures, and where Turnbull places failures. */
-export function StepsSection({ here, shown, sections, tables }: SectionProps) {
+export function StepsSection({
+  here,
+  shown,
+  sections,
+  tables,
+  filters
+}: SectionProps & { filters: Pick<ReliabilityFilters, 'cause'> }) {
   const { steps, query } = shown
   const { support } = steps
   const at = `${here}?${query}&steps=${encodeURIComponent(steps.key)}`
@@ -51,7 +58,7 @@ export function StepsSection({ here, shown, sections, tables }: SectionProps) {
           caption={stepsCaption(steps)}
           rows={steps.rows}
           rowKey={(row) => String(row.time)}
-          columns={columnsOf(steps.estimator)}
+          columns={columnsOf(steps.estimator, filters.cause === 'all' ? 'Working' : 'Not so failed')}
         />
         <Pager
           page={steps.page}
@@ -125,7 +132,8 @@ const stepsCaption = ({ label, estimator }: Steps) =>
     ? `The curve of ${label}: one row for each day of a last word on which it is known, and for each end of a stretch on which it is. Limits are 95\u00a0%, by resampling; marked ≥ where the lower one is an exact bound.`
     : `The curve of ${label}: one row for each day with a failure or a last word. Limits are 95\u00a0%, log-log; marked ≥ where the lower one is the exact bound of a curve without a failure.`
 
-function columnsOf(estimator: Steps['estimator']): Column<Step>[] {
+/** @param head what the share is one of, as short as a column is wide */
+function columnsOf(estimator: Steps['estimator'], head: string): Column<Step>[] {
   const isTurnbull = estimator === 'turnbull'
   const counted: Column<Step>[] = isTurnbull
     ? []
@@ -139,7 +147,7 @@ function columnsOf(estimator: Steps['estimator']): Column<Step>[] {
     ...counted,
     {
       key: 'survival',
-      head: 'Working',
+      head,
       isFigure: true,
       weight: 'bold',
       cell: (row) => (row.bound || row.survival >= 1 ? 'none failed' : share(row.survival))
