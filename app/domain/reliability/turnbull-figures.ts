@@ -12,6 +12,9 @@ import type { FigureAt, GroupFigures } from './figures.types'
 /** Always the same numbers, so that a figure can be had again. */
 const seed = 1976
 const resamples = 200
+/** Of more units the limits lie so close that fewer resamples tell them as well as a page can show. */
+const manyUnits = 20_000
+const resamplesOfMany = 50
 /** Up to so many units each resample is refitted in full; above, it moves by one step, which is near enough and fast. */
 const maxRefittedUnits = 500
 /** Less mass than this is rounding, no place where a failure may lie. */
@@ -142,7 +145,7 @@ function limitsOf(fit: TurnbullFit, cells: readonly number[], atRisk: ReadonlyMa
 
 const resampledLimits = (fit: TurnbullFit): BootstrapLimits => {
   const bootstrap = fit.units <= maxRefittedUnits ? bootstrapTurnbull : bootstrapOneStep
-  return bootstrap(fit, seededRandom(seed), 0.95, resamples)
+  return bootstrap(fit, seededRandom(seed), 0.95, fit.units > manyUnits ? resamplesOfMany : resamples)
 }
 
 /** The exact bound of so many units surely running, and their number. */
